@@ -1,0 +1,82 @@
+/*
+ * Quantities as people type them. Plain forms ("2.5k", "2.5 kHz", "0.8 Nyquist") are read here at once; anything else is left to the
+ * unit part of mathjs, which is heavy and therefore loaded only when such a text turns up.
+ */
+
+export type Parsed = { readonly ok: true; readonly value: number } | { readonly ok: false; readonly message: string }
+
+export interface FrequencyContext {
+  /** Half the sampling rate, for "0.8 Nyquist"; null where that would be circular (the sampling rate itself). */
+  readonly nyquistHz: number | null
+}
+
+const PREFIX: Readonly<Record<string, number>> = { '': 1, m: 1e-3, k: 1e3, K: 1e3, M: 1e6, G: 1e9 }
+const NUMBER = String.raw`[+-]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:e[+-]?\d+)?`
+const PLAIN = new RegExp(String.raw`^(${NUMBER})\s*([mkKMG]?)(?:hz)?$`, 'i')
+const NYQUIST = new RegExp(String.raw`^(${NUMBER})\s*(?:×|x|\*)?\s*(nyquist|fs/2|fs)$`, 'i')
+const PER_MINUTE = new RegExp(String.raw`^(${NUMBER})\s*(?:rpm|r/min|/min)$`, 'i')
+
+/** Spaces of every kind out of numbers, the typographic minus to a hyphen. A decimal comma is a point; grouping commas aren't read. */
+function tidy(text: string): string {
+  return text
+    .trim()
+    .replace(/−/g, '-')
+    .replace(/(\d)[\s\u2009\u202f\u00a0](?=\d{3}(?!\d))/g, '$1')
+    .replace(/[\u2009\u202f\u00a0]/g, ' ')
+}
+
+const toNumber = (digits: string): number => Number(digits.replace(',', '.'))
+
+/** Hz from "120", "2.5k", "2,5 kHz", "157 rad/s", "0.8 Nyquist", "0.25 fs", "1480 rpm". */
+export async function parseFrequency(input: string, context: FrequencyContext): Promise<Parsed> {
+  const text = tidy(input)
+  if (text === '') return refused('Type a frequency, such as 120 Hz or 2.5k.')
+
+  const plain = PLAIN.exec(text)
+  if (plain) return found(toNumber(plain[1] ?? '') * prefixFactor(plain[2] ?? ''))
+
+  const perMinute = PER_MINUTE.exec(text)
+  if (perMinute) return found(toNumber(perMinute[1] ?? '') / 60)
+
+  const relative = NYQUIST.exec(text)
+  if (relative) {
+    if (context.nyquistHz === null) return refused('The sampling rate can’t be given as a part of itself; type it in Hz.')
+    const ofRate = (relative[2] ?? '').toLowerCase() === 'fs' ? 2 : 1
+    return found(toNumber(relative[1] ?? '') * context.nyquistHz * ofRate)
+  }
+
+  const { unitToHertz } = await import('./mathjs-units')
+  const hertz = unitToHertz(text.replace(/(\d),(\d)/g, '$1.$2'))
+  return hertz === null ? refused(`“${input.trim()}” isn’t a frequency; try 2.5 kHz, 157 rad/s or 0.8 Nyquist.`) : found(hertz)
+}
+
+/** dB from "0.5", "0.5 dB", "0,5dB". */
+export function parseDecibels(input: string): Parsed {
+  const match = new RegExp(String.raw`^(${NUMBER})\s*(?:db)?$`, 'i').exec(tidy(input))
+  return match ? found(toNumber(match[1] ?? '')) : refused(`“${input.trim()}” isn’t a level; type decibels, such as 0.5.`)
+}
+
+/** Degrees from "1", "1°", "1 deg". */
+export function parseDegrees(input: string): Parsed {
+  const match = new RegExp(String.raw`^(${NUMBER})\s*(?:°|deg|degrees?)?$`, 'i').exec(tidy(input))
+  return match ? found(toNumber(match[1] ?? '')) : refused(`“${input.trim()}” isn’t an angle; type degrees, such as 1.`)
+}
+
+/** A whole number from "4" or "order 4". */
+export function parseOrder(input: string): Parsed {
+  const match = /^(?:order\s*)?([+-]?\d+)$/i.exec(tidy(input))
+  return match ? found(Number(match[1])) : refused(`“${input.trim()}” isn’t an order; type a whole number from 1 to 24.`)
+}
+
+function prefixFactor(letter: string): number {
+  // "m" is milli and "M" is mega; the pattern ignores case only for "hz".
+  return PREFIX[letter] ?? 1
+}
+
+function found(value: number): Parsed {
+  return Number.isFinite(value) ? { ok: true, value } : refused('That number is too large to work with.')
+}
+
+function refused(message: string): Parsed {
+  return { ok: false, message }
+}
