@@ -11,9 +11,21 @@ export default defineConfig({
     ],
   },
   test: {
-    include: ['tests/{dsp,lib,components,db,app}/**/*.test.{ts,tsx}'],
     environment: 'node',
     testTimeout: 30_000,
     hookTimeout: 60_000,
+    // Only the second project needs a database server, and starts one when a test of its own is to run.
+    projects: [
+      { extends: true, test: { name: 'plain', include: ['tests/{dsp,lib,components}/**/*.test.{ts,tsx}'] } },
+      {
+        extends: true,
+        test: {
+          name: 'database',
+          include: ['tests/{db,app}/**/*.test.{ts,tsx}'],
+          globalSetup: ['./tests/helpers/database-global.ts'],
+          setupFiles: ['./tests/helpers/database-setup.ts'],
+        },
+      },
+    ],
   },
 })

@@ -1,0 +1,19 @@
+import 'server-only'
+import { pino } from 'pino'
+import { env } from './env'
+
+let logger: pino.Logger | undefined
+
+/** What must never reach a log, wherever in a record it stands. */
+const secrets = ['password', 'passwordHash', 'token', 'tokenHash', 'cookie', 'authorization', 'secret']
+
+/** The server's log: one JSON object a line on standard output. */
+export function log(): pino.Logger {
+  logger ??= pino({
+    level: env().LOG_LEVEL,
+    base: undefined,
+    timestamp: pino.stdTimeFunctions.isoTime,
+    redact: { paths: secrets.flatMap((name) => [name, `*.${name}`, `*.*.${name}`]), censor: '[hidden]' },
+  })
+  return logger
+}
