@@ -7,7 +7,18 @@ const noEnvironment = {
 }
 
 const config = [
-  { ignores: ['**/node_modules/', '.next*/', '.data/', '.test-data/', 'coverage/', 'next-env.d.ts', 'drizzle/', 'tests/browser/out/'] },
+  {
+    ignores: [
+      '**/node_modules/',
+      '.next*/',
+      '.data/',
+      '.test-data/',
+      'coverage/',
+      'next-env.d.ts',
+      'drizzle/',
+      'tests/browser/out/',
+    ],
+  },
   ...next,
   ...typescript,
   {
@@ -31,8 +42,21 @@ const config = [
   {
     files: ['dsp/**'],
     rules: {
-      'no-restricted-globals': ['error', 'window', 'document', 'process', 'Date', 'performance', 'fetch', 'self', 'navigator'],
-      'no-restricted-properties': ['error', { object: 'Math', property: 'random', message: 'dsp is deterministic: take a seed.' }],
+      'no-restricted-globals': [
+        'error',
+        'window',
+        'document',
+        'process',
+        'Date',
+        'performance',
+        'fetch',
+        'self',
+        'navigator',
+      ],
+      'no-restricted-properties': [
+        'error',
+        { object: 'Math', property: 'random', message: 'dsp is deterministic: take a seed.' },
+      ],
     },
   },
 ]
