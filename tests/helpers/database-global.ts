@@ -1,5 +1,5 @@
 import type { TestProject } from 'vitest/node'
-import { makeTemplate, useTestCluster } from './test-cluster.mjs'
+import { makeTemplate, openTestCluster } from './test-cluster.mjs'
 
 declare module 'vitest' {
   interface ProvidedContext {
@@ -10,7 +10,7 @@ declare module 'vitest' {
 
 /** Before any test that needs a database: a running server and one migrated database to copy. */
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
-  const { adminUrl, release } = await useTestCluster()
+  const { adminUrl, release } = await openTestCluster()
   const template = await makeTemplate(adminUrl).catch(async (error: unknown) => {
     await release()
     throw error

@@ -23,7 +23,7 @@ const prefix = 'polewright_test_'
 /**
  * @returns {Promise<{ adminUrl: string, release: () => Promise<void> }>} `adminUrl` opens a database whose account may make others
  */
-export async function useTestCluster() {
+export async function openTestCluster() {
   const given = process.env.TEST_DATABASE_URL || process.env.DATABASE_URL
   if (given) return { adminUrl: given, release: async () => {} }
 
