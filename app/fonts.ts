@@ -81,5 +81,10 @@ export const notoMath = localFont({
   variable: '--font-noto-math',
   preload: false,
   adjustFontFallback: false,
-  declarations: [{ prop: 'unicode-range', value: 'U+2032, U+2126, U+2190-2193, U+2206, U+2211, U+221A, U+221E, U+2220, U+2248, U+2260, U+2264-2265' }],
+  declarations: [
+    {
+      prop: 'unicode-range',
+      value: 'U+2032, U+2126, U+2190-2193, U+2206, U+2211, U+221A, U+221E, U+2220, U+2248, U+2260, U+2264-2265',
+    },
+  ],
 })

@@ -96,19 +96,17 @@ export function deriveTraces(spec: DesignSpec, versions: Versions, view: StackVi
   const beyond = view.toHz > fold ? analogGrid.filter((hertz) => hertz >= fold) : null
   const digital = versions.digital
     .filter(({ id }) => !view.hidden.includes(id))
-    .map(
-      ({ id, filter, stated }): Trace => ({
-        id,
-        label: methodLabels[id],
-        frequenciesHz: grid,
-        magnitudeDb: magnitudeDb(filter, grid),
-        phaseRadians: phaseResponse(filter, grid),
-        groupDelaySeconds: groupDelay(filter, grid),
-        departure: departure(versions.analog, filter, grid, view.removeDelay ? { removeDelayOver: delayBand(spec) } : {}),
-        stated,
-        image: beyond ? { frequenciesHz: beyond, magnitudeDb: magnitudeDb(filter, beyond) } : null,
-      }),
-    )
+    .map(({ id, filter, stated }): Trace => ({
+      id,
+      label: methodLabels[id],
+      frequenciesHz: grid,
+      magnitudeDb: magnitudeDb(filter, grid),
+      phaseRadians: phaseResponse(filter, grid),
+      groupDelaySeconds: groupDelay(filter, grid),
+      departure: departure(versions.analog, filter, grid, view.removeDelay ? { removeDelayOver: delayBand(spec) } : {}),
+      stated,
+      image: beyond ? { frequenciesHz: beyond, magnitudeDb: magnitudeDb(filter, beyond) } : null,
+    }))
   return [analog, ...digital]
 }
 
@@ -132,7 +130,11 @@ export function deriveFigures(spec: DesignSpec, versions: Versions) {
   const stated = versions.digital.find((version) => version.stated)?.filter
   const [first = 1, second = first] = spec.analog.edgesHz
   const isLowSide = spec.analog.response === 'lowpass' || spec.analog.response === 'bandstop'
-  const delayAtHz = isLowSide ? 0 : spec.analog.response === 'highpass' ? Math.min(2 * first, spec.sampleRateHz * 0.45) : Math.sqrt(first * second)
+  const delayAtHz = isLowSide
+    ? 0
+    : spec.analog.response === 'highpass'
+      ? Math.min(2 * first, spec.sampleRateHz * 0.45)
+      : Math.sqrt(first * second)
   const highestEdge = Math.max(...spec.analog.edgesHz)
   return {
     /** Half the rate over the highest edge. */

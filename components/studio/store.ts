@@ -133,7 +133,7 @@ export function refusalOf(spec: DesignSpec, field?: string): Refusal | null {
       field: field ?? error.field,
       message: error.message,
       // The nearest value belongs to the word it was computed for; beside another word it would mislead.
-      ...(error.nearest !== undefined && (field === undefined || field === error.field) ? { nearest: error.nearest } : {}),
+      ...(error.nearest !== undefined && (field ?? error.field) === error.field ? { nearest: error.nearest } : {}),
     }
   }
 }

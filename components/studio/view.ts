@@ -11,7 +11,11 @@ export interface Trace {
   readonly phaseRadians: Float64Array
   readonly groupDelaySeconds: Float64Array
   /** Digital minus analog; null for the analog prototype itself. */
-  readonly departure: { readonly db: Float64Array; readonly degrees: Float64Array; readonly microseconds: Float64Array } | null
+  readonly departure: {
+    readonly db: Float64Array
+    readonly degrees: Float64Array
+    readonly microseconds: Float64Array
+  } | null
   /** The version that the statement names. */
   readonly stated: boolean
   /** What the digital version repeats beyond the fold line; null for the analog prototype. */

@@ -5,7 +5,10 @@ import { classNames } from '@/lib/format/class-names'
 export function Notice({ kind, children }: { kind: 'note' | 'caution' | 'met'; children: ReactNode }) {
   const rule = { note: 'border-slate', caution: 'border-vermilion', met: 'border-moss' }[kind]
   return (
-    <div role={kind === 'caution' ? 'alert' : 'status'} className={classNames('border-l-2 py-1 pl-3 text-[14px]', rule)}>
+    <div
+      role={kind === 'caution' ? 'alert' : 'status'}
+      className={classNames('border-l-2 py-1 pl-3 text-[14px]', rule)}
+    >
       {children}
     </div>
   )

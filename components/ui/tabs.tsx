@@ -27,7 +27,9 @@ export function Tabs<Id extends string>({
   function onKeyDown(event: KeyboardEvent) {
     const at = tabs.findIndex((tab) => tab.id === active)
     const last = tabs.length - 1
-    const next = { ArrowRight: at === last ? 0 : at + 1, ArrowLeft: at === 0 ? last : at - 1, Home: 0, End: last }[event.key]
+    const next = { ArrowRight: at === last ? 0 : at + 1, ArrowLeft: at === 0 ? last : at - 1, Home: 0, End: last }[
+      event.key
+    ]
     const tab = next === undefined ? undefined : tabs[next]
     if (!tab) return
     event.preventDefault()
@@ -50,7 +52,9 @@ export function Tabs<Id extends string>({
           onClick={() => onChange(tab.id)}
           className={classNames(
             'min-h-8 shrink-0 border-b-2 py-1 text-[14px] -outline-offset-2',
-            tab.id === active ? 'border-spruce font-semibold text-ink' : 'border-transparent text-pencil hover:text-ink',
+            tab.id === active
+              ? 'border-spruce font-semibold text-ink'
+              : 'border-transparent text-pencil hover:text-ink',
           )}
         >
           {tab.label}

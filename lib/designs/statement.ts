@@ -100,7 +100,12 @@ function edgePhrase({ analog }: DesignSpec): StatementPart[] {
     case 'chebyshev2':
       return [text(', '), attenuation, text(` down from `), ...both]
     case 'bessel':
-      return [text(', '), choice('analog.normalization', besselWords[analog.normalization ?? 'magnitude']), text(' '), ...both]
+      return [
+        text(', '),
+        choice('analog.normalization', besselWords[analog.normalization ?? 'magnitude']),
+        text(' '),
+        ...both,
+      ]
     default:
       return [text(', down 3\u2009dB at '), ...both]
   }
@@ -112,7 +117,11 @@ export const besselWords = {
   phase: 'phase-matched at',
 } as const
 
-function passBandReach(response: DesignSpec['analog']['response'], low: StatementPart, second?: number): StatementPart[] {
+function passBandReach(
+  response: DesignSpec['analog']['response'],
+  low: StatementPart,
+  second?: number,
+): StatementPart[] {
   const high = hertz('analog.edgesHz.1', second ?? 0)
   switch (response) {
     case 'lowpass':
@@ -132,7 +141,11 @@ function methodPhrase({ how, analog }: DesignSpec): StatementPart[] {
     case 'bilinear': {
       if (how.hold === 'none') return [method, text(', '), choice('how.hold', 'not held')]
       if (how.hold === 'edges')
-        return [method, text(' '), choice('how.hold', analog.edgesHz.length > 1 ? 'held at both edges' : 'held at its edge')]
+        return [
+          method,
+          text(' '),
+          choice('how.hold', analog.edgesHz.length > 1 ? 'held at both edges' : 'held at its edge'),
+        ]
       return [method, text(' '), choice('how.hold', 'held at'), text(' '), hertz('how.holdHz', how.hold)]
     }
     case 'impulse-invariant':
@@ -142,7 +155,10 @@ function methodPhrase({ how, analog }: DesignSpec): StatementPart[] {
   }
 }
 
-export function impulseWords(how: { halfFirstSample?: boolean | undefined; restoreGain?: boolean | undefined }): string {
+export function impulseWords(how: {
+  halfFirstSample?: boolean | undefined
+  restoreGain?: boolean | undefined
+}): string {
   if (how.halfFirstSample && how.restoreGain) return 'first sample halved, gain restored'
   if (how.halfFirstSample) return 'first sample halved'
   if (how.restoreGain) return 'gain restored'

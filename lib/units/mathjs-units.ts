@@ -1,6 +1,7 @@
-import { create, unitDependencies } from 'mathjs'
+import { create, type FactoryFunctionMap, unitDependencies } from 'mathjs'
 
-const math = create({ unitDependencies })
+const factories: FactoryFunctionMap = { ...unitDependencies }
+const math = create(factories)
 
 /**
  * Hertz from a text that mathjs reads as a frequency ("2.5 kHz", "1/ms") or as an angular frequency ("157 rad/s", "9000 deg/s");

@@ -11,8 +11,9 @@ export interface FrequencyContext {
 }
 
 const PREFIX: Readonly<Record<string, number>> = { '': 1, m: 1e-3, k: 1e3, K: 1e3, M: 1e6, G: 1e9 }
-const NUMBER = String.raw`[+-]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:e[+-]?\d+)?`
-const PLAIN = new RegExp(String.raw`^(${NUMBER})\s*([mkKMG]?)(?:hz)?$`, 'i')
+const NUMBER = String.raw`[+-]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:[eE][+-]?\d+)?`
+// Case matters (m is milli, M is mega), and a bare "m" could mean metres or a million: it is left to the sentence of refusal.
+const PLAIN = new RegExp(String.raw`^(${NUMBER})\s*(?:([kKMG]?)|([mkKMG]?)[hH][zZ])$`)
 const NYQUIST = new RegExp(String.raw`^(${NUMBER})\s*(?:×|x|\*)?\s*(nyquist|fs/2|fs)$`, 'i')
 const PER_MINUTE = new RegExp(String.raw`^(${NUMBER})\s*(?:rpm|r/min|/min)$`, 'i')
 
@@ -33,27 +34,32 @@ export async function parseFrequency(input: string, context: FrequencyContext): 
   if (text === '') return refused('Type a frequency, such as 120 Hz or 2.5k.')
 
   const plain = PLAIN.exec(text)
-  if (plain) return found(toNumber(plain[1] ?? '') * prefixFactor(plain[2] ?? ''))
+  if (plain) return found(toNumber(plain[1] ?? '') * (PREFIX[plain[2] ?? plain[3] ?? ''] ?? 1))
 
   const perMinute = PER_MINUTE.exec(text)
   if (perMinute) return found(toNumber(perMinute[1] ?? '') / 60)
 
   const relative = NYQUIST.exec(text)
   if (relative) {
-    if (context.nyquistHz === null) return refused('The sampling rate can’t be given as a part of itself; type it in Hz.')
+    if (context.nyquistHz === null)
+      return refused('The sampling rate can’t be given as a part of itself; type it in Hz.')
     const ofRate = (relative[2] ?? '').toLowerCase() === 'fs' ? 2 : 1
     return found(toNumber(relative[1] ?? '') * context.nyquistHz * ofRate)
   }
 
   const { unitToHertz } = await import('./mathjs-units')
   const hertz = unitToHertz(text.replace(/(\d),(\d)/g, '$1.$2'))
-  return hertz === null ? refused(`“${input.trim()}” isn’t a frequency; try 2.5 kHz, 157 rad/s or 0.8 Nyquist.`) : found(hertz)
+  return hertz === null
+    ? refused(`“${input.trim()}” isn’t a frequency; try 2.5 kHz, 157 rad/s or 0.8 Nyquist.`)
+    : found(hertz)
 }
 
 /** dB from "0.5", "0.5 dB", "0,5dB". */
 export function parseDecibels(input: string): Parsed {
   const match = new RegExp(String.raw`^(${NUMBER})\s*(?:db)?$`, 'i').exec(tidy(input))
-  return match ? found(toNumber(match[1] ?? '')) : refused(`“${input.trim()}” isn’t a level; type decibels, such as 0.5.`)
+  return match
+    ? found(toNumber(match[1] ?? ''))
+    : refused(`“${input.trim()}” isn’t a level; type decibels, such as 0.5.`)
 }
 
 /** Degrees from "1", "1°", "1 deg". */
@@ -65,12 +71,9 @@ export function parseDegrees(input: string): Parsed {
 /** A whole number from "4" or "order 4". */
 export function parseOrder(input: string): Parsed {
   const match = /^(?:order\s*)?([+-]?\d+)$/i.exec(tidy(input))
-  return match ? found(Number(match[1])) : refused(`“${input.trim()}” isn’t an order; type a whole number from 1 to 24.`)
-}
-
-function prefixFactor(letter: string): number {
-  // "m" is milli and "M" is mega; the pattern ignores case only for "hz".
-  return PREFIX[letter] ?? 1
+  return match
+    ? found(Number(match[1]))
+    : refused(`“${input.trim()}” isn’t an order; type a whole number from 1 to 24.`)
 }
 
 function found(value: number): Parsed {

@@ -1,0 +1,180 @@
+'use client'
+
+import { useMemo, useState } from 'react'
+import { worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
+import { Button } from '@/components/ui/button'
+import { classNames } from '@/lib/format/class-names'
+import { formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
+import { methodLabels } from '@/lib/designs/words'
+import { parseDecibels, parseDegrees, parseFrequency } from '@/lib/units/parse'
+import { delayBand, methodAsShown, type Trust, type Versions } from '../derive'
+import type { StudioStore } from '../store'
+import { trustText } from './figures-line'
+import { InlineQuantity } from './inline-quantity'
+import { TraceSwatch } from './trace-swatch'
+
+/**
+ * Which digital version stays closest to the analog one, up to which frequency: the budget, how far each version keeps it, and its
+ * worst departure up to a chosen frequency.
+ */
+export function DepartureTable({
+  store,
+  spec,
+  versions,
+  trust,
+  readOnly,
+}: {
+  store: StudioStore
+  spec: DesignSpec
+  versions: Versions
+  trust: readonly Trust[]
+  readOnly: boolean
+}) {
+  const edge = delayBand(spec)[1]
+  const [chosenHz, setChosenHz] = useState<number | null>(null)
+  const fold = spec.sampleRateHz / 2
+  const upToHz = Math.min(chosenHz ?? edge, fold * 0.999)
+  const { budget } = spec
+
+  const rows = useMemo(
+    () =>
+      trust.flatMap((entry, rank) => {
+        const version = versions.digital.find(({ id }) => id === entry.id)
+        if (!version) return []
+        const fromHz = delayBand(spec)[0]
+        const worst = worstDeparture(versions.analog, version.filter, upToHz, {
+          ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
+          removeDelay: budget.removeDelay,
+        })
+        return [{ ...entry, worst, closest: rank === 0, stated: version.stated }]
+      }),
+    [trust, versions, spec, upToHz, budget.removeDelay],
+  )
+
+  const setBudget = (change: Partial<DepartureBudget>) => {
+    const next = { ...spec.budget, ...change }
+    if (!(next.magnitudeDb > 0 && next.phaseDegrees > 0)) return 'A budget is above 0; the least of use is about 0.001.'
+    store.getState().propose({ ...store.getState().spec, budget: next })
+    return null
+  }
+
+  return (
+    <section aria-labelledby="departure-heading">
+      <h2 id="departure-heading" className="font-text text-[13px] font-semibold text-pencil">
+        Departure from analog
+      </h2>
+      <div className="mt-1 flex flex-wrap items-baseline gap-x-1.5 gap-y-1 border-t border-graph-strong pt-1.5 text-[14px]">
+        <span>Within</span>
+        <InlineQuantity
+          label="Departure budget, magnitude"
+          text={`${formatNumber(budget.magnitudeDb)}\u2009dB`}
+          parse={parseDecibels}
+          onValue={(magnitudeDb) => setBudget({ magnitudeDb })}
+          disabled={readOnly}
+        />
+        <span>and</span>
+        <InlineQuantity
+          label="Departure budget, phase"
+          text={`${formatNumber(budget.phaseDegrees)}°`}
+          parse={parseDegrees}
+          onValue={(phaseDegrees) => setBudget({ phaseDegrees })}
+          disabled={readOnly}
+        />
+        <label className="inline-flex min-h-6 items-center gap-1.5">
+          <input
+            type="checkbox"
+            className="size-4 accent-spruce"
+            checked={budget.removeDelay}
+            disabled={readOnly}
+            onChange={(event) => {
+              setBudget({ removeDelay: event.currentTarget.checked })
+              store.getState().look({ removeDelay: event.currentTarget.checked })
+            }}
+          />
+          best delay removed
+        </label>
+      </div>
+      <div className="overflow-x-auto">
+        <table className="mt-1 w-full text-[13px]">
+          <caption className="pb-1 text-left text-pencil">
+            Worst up to{' '}
+            <InlineQuantity
+              label="Worst departure up to"
+              text={formatHz(upToHz)}
+              parse={(text) => parseFrequency(text, { nyquistHz: fold })}
+              onValue={(hertz) => {
+                if (!(hertz > 0 && hertz < fold)) return `0 < frequency < ${formatHz(fold)} (half the rate)`
+                setChosenHz(hertz)
+                return null
+              }}
+            />
+          </caption>
+          <thead>
+            <tr className="text-left text-pencil [&>th]:py-1 [&>th]:font-normal">
+              <th scope="col">Version</th>
+              <th scope="col" className="text-right">
+                dB
+              </th>
+              <th scope="col" className="text-right">
+                °
+              </th>
+              <th scope="col" className="text-right">
+                µs
+              </th>
+              <th scope="col" className="pl-3 text-right">
+                trusted
+              </th>
+            </tr>
+          </thead>
+          <tbody className="border-t border-graph-strong">
+            {rows.map((row) => (
+              <tr key={row.id} className="border-b border-graph [&>td]:py-1">
+                <th scope="row" className="py-0.5 text-left font-normal">
+                  <span className="flex items-center gap-2">
+                    <TraceSwatch id={row.id} />
+                    {row.stated || readOnly ? (
+                      <span className={classNames(row.stated && 'font-semibold')}>{methodLabels[row.id]}</span>
+                    ) : (
+                      <Button
+                        kind="quiet"
+                        small
+                        className="-mx-2"
+                        title={`Run the statement by the ${methodLabels[row.id]} version`}
+                        onClick={() => {
+                          const now = store.getState().spec
+                          store.getState().propose({ ...now, how: methodAsShown(now, row.id) }, 'how.method')
+                        }}
+                      >
+                        {methodLabels[row.id]}
+                      </Button>
+                    )}
+                    {row.closest ? <span className="text-moss">closest</span> : null}
+                  </span>
+                </th>
+                <td className={cell(row.worst.db <= budget.magnitudeDb)}>{formatFixed(row.worst.db, 2)}</td>
+                <td className={cell(row.worst.degrees <= budget.phaseDegrees)}>{formatFixed(row.worst.degrees, 2)}</td>
+                <td className="numeric text-right">{formatNumber(row.worst.microseconds, 3)}</td>
+                <td className="numeric pl-3 text-right whitespace-nowrap">{trustText(row)}</td>
+              </tr>
+            ))}
+            {versions.refused.map((refusal) => (
+              <tr key={refusal.id} className="border-b border-graph">
+                <th scope="row" className="py-1 pr-2 text-left align-top font-normal text-pencil">
+                  <span className="flex items-center gap-2">
+                    <TraceSwatch id={refusal.id} />
+                    {methodLabels[refusal.id]}
+                  </span>
+                </th>
+                <td colSpan={4} className="py-1 text-pencil">
+                  {refusal.message}
+                </td>
+              </tr>
+            ))}
+          </tbody>
+        </table>
+      </div>
+    </section>
+  )
+}
+
+const cell = (met: boolean) => classNames('numeric pl-2 text-right', met ? 'text-moss' : 'text-vermilion')

@@ -1,0 +1,55 @@
+'use client'
+
+import { useEffect, useState } from 'react'
+import { Button } from '@/components/ui/button'
+import type { DraftRecord } from '@/lib/designs/types'
+import type { AutosaveState } from './autosave'
+
+/** One quiet line: whether the draft is safe. */
+export function DraftStatus({
+  state,
+  onResolve,
+}: {
+  state: AutosaveState
+  onResolve(current: DraftRecord, take: 'theirs' | 'mine'): void
+}) {
+  switch (state.kind) {
+    case 'saving':
+      return <Line>Saving draft…</Line>
+    case 'failed':
+      return (
+        <p role="alert" className="text-[13px] text-vermilion">
+          Draft kept in this browser only: {state.reason}. Trying again.
+        </p>
+      )
+    case 'stale':
+      return (
+        <div role="alert" className="flex flex-wrap items-center gap-2 text-[13px] text-vermilion">
+          This draft was changed in another window.
+          <Button small onClick={() => onResolve(state.current, 'theirs')}>
+            Take that one
+          </Button>
+          <Button small onClick={() => onResolve(state.current, 'mine')}>
+            Keep this one
+          </Button>
+        </div>
+      )
+    case 'idle':
+      return state.savedAt === null ? <Line>No changes yet</Line> : <SavedAt iso={state.savedAt} />
+  }
+}
+
+/** The reader's own clock; written after hydration, since the server doesn't know it. */
+function SavedAt({ iso }: { iso: string }) {
+  const [text, setText] = useState('')
+  useEffect(() => setText(new Date(iso).toLocaleTimeString(undefined, { hour: '2-digit', minute: '2-digit' })), [iso])
+  return <Line>Draft saved {text}</Line>
+}
+
+function Line({ children }: { children: React.ReactNode }) {
+  return (
+    <p role="status" className="text-[13px] whitespace-nowrap text-pencil">
+      {children}
+    </p>
+  )
+}

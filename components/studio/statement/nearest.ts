@@ -1,0 +1,27 @@
+import type { DesignSpec } from '@/dsp'
+import type { WordKey } from '@/lib/designs/statement'
+import { refusalOf } from '../store'
+import { withQuantity } from './apply'
+
+const HALVINGS = 48
+
+/**
+ * The value nearest to a refused one that makes a design, for the word that was edited, whichever part of the spec the refusal
+ * itself names: halving between the value that stands and the refused one, then rounded towards the one that stands.
+ */
+export function nearestThatWorks(spec: DesignSpec, key: WordKey, standing: number, refused: number): number | null {
+  const works = (value: number) => refusalOf(withQuantity(spec, key, value)) === null
+  if (!Number.isFinite(refused) || !works(standing)) return null
+  let good = standing
+  let bad = refused
+  for (let halving = 0; halving < HALVINGS; halving += 1) {
+    const middle = key === 'analog.order' ? Math.trunc((good + bad) / 2) : (good + bad) / 2
+    if (middle === good || middle === bad) break
+    if (works(middle)) good = middle
+    else bad = middle
+  }
+  const towards = good > standing ? Math.floor : Math.ceil
+  const digit = 10 ** (Math.floor(Math.log10(Math.abs(good) || 1)) - 3)
+  const rounded = Number((towards(good / digit) * digit).toPrecision(12))
+  return works(rounded) ? rounded : good
+}

@@ -1,0 +1,155 @@
+'use client'
+
+import { useId, useRef, useState, type KeyboardEvent } from 'react'
+import { classNames } from '@/lib/format/class-names'
+import { formatHz, formatNumber } from '@/lib/format/quantity'
+import { RefusalNote } from './refusal-note'
+import { parseQuantity, stepped } from './apply'
+import { wordLook } from './word-look'
+
+type Unit = 'Hz' | 'dB' | 'order'
+
+export interface QuantityEdit {
+  /** A finished value; false when it was refused. */
+  propose(value: number): boolean
+  /** Arrow keys: a live change between begin and commit. */
+  begin(): void
+  change(value: number): boolean
+  commit(): void
+  cancel(): void
+}
+
+interface QuantityWordProps {
+  readonly label: string
+  readonly text: string
+  readonly value: number
+  readonly unit: Unit
+  readonly nyquistHz: number | null
+  readonly refusal: { readonly message: string; readonly nearest?: number | string } | null
+  readonly readOnly: boolean
+  readonly edit: QuantityEdit
+  /** The value nearest to a refused one that works. */
+  nearestTo(refused: number): number | null
+  onDismiss(): void
+}
+
+/** A number inside the statement: typed in place, stepped with the arrow keys, refused with its reason beside it. */
+export function QuantityWord(props: QuantityWordProps) {
+  const { label, text, value, unit, refusal, readOnly, edit } = props
+  const [typed, setTyped] = useState<string | null>(null)
+  const [unread, setUnread] = useState<string | null>(null)
+  const [refused, setRefused] = useState<number | null>(null)
+  const input = useRef<HTMLInputElement>(null)
+  const noteId = useId()
+  const note = unread ?? refusal?.message ?? null
+  const shown = typed ?? text
+
+  async function finish(): Promise<boolean> {
+    if (typed === null || typed === text) {
+      setTyped(null)
+      setUnread(null)
+      return true
+    }
+    const parsed = await parseQuantity(unit, typed, props.nyquistHz)
+    if (!parsed.ok) {
+      setUnread(parsed.message)
+      return false
+    }
+    setUnread(null)
+    const accepted = edit.propose(parsed.value)
+    setRefused(accepted ? null : parsed.value)
+    if (accepted) setTyped(null)
+    return accepted
+  }
+
+  function restore() {
+    edit.cancel()
+    setTyped(null)
+    setUnread(null)
+    props.onDismiss()
+  }
+
+  function onKeyDown(event: KeyboardEvent<HTMLInputElement>) {
+    if (event.key === 'Enter') {
+      event.preventDefault()
+      void finish().then((accepted) => accepted && input.current?.select())
+    } else if (event.key === 'Escape') {
+      event.preventDefault()
+      event.stopPropagation()
+      restore()
+    } else if (event.key === 'ArrowUp' || event.key === 'ArrowDown') {
+      event.preventDefault()
+      edit.begin()
+      const size = event.shiftKey ? 'coarse' : event.altKey ? 'fine' : 'usual'
+      const next = stepped(unit, value, event.key === 'ArrowUp' ? 1 : -1, size)
+      const accepted = edit.change(next)
+      setRefused(accepted ? null : next)
+      if (accepted) {
+        setTyped(null)
+        setUnread(null)
+      }
+    }
+  }
+
+  function useNearest(nearest: number) {
+    setUnread(null)
+    if (edit.propose(nearest)) setTyped(null)
+    input.current?.focus()
+  }
+
+  const nearest =
+    unread === null && refusal ? (refused === null ? asNumber(refusal.nearest) : props.nearestTo(refused)) : null
+  return (
+    <span className="inline">
+      <span className={classNames('inline-grid align-baseline', wordLook.frame, note && wordLook.refused)}>
+        {/* The mirror gives the input its width. */}
+        <span aria-hidden className="invisible col-start-1 row-start-1 whitespace-pre">
+          {shown || ' '}
+        </span>
+        <input
+          ref={input}
+          aria-label={label}
+          role="spinbutton"
+          aria-valuenow={value}
+          aria-valuetext={text}
+          aria-invalid={note ? true : undefined}
+          aria-describedby={note ? noteId : undefined}
+          readOnly={readOnly}
+          size={1}
+          autoComplete="off"
+          spellCheck={false}
+          value={shown}
+          className="col-start-1 row-start-1 w-full min-w-0 bg-transparent text-inherit outline-none"
+          onFocus={(event) => event.currentTarget.select()}
+          onChange={(event) => setTyped(event.currentTarget.value)}
+          onKeyDown={onKeyDown}
+          onKeyUp={(event) => {
+            if (event.key === 'ArrowUp' || event.key === 'ArrowDown') edit.commit()
+          }}
+          onBlur={() => {
+            edit.commit()
+            void finish()
+          }}
+        />
+      </span>
+      {note ? (
+        <RefusalNote
+          id={noteId}
+          message={note}
+          nearestText={nearest === null ? undefined : nearestText(unit, nearest)}
+          onUseNearest={nearest === null ? undefined : () => useNearest(nearest)}
+        />
+      ) : null}
+    </span>
+  )
+}
+
+function asNumber(nearest: number | string | undefined): number | null {
+  return typeof nearest === 'number' ? nearest : null
+}
+
+function nearestText(unit: Unit, nearest: number): string {
+  if (unit === 'Hz') return formatHz(nearest, 6)
+  if (unit === 'dB') return `${formatNumber(nearest, 5)}\u2009dB`
+  return String(nearest)
+}

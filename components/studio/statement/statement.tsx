@@ -1,0 +1,117 @@
+'use client'
+
+import { Fragment } from 'react'
+import { statementParts, type StatementPart, type WordKey } from '@/lib/designs/statement'
+import type { StudioStore } from '../store'
+import { useStudio } from '../use-studio'
+import { optionsFor, withQuantity, wordOfField } from './apply'
+import { ChoiceWord } from './choice-word'
+import { nearestThatWorks } from './nearest'
+import { QuantityWord } from './quantity-word'
+
+const labels: Record<WordKey, string> = {
+  'analog.response': 'Response',
+  'analog.family': 'Family',
+  'analog.order': 'Order',
+  'analog.normalization': 'What the frequency means',
+  'analog.rippleDb': 'Ripple',
+  'analog.attenuationDb': 'Attenuation',
+  'analog.edgesHz.0': 'Edge',
+  'analog.edgesHz.1': 'Upper edge',
+  sampleRateHz: 'Sampling rate',
+  'how.method': 'Method',
+  'how.hold': 'Held frequency',
+  'how.holdHz': 'Frequency held exactly',
+  'how.options': 'Options of the method',
+}
+
+/** The sentence that is the design, every word of it editable where it stands. */
+export function Statement({ store, readOnly }: { store: StudioStore; readOnly: boolean }) {
+  const spec = useStudio(store, (state) => state.spec)
+  const refusal = useStudio(store, (state) => state.refusal)
+  const parts = statementParts(spec)
+  const refusedWord = refusal ? wordOfField(refusal.field, spec) : null
+  const homeless = refusal !== null && !parts.some((part) => part.kind !== 'text' && part.key === refusedWord)
+
+  return (
+    <div>
+      <h1
+        aria-label="Statement"
+        className="font-heading text-[22px] leading-[1.55] font-normal text-ink sm:text-[26px]"
+      >
+        {parts.map((part, index) => (
+          <Fragment key={part.kind === 'text' ? `text-${index}` : part.key}>
+            <Word
+              part={part}
+              store={store}
+              readOnly={readOnly}
+              refusal={part.kind !== 'text' && part.key === refusedWord ? refusal : null}
+            />
+          </Fragment>
+        ))}
+      </h1>
+      {homeless ? (
+        <p role="alert" className="border-l-2 border-vermilion pl-2 text-[14px] text-vermilion">
+          {refusal.message}
+        </p>
+      ) : null}
+    </div>
+  )
+}
+
+function Word({
+  part,
+  store,
+  readOnly,
+  refusal,
+}: {
+  part: StatementPart
+  store: StudioStore
+  readOnly: boolean
+  refusal: { readonly message: string; readonly nearest?: number | string } | null
+}) {
+  if (part.kind === 'text') return part.text
+  const { key } = part
+  const { spec, propose, begin, change, commit, cancel, dismissRefusal } = store.getState()
+  if (part.kind === 'choice') {
+    const { current, options } = optionsFor(key, spec)
+    return (
+      <ChoiceWord
+        label={labels[key]}
+        text={part.text}
+        current={current}
+        options={options}
+        refusal={refusal}
+        readOnly={readOnly}
+        onPick={(option) => propose(option.apply(store.getState().spec), key)}
+      />
+    )
+  }
+  const withValue = (value: number) => withQuantity(store.getState().spec, key, value)
+  // A bound is the number's own; the refusal of an edited word stands beside that word, whatever else it would have broken.
+  return (
+    <QuantityWord
+      label={labels[key]}
+      text={part.text}
+      value={part.value}
+      unit={part.unit}
+      nyquistHz={key === 'sampleRateHz' ? null : spec.sampleRateHz / 2}
+      refusal={refusal}
+      readOnly={readOnly}
+      onDismiss={dismissRefusal}
+      nearestTo={(refused) => nearestThatWorks(spec, key, part.value, refused)}
+      edit={{
+        propose: (value) => propose(withValue(value), fieldOf(key)),
+        begin,
+        change: (value) => change(withValue(value), fieldOf(key)),
+        commit,
+        cancel,
+      }}
+    />
+  )
+}
+
+/** The field that dsp would name for a word. */
+function fieldOf(key: WordKey): string {
+  return key === 'how.holdHz' ? 'how.hold' : key
+}

@@ -1,0 +1,232 @@
+'use client'
+
+import { QueryClient, QueryClientProvider } from '@tanstack/react-query'
+import { useSearchParams } from 'next/navigation'
+import { useEffect, useMemo, useState } from 'react'
+import { z } from 'zod'
+import { designSpecSchema } from '@/dsp'
+import { Header } from '@/components/frame/header'
+import { Button, buttonClass } from '@/components/ui/button'
+import { Notice } from '@/components/ui/notice'
+import { defaultSpec } from '@/lib/designs/edits'
+import type { StudioProps, VersionSummary } from '@/lib/designs/types'
+import { formatNumber } from '@/lib/format/quantity'
+import { studioCommands, matches } from './commands'
+import { Planes } from './planes/planes'
+import { useAddress, viewFromSearch } from './shell/address'
+import { forgetKeptDraft, keptDraft, useAutosave } from './shell/autosave'
+import { DepartureTable } from './shell/departure-table'
+import { DraftStatus } from './shell/draft-status'
+import { Drawer } from './shell/drawer'
+import { FiguresLine } from './shell/figures-line'
+import { SaveVersion } from './shell/save-version'
+import { DesignTitleBlock } from './shell/design-title-block'
+import { useDerived } from './shell/use-derived'
+import { ResponseStack } from './stack/response-stack'
+import { Statement } from './statement/statement'
+import { createStudioStore, sameSpec } from './store'
+import { useStudio } from './use-studio'
+
+// The content policy allows no code made from strings; zod would otherwise try.
+z.config({ jitless: true })
+
+export function Studio(props: StudioProps) {
+  const [client] = useState(() => new QueryClient())
+  return (
+    <QueryClientProvider client={client}>
+      <StudioSheet {...props} />
+    </QueryClientProvider>
+  )
+}
+
+function StudioSheet({ design, viewer, versions: savedAtOpening, draft, difference, actions }: StudioProps) {
+  const search = useSearchParams()
+  const [saved, setSaved] = useState(savedAtOpening)
+  const latest = saved[0]
+  const [store] = useState(() => {
+    const opening = draft?.spec ?? savedAtOpening[0]?.spec ?? defaultSpec
+    const { view, drawer } = viewFromSearch(new URLSearchParams(search.toString()))
+    return createStudioStore(opening, view, drawer)
+  })
+  const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
+  const [saving, setSaving] = useState(false)
+  const [kept, setKept] = useState<ReturnType<typeof designSpecSchema.parse> | null>(null)
+
+  const spec = useStudio(store, (state) => state.spec)
+  const view = useStudio(store, (state) => state.view)
+  const refusal = useStudio(store, (state) => state.refusal)
+  const { versions, traces, trust, figures } = useDerived(store)
+  const autosave = useAutosave({ designId: design.id, store, draft, parentNumber, enabled: viewer.mayEdit })
+  useAddress(store)
+
+  const commands = useMemo(
+    () => studioCommands(store, { mayEdit: viewer.mayEdit, openSave: () => setSaving(true) }),
+    [store, viewer.mayEdit],
+  )
+  useEffect(() => {
+    function onKeyDown(event: KeyboardEvent) {
+      const command = commands.find(({ keys }) => keys !== undefined && matches(keys, event))
+      if (!command) return
+      event.preventDefault()
+      if (command.when()) command.run()
+    }
+    addEventListener('keydown', onKeyDown)
+    return () => removeEventListener('keydown', onKeyDown)
+  }, [commands])
+
+  useEffect(() => {
+    // A draft that never reached the server waits in this browser; it is offered, not forced.
+    const candidate = designSpecSchema.safeParse(keptDraft(design.id))
+    if (candidate.success && !sameSpec(candidate.data, store.getState().spec)) setKept(candidate.data)
+  }, [design.id, store])
+
+  const edit = useMemo(() => {
+    const { begin, change, commit, cancel } = store.getState()
+    return { begin, change: (next: typeof spec) => void change(next), commit, cancel }
+  }, [store])
+
+  function goOnFrom(version: VersionSummary) {
+    setSaved((list) => (list.some(({ number }) => number === version.number) ? list : [version, ...list]))
+    setParentNumber(version.number)
+    autosave.startFrom(version.number)
+    setSaving(false)
+  }
+
+  const canUndo = useStudio(store, (state) => state.past.length > 0)
+  const canRedo = useStudio(store, (state) => state.future.length > 0)
+  const nextNumber = (latest?.number ?? 0) + 1
+  const unchanged = latest !== undefined && sameSpec(latest.spec, spec)
+
+  return (
+    <>
+      <Header crumbs={[{ label: design.projectName, href: `/projects/${design.projectId}` }, { label: design.title }]}>
+        {viewer.mayEdit ? (
+          <>
+            <DraftStatus state={autosave.state} onResolve={autosave.resolveStale} />
+            <Button disabled={!canUndo} onClick={() => store.getState().undo()} title="Undo (Ctrl+Z)">
+              Undo
+            </Button>
+            <Button disabled={!canRedo} onClick={() => store.getState().redo()} title="Redo (Ctrl+Shift+Z)">
+              Redo
+            </Button>
+          </>
+        ) : null}
+        {latest ? (
+          <a className={buttonClass()} href={`/designs/${design.id}/versions/${latest.number}`}>
+            Hand over…
+          </a>
+        ) : null}
+        {viewer.mayEdit ? (
+          <Button
+            kind="primary"
+            aria-expanded={saving}
+            disabled={unchanged}
+            title={unchanged ? `The draft equals version ${latest.number}` : 'Save a version (Ctrl+S)'}
+            onClick={() => setSaving((open) => !open)}
+          >
+            {unchanged ? `Version ${latest.number} saved` : `Save version ${nextNumber}`}
+          </Button>
+        ) : null}
+      </Header>
+
+      {saving ? (
+        <SaveVersion
+          store={store}
+          designId={design.id}
+          nextNumber={nextNumber}
+          parentNumber={parentNumber}
+          saveVersion={actions.saveVersion}
+          onSaved={goOnFrom}
+          onTakeTheirs={(version) => {
+            store.getState().propose(version.spec)
+            goOnFrom(version)
+          }}
+          onClose={() => setSaving(false)}
+        />
+      ) : null}
+
+      <main className="mx-auto max-w-[1680px] px-4 pt-4 sm:px-6">
+        <div className="flex flex-col gap-2">
+          {difference ? (
+            <Notice kind="caution">
+              Version {difference.versionNumber} was computed by engine {difference.storedEngine}; engine{' '}
+              {difference.currentEngine} differs from it by {formatNumber(difference.worstRelative, 2)} (relative,
+              largest coefficient). The stored coefficients stand as they were saved.
+            </Notice>
+          ) : null}
+          {kept && viewer.mayEdit ? (
+            <Notice kind="note">
+              This browser kept a draft that never reached the server.{' '}
+              <Button
+                small
+                onClick={() => {
+                  store.getState().propose(kept)
+                  setKept(null)
+                }}
+              >
+                Bring it back
+              </Button>{' '}
+              <Button
+                small
+                onClick={() => {
+                  forgetKeptDraft(design.id)
+                  setKept(null)
+                }}
+              >
+                Let it go
+              </Button>
+            </Notice>
+          ) : null}
+          <Statement store={store} readOnly={!viewer.mayEdit} />
+          {versions && figures ? (
+            <FiguresLine
+              versions={versions}
+              trust={trust}
+              figures={figures}
+              budgetText={`${formatNumber(spec.budget.magnitudeDb)}\u2009dB and ${formatNumber(spec.budget.phaseDegrees)}°${
+                spec.budget.removeDelay ? ', best delay removed' : ''
+              }`}
+            />
+          ) : null}
+        </div>
+
+        {versions ? (
+          <div className="mt-2 grid gap-x-8 gap-y-6 lg:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
+            <ResponseStack
+              spec={spec}
+              traces={traces}
+              trusted={trust}
+              view={view}
+              onView={store.getState().look}
+              onResetView={store.getState().resetView}
+              edit={edit}
+              refusal={refusal}
+              readOnly={!viewer.mayEdit}
+            />
+            <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
+              <Planes
+                analog={versions.analog}
+                versions={versions.digital.filter(({ id }) => !view.hidden.includes(id))}
+              />
+              <DepartureTable store={store} spec={spec} versions={versions} trust={trust} readOnly={!viewer.mayEdit} />
+              <DesignTitleBlock design={design} latest={latest} spec={spec} viewer={viewer} />
+            </aside>
+          </div>
+        ) : null}
+
+        <Drawer
+          store={store}
+          design={design}
+          versions={versions}
+          saved={saved}
+          mayEdit={viewer.mayEdit}
+          onRestored={() => undefined}
+        />
+        <footer className="border-t border-graph py-4 text-[13px] text-pencil">
+          A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the
+          applicable local codes and a licensed practitioner decide.
+        </footer>
+      </main>
+    </>
+  )
+}
