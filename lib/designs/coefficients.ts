@@ -1,93 +1,14 @@
 import 'server-only'
 import { createHash } from 'node:crypto'
-import type { Complex, Design, DigitalFilter, Filter, Section } from '@/dsp'
+import type { Design } from '@/dsp'
+import { canonicalText, coefficientsOf, type StoredCoefficients } from './stored-coefficients'
 
-/*
- * The numbers of a design as they are kept, signed and compared. One text for the same numbers, always: keys in this order, no spaces,
- * each number in the shortest decimal form that reads back to the same double (ECMA-262 Number::toString, as JSON.stringify writes it),
- * minus zero written as zero. Its SHA-256 is the version's checksum.
- */
+/* The checksum of a version: SHA-256 of its canonical coefficients. The text itself is made in the browser too; see there. */
 
-export interface StoredRoots {
-  readonly gain: number
-  readonly zeros: readonly Complex[]
-  readonly poles: readonly Complex[]
-}
+export * from './stored-coefficients'
 
-export interface StoredCoefficients extends StoredRoots {
-  readonly format: 1
-  readonly sampleRateHz: number
-  readonly sections: readonly Section[]
-  /** Present where the method yields a sum of sections (impulse-invariant, step-invariant), which is then the form that runs. */
-  readonly parallel: { readonly direct: number; readonly terms: readonly Section[] } | null
-  readonly analog: StoredRoots
-}
-
-function plain(value: number): number {
-  if (!Number.isFinite(value)) throw new RangeError('A coefficient is not a finite number, so that it can’t be kept.')
-  return value === 0 ? 0 : value
-}
-
-const complex = ({ re, im }: Complex): Complex => ({ re: plain(re), im: plain(im) })
-const section = ({ b0, b1, b2, a1, a2 }: Section): Section => ({
-  b0: plain(b0),
-  b1: plain(b1),
-  b2: plain(b2),
-  a1: plain(a1),
-  a2: plain(a2),
-})
-const roots = ({ gain, zeros, poles }: StoredRoots): StoredRoots => ({
-  gain: plain(gain),
-  zeros: zeros.map(complex),
-  poles: poles.map(complex),
-})
-
-/** The same numbers with their keys in canonical order; jsonb forgets the order. */
-function ordered(stored: StoredCoefficients): StoredCoefficients {
-  return {
-    format: 1,
-    sampleRateHz: plain(stored.sampleRateHz),
-    ...roots(stored),
-    sections: stored.sections.map(section),
-    parallel: stored.parallel && {
-      direct: plain(stored.parallel.direct),
-      terms: stored.parallel.terms.map(section),
-    },
-    analog: roots(stored.analog),
-  }
-}
-
-export function coefficientsOf({ analog, digital }: Pick<Design, 'analog' | 'digital'>): StoredCoefficients {
-  const { sampleRateHz, gain, zeros, poles, sections, parallel } = digital
-  return ordered({ format: 1, sampleRateHz, gain, zeros, poles, sections, parallel: parallel ?? null, analog })
-}
-
-/** A stored version's numbers as filters again; what is exported are these, never a recomputation. */
-export function filtersOf(stored: StoredCoefficients): {
-  readonly analog: Filter<'s'>
-  readonly digital: DigitalFilter
-} {
-  const { sampleRateHz, gain, zeros, poles, sections, parallel } = stored
-  return {
-    analog: { domain: 's', ...stored.analog },
-    digital: {
-      domain: 'z',
-      sampleRateHz,
-      gain,
-      zeros,
-      poles,
-      sections,
-      ...(parallel && { parallel }),
-      diagnostics: [],
-    },
-  }
-}
-
-export const canonicalText = (stored: StoredCoefficients): string => JSON.stringify(ordered(stored))
 export const checksumOfStored = (stored: StoredCoefficients): string =>
   createHash('sha256').update(canonicalText(stored), 'utf8').digest('hex')
 
-export const canonicalCoefficients = (design: Pick<Design, 'analog' | 'digital'>): string =>
-  canonicalText(coefficientsOf(design))
 export const checksumOf = (design: Pick<Design, 'analog' | 'digital'>): string =>
   checksumOfStored(coefficientsOf(design))
