@@ -80,6 +80,8 @@ export interface NewVersion {
   readonly coefficients: StoredCoefficients
   readonly checksum: string
   readonly engineVersion: string
+  /** Now, unless a history is being planted. */
+  readonly savedAt?: Date
 }
 
 /** Only after lockDesign in the same transaction, which has checked the viewer. */
