@@ -1,0 +1,138 @@
+'use client'
+
+import Link from 'next/link'
+import type { DesignSpec } from '@/dsp'
+import { Button, buttonClass } from '@/components/ui/button'
+import { changedParts } from '@/lib/designs/statement-changes'
+import type { VersionState, VersionSummary } from '@/lib/designs/types'
+import { formatInstant } from '@/lib/format/quantity'
+import { MarkedStatement } from '../compare/marked-statement'
+
+export const stateNames: Readonly<Record<VersionState, string>> = {
+  draft: 'not reviewed',
+  'in-review': 'in review',
+  approved: 'approved',
+  returned: 'returned',
+  released: 'released',
+  superseded: 'superseded',
+  withdrawn: 'withdrawn',
+}
+
+/** The versions of a design, newest first, each with the words that changed since the version it was made from. */
+export function History({
+  versions,
+  current,
+  onRestore,
+  compareHref,
+  handOverHref,
+  mayEdit = true,
+}: {
+  versions: readonly VersionSummary[]
+  current: DesignSpec
+  onRestore(spec: DesignSpec, fromNumber: number): void
+  compareHref(a: number, b: number | 'draft'): string
+  handOverHref(number: number): string
+  /** Without it versions can be looked at and compared, but not brought back. */
+  mayEdit?: boolean
+}) {
+  if (versions.length === 0)
+    return (
+      <p className="max-w-prose py-4 text-[14px] text-pencil">
+        No version yet. Save one with a note when the draft is worth keeping; from then on each change is marked here
+        and can be compared, brought back and handed over.
+      </p>
+    )
+  return (
+    <ol reversed aria-label="Versions, newest first" className="border-t border-graph-strong">
+      {versions.map((version) => (
+        <Entry
+          key={version.number}
+          version={version}
+          parent={versions.find(({ number }) => number === version.parentNumber) ?? null}
+          isDraft={changedParts(version.spec, current).length === 0}
+          mayEdit={mayEdit}
+          onRestore={onRestore}
+          compareHref={compareHref}
+          handOverHref={handOverHref}
+        />
+      ))}
+    </ol>
+  )
+}
+
+function Entry({
+  version,
+  parent,
+  isDraft,
+  mayEdit,
+  onRestore,
+  compareHref,
+  handOverHref,
+}: {
+  version: VersionSummary
+  parent: VersionSummary | null
+  isDraft: boolean
+  mayEdit: boolean
+  onRestore(spec: DesignSpec, fromNumber: number): void
+  compareHref(a: number, b: number | 'draft'): string
+  handOverHref(number: number): string
+}) {
+  const { number, note, savedAt, savedBy, state, checksum, spec } = version
+  const changed = parent ? changedParts(parent.spec, spec) : []
+  const heading = `version-${number}-heading`
+  return (
+    <li
+      aria-labelledby={heading}
+      className="grid gap-x-6 gap-y-1 border-b border-graph py-3 lg:grid-cols-[minmax(0,1fr)_auto]"
+    >
+      <div className="min-w-0">
+        <h3 id={heading} className="font-text text-[14px] font-semibold wrap-anywhere">
+          <span className="numeric">{number}</span> · {note}
+        </h3>
+        <p className="mt-0.5 font-heading text-[16px] leading-snug">
+          <MarkedStatement before={parent?.spec ?? null} after={spec} />
+        </p>
+        <p className="mt-1 flex flex-wrap gap-x-4 text-[13px] text-pencil">
+          <span>
+            Saved <time dateTime={savedAt}>{formatInstant(savedAt)}</time> by {savedBy}
+          </span>
+          <span>{stateNames[state]}</span>
+          <span className="numeric" title={`SHA-256 of the coefficients: ${checksum}`}>
+            {checksum.slice(0, 4)}…{checksum.slice(-4)}
+          </span>
+          {parent ? (
+            <span>
+              {changed.length === 0 ? 'Same design as' : `Changed since`} version {parent.number}
+              {changed.length > 0 ? `: ${changed.join(', ')}` : ''}
+            </span>
+          ) : null}
+        </p>
+      </div>
+      <div className="flex flex-wrap items-start gap-2">
+        {isDraft ? (
+          <span className="self-center text-[13px] text-moss">The draft equals it</span>
+        ) : (
+          <>
+            <Link className={buttonClass('plain', true)} href={compareHref(number, 'draft')}>
+              Compare with draft<span className="sr-only">: version {number}</span>
+            </Link>
+            {mayEdit ? (
+              <Button small onClick={() => onRestore(spec, number)}>
+                Bring back into the draft<span className="sr-only">: version {number}</span>
+              </Button>
+            ) : null}
+          </>
+        )}
+        {parent ? (
+          <Link className={buttonClass('quiet', true)} href={compareHref(parent.number, number)}>
+            Compare with {parent.number}
+            <span className="sr-only">: version {number}</span>
+          </Link>
+        ) : null}
+        <Link className={buttonClass('plain', true)} href={handOverHref(number)}>
+          Hand over<span className="sr-only">: version {number}</span>
+        </Link>
+      </div>
+    </li>
+  )
+}

@@ -1,0 +1,90 @@
+import type { DesignSpec } from '@/dsp'
+import { statementParts, type StatementPart, type WordKey } from './statement'
+
+/** A piece of two statements laid over each other: what both say, what only the earlier one said, what only the later one says. */
+export interface MarkedPart {
+  readonly mark: 'same' | 'gone' | 'new'
+  readonly part: StatementPart
+}
+
+const keyOf = (part: StatementPart) => (part.kind === 'text' ? '' : part.key)
+const isSame = (one: StatementPart, other: StatementPart) => one.text === other.text && keyOf(one) === keyOf(other)
+
+/**
+ * The later statement with the changed words marked, the earlier words before the ones that replaced them. Words count whole and belong
+ * to their place in the spec: a rate of 120 Hz is not an edge of 120 Hz. (Longest common subsequence; Wagner & Fischer 1974.)
+ */
+export function markedStatement(before: DesignSpec, after: DesignSpec): readonly MarkedPart[] {
+  const older = statementParts(before)
+  const newer = statementParts(after)
+  const longest = commonLengths(older, newer)
+  const marked: MarkedPart[] = []
+  let i = 0
+  let j = 0
+  while (i < older.length || j < newer.length) {
+    const gone = older[i]
+    const fresh = newer[j]
+    if (gone && fresh && isSame(gone, fresh)) {
+      marked.push({ mark: 'same', part: fresh })
+      i++
+      j++
+    } else if (gone && (!fresh || (longest[i + 1]?.[j] ?? 0) >= (longest[i]?.[j + 1] ?? 0))) {
+      marked.push({ mark: 'gone', part: gone })
+      i++
+    } else if (fresh) {
+      marked.push({ mark: 'new', part: fresh })
+      j++
+    }
+  }
+  return marked
+}
+
+/** lengths[i][j]: how many parts older[i…] and newer[j…] can have in common, in order. */
+function commonLengths(older: readonly StatementPart[], newer: readonly StatementPart[]): number[][] {
+  const lengths = Array.from({ length: older.length + 1 }, () => new Array<number>(newer.length + 1).fill(0))
+  for (let i = older.length - 1; i >= 0; i--) {
+    for (let j = newer.length - 1; j >= 0; j--) {
+      const [one, other, row] = [older[i], newer[j], lengths[i]]
+      if (!one || !other || !row) continue
+      row[j] = isSame(one, other)
+        ? 1 + (lengths[i + 1]?.[j + 1] ?? 0)
+        : Math.max(lengths[i + 1]?.[j] ?? 0, row[j + 1] ?? 0)
+    }
+  }
+  return lengths
+}
+
+const partNames: Readonly<Record<WordKey, string>> = {
+  'analog.response': 'response',
+  'analog.family': 'family',
+  'analog.order': 'order',
+  'analog.normalization': 'normalisation',
+  'analog.rippleDb': 'ripple',
+  'analog.attenuationDb': 'attenuation',
+  'analog.edgesHz.0': 'edge',
+  'analog.edgesHz.1': 'upper edge',
+  sampleRateHz: 'sampling rate',
+  'how.method': 'method',
+  'how.hold': 'held frequency',
+  'how.holdHz': 'held frequency',
+  'how.options': 'options of the method',
+}
+
+/** What differs between two specs, by name: "sampling rate", "held frequency", "departure budget". Empty when nothing does. */
+export function changedParts(before: DesignSpec, after: DesignSpec): readonly string[] {
+  const textsOf = (spec: DesignSpec) =>
+    new Map(statementParts(spec).flatMap((part) => (part.kind === 'text' ? [] : [[part.key, part] as const])))
+  const older = textsOf(before)
+  const newer = textsOf(after)
+  const names = new Set<string>()
+  for (const key of [...older.keys(), ...newer.keys()]) {
+    const [one, other] = [older.get(key), newer.get(key)]
+    if (!one || !other || !isSame(one, other) || exactly(one) !== exactly(other)) names.add(partNames[key])
+  }
+  if (JSON.stringify(budgetOf(before)) !== JSON.stringify(budgetOf(after))) names.add('departure budget')
+  return [...names]
+}
+
+/** Two values that are written alike may still differ further down. */
+const exactly = (part: StatementPart) => (part.kind === 'quantity' ? part.value : part.text)
+const budgetOf = ({ budget }: DesignSpec) => [budget.magnitudeDb, budget.phaseDegrees, budget.removeDelay]

@@ -1,0 +1,40 @@
+import { coefficientSet, type ExportSource } from './coefficient-set'
+import { cHeaderFile } from './c-header'
+import { csvFile } from './csv'
+import { jsonFile } from './json'
+import type { ExportFormat, ExportOptions } from './options'
+import { numpyFile, octaveFile } from './scripts'
+
+export {
+  coefficientSet,
+  ratioRefusal,
+  caution,
+  deviationWords,
+  type CoefficientSet,
+  type ExportSource,
+} from './coefficient-set'
+export { exportOptionsFrom, exportQuery, type ExportOptions, type ExportFormat } from './options'
+
+const writers = {
+  json: { extension: 'json', mediaType: 'application/json; charset=utf-8', write: jsonFile },
+  csv: { extension: 'csv', mediaType: 'text/csv; charset=utf-8; header=present', write: csvFile },
+  c: { extension: 'h', mediaType: 'text/x-c; charset=utf-8', write: cHeaderFile },
+  numpy: { extension: 'py', mediaType: 'text/x-python; charset=utf-8', write: numpyFile },
+  octave: { extension: 'm', mediaType: 'text/x-octave; charset=utf-8', write: octaveFile },
+} as const satisfies Record<ExportFormat, object>
+
+export interface ExportFile {
+  readonly fileName: string
+  readonly mediaType: string
+  readonly text: string
+}
+
+/**
+ * A version's coefficients as a file: the same source and options give the same bytes, on the server and in the browser.
+ * @throws DesignError as coefficientSet: what was asked for can't hold the filter
+ */
+export function exportFile(source: ExportSource, options: ExportOptions): ExportFile {
+  const set = coefficientSet(source, options)
+  const { extension, mediaType, write } = writers[options.format]
+  return { fileName: `${set.name}.${extension}`, mediaType, text: write(set) }
+}
