@@ -3,6 +3,7 @@ import { chmodSync, chownSync, existsSync, readFileSync, renameSync, rmSync, sta
 import { join } from 'node:path'
 import { setTimeout as pause } from 'node:timers/promises'
 import { databaseHome, serverUser } from '../lib/launch/database-home.mjs'
+import { bornAt } from '../lib/launch/processes.mjs'
 import { freePort } from '../lib/launch/ports.mjs'
 import { demandPostgres, findPostgres, postgresMajor } from '../lib/launch/postgres-binaries.mjs'
 import { run } from '../lib/launch/run.mjs'
@@ -146,6 +147,7 @@ async function startServer({ home, log, fragile, control }) {
   const portFile = join(home, 'port')
   let remembered = existsSync(portFile) ? Number(readFileSync(portFile, 'utf8')) || undefined : undefined
   for (let tries = 1; ; tries++) {
+    dropStalePid(join(home, 'data'))
     const port = await freePort(remembered)
     const loggedBefore = existsSync(log) ? statSync(log).size : 0
     const options = [
@@ -162,9 +164,9 @@ async function startServer({ home, log, fragile, control }) {
       return port
     }
     const said = existsSync(log) ? readFileSync(log, 'utf8').slice(loggedBefore) : started.output
-    // Taken port: only the log says so. Shared memory in use: the last server was killed and its children are still leaving.
+    // A taken port: only the log says so. Otherwise the last server was killed, and it or its children are still leaving.
     const portTaken = /Address already in use/.test(said)
-    const stillLeaving = /pre-existing shared memory block/.test(said)
+    const stillLeaving = /pre-existing shared memory block|lock file "postmaster.pid" already exists/.test(said)
     if (tries >= (stillLeaving ? 20 : 3) || !(portTaken || stillLeaving)) throw refused(said || started.output, home)
     if (portTaken) remembered = undefined
     else await pause(500)
@@ -182,15 +184,17 @@ function runningPort(data) {
 }
 
 /**
- * After a crash of the machine the server's process id may belong to another program by now, and pg_ctl would call the server running.
+ * After a crash of the machine the server's process id may belong to another program by now, and pg_ctl would call the server running; so
+ * it would a killed server whose parent has not taken notice yet.
  * @param {string} data
  */
 function dropStalePid(data) {
   const path = join(data, 'postmaster.pid')
   if (!existsSync(path) || process.platform !== 'linux') return
   const pid = Number(readFileSync(path, 'utf8').split('\n')[0])
+  if (!Number.isInteger(pid) || pid <= 0) return
   const command = existsSync(`/proc/${pid}/cmdline`) ? readFileSync(`/proc/${pid}/cmdline`, 'utf8') : ''
-  if (command !== '' && !/postgres/.test(command)) rmSync(path, { force: true })
+  if (bornAt(pid) === undefined || !/postgres/.test(command)) rmSync(path, { force: true })
 }
 
 /**

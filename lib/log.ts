@@ -11,7 +11,7 @@ const secrets = ['password', 'passwordHash', 'token', 'tokenHash', 'cookie', 'au
 export function log(): pino.Logger {
   logger ??= pino({
     level: env().LOG_LEVEL,
-    base: undefined,
+    base: null,
     timestamp: pino.stdTimeFunctions.isoTime,
     redact: { paths: secrets.flatMap((name) => [name, `*.${name}`, `*.*.${name}`]), censor: '[hidden]' },
   })

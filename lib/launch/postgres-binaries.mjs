@@ -52,12 +52,13 @@ export async function postgresMajor(binaries) {
 /**
  * Finds PostgreSQL, and installs Debian's package when it is missing and this user may.
  * @param {(line: string) => void} say
+ * @param {{ find?: () => string | undefined, mayInstall?: boolean }} [here] for the tests
  * @returns {Promise<string>} the folder of the programs
  */
-export async function demandPostgres(say) {
-  const found = findPostgres()
+export async function demandPostgres(say, { find = findPostgres, mayInstall = isDebianRoot() } = {}) {
+  const found = find()
   if (found) return found
-  if (!isDebianRoot()) {
+  if (!mayInstall) {
     throw new Trouble(
       'No PostgreSQL server is installed; run "sudo apt-get install postgresql" and start again, or set DATABASE_URL to a server that runs.',
     )
@@ -69,7 +70,7 @@ export async function demandPostgres(say) {
   const written = existsSync(settings) ? readFileSync(settings, 'utf8') : ''
   if (!/^\s*create_main_cluster\s*=/m.test(written)) writeFileSync(settings, `${written}create_main_cluster = false\n`)
   await aptInstall(['postgresql'], { recommends: false })
-  const installed = findPostgres()
+  const installed = find()
   if (!installed)
     throw new Trouble('PostgreSQL was installed, but its server programs were not found; look in /usr/lib/postgresql.')
   return installed

@@ -22,6 +22,7 @@ const sentences = {
     `No right to write at ${path}. Give this user write access to it, or start from a folder of its own.`,
   EPERM: (path) => `No right to change ${path}. Give this user write access to it, or start from a folder of its own.`,
   EROFS: (path) => `${path} is on a read-only file system. Start from a folder that can be written.`,
+  ENOTDIR: (path) => `${path} can't be used: a part of that path is a file, not a folder.`,
   EMFILE: () => 'Too many files are open for this user (see ulimit -n). Raise the limit and start again.',
 }
 
