@@ -1,3 +1,4 @@
+import { checkAnalogSpec } from './check'
 import { fromHalf, type HalfForm } from './forms/zeros-poles-gain'
 import { prototypeOf } from './prototypes/family'
 import { toBandpass, toBandstop, toHighpass, toLowpass } from './transforms/bands'
@@ -25,7 +26,15 @@ export function designHalf(spec: AnalogSpec, edges: readonly number[], bandwidth
   }
 }
 
+/**
+ * The analog filter of a specification.
+ *
+ * @param spec family, response, order of the prototype, edges in Hz, levels in dB
+ * @returns zeros and poles in rad/s and the gain factor; conjugate pairs are exact
+ * @throws DesignError as checkAnalogSpec
+ */
 export function designAnalog(spec: AnalogSpec): Filter<'s'> {
+  checkAnalogSpec(spec)
   const perHertz = 2 * Math.PI
   const [low = 0, high = 0] = spec.edgesHz
   return fromHalf(

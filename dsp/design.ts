@@ -11,7 +11,11 @@ export interface Design {
   readonly diagnostics: readonly Diagnostic[]
 }
 
-/** Spec in, design and diagnostics out. */
+/**
+ * Spec in, design and diagnostics out: prototype → band transform → method → sections, all of it visible in the result.
+ *
+ * @throws DesignError with the field of the spec that is to blame and the nearest value that works
+ */
 export function designFromSpec(spec: DesignSpec): Design {
   const digital = discretize(spec.analog, spec.sampleRateHz, spec.how)
   return { spec, analog: designAnalog(spec.analog), digital, diagnostics: digital.diagnostics }

@@ -27,7 +27,19 @@ export type {
 
 // Design: spec → analog → digital → sections
 export { designFromSpec, type Design } from './design'
+export { checkAnalogSpec, checkDiscretization } from './check'
 export { designAnalog } from './design-analog'
 export { discretize } from './discretise/discretize'
 export { toSections, type SectionOptions, type SectionOrder } from './forms/sections'
 export type { SectionScale } from './forms/section-scaling'
+
+// Responses
+export type { AnyFilter } from './response/factors'
+export {
+  frequencyResponse,
+  frequencyResponseInto,
+  magnitudeDb,
+  magnitudeDbInto,
+  zeroPhaseMagnitudeDb,
+} from './response/frequency'
+export { groupDelay, groupDelayInto, phaseDelay, phaseResponse, phaseResponseInto } from './response/delay'
