@@ -41,22 +41,24 @@ const choices: Readonly<Record<string, readonly string[]>> = {
  * @throws DesignError naming the parameter that is unknown, given twice or out of its list, with the nearest value that works
  */
 export function exportOptionsFrom(query: URLSearchParams): ExportOptions {
-  const given: Record<string, string> = {}
+  const given = new Map<string, string>()
   for (const [key, value] of query) {
-    if (!(key in choices) && key !== 'name')
+    if (!Object.hasOwn(choices, key) && key !== 'name')
       throw new DesignError('option-unknown', key, `There is no choice called “${key}”; there are ${known()}.`)
-    if (key in given) throw new DesignError('option-twice', key, `“${key}” is given twice; give it once.`, given[key])
-    given[key] = value
+    const before = given.get(key)
+    if (before !== undefined)
+      throw new DesignError('option-twice', key, `“${key}” is given twice; give it once.`, before)
+    given.set(key, value)
   }
-  const read = exportOptionsSchema.safeParse(given)
+  const read = exportOptionsSchema.safeParse(Object.fromEntries(given))
   if (!read.success) throw outOfList(String(read.error.issues[0]?.path[0] ?? 'format'), given)
   if (read.data.name !== undefined) checkIdentifier(read.data.name)
   return read.data
 }
 
-function outOfList(key: string, given: Readonly<Record<string, string>>): DesignError {
+function outOfList(key: string, given: ReadonlyMap<string, string>): DesignError {
   const list = choices[key] ?? []
-  const value = given[key]
+  const value = given.get(key)
   const found = value === undefined ? `“${key}” is missing` : `“${key}” can't be “${value}”`
   return new DesignError('option-out-of-list', key, `${found}; it is one of ${list.join(', ')}.`, list[0])
 }

@@ -5,9 +5,9 @@ import { DesignError, type DesignSpec } from '@/dsp'
 import { Notice } from '@/components/ui/notice'
 import { changedParts } from '@/lib/designs/statement-changes'
 import { formatDegrees, formatFixed, formatHz, formatSeconds } from '@/lib/format/quantity'
-import { ChoiceRow } from '../panels/chart/choice-row'
+import { ChoiceGroup } from '@/components/handover/choice-group'
 import { DataTable, ScrollRegion } from '../panels/chart/data-table'
-import { SceneCanvas } from '../panels/chart/scene-canvas'
+import { PlotSheet } from '../panels/chart/plot-sheet'
 import { useWidth } from '../panels/chart/use-width'
 import { curvesOf, valueRows } from './curves'
 import { figureRows, sideOf, type Side } from './figures'
@@ -137,14 +137,14 @@ function Overlay({ left, right }: { left: Side; right: Side }) {
         <span className="flex items-center gap-2">
           <SideSwatch side="right" /> {right.label}
         </span>
-        <ChoiceRow legend="Difference in" showLegend choices={units} value={unit} onChange={setUnit} />
+        <ChoiceGroup legend="Difference in" inline choices={units} value={unit} onChange={(next) => setUnit(next)} />
       </div>
       <div
         ref={ref}
         role="img"
         aria-label={`Magnitude, phase and group delay of ${left.label} and ${right.label}, and their difference, over frequency; the values are in the table below`}
       >
-        {scene ? <SceneCanvas scene={scene} /> : <div className="h-[586px]" />}
+        {scene ? <PlotSheet scene={scene} /> : <div className="h-[586px]" />}
       </div>
       <DataTable
         summary="Values of the plots"

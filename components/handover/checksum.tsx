@@ -1,0 +1,46 @@
+'use client'
+
+import { useEffect, useState } from 'react'
+import { canonicalText, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
+
+type Agreement = 'unknown' | 'agrees' | 'differs'
+
+/** The version's checksum, and whether this browser's own computation of the design comes to the same. */
+export function Checksum({ checksum, numbers }: { checksum: string; numbers: StoredCoefficients | null }) {
+  const agreement = useAgreement(checksum, numbers)
+  return (
+    <div className="text-[13px]">
+      <p className="text-pencil">SHA-256 of the coefficients</p>
+      <p className="numeric wrap-anywhere text-[12px] leading-5 text-ink">{checksum}</p>
+      {agreement === 'agrees' ? <p className="text-moss">Computed again here: the same numbers</p> : null}
+      {agreement === 'differs' ? (
+        <p className="text-vermilion">
+          Computed again here, some last digits differ. The file carries the numbers that were kept with the version;
+          only the preview above is of the new ones.
+        </p>
+      ) : null}
+    </div>
+  )
+}
+
+function useAgreement(checksum: string, numbers: StoredCoefficients | null): Agreement {
+  const [found, setFound] = useState<{ readonly of: StoredCoefficients; readonly hex: string } | null>(null)
+  useEffect(() => {
+    // Browsers digest on secure pages only; elsewhere nothing is claimed.
+    if (numbers === null || !globalThis.isSecureContext) return undefined
+    let isCurrent = true
+    void digestHex(canonicalText(numbers)).then((hex) => {
+      if (isCurrent) setFound({ of: numbers, hex })
+    })
+    return () => {
+      isCurrent = false
+    }
+  }, [numbers])
+  if (found === null || found.of !== numbers) return 'unknown'
+  return found.hex === checksum ? 'agrees' : 'differs'
+}
+
+async function digestHex(text: string): Promise<string> {
+  const digest = await crypto.subtle.digest('SHA-256', new TextEncoder().encode(text))
+  return Array.from(new Uint8Array(digest), (byte) => byte.toString(16).padStart(2, '0')).join('')
+}

@@ -1,0 +1,70 @@
+import { DesignError, designFromSpec } from '@/dsp'
+import { coefficientsOf, filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'
+import { coefficientSet, exportFile, ratioRefusal, type ExportFile, type ExportOptions } from '@/lib/exports'
+import { roundingWords } from '@/lib/exports/about'
+import { differenceEquation, typesetEquation } from '@/lib/exports/equation'
+import { checkIdentifier } from '@/lib/exports/names'
+
+/* What the hand-over panel shows before anything is downloaded: the very code that the server writes the file with. */
+
+export type Kept = { readonly numbers: StoredCoefficients } | { readonly problem: Problem }
+
+/** The version's numbers computed anew in this browser; where the engine is the one that saved it, they are the kept ones. */
+export function recomputed(version: Pick<VersionSummary, 'spec'>): Kept {
+  return attempt(() => ({ numbers: coefficientsOf(designFromSpec(version.spec)) }))
+}
+
+export type Preview =
+  | { readonly file: ExportFile; readonly firstLines: string; readonly restLines: number; readonly rounding: string }
+  | { readonly problem: Problem }
+
+const shownLines = 46
+
+export function previewOf(
+  design: DesignRecord,
+  version: VersionSummary,
+  numbers: StoredCoefficients,
+  options: ExportOptions,
+): Preview {
+  return attempt(() => {
+    if (options.name !== undefined) checkIdentifier(options.name)
+    const source = { design, version, kept: numbers }
+    const file = exportFile(source, options)
+    const lines = file.text.split(/\r?\n/)
+    return {
+      file,
+      firstLines: lines.slice(0, shownLines).join('\n'),
+      restLines: Math.max(0, lines.length - shownLines),
+      rounding: roundingWords(coefficientSet(source, options)),
+    }
+  })
+}
+
+/** Why b/a can't be had in that number type, or null. */
+export function ratioProblem(numbers: StoredCoefficients, type: ExportOptions['number']): Problem | null {
+  const error = ratioRefusal(filtersOf(numbers).digital, type)
+  return error === null ? null : problemFrom(error)
+}
+
+/** The difference equation of the choice: as a screen sets it, and as the file prints it. */
+export function equationOf(numbers: StoredCoefficients, { structure, feedback }: ExportOptions) {
+  const order = numbers.poles.length
+  return {
+    typeset: typesetEquation(structure, feedback, order),
+    plain: differenceEquation(structure, feedback, order),
+  }
+}
+
+function attempt<Value>(make: () => Value): Value | { readonly problem: Problem } {
+  try {
+    return make()
+  } catch (error) {
+    if (error instanceof DesignError) return { problem: problemFrom(error) }
+    throw error
+  }
+}
+
+function problemFrom({ code, message, field, nearest }: DesignError): Problem {
+  return { code, message, field, ...(nearest !== undefined && { nearest }) }
+}
