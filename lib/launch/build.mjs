@@ -86,7 +86,7 @@ export async function build({ dist, hash, logFile }) {
   void [DATABASE_URL, SMTP_URL, MAILBOX_DIR, NODE_OPTIONS]
   const built = await run(process.execPath, [nextCommand, 'build'], {
     cwd: root,
-    env: { ...env, NODE_ENV: 'production', POLEWRIGHT_DIST: dist, NEXT_TELEMETRY_DISABLED: '1' },
+    env: { ...env, NODE_ENV: 'production', POLEWRIGHT_DIST: dist, NEXT_TELEMETRY_DISABLED: '1', NO_COLOR: '1' },
     endable: true,
   })
   writeFileSync(logFile, built.output, { mode: 0o600 })

@@ -292,8 +292,8 @@ describe('progress', () => {
 })
 
 describe('the start command, when it can not start', () => {
-  const start = (env: NodeJS.ProcessEnv): ReturnType<typeof run> => {
-    const clean = { ...process.env, ...env }
+  const start = (env: Readonly<Record<string, string>>): ReturnType<typeof run> => {
+    const clean: NodeJS.ProcessEnv = { ...process.env, ...env }
     for (const name of ['DATABASE_URL', 'SMTP_URL', 'POLEWRIGHT_DEBUG']) if (!(name in env)) delete clean[name]
     return run(process.execPath, ['lib/launch/start.mjs'], {
       env: clean,
