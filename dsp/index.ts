@@ -29,9 +29,12 @@ export type {
 export { designFromSpec, type Design } from './design'
 export { checkAnalogSpec, checkDiscretization } from './check'
 export { designAnalog } from './design-analog'
+export { minimumOrder, type LeastOrder } from './prototypes/order'
+export type { OrderRequirement } from './prototypes/order-check'
 export { discretize } from './discretise/discretize'
 export { toSections, type SectionOptions, type SectionOrder } from './forms/sections'
 export type { SectionScale } from './forms/section-scaling'
+export { toTransferFunction, type TransferFunction } from './forms/transfer-function'
 
 // Responses
 export type { AnyFilter } from './response/factors'
@@ -43,3 +46,16 @@ export {
   zeroPhaseMagnitudeDb,
 } from './response/frequency'
 export { groupDelay, groupDelayInto, phaseDelay, phaseResponse, phaseResponseInto } from './response/delay'
+export { impulseResponse, stepResponse, type TimeGrid, type TimeResponse } from './response/time'
+
+// Signals
+export { createRunner, runFilter, type Runner, type RunOptions } from './signal/run'
+export { steadyState } from './signal/cascade'
+export { minimumSamplesForZeroPhase, zeroPhasePadLength } from './signal/zero-phase'
+export { welch, type Spectrum, type WelchOptions } from './signal/welch'
+export { spectralWindow, windowNames, type SpectralWindow, type WindowName } from './signal/windows'
+export { convolve } from './signal/convolve'
+export { measureDelay, predictDelay, type DelayOptions, type MeasuredDelay } from './signal/delay-estimate'
+export { buildEnvelope, readEnvelope, type Envelope, type EnvelopeLevel, type EnvelopeView } from './signal/envelope'
+export { footbridgeDemo, type DemoOptions, type DemoRecording } from './signal/demo-recording'
+export { seededNoise } from './numeric/random'

@@ -77,9 +77,10 @@ function pair(zeros: readonly Complex[], poles: readonly Complex[]): Group[] {
 function quadratic(roots: readonly Complex[]): readonly number[] {
   const [first, second] = roots
   if (first === undefined) return [1]
-  if (!isReal(first)) return [1, -2 * first.re, first.re * first.re + first.im * first.im]
-  if (second === undefined) return [1, -first.re]
-  return [1, -(first.re + second.re), first.re * second.re]
+  // 0 − x, so that a root at the origin doesn't leave a −0 in print.
+  if (!isReal(first)) return [1, 0 - 2 * first.re, first.re * first.re + first.im * first.im]
+  if (second === undefined) return [1, 0 - first.re]
+  return [1, 0 - (first.re + second.re), first.re * second.re]
 }
 
 /** In powers of z⁻¹ the numerator is delayed by as many samples as the section has more poles than zeros. */
