@@ -27,7 +27,9 @@ export const permissions = {
   'account.change-password': 'signed-in',
   'account.end-session': 'signed-in',
   'account.end-other-sessions': 'signed-in',
+  /** One's own teams' projects; whoever has none sees an empty page. */
   'project.list': 'signed-in',
+  'project.read': allRoles,
   'project.create': editors,
   'team.read': allRoles,
   'design.read': allRoles,
@@ -62,6 +64,7 @@ export const pages: Readonly<Record<string, ActionName>> = {
   '/reset': 'account.reset',
   '/account': 'account.read',
   '/projects': 'project.list',
+  '/projects/[projectId]': 'project.read',
   '/projects/new': 'project.list',
   '/team': 'project.list',
   '/designs/[designId]': 'design.read',
@@ -72,5 +75,5 @@ export const pages: Readonly<Record<string, ActionName>> = {
 /** Route handlers by folder and method. */
 export const routes: Readonly<Record<string, Readonly<Record<string, ActionName>>>> = {
   '/api/health': { GET: 'health.read' },
-  '/api/designs/[designId]/draft': { GET: 'design.read', PUT: 'draft.save' },
+  '/api/designs/[designId]/draft': { PUT: 'draft.save' },
 }

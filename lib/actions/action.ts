@@ -37,6 +37,17 @@ function named<Action extends object>(name: ActionName, action: Action): Action 
   return action
 }
 
+/** The same action in the shape that a screen expects: its arguments packed into one input, its answer in other words. */
+export function shaped<Args extends readonly unknown[], Value, Out>(
+  action: (input: unknown) => Promise<Answer<Value>>,
+  pack: (...args: Args) => unknown,
+  shape: (answer: Answer<Value>) => Out,
+): (...args: Args) => Promise<Out> {
+  const name = names.get(action)
+  if (name === undefined) throw new Error('Only an action that was made here can be given another shape.')
+  return named(name, async (...args: Args) => shape(await action(pack(...args))))
+}
+
 interface TeamActionParts<Input, Found, Value> {
   readonly schema: z.ZodType<Input>
   /** What the input speaks of, in the words of a refusal. */

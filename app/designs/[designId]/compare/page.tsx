@@ -1,0 +1,55 @@
+import type { Metadata } from 'next'
+import Link from 'next/link'
+import { notFound } from 'next/navigation'
+import { Header } from '@/components/frame/header'
+import { CompareView, type Choice } from '@/components/studio/compare/compare-view'
+import { buttonClass } from '@/components/ui/button'
+import { findDesign } from '@/db/queries/designs'
+import { findDraft } from '@/db/queries/drafts'
+import { listVersions } from '@/db/queries/versions'
+import { requireFound } from '@/lib/auth/page-access'
+import { designParamsSchema } from '@/lib/designs/schemas'
+
+export const metadata: Metadata = { title: 'Compare' }
+
+interface PageProps {
+  readonly params: Promise<unknown>
+  readonly searchParams: Promise<Readonly<Record<string, string | readonly string[] | undefined>>>
+}
+
+/** `?a=3&b=draft`: two versions, or a version and the viewer's own draft. What isn't named, or isn't there, is the nearest that is. */
+export default async function ComparePage({ params, searchParams }: PageProps) {
+  const parsed = designParamsSchema.safeParse(await params)
+  if (!parsed.success) notFound()
+  const { designId } = parsed.data
+  const { access, found } = await requireFound('design.read', `/designs/${designId}/compare`, (may) =>
+    findDesign(may, designId),
+  )
+  const { role: _, startingSpec, teamId: __, ...design } = found
+  const [versions, draft] = await Promise.all([listVersions(access, designId), findDraft(access, designId)])
+  const { a, b } = await searchParams
+  const draftSpec = draft?.spec ?? (versions.length === 0 ? startingSpec : null)
+  const last: Choice = draftSpec ? 'draft' : (versions[0]?.number ?? 'draft')
+  const choose = (asked: string | readonly string[] | undefined, otherwise: Choice): Choice => {
+    if (asked === 'draft' && draftSpec) return 'draft'
+    return versions.find(({ number }) => String(number) === asked)?.number ?? otherwise
+  }
+  const right = choose(b, last)
+  const before = versions.find(({ number }) => number !== right)?.number
+  return (
+    <>
+      <Header
+        crumbs={[
+          { label: design.projectName, href: `/projects/${design.projectId}` },
+          { label: design.title, href: `/designs/${design.id}` },
+          { label: 'Compare' },
+        ]}
+      >
+        <Link className={buttonClass()} href={`/designs/${design.id}`}>
+          Open in studio
+        </Link>
+      </Header>
+      <CompareView design={design} versions={versions} draft={draftSpec} a={choose(a, before ?? right)} b={right} />
+    </>
+  )
+}
