@@ -5,7 +5,14 @@ import { z } from 'zod'
  * design.ts, which answers with a DesignError naming the field and the nearest value that works.
  */
 
-export const familySchema = z.enum(['butterworth', 'chebyshev1', 'chebyshev2', 'elliptic', 'bessel', 'critically-damped'])
+export const familySchema = z.enum([
+  'butterworth',
+  'chebyshev1',
+  'chebyshev2',
+  'elliptic',
+  'bessel',
+  'critically-damped',
+])
 export const responseSchema = z.enum(['lowpass', 'highpass', 'bandpass', 'bandstop'])
 
 const hertz = z.number().positive()

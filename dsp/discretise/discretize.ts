@@ -18,6 +18,7 @@ import {
 } from './diagnostics'
 import { impulseInvariant } from './impulse-invariant'
 import { matchedZ } from './matched-z'
+import { bandAngles, keepIfGood, sectionDiagnostics } from './rounding'
 import { stepInvariant } from './step-invariant'
 import type { Diagnostic, DigitalFilter, ParallelForm, Section } from '../forms/filter'
 import type { AnalogSpec, Method } from '../spec'
@@ -68,6 +69,20 @@ function referenceAngle(spec: AnalogSpec, sampleRateHz: number): number {
   return spec.response === 'bandpass' ? Math.sqrt(low) * Math.sqrt(high) * perSample(sampleRateHz) : 0
 }
 
+/** The pass band in rad per sample; of a band-stop filter, the lower one. */
+function passBand(spec: AnalogSpec, sampleRateHz: number): readonly [number, number] {
+  const [low = 0, high = 0] = spec.edgesHz.map((edge) => edge * perSample(sampleRateHz))
+  switch (spec.response) {
+    case 'lowpass':
+    case 'bandstop':
+      return [0, low]
+    case 'highpass':
+      return [low, Math.PI]
+    case 'bandpass':
+      return [low, high]
+  }
+}
+
 function byImpulseInvariant(spec: AnalogSpec, sampleRateHz: number, how: ImpulseInvariant): Outcome {
   const unit = perSample(sampleRateHz)
   const analog = designScaled(spec, unit)
@@ -77,13 +92,11 @@ function byImpulseInvariant(spec: AnalogSpec, sampleRateHz: number, how: Impulse
     how.restoreGain === true
       ? impulseInvariant(analog, { halfFirstSample: halved, restoreAt: referenceAngle(spec, sampleRateHz) })
       : plain
-  const [low = 0, high = 0] = spec.edgesHz
-  const band = spec.response === 'bandpass' ? ([low * unit, high * unit] as const) : ([0, low * unit] as const)
   const jump = fullCount(analog.poles) - fullCount(analog.zeros) === 1
   return {
     ...restored,
     diagnostics: [
-      ...aliasingDiagnostics(analog, plain.form, band),
+      ...aliasingDiagnostics(analog, plain.form, passBand(spec, sampleRateHz)),
       ...firstSampleDiagnostics(jump, halved),
       ...foldedPoleDiagnostics(expand(analog.poles).filter((pole) => Math.abs(pole.im) > Math.PI).length),
       ...repeatedPoleDiagnostics(restored.parallel !== undefined),
@@ -158,11 +171,18 @@ export function discretize(spec: AnalogSpec, sampleRateHz: number, how: Method):
       sampleRateHz / 10,
     )
   }
+  const angles = bandAngles(passBand(spec, sampleRateHz))
+  const { kept, diagnostics: left } = keepIfGood(parallel, filter, angles)
   return {
     ...filter,
     sampleRateHz,
     sections,
-    ...(parallel === undefined ? {} : { parallel }),
-    diagnostics: [...rateDiagnostics(spec, sampleRateHz), ...diagnostics],
+    ...(kept === undefined ? {} : { parallel: kept }),
+    diagnostics: [
+      ...rateDiagnostics(spec, sampleRateHz),
+      ...diagnostics,
+      ...left,
+      ...sectionDiagnostics(sections, filter, angles),
+    ],
   }
 }

@@ -1,4 +1,4 @@
-import { exponential } from '../numeric/complex'
+import { add, divide, exponential } from '../numeric/complex'
 import { amplify } from './section-scaling'
 import type { FixedPoint, BigComplex } from '../numeric/fixed-point'
 import type { Complex, ParallelForm, Section } from './filter'
@@ -72,3 +72,17 @@ export const scaleParallel = (form: ParallelForm, factor: number): ParallelForm 
   direct: form.direct * factor,
   terms: form.terms.map((section) => amplify(section, factor)),
 })
+
+/** H(e^{jω}) of a sum of sections. */
+export function parallelAt({ direct, terms }: ParallelForm, radians: number): Complex {
+  const z1 = { re: Math.cos(radians), im: -Math.sin(radians) }
+  const z2 = { re: Math.cos(2 * radians), im: -Math.sin(2 * radians) }
+  return terms.reduce<Complex>(
+    (sum, { b0, b1, b2, a1, a2 }) => {
+      const above = { re: b0 + b1 * z1.re + b2 * z2.re, im: b1 * z1.im + b2 * z2.im }
+      const below = { re: 1 + a1 * z1.re + a2 * z2.re, im: a1 * z1.im + a2 * z2.im }
+      return add(sum, divide(above, below))
+    },
+    { re: direct, im: 0 },
+  )
+}

@@ -23,12 +23,15 @@ export function sectionMagnitude({ b0, b1, b2, a1, a2 }: Section, radians: numbe
   return Math.hypot(b0 + b1 * c1 + b2 * c2, b1 * s1 + b2 * s2) / Math.hypot(1 + a1 * c1 + a2 * c2, a1 * s1 + a2 * s2)
 }
 
-/** The strongest of DC, half the rate and the pole angles, in rad per sample. */
+/**
+ * The strongest of DC, half the rate and the pole angles, in rad per sample. Where all poles are real, a net between the two ends as well:
+ * a band-pass of real poles is nothing at either of them.
+ */
 function strongestAngle(filter: Filter<'z'>): number {
   const angles = filter.poles.filter((pole) => pole.im > 0).map((pole) => Math.atan2(pole.im, pole.re))
   let best = 0
   let most = -1
-  for (const angle of [0, Math.PI, ...angles]) {
+  for (const angle of angles.length > 0 ? [0, Math.PI, ...angles] : refinedAngles(filter.poles, 32)) {
     const magnitude = magnitudeAt(filter, { re: Math.cos(angle), im: Math.sin(angle) })
     if (magnitude > most) {
       most = magnitude
