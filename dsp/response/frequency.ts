@@ -1,0 +1,302 @@
+import { DesignError } from '../errors'
+import type { Complex } from '../forms/filter'
+import { cosHalfTurns, foldedTurns, refuseFrequency, sinHalfTurns } from './axis'
+import type { AnyFilter, RootFactors } from './factors'
+import { factorsOf, PAIR_STRIDE, REAL_STRIDE, scaleByPowerOfTwo } from './factors'
+
+/** Products outside this range are computed again with their exponent kept apart. */
+const LEAST = 1e-140
+const MOST = 1e140
+
+function checkRoom(name: string, room: number, needed: number): void {
+  if (room < needed) {
+    throw new DesignError('length', name, `The array ${name} holds ${room} values; ${needed} are needed.`, needed)
+  }
+}
+
+/** Multiplies (re, im) by j^power. */
+function quarterTurns(power: number, re: number, im: number): Complex {
+  switch (((power % 4) + 4) % 4) {
+    case 1:
+      return { re: -im, im: re }
+    case 2:
+      return { re: -re, im: -im }
+    case 3:
+      return { re: im, im: -re }
+    default:
+      return { re, im }
+  }
+}
+
+interface Scaled {
+  readonly re: number
+  readonly im: number
+  /** The value is (re + j·im) · 2^exponent. */
+  readonly exponent: number
+}
+
+/**
+ * The response at one frequency with its exponent kept apart: the way for values that leave the range of a double on the way, at
+ * high orders far from the corner. Slower, so used only where the plain products ran out of range.
+ */
+function evaluateScaled(factors: RootFactors, frequencyHz: number): Scaled {
+  const digital = factors.domain === 'z'
+  const x = digital ? foldedTurns(frequencyHz, factors.scale) : 0
+  const s = digital ? sinHalfTurns(x) : 0
+  const c = digital ? cosHalfTurns(x) : 0
+  const w = digital ? 0 : (2 * Math.PI * frequencyHz) / factors.scale
+  const u = digital ? s * s : w * w
+  const v = c * c
+  const t = digital ? s * c : w
+  const p = digital ? c : 1
+  const q = digital ? s : w
+
+  let re = factors.gainMantissa
+  let im = 0
+  let exponent = factors.gainExponent
+  const multiply = (fr: number, fi: number, inverse: boolean): void => {
+    if (inverse) {
+      const big = Math.max(Math.abs(fr), Math.abs(fi))
+      const [nr, ni] = [fr / big, fi / big]
+      const norm = (nr * nr + ni * ni) * big
+      ;[re, im] = [(re * nr + im * ni) / norm, (im * nr - re * ni) / norm]
+    } else {
+      ;[re, im] = [re * fr - im * fi, re * fi + im * fr]
+    }
+    const size = Math.max(Math.abs(re), Math.abs(im))
+    if (size === 0 || (size < 1e100 && size > 1e-100)) return
+    const shift = size > 1 ? -300 : 300
+    re *= 2 ** shift
+    im *= 2 ** shift
+    exponent -= shift
+  }
+  const run = (list: RootFactors['zeros'], inverse: boolean): void => {
+    for (let i = 0; i < list.pairCount * PAIR_STRIDE; i += PAIR_STRIDE) {
+      const fr = list.pairs[i]! + list.pairs[i + 1]! * u + list.pairs[i + 2]! * v
+      multiply(fr, list.pairs[i + 3]! * t, inverse)
+    }
+    for (let i = 0; i < list.realCount * REAL_STRIDE; i += REAL_STRIDE) {
+      multiply(list.reals[i]! * p, list.reals[i + 1]! * q, inverse)
+    }
+  }
+  // Zeros first: an exact zero then stays exactly 0 whatever follows.
+  run(factors.zeros, false)
+  for (let i = 0; i < Math.abs(factors.pPower); i++) multiply(p, 0, factors.pPower < 0)
+  for (let i = 0; i < Math.abs(factors.qPower); i++) multiply(q, 0, factors.qPower < 0)
+  run(factors.poles, true)
+  const turned = quarterTurns(factors.qPower, re, im)
+  if (factors.halfTurns === 0) return { ...turned, exponent }
+  const angle = Math.PI * x * factors.halfTurns
+  const [cr, ci] = [Math.cos(angle), Math.sin(angle)]
+  return { re: turned.re * cr - turned.im * ci, im: turned.re * ci + turned.im * cr, exponent }
+}
+
+function rootsInto(
+  factors: RootFactors,
+  frequenciesHz: ArrayLike<number>,
+  outRe: Float64Array,
+  outIm: Float64Array,
+): void {
+  const { zeros, poles, pPower, qPower, halfTurns, scale } = factors
+  const digital = factors.domain === 'z'
+  const toOmega = (2 * Math.PI) / scale
+  const zeroPairs = zeros.pairs
+  const zeroReals = zeros.reals
+  const polePairs = poles.pairs
+  const poleReals = poles.reals
+  const zeroPairEnd = zeros.pairCount * PAIR_STRIDE
+  const zeroRealEnd = zeros.realCount * REAL_STRIDE
+  const polePairEnd = poles.pairCount * PAIR_STRIDE
+  const poleRealEnd = poles.realCount * REAL_STRIDE
+  const pUp = Math.max(pPower, 0)
+  const pDown = Math.max(-pPower, 0)
+  const qUp = Math.max(qPower, 0)
+  const qDown = Math.max(-qPower, 0)
+  const quarter = ((qPower % 4) + 4) % 4
+  const direct = factors.gainExponent > -1000 && factors.gainExponent < 1000
+  const gain = direct ? factors.gainMantissa * 2 ** factors.gainExponent : 0
+  const count = frequenciesHz.length
+  for (let n = 0; n < count; n++) {
+    const frequencyHz = frequenciesHz[n]!
+    if (!(frequencyHz - frequencyHz === 0)) refuseFrequency(n)
+    let x = 0
+    let u = 0
+    let v = 0
+    let t = 0
+    let p = 1
+    let q = 0
+    if (digital) {
+      x = foldedTurns(frequencyHz, scale)
+      q = sinHalfTurns(x)
+      p = cosHalfTurns(x)
+      u = q * q
+      v = p * p
+      t = q * p
+    } else {
+      q = toOmega * frequencyHz
+      u = q * q
+      t = q
+    }
+    let nr = 1
+    let ni = 0
+    for (let i = 0; i < zeroPairEnd; i += PAIR_STRIDE) {
+      const fr = zeroPairs[i]! + zeroPairs[i + 1]! * u + zeroPairs[i + 2]! * v
+      const fi = zeroPairs[i + 3]! * t
+      const next = nr * fr - ni * fi
+      ni = nr * fi + ni * fr
+      nr = next
+    }
+    for (let i = 0; i < zeroRealEnd; i += REAL_STRIDE) {
+      const fr = zeroReals[i]! * p
+      const fi = zeroReals[i + 1]! * q
+      const next = nr * fr - ni * fi
+      ni = nr * fi + ni * fr
+      nr = next
+    }
+    let bare = 1
+    for (let i = 0; i < pUp; i++) bare *= p
+    for (let i = 0; i < qUp; i++) bare *= q
+    nr *= bare
+    ni *= bare
+    let dr = 1
+    let di = 0
+    for (let i = 0; i < polePairEnd; i += PAIR_STRIDE) {
+      const fr = polePairs[i]! + polePairs[i + 1]! * u + polePairs[i + 2]! * v
+      const fi = polePairs[i + 3]! * t
+      const next = dr * fr - di * fi
+      di = dr * fi + di * fr
+      dr = next
+    }
+    for (let i = 0; i < poleRealEnd; i += REAL_STRIDE) {
+      const fr = poleReals[i]! * p
+      const fi = poleReals[i + 1]! * q
+      const next = dr * fr - di * fi
+      di = dr * fi + di * fr
+      dr = next
+    }
+    bare = 1
+    for (let i = 0; i < pDown; i++) bare *= p
+    for (let i = 0; i < qDown; i++) bare *= q
+    dr *= bare
+    di *= bare
+
+    const nSize = Math.abs(nr) + Math.abs(ni)
+    const dSize = Math.abs(dr) + Math.abs(di)
+    if (direct && nSize > LEAST && nSize < MOST && dSize > LEAST && dSize < MOST) {
+      const norm = dr * dr + di * di
+      let re = ((nr * dr + ni * di) / norm) * gain
+      let im = ((ni * dr - nr * di) / norm) * gain
+      if (quarter === 1) {
+        const next = -im
+        im = re
+        re = next
+      } else if (quarter === 2) {
+        re = -re
+        im = -im
+      } else if (quarter === 3) {
+        const next = im
+        im = -re
+        re = next
+      }
+      if (halfTurns !== 0) {
+        const angle = Math.PI * x * halfTurns
+        const cr = Math.cos(angle)
+        const ci = Math.sin(angle)
+        const next = re * cr - im * ci
+        im = re * ci + im * cr
+        re = next
+      }
+      outRe[n] = re
+      outIm[n] = im
+    } else {
+      const value = evaluateScaled(factors, frequencyHz)
+      outRe[n] = scaleByPowerOfTwo(value.re, value.exponent)
+      outIm[n] = scaleByPowerOfTwo(value.im, value.exponent)
+    }
+  }
+}
+
+/**
+ * Complex response on the frequency axis, written into the caller's arrays; allocates nothing per point.
+ * @see frequencyResponse
+ */
+export function frequencyResponseInto(
+  filter: AnyFilter,
+  frequenciesHz: ArrayLike<number>,
+  re: Float64Array,
+  im: Float64Array,
+): void {
+  checkRoom('re', re.length, frequenciesHz.length)
+  checkRoom('im', im.length, frequenciesHz.length)
+  rootsInto(factorsOf(filter), frequenciesHz, re, im)
+}
+
+/**
+ * Complex frequency response H, evaluated from the roots. Analog filters are evaluated at s = j2πf, digital ones at z = e^{j2πf/fs}, to
+ * any f (beyond half the rate the image appears). A filter that keeps a parallel form too is taken by its roots, which hold their
+ * relative accuracy in the stop band, where a sum of residues cancels (see parallelResponse).
+ *
+ * @param filter analog (roots in rad/s) or digital with its sampling rate
+ * @param frequenciesHz N frequencies in Hz
+ * @returns `re` and `im`, N values each; exactly 0 where a zero lies on the axis or the circle at that frequency
+ * @throws DesignError `not-finite` for a frequency that is no finite number, `unpaired-roots` for a filter that is not real
+ * Source: Oppenheim & Schafer, Discrete-Time Signal Processing, 3rd ed., §5.3 (response from poles and zeros).
+ */
+export function frequencyResponse(
+  filter: AnyFilter,
+  frequenciesHz: ArrayLike<number>,
+): { re: Float64Array; im: Float64Array } {
+  const re = new Float64Array(frequenciesHz.length)
+  const im = new Float64Array(frequenciesHz.length)
+  frequencyResponseInto(filter, frequenciesHz, re, im)
+  return { re, im }
+}
+
+const DECIBELS_PER_OCTAVE = 20 * Math.log10(2)
+
+/**
+ * 20·lg|H| in dB, written into the caller's array.
+ * @see magnitudeDb
+ */
+export function magnitudeDbInto(filter: AnyFilter, frequenciesHz: ArrayLike<number>, out: Float64Array): void {
+  const count = frequenciesHz.length
+  checkRoom('out', out.length, count)
+  const factors = factorsOf(filter)
+  const imaginary = new Float64Array(count)
+  rootsInto(factors, frequenciesHz, out, imaginary)
+  for (let n = 0; n < count; n++) {
+    const re = out[n]!
+    const im = imaginary[n]!
+    const power = re * re + im * im
+    if (power > 1e-280 && power < 1e280) {
+      out[n] = 10 * Math.log10(power)
+    } else {
+      // Out of a double's range as a power, not as a level.
+      const value = evaluateScaled(factors, frequenciesHz[n]!)
+      out[n] = 20 * Math.log10(Math.hypot(value.re, value.im)) + DECIBELS_PER_OCTAVE * value.exponent
+    }
+  }
+}
+
+/**
+ * Magnitude in dB (20·lg|H|), also where |H| itself is too small for a double; −Infinity at an exact zero, never NaN.
+ * @param frequenciesHz N frequencies in Hz
+ * @returns N levels in dB
+ * @throws DesignError as {@link frequencyResponse}
+ */
+export function magnitudeDb(filter: AnyFilter, frequenciesHz: ArrayLike<number>): Float64Array {
+  const out = new Float64Array(frequenciesHz.length)
+  magnitudeDbInto(filter, frequenciesHz, out)
+  return out
+}
+
+/**
+ * Magnitude in dB that running the filter forward and backward has: |H|², so twice the level, and no phase. Its −3 dB point is where
+ * the filter itself is at −1.5 dB. Offline only.
+ * @returns N levels in dB
+ */
+export function zeroPhaseMagnitudeDb(filter: AnyFilter, frequenciesHz: ArrayLike<number>): Float64Array {
+  const out = magnitudeDb(filter, frequenciesHz)
+  for (let n = 0; n < out.length; n++) out[n] = 2 * out[n]!
+  return out
+}
