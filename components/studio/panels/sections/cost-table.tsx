@@ -1,0 +1,32 @@
+import type { NamedCost } from './structures'
+
+/** Work and memory a sample takes in each structure. */
+export function CostTable({ costs }: { costs: readonly NamedCost[] }) {
+  return (
+    <table className="text-[13px]">
+      <caption className="sr-only">Cost of a sample in each structure</caption>
+      <thead>
+        <tr className="border-b border-graph-strong text-pencil [&>th]:py-1 [&>th]:pl-5 [&>th]:text-right [&>th]:font-normal">
+          <th scope="col" className="[&]:pl-0 [&]:text-left">
+            Each sample
+          </th>
+          <th scope="col">multiplies</th>
+          <th scope="col">adds</th>
+          <th scope="col">state words</th>
+        </tr>
+      </thead>
+      <tbody>
+        {costs.map(({ name, cost }) => (
+          <tr key={name} className="border-b border-graph [&>td]:py-1 [&>td]:pl-5 [&>td]:text-right">
+            <th scope="row" className="py-1 text-left font-normal">
+              {name}
+            </th>
+            <td className="numeric">{cost.multiplies}</td>
+            <td className="numeric">{cost.adds}</td>
+            <td className="numeric">{cost.stateWords}</td>
+          </tr>
+        ))}
+      </tbody>
+    </table>
+  )
+}
