@@ -1,7 +1,7 @@
 import { DesignError, designFromSpec } from '@/dsp'
 import { coefficientsOf, filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'
-import { coefficientSet, exportFile, ratioRefusal, type ExportFile, type ExportOptions } from '@/lib/exports'
+import { coefficientSet, ratioRefusal, writtenFile, type ExportFile, type ExportOptions } from '@/lib/exports'
 import { roundingWords } from '@/lib/exports/about'
 import { differenceEquation, typesetEquation } from '@/lib/exports/equation'
 import { checkIdentifier } from '@/lib/exports/names'
@@ -29,14 +29,14 @@ export function previewOf(
 ): Preview {
   return attempt(() => {
     if (options.name !== undefined) checkIdentifier(options.name)
-    const source = { design, version, kept: numbers }
-    const file = exportFile(source, options)
+    const set = coefficientSet({ design, version, kept: numbers }, options)
+    const file = writtenFile(set)
     const lines = file.text.split(/\r?\n/)
     return {
       file,
       firstLines: lines.slice(0, shownLines).join('\n'),
       restLines: Math.max(0, lines.length - shownLines),
-      rounding: roundingWords(coefficientSet(source, options)),
+      rounding: roundingWords(set),
     }
   })
 }

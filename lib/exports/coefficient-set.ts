@@ -1,4 +1,12 @@
-import { DesignError, steadyState, toTransferFunction, type DesignSpec, type DigitalFilter, type Section } from '@/dsp'
+import {
+  DesignError,
+  steadyState,
+  toTransferFunction,
+  type DesignSpec,
+  type DigitalFilter,
+  type Section,
+  type TransferFunction,
+} from '@/dsp'
 import { statementText } from '@/lib/designs/statement'
 import { filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
@@ -142,24 +150,31 @@ export function ratioRefusal(digital: DigitalFilter, type: NumberType): DesignEr
 }
 
 function ratioNumbers(digital: DigitalFilter, type: NumberType): Run {
-  const exact = toTransferFunction(digital)
+  const exact = transferFunction(digital)
   if (!exact.stable || !(exact.worstDeviationDb <= ratioLimitDb)) throw badRatio(exact, 'double')
-  const order = Math.max(exact.b.length, exact.a.length) - 1
-  const lead = exact.a[0] ?? 1
-  const b = Array.from({ length: order + 1 }, (_, k) => roundTo(type, (exact.b[k] ?? 0) / lead))
-  const a = Array.from({ length: order }, (_, k) => roundTo(type, (exact.a[k + 1] ?? 0) / lead))
-  const effect = type === 'double' ? exact : effectOfRatio(digital, b, a)
+  const b = Array.from(exact.b, (value) => roundTo(type, value))
+  const a = Array.from(exact.a.subarray(1), (value) => roundTo(type, value))
+  const effect = effectOfRatio(digital, b, a)
   if (!effect.stable || !(effect.worstDeviationDb <= ratioLimitDb)) throw badRatio(effect, type)
-  if (b.some((value, k) => isLost((exact.b[k] ?? 0) / lead, value)))
+  if (b.some((value, k) => isLost(exact.b[k] ?? 0, value)))
     throw new DesignError(
-      'single-underflow',
+      'ratio-underflow',
       'structure',
-      'As b/a, a coefficient of this filter is smaller than single precision holds with all its digits; hand over the sections, whose gain is shared out.',
+      'As b/a, a coefficient of this filter is smaller than single precision holds with all its digits; hand over the sections, over which the gain is shared.',
       'sections',
     )
   const steady = steadyRatioState(b, a).map((value) => roundTo(type, value))
-  const { worstDeviationDb, stable } = effect
-  return { numbers: { structure: 'ratio', b, a, steadyState: steady }, effect: { worstDeviationDb, stable } }
+  return { numbers: { structure: 'ratio', b, a, steadyState: steady }, effect }
+}
+
+function transferFunction(digital: DigitalFilter): TransferFunction {
+  try {
+    return toTransferFunction(digital)
+  } catch (error) {
+    if (!(error instanceof DesignError)) throw error
+    // Whatever is wrong with the polynomials, it is the structure that has to change.
+    throw new DesignError(error.code, 'structure', error.message, 'sections')
+  }
 }
 
 function badRatio({ worstDeviationDb, stable }: RoundingEffect, type: NumberType): DesignError {

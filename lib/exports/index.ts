@@ -1,4 +1,4 @@
-import { coefficientSet, type ExportSource } from './coefficient-set'
+import { coefficientSet, type CoefficientSet, type ExportSource } from './coefficient-set'
 import { cHeaderFile } from './c-header'
 import { csvFile } from './csv'
 import { jsonFile } from './json'
@@ -33,8 +33,11 @@ export interface ExportFile {
  * A version's coefficients as a file: the same source and options give the same bytes, on the server and in the browser.
  * @throws DesignError as coefficientSet: what was asked for can't hold the filter
  */
-export function exportFile(source: ExportSource, options: ExportOptions): ExportFile {
-  const set = coefficientSet(source, options)
-  const { extension, mediaType, write } = writers[options.format]
+export const exportFile = (source: ExportSource, options: ExportOptions): ExportFile =>
+  writtenFile(coefficientSet(source, options))
+
+/** The file of a set that is already there. */
+export function writtenFile(set: CoefficientSet): ExportFile {
+  const { extension, mediaType, write } = writers[set.options.format]
   return { fileName: `${set.name}.${extension}`, mediaType, text: write(set) }
 }

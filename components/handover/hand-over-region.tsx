@@ -1,0 +1,20 @@
+'use client'
+
+import { useCallback } from 'react'
+import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
+import { exportQuery, type ExportOptions } from '@/lib/exports'
+import { HandOver } from './hand-over'
+
+/** The hand-over panel as a part of a page that the server renders, which can't pass functions. */
+export function HandOverRegion({
+  design,
+  version,
+  exportPath,
+}: {
+  design: DesignRecord
+  version: VersionSummary
+  exportPath: string
+}) {
+  const exportHref = useCallback((options: ExportOptions) => `${exportPath}?${exportQuery(options)}`, [exportPath])
+  return <HandOver design={design} version={version} exportHref={exportHref} />
+}

@@ -1,0 +1,99 @@
+import Link from 'next/link'
+import { TitleBlock } from '@/components/ui/title-block'
+import { statementText } from '@/lib/designs/statement'
+import type { StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
+import { stateWords } from '@/lib/exports/about'
+import { formatHz, formatInstant } from '@/lib/format/quantity'
+import { CoefficientsTable } from './coefficients-table'
+import { HandOverRegion } from './hand-over-region'
+
+/** A saved version to read and to hand over; nothing on it can be changed. */
+export function VersionSheet({
+  design,
+  version,
+  kept,
+  numbers,
+  mayExport,
+}: {
+  design: DesignRecord
+  version: VersionSummary
+  kept: StoredCoefficients
+  /** Of all versions of the design, newest first. */
+  numbers: readonly number[]
+  mayExport: boolean
+}) {
+  const path = `/designs/${design.id}/versions`
+  return (
+    <main className="mx-auto flex max-w-[1680px] flex-col gap-6 px-4 pt-5 pb-10 sm:px-6">
+      <div>
+        <h1 className="text-[22px] leading-snug sm:text-[26px]">{statementText(version.spec)}</h1>
+        <p className="mt-1 text-[14px] text-pencil wrap-anywhere">
+          Version {version.number}: {version.note}
+        </p>
+        {numbers.length > 1 ? (
+          <nav aria-label="Versions of this design" className="mt-2">
+            <ul className="flex flex-wrap gap-1 text-[13px]">
+              {numbers.map((number) => (
+                <li key={number}>
+                  <Link
+                    href={`${path}/${number}`}
+                    aria-label={`Version ${number}`}
+                    aria-current={number === version.number ? 'page' : undefined}
+                    className="numeric flex min-h-6 min-w-6 items-center justify-center border border-graph-strong px-1.5 hover:border-ink aria-[current=page]:border-ink aria-[current=page]:bg-spruce-wash aria-[current=page]:font-semibold"
+                  >
+                    {number}
+                  </Link>
+                </li>
+              ))}
+            </ul>
+          </nav>
+        ) : null}
+      </div>
+
+      <section aria-labelledby="coefficients-heading" className="min-w-0">
+        <h2 id="coefficients-heading" className="text-[19px]">
+          Coefficients as they were kept
+        </h2>
+        <p className="mt-0.5 mb-2 text-[13px] text-pencil">
+          Sections in the order they run, in double precision; feedback terms are subtracted: y[n] = b₀·x[n] + b₁·x[n−1]
+          + b₂·x[n−2] − a₁·y[n−1] − a₂·y[n−2]. Run at {formatHz(kept.sampleRateHz, 6)}.
+        </p>
+        <CoefficientsTable kept={kept} />
+      </section>
+
+      {mayExport ? (
+        <HandOverRegion design={design} version={version} exportPath={`/api${path}/${version.number}/export`} />
+      ) : (
+        <section aria-labelledby="checksum-heading">
+          <h2 id="checksum-heading" className="text-[19px]">
+            Hand-over
+          </h2>
+          <p className="mt-1 max-w-prose text-[14px] text-pencil">
+            As an observer you read this version; an owner, designer, reviewer or integrator of the team hands its
+            coefficients over. Their SHA-256 is{' '}
+            <span className="numeric wrap-anywhere text-ink">{version.checksum}</span>.
+          </p>
+        </section>
+      )}
+
+      <div className="w-full max-w-lg self-end">
+        <TitleBlock
+          label="Title block"
+          cells={[
+            { label: 'Drawing', value: design.drawingNumber, span: 3 },
+            { label: 'Version', value: String(version.number), span: 3 },
+            { label: 'Drawn', value: `${version.savedBy}, ${formatInstant(version.savedAt)}`, span: 6 },
+            {
+              label: 'State',
+              value: stateWords[version.state],
+              tone: version.state === 'released' ? 'met' : 'caution',
+            },
+            { label: 'Engine', value: version.engineVersion },
+            { label: 'Coefficients', value: `${version.checksum.slice(0, 4)}…${version.checksum.slice(-4)}` },
+          ]}
+        />
+      </div>
+    </main>
+  )
+}

@@ -1,0 +1,214 @@
+import fc from 'fast-check'
+import { beforeAll, describe, expect, it } from 'vitest'
+import { DesignError, frequencyResponse, runFilter } from '@/dsp'
+import { filtersOf } from '@/lib/designs/coefficients'
+import {
+  coefficientSet,
+  exportFile,
+  writtenFile,
+  type CoefficientSet,
+  type ExportOptions,
+  type ExportSource,
+} from '@/lib/exports'
+import { compileAndRun, doubleFromBits } from '../helpers/c-program'
+import { anySpec, everyKind, lowPass, makesFilter, sourceOf } from '../helpers/export-sources'
+
+/*
+ * The headers are compiled with cc, all of them in one program, and run on their test vectors: once whole, once in two blocks and in
+ * place, and once settled on a constant. What comes out is compared bit for bit with the output that the file states.
+ */
+
+interface Case {
+  readonly name: string
+  readonly source: ExportSource
+  readonly options: ExportOptions
+  readonly set: CoefficientSet
+  readonly header: string
+}
+
+const combinations: readonly Omit<ExportOptions, 'name' | 'format'>[] = [
+  { structure: 'sections', number: 'double', feedback: 'subtract', literals: 'decimal' },
+  { structure: 'sections', number: 'double', feedback: 'add', literals: 'hexadecimal' },
+  { structure: 'sections', number: 'float', feedback: 'subtract', literals: 'decimal' },
+  { structure: 'sections', number: 'float', feedback: 'add', literals: 'hexadecimal' },
+  { structure: 'ratio', number: 'double', feedback: 'subtract', literals: 'hexadecimal' },
+  { structure: 'ratio', number: 'double', feedback: 'add', literals: 'decimal' },
+  { structure: 'ratio', number: 'float', feedback: 'subtract', literals: 'decimal' },
+  { structure: 'ratio', number: 'float', feedback: 'add', literals: 'decimal' },
+]
+
+const nasty = '*/ #error "ended" \n/* ??/\n\\ \u202E 床 %d " \' ??> //'
+
+/** Each source takes its turn with the combinations; what is refused is left out, and counted. */
+function casesOf(sources: readonly ExportSource[]): { cases: Case[]; refused: number } {
+  const cases: Case[] = []
+  let refused = 0
+  sources.forEach((source, k) => {
+    const combination = combinations[k % combinations.length] ?? fail()
+    const name = `f${cases.length}_x`
+    const options: ExportOptions = { format: 'c', name, ...combination }
+    try {
+      const set = coefficientSet(source, options)
+      cases.push({ name, source, options, set, header: writtenFile(set).text })
+    } catch (error) {
+      if (!(error instanceof DesignError)) throw error
+      refused++
+    }
+  })
+  return { cases, refused }
+}
+
+/** Prints for each header: the largest difference, then the bits of every output sample of the three runs. */
+function mainFor(cases: readonly Case[]): string {
+  const include = ({ name }: Case) => `#define ${name.toUpperCase()}_SELF_TEST\n#include "${name}.h"`
+  const run = ({ name, options }: Case, index: number) => {
+    const type = options.number
+    const length = `${name.toUpperCase()}_TEST_LENGTH`
+    return `static void run_${index}(void) {
+  ${name}_state state;
+  ${type} block[${length}];
+  size_t i;
+  show(${name}_self_test());
+  ${name}_reset(&state);
+  for (i = 0; i < ${length}; i++) block[i] = ${name}_test_input[i];
+  ${name}_process(&state, block, block, 7);
+  ${name}_process(&state, block + 7, block + 7, ${length} - 7);
+  for (i = 0; i < ${length}; i++) show(block[i]);
+  ${name}_settle(&state, 1);
+  for (i = 0; i < ${length}; i++) block[i] = 1;
+  ${name}_process(&state, block, block, ${length});
+  for (i = 0; i < ${length}; i++) show(block[i]);
+  puts("");
+}`
+  }
+  return `#include <stdio.h>
+#include <string.h>
+${cases.map(include).join('\n')}
+static void show(double value) {
+  unsigned char bytes[sizeof value];
+  const unsigned int one = 1;
+  size_t k;
+  memcpy(bytes, &value, sizeof value);
+  for (k = 0; k < sizeof value; k++)
+    printf("%02x", bytes[*(const unsigned char *)&one ? sizeof value - 1 - k : k]);
+  putchar(' ');
+}
+${cases.map(run).join('\n')}
+int main(void) {
+${cases.map((_, index) => `  run_${index}();`).join('\n')}
+  return 0;
+}
+`
+}
+
+interface Ran {
+  readonly worst: number
+  readonly output: readonly number[]
+  readonly settled: readonly number[]
+}
+
+function runAll(cases: readonly Case[], optimise: '-O0' | '-O1'): Ran[] {
+  const headers = new Map(cases.map(({ name, header }) => [`${name}.h`, header]))
+  return compileAndRun(headers, mainFor(cases), optimise).map((line) => {
+    const numbers = line.trim().split(' ').map(doubleFromBits)
+    return { worst: numbers[0] ?? Number.NaN, output: numbers.slice(1, 65), settled: numbers.slice(65) }
+  })
+}
+
+describe('C headers of every family, response and method', () => {
+  const { cases, refused } = casesOf(everyKind([1, 2, 5]).map((spec) => sourceOf(spec, { title: nasty, note: nasty })))
+  let ran: readonly Ran[] = []
+  beforeAll(() => {
+    ran = runAll(cases, '-O1')
+  }, 120_000)
+
+  it('covers both structures, types, signs and literals', () => {
+    expect(cases.length).toBeGreaterThan(250)
+    expect(refused).toBeLessThan(cases.length / 10)
+    for (const combination of combinations)
+      expect(cases.filter(({ options }) => matches(options, combination)).length).toBeGreaterThan(20)
+  })
+
+  it('agrees with the test vector to the last bit', () => {
+    expect(ran).toHaveLength(cases.length)
+    ran.forEach(({ worst, output }, k) => {
+      const { set, source, options } = cases[k] ?? fail()
+      const about = `${set.statement} ${JSON.stringify(options)}`
+      expect(worst, about).toBe(0)
+      expect(output.map(plain), about).toEqual(set.testVector.output)
+      expect(source.version.spec.sampleRateHz).toBe(1200)
+    })
+  })
+
+  it('starts settled on a constant', () => {
+    ran.forEach(({ settled }, k) => {
+      const { set, source, options } = cases[k] ?? fail()
+      const level = frequencyResponse(filtersOf(source.kept).digital, [0]).re[0] ?? Number.NaN
+      // The states are rounded to the type, and the sum of the denominator has lost digits at low corners, more of them in one ratio.
+      const give = options.number === 'float' ? 2e-4 : options.structure === 'ratio' ? 1e-7 : 1e-10
+      for (const value of settled)
+        expect(Math.abs(value - level), `${set.statement} ${JSON.stringify(options)}`).toBeLessThan(give)
+    })
+  })
+})
+
+describe('C headers of random designs', () => {
+  const specs = fc.sample(anySpec, { seed: 4021, numRuns: 110 }).filter(makesFilter)
+  const { cases } = casesOf(specs.map((spec) => sourceOf(spec)))
+
+  it('agree with their test vectors to the last bit, unoptimised as well', () => {
+    expect(cases.length).toBeGreaterThan(60)
+    runAll(cases, '-O0').forEach(({ worst, output }, k) => {
+      const { set, options } = cases[k] ?? fail()
+      expect(worst, `${set.statement} ${JSON.stringify(options)}`).toBe(0)
+      expect(output.map(plain)).toEqual(set.testVector.output)
+    })
+  })
+})
+
+describe('the stated output', () => {
+  it('is that of runFilter, bit for bit, for sections in double precision', () => {
+    for (const spec of everyKind([1, 6])) {
+      const source = sourceOf(spec)
+      for (const feedback of ['subtract', 'add'] as const) {
+        const { testVector } = coefficientSet(source, { ...(combinations[0] ?? fail()), format: 'c', feedback })
+        const output = runFilter(filtersOf(source.kept).digital.sections, Float64Array.from(testVector.input), {
+          mode: 'causal',
+        })
+        expect(Array.from(output, plain)).toEqual(testVector.output)
+      }
+    }
+  })
+
+  it('differs between the types by single precision only, and between structures by rounding only', () => {
+    const source = sourceOf(lowPass())
+    const vectorOf = (change: Partial<ExportOptions>) =>
+      coefficientSet(source, { ...(combinations[0] ?? fail()), format: 'c', ...change }).testVector.output
+    const exact = vectorOf({})
+    const distance = (other: readonly number[]) =>
+      Math.max(...other.map((value, n) => Math.abs(value - (exact[n] ?? 0))))
+    expect(distance(vectorOf({ number: 'float' }))).toBeGreaterThan(0)
+    expect(distance(vectorOf({ number: 'float' }))).toBeLessThan(1e-6)
+    expect(distance(vectorOf({ structure: 'ratio' }))).toBeLessThan(1e-13)
+  })
+})
+
+describe('a header', () => {
+  it('is silent and small in a file that uses nothing of it, and can be included twice', () => {
+    const source = sourceOf(lowPass(), { title: nasty })
+    const header = exportFile(source, { ...(combinations[0] ?? fail()), format: 'c', name: 'twice' }).text
+    const main =
+      '#include "twice.h"\n#include "twice.h"\n#include <stdio.h>\nint main(void) { puts(TWICE_SHA256); return 0; }\n'
+    expect(compileAndRun(new Map([['twice.h', header]]), main, '-O0')).toEqual([source.version.checksum])
+  })
+})
+
+const matches = (options: ExportOptions, wanted: Partial<ExportOptions>) =>
+  options.structure === wanted.structure && options.number === wanted.number && options.feedback === wanted.feedback
+
+/** 0 for −0, which C's arithmetic also makes and which compares equal there. */
+const plain = (value: number) => value + 0
+
+function fail(): never {
+  throw new Error('There is no such case.')
+}
