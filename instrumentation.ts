@@ -1,27 +1,18 @@
 import type { Instrumentation } from 'next'
 
-/** Once for each server process, before its first request: an environment that can't be used ends it here, with one sentence. */
+// The framework compiles this file for a second runtime as well, which has neither processes nor our log; only this form of the condition
+// keeps the imports out of there.
+
 export async function register(): Promise<void> {
-  if (process.env.NEXT_RUNTIME !== 'nodejs') return
-  const { env, EnvironmentError } = await import('@/lib/env')
-  try {
-    env()
-  } catch (error) {
-    if (!(error instanceof EnvironmentError)) throw error
-    process.stderr.write(`${error.message}\n`)
-    process.exit(1)
+  if (process.env.NEXT_RUNTIME === 'nodejs') {
+    const { demandEnvironment } = await import('@/lib/server-life')
+    demandEnvironment()
   }
 }
 
-/** Every error that reached the framework, with the digest that the person was shown in its place. */
-export const onRequestError: Instrumentation.onRequestError = async (error, request, context) => {
-  if (process.env.NEXT_RUNTIME !== 'nodejs') return
-  const { log } = await import('@/lib/log')
-  const digest = error instanceof Error && 'digest' in error ? String(error.digest) : undefined
-  // The query is left out: reset links carry their token there.
-  const [path] = request.path.split('?', 1)
-  log().error(
-    { err: error, digest, method: request.method, path, route: context.routePath, kind: context.routeType },
-    'request failed',
-  )
+export const onRequestError: Instrumentation.onRequestError = async (...details) => {
+  if (process.env.NEXT_RUNTIME === 'nodejs') {
+    const { logRequestError } = await import('@/lib/server-life')
+    await logRequestError(...details)
+  }
 }

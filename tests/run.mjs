@@ -77,7 +77,7 @@ async function everything() {
   }
   const browser = await runVitest({
     args: ['--config', 'tests/browser/vitest.config.ts'],
-    env: { BASE_URL: server.origin, MAILBOX_DIR: server.mailbox, CHROMIUM_PATH: chromium },
+    env: { TEST_BASE_URL: server.origin, MAILBOX_DIR: server.mailbox, CHROMIUM_PATH: chromium },
     report: join(scratch, 'browser.json'),
     timeoutSeconds: 2400,
   })

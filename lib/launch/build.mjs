@@ -91,6 +91,10 @@ export async function build({ dist, hash, logFile }) {
   })
   writeFileSync(logFile, built.output, { mode: 0o600 })
   if (built.code === 0) return writeBuildStamp(hash, dist)
-  const reason = troubleInOutput(built.output, join(root, dist)) ?? `The build failed; what it said is in ${logFile}.`
+  // The first line after the summary that names a mistake, such as "Module not found: Can't resolve 'x'".
+  const mistake = /^(?:Error: (?!Turbopack build failed)|Module not found: |Type error: ).*$/m.exec(built.output)?.[0]
+  const reason =
+    troubleInOutput(built.output, join(root, dist)) ??
+    `The build failed${mistake ? ` (${mistake})` : ''}; what it said is in ${logFile}.`
   throw new Trouble(reason, new Error(built.output.slice(-6000)))
 }

@@ -11,10 +11,10 @@ declare module 'vitest' {
   }
 }
 
-/** The server that the browser tests meet: BASE_URL's, which the test run has started, else one for this run alone. */
+/** The server that the browser tests meet: TEST_BASE_URL’s, which the test run has started, else one for this run alone. */
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
   project.provide('chromium', await demandChromium())
-  const { BASE_URL: given, MAILBOX_DIR: mailbox = '', POLEWRIGHT_DIST: dist = '.next-test' } = process.env
+  const { TEST_BASE_URL: given, MAILBOX_DIR: mailbox = '', POLEWRIGHT_DIST: dist = '.next-test' } = process.env
   if (given) {
     project.provide('baseUrl', given)
     project.provide('mailbox', mailbox)
