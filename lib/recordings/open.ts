@@ -52,6 +52,7 @@ export async function openWav(file: Blob, name: string): Promise<Recording> {
     flawCount: 0,
     timing: statedTiming(layout.sampleRateHz, 'header'),
     rowOf: () => undefined,
+    release: () => undefined, // the file is the store
   }
 }
 

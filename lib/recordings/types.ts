@@ -28,12 +28,6 @@ export interface Flaw {
   readonly reason: string
 }
 
-/** A run of samples without a number: frames from ≤ i < to. */
-export interface Gap {
-  readonly from: number
-  readonly to: number
-}
-
 export interface Timing {
   readonly sampleRateHz: number
   /** Where the rate comes from. 'mean step': time stamps are even up to their own rounding, so the mean is the better figure. */
@@ -71,6 +65,8 @@ export interface Recording {
   readonly times?: FrameSource
   /** Line of the file a frame came from; tables only. */
   rowOf(frame: number): number | undefined
+  /** Gives back the memory that its samples take. */
+  release(): void
 }
 
 /** How a long task tells how far it is, and hears that it should stop. */

@@ -26,6 +26,10 @@ export async function readTable(
   checkPlan(plan)
   const channelStores = plan.channels.map(() => new SampleStore(budget))
   const timeStore = plan.time ? new SampleStore(budget) : null
+  const release = () => {
+    for (const store of channelStores) store.clear()
+    timeStore?.clear()
+  }
   const toSeconds = secondsFrom(plan)
   const scanner = new TableScanner(plan, (columns) => {
     columns.forEach((column, slot) => channelStores[slot]?.append(column))
@@ -59,10 +63,10 @@ export async function readTable(
       timing,
       ...(times ? { times } : {}),
       rowOf,
+      release,
     }
   } catch (cause) {
-    for (const store of channelStores) store.clear()
-    timeStore?.clear()
+    release()
     throw cause
   }
 }

@@ -23,10 +23,11 @@ export async function resampleEvenly(
   if (!times)
     throw new RecordingError('no-resampling', 'Resampling needs a time column; this recording has a stated rate.')
   const stores = recording.channels.map(() => new SampleStore(budget))
+  const release = () => stores.forEach((store) => store.clear())
   try {
     await interpolate(recording, times, source, stores, control)
   } catch (cause) {
-    for (const store of stores) store.clear()
+    release()
     throw cause
   }
   const even = storesAsSource(stores)
@@ -42,6 +43,7 @@ export async function resampleEvenly(
     flawCount: 0,
     timing: statedTiming(timing.sampleRateHz, 'stated'),
     rowOf: () => undefined,
+    release,
   }
 }
 

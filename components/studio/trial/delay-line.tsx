@@ -1,0 +1,67 @@
+import { formatDb, formatHz } from '@/lib/format/quantity'
+import type { EdgeLevel, RunSummary } from './shapes'
+import type { TrialState } from './store'
+import { formatCount, formatDelay } from './words'
+
+const PREDICTED = 'Where the cross-correlation should peak: the spectrum of what went in, times the design’s response.'
+const MEASURED = 'Where the cross-correlation of before and after peaks.'
+
+/** Measured against predicted delay, and what running forward and backward means. */
+export function DelayLine({ state }: { state: TrialState }) {
+  const { delay, run, settings } = state
+  if (!run) return null
+  const isRun = run.request.channels.includes(settings.shown)
+  return (
+    <div className="flex flex-col gap-1 text-[14px]">
+      <div aria-live="polite" className="flex flex-wrap gap-x-6 gap-y-1">
+        {!isRun ? <span className="text-pencil">This channel was not run.</span> : null}
+        {isRun && delay && delay.measuredSeconds === null ? (
+          <span className="text-pencil">No delay can be measured: before or after never changes.</span>
+        ) : null}
+        {isRun && delay && delay.measuredSeconds !== null && delay.predictedSeconds !== null ? (
+          <>
+            <Figure label="Delay measured" value={formatDelay(delay.measuredSeconds)} title={MEASURED} />
+            <Figure label="predicted" value={formatDelay(delay.predictedSeconds)} title={PREDICTED} />
+            <Figure label="difference" value={formatDelay(delay.measuredSeconds - delay.predictedSeconds)} />
+          </>
+        ) : null}
+        {run.request.mode === 'causal' ? (
+          <Figure
+            label="Start-up"
+            value={formatDelay(run.settlingFrames / run.request.spec.sampleRateHz)}
+            title="Until the response to a step stays within 1 % of its largest value."
+          />
+        ) : null}
+      </div>
+      {isRun && delay && delay.measuredSeconds !== null ? (
+        <p className="text-[12px] text-pencil">
+          Measured: the peak of the cross-correlation over {formatCount(delay.frames, 'sample', 'samples')}. Predicted:
+          the peak that the input’s spectrum times the
+          {run.request.mode === 'causal' ? ' design’s response' : ' squared magnitude'} should give
+          {run.request.mode === 'causal' ? '' : ', which is 0'}.
+        </p>
+      ) : null}
+      {run.request.mode === 'zero-phase' ? <ZeroPhaseNote run={run} /> : null}
+    </div>
+  )
+}
+
+function ZeroPhaseNote({ run }: { run: RunSummary }) {
+  return (
+    <p className="border-l-2 border-ochre pl-3 text-[13px]">
+      Offline only. The magnitude acts twice, the phase not at all: {run.edges.map(edgeWords).join(', ')}. Needs at
+      least {run.leastFrames} samples; the {run.extensionFrames} at either end (hatched) rest on the extension.
+    </p>
+  )
+}
+
+const edgeWords = (edge: EdgeLevel): string =>
+  `${formatDb(edge.twiceDb)} at ${formatHz(edge.hz)} instead of ${formatDb(edge.onceDb)}`
+
+function Figure({ label, value, title }: { label: string; value: string; title?: string }) {
+  return (
+    <span title={title}>
+      {label} <span className="numeric font-medium">{value}</span>
+    </span>
+  )
+}

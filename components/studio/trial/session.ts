@@ -1,0 +1,352 @@
+import {
+  DesignError,
+  designFromSpec,
+  footbridgeDemo,
+  magnitudeDb,
+  zeroPhaseMagnitudeDb,
+  type DigitalFilter,
+} from '@/dsp'
+import { createBreath } from '@/lib/recordings/breathe'
+import { RecordingError, type RecordingProblem } from '@/lib/recordings/errors'
+import { identify, openWav } from '@/lib/recordings/open'
+import { arraysAsSource, MemoryBudget } from '@/lib/recordings/sample-store'
+import { readTable } from '@/lib/recordings/table/read'
+import { resampleEvenly } from '@/lib/recordings/table/resample'
+import { statedTiming } from '@/lib/recordings/table/timing'
+import type { FrameSource, Recording, TaskControl } from '@/lib/recordings/types'
+import type { Progress, TrialApi } from './api'
+import { readDelay } from './delays'
+import { fillGaps } from './fill-gaps'
+import { CELL, envelopeOf, Overview } from './overview'
+import { sameRate } from './rates'
+import { eachBlock, extensionOf, runOver, type RunOutput } from './run'
+import { saveResult } from './save'
+import { settlingFramesOf } from './settling'
+import type {
+  Answer,
+  EdgeLevel,
+  RunRequest,
+  RunSummary,
+  SpectrumReading,
+  SpectrumRequest,
+  WindowReading,
+  WindowRequest,
+} from './shapes'
+import { densityOf, MOST_SPECTRUM_FRAMES } from './spectrum'
+import { refuseGaps, refuseHopelessGaps, summaryOf } from './summary'
+import { TableDesk } from './table-desk'
+
+/** Samples that all stores together keep in memory; what is more the browser may page to disk. */
+const MEMORY_BYTES = 768e6
+const DEMO_SECONDS = 60
+const DEMO_FRAMES = 3_000_000
+
+interface Held {
+  readonly recording: Recording
+  readonly overviews: readonly Overview[]
+}
+
+interface Ran {
+  readonly summary: RunSummary
+  readonly filter: DigitalFilter
+  /** What went in: the recording, its gaps filled where that was asked for. */
+  readonly input: FrameSource
+  readonly output: RunOutput
+}
+
+/**
+ * The worker's side of a trial: has the recording and what came out of it, answers questions about them. One long task at a time; a
+ * new one stops the one before.
+ */
+export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
+  const budget = new MemoryBudget(memoryBytes)
+  const desk = new TableDesk(budget)
+  let serial = 0
+  let held: Held | null = null
+  let ran: Ran | null = null
+  let task: { cancelled: boolean; ended: Promise<void> } | null = null
+
+  async function exclusively<Value>(
+    progress: Progress,
+    work: (control: TaskControl) => Promise<Value>,
+  ): Promise<Answer<Value>> {
+    const before = task
+    if (before) before.cancelled = true
+    let end = (): void => undefined
+    const own = { cancelled: false, ended: new Promise<void>((resolve) => (end = resolve)) }
+    task = own
+    try {
+      await before?.ended
+      if (own.cancelled) throw new RecordingError('cancelled', 'Stopped before it began.')
+      return { ok: true, value: await work({ progress, cancelled: () => own.cancelled }) }
+    } catch (cause) {
+      return { ok: false, problem: problemOf(cause) }
+    } finally {
+      end()
+      if (task === own) task = null
+    }
+  }
+
+  function forgetRun(): void {
+    ran?.output.release()
+    ran = null
+  }
+
+  function forgetRecording(): void {
+    forgetRun()
+    held?.recording.release()
+    held = null
+  }
+
+  /** Looks through all samples once; the recording takes the place of the one before only when that went well. */
+  async function take(recording: Recording, control: TaskControl, bytesPerFrame: number) {
+    const overviews = recording.channels.map(() => new Overview())
+    const breath = createBreath(control)
+    const { frames } = recording.source
+    try {
+      await eachBlock(recording.source, [...overviews.keys()], async (blocks, start) => {
+        blocks.forEach((block, channel) => overviews[channel]!.take(block))
+        await breath((start + blocks[0]!.length) * bytesPerFrame, frames * bytesPerFrame)
+      })
+    } catch (cause) {
+      recording.release()
+      throw cause
+    }
+    forgetRecording()
+    held = { recording, overviews }
+    serial += 1
+    return summaryOf(recording, overviews, serial)
+  }
+
+  const needed = (): Held => {
+    if (!held) throw new RecordingError('unexpected', 'There is no recording. Choose one first.')
+    return held
+  }
+
+  async function run(request: RunRequest, control: TaskControl): Promise<RunSummary> {
+    const { recording, overviews } = needed()
+    if (!sameRate(request.spec.sampleRateHz, recording.sampleRateHz)) {
+      throw new RecordingError(
+        'rate-differs',
+        `The recording was taken at ${recording.sampleRateHz} Hz; the design runs at ${request.spec.sampleRateHz} Hz.`,
+      )
+    }
+    if (request.fillGaps) refuseHopelessGaps(recording, overviews, request.channels)
+    else refuseGaps(recording, overviews, request.channels)
+    const filter = designFromSpec(request.spec).digital
+    const input = request.fillGaps
+      ? fillGaps(recording.source, (channel) => overviews[channel]?.gaps ?? [])
+      : recording.source
+    const output = await runOver(input, { ...request, sections: filter.sections }, budget, control)
+    forgetRun()
+    const extension = extensionOf(filter.sections)
+    const summary: RunSummary = {
+      serial,
+      request,
+      channels: request.channels.map((channel, k) => {
+        const { min, max, rms } = output.overviews[k]!
+        return { channel, min, max, rms }
+      }),
+      settlingFrames: Math.min(recording.source.frames, settlingFramesOf(filter)),
+      extensionFrames: extension,
+      leastFrames: extension + 1,
+      edges: edgeLevels(filter, request.spec.analog.edgesHz),
+    }
+    ran = { summary, filter, input, output }
+    return summary
+  }
+
+  /** The output of a channel that was run. */
+  function outputOf(channel: number): {
+    readonly source: FrameSource
+    readonly at: number
+    readonly overview: Overview
+    readonly ran: Ran
+  } {
+    const at = ran ? ran.summary.request.channels.indexOf(channel) : -1
+    const overview = ran?.output.overviews[at]
+    if (!ran || !overview) throw new RecordingError('unexpected', 'This channel was not run.')
+    return { source: ran.output.source, at, overview, ran }
+  }
+
+  async function window({ series, channel, from, to, columns, shift }: WindowRequest): Promise<WindowReading> {
+    const { recording, overviews } = needed()
+    const output = series === 'after' ? outputOf(channel) : null
+    const source = output?.source ?? recording.source
+    const overview = output?.overview ?? overviews[channel]!
+    const first = Math.max(0, Math.min(source.frames, from + shift))
+    const last = Math.max(first, Math.min(source.frames, to + shift))
+    const span = last - first
+    // a moved series may cover less than the view; columns keep their width
+    const own = Math.max(1, Math.round((columns * span) / Math.max(1, to - from)))
+    if (span > 2 * own && span / own >= CELL)
+      return { kind: 'envelope', from: first - shift, to: last - shift, ...overview.envelope(first, last, own) }
+    const values = new Float64Array(span)
+    await source.read(first, [output?.at ?? channel], [values])
+    if (span <= 2 * own) return { kind: 'samples', from: first - shift, values }
+    return { kind: 'envelope', from: first - shift, to: last - shift, ...envelopeOf(values, own) }
+  }
+
+  async function spectrum({ channel, segmentLength, window: name }: SpectrumRequest): Promise<SpectrumReading> {
+    const { recording, overviews } = needed()
+    const output = ran?.summary.request.channels.includes(channel) ? outputOf(channel) : null
+    if (!output && overviews[channel]!.gapFrames > 0) refuseGaps(recording, overviews, [channel])
+    const { frames } = recording.source
+    const { from, to } = spectrumSpan(frames, segmentLength, output?.ran.summary ?? null)
+    const options = { sampleRateHz: recording.sampleRateHz, segmentLength, window: name }
+    const before = await densityOf(output?.ran.input ?? recording.source, channel, from, to, options)
+    const after = output ? await densityOf(output.source, output.at, from, to, options) : null
+    return {
+      channel,
+      segmentLength,
+      window: name,
+      segments: before.segments,
+      from,
+      frames: to - from,
+      frequenciesHz: before.frequenciesHz,
+      before: before.density,
+      after: after?.density ?? null,
+    }
+  }
+
+  return {
+    open: (file, name, progress) =>
+      exclusively(progress, async (control) => {
+        if ((await identify(file)) === 'table') {
+          const preview = await desk.lay(file, name)
+          forgetRecording()
+          return { kind: 'table', preview }
+        }
+        const recording = await openWav(file, name)
+        return { kind: 'recording', summary: await take(recording, control, file.size / recording.source.frames) }
+      }),
+    openDemo: (sampleRateHz, progress) =>
+      exclusively(progress, (control) => {
+        const demo = footbridgeDemo({
+          sampleRateHz,
+          durationSeconds: Math.min(DEMO_SECONDS, DEMO_FRAMES / sampleRateHz),
+        })
+        return take(demoRecording(demo), control, 1)
+      }),
+    changePlan: (change) =>
+      exclusively(
+        () => undefined,
+        () => desk.change(change),
+      ),
+    readTable: (progress) =>
+      exclusively(progress, async (control) => {
+        const { file, name, plan } = desk.settled()
+        const recording = await readTable(file, name, plan, budget, control)
+        return take(recording, { ...control, progress: () => undefined }, 1)
+      }),
+    resample: (progress) =>
+      exclusively(progress, async (control) =>
+        take(await resampleEvenly(needed().recording, budget, control), { ...control, progress: () => undefined }, 1),
+      ),
+    run: (request, progress) => exclusively(progress, (control) => run(request, control)),
+    window: (request) => answered(() => window(request)),
+    delay: (channel) =>
+      answered(() => {
+        const { source, at, ran: done } = outputOf(channel)
+        return readDelay(done.input, channel, source, at, {
+          filter: done.filter,
+          mode: done.summary.request.mode,
+          settlingFrames: done.summary.settlingFrames,
+        })
+      }),
+    spectrum: (request) => answered(() => spectrum(request)),
+    save: (request, progress) =>
+      exclusively(progress, (control) => {
+        const { recording, overviews } = needed()
+        if (!ran) throw new RecordingError('cannot-save', 'Nothing has been run yet.')
+        const { output, summary } = ran
+        const { channels } = summary.request
+        const written = overviews.map((overview, channel) => output.overviews[channels.indexOf(channel)] ?? overview)
+        return saveResult(
+          {
+            name: recording.name,
+            sampleRateHz: recording.sampleRateHz,
+            channels: recording.channels,
+            before: recording.source,
+            after: output.source,
+            run: channels,
+            least: Math.min(...written.map((overview) => overview.min)),
+            greatest: Math.max(...written.map((overview) => overview.max)),
+            missing: written.reduce((sum, overview) => sum + overview.gapFrames, 0),
+          },
+          request,
+          control,
+        )
+      }),
+    async cancel() {
+      if (task) task.cancelled = true
+    },
+    async close() {
+      if (task) task.cancelled = true
+      await task?.ended
+      forgetRecording()
+      desk.clear()
+    },
+  }
+}
+
+function edgeLevels(filter: DigitalFilter, edgesHz: readonly number[]): EdgeLevel[] {
+  const once = magnitudeDb(filter, edgesHz)
+  const twice = zeroPhaseMagnitudeDb(filter, edgesHz)
+  return edgesHz.map((hz, k) => ({ hz, onceDb: once[k]!, twiceDb: twice[k]! }))
+}
+
+/** Both spectra leave out the same start-up and ends, where the record is long enough for that. */
+function spectrumSpan(frames: number, segmentLength: number, run: RunSummary | null): { from: number; to: number } {
+  const causal = run?.request.mode === 'causal'
+  const head = run ? (causal ? run.settlingFrames : run.extensionFrames) : 0
+  const tail = run && !causal ? run.extensionFrames : 0
+  const trimmed = frames - head - tail >= 4 * segmentLength
+  const from = trimmed ? head : 0
+  const to = Math.min(trimmed ? frames - tail : frames, from + MOST_SPECTRUM_FRAMES)
+  if (to - from < segmentLength) {
+    throw new RecordingError(
+      'too-short',
+      `The recording has ${frames} samples, fewer than one segment of ${segmentLength}. Choose shorter segments.`,
+    )
+  }
+  return { from, to }
+}
+
+const demoRecording = (demo: ReturnType<typeof footbridgeDemo>): Recording => ({
+  kind: 'demo',
+  name: demo.title,
+  sampleRateHz: demo.sampleRateHz,
+  channels: [{ name: 'acceleration', unit: demo.unit }],
+  source: arraysAsSource([demo.samples]),
+  storage: 'made up for trying filters on',
+  notes: [],
+  flaws: [],
+  flawCount: 0,
+  timing: statedTiming(demo.sampleRateHz, 'stated'),
+  rowOf: () => undefined,
+  release: () => undefined,
+})
+
+async function answered<Value>(ask: () => Promise<Value>): Promise<Answer<Value>> {
+  try {
+    return { ok: true, value: await ask() }
+  } catch (cause) {
+    return { ok: false, problem: problemOf(cause) }
+  }
+}
+
+function problemOf(cause: unknown): RecordingProblem {
+  if (cause instanceof RecordingError) return cause.toProblem()
+  if (cause instanceof DesignError) {
+    const nearest = cause.nearest === undefined ? '' : ` The nearest value that works: ${cause.nearest}.`
+    return {
+      code: 'design-refused',
+      message: `${cause.message}${cause.message.includes(String(cause.nearest)) ? '' : nearest}`,
+    }
+  }
+  return {
+    code: 'unexpected',
+    message: `This went wrong inside: ${cause instanceof Error ? cause.message : String(cause)}`,
+  }
+}
