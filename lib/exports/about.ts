@@ -41,7 +41,7 @@ export function aboutLines(set: CoefficientSet): readonly AboutLine[] {
     { key: 'SHA-256', text: version.checksum },
     {
       key: 'checksum covers',
-      text: "the version's kept roots and sections in double precision, so it is the same in every file of it",
+      text: "the version's kept roots and sections in double precision, so it is the same in every file of it; the JSON file carries them",
     },
     { key: 'engine', text: version.engineVersion },
     { key: 'caution', text: caution },
