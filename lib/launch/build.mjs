@@ -82,8 +82,8 @@ export function writeBuildStamp(hash, dist, folder = root) {
  */
 export async function build({ dist, hash, logFile }) {
   // A development NODE_ENV would make a build that does not work; the app's own variables are of no use to a build and must not be kept in it.
-  const { DATABASE_URL, SMTP_URL, MAILBOX_DIR, NODE_OPTIONS, ...env } = process.env
-  void [DATABASE_URL, SMTP_URL, MAILBOX_DIR, NODE_OPTIONS]
+  const own = /^(DATABASE_URL|SMTP_URL|MAILBOX_DIR|APP_ORIGIN|MAIL_FROM|NODE_OPTIONS)$/
+  const env = Object.fromEntries(Object.entries(process.env).filter(([name]) => !own.test(name)))
   const built = await run(process.execPath, [nextCommand, 'build'], {
     cwd: root,
     env: { ...env, NODE_ENV: 'production', POLEWRIGHT_DIST: dist, NEXT_TELEMETRY_DISABLED: '1', NO_COLOR: '1' },
