@@ -9,18 +9,22 @@ import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { drawerTabs } from '../view'
 
-const waiting = { loading: () => <p className="py-6 text-[14px] text-pencil">Opening…</p> }
-const RatesPanel = dynamic(() => import('../panels/rates/rates-panel').then((module) => module.RatesPanel), waiting)
-const TimePanel = dynamic(() => import('../panels/time/time-panel').then((module) => module.TimePanel), waiting)
+const Opening = () => <p className="py-6 text-[14px] text-pencil">Opening…</p>
+const RatesPanel = dynamic(() => import('../panels/rates/rates-panel').then((module) => module.RatesPanel), {
+  loading: Opening,
+})
+const TimePanel = dynamic(() => import('../panels/time/time-panel').then((module) => module.TimePanel), {
+  loading: Opening,
+})
 const SectionsPanel = dynamic(
   () => import('../panels/sections/sections-panel').then((module) => module.SectionsPanel),
-  waiting,
+  { loading: Opening },
 )
 const SignalTrial = dynamic(() => import('../trial/signal-trial').then((module) => module.SignalTrial), {
-  ...waiting,
+  loading: Opening,
   ssr: false,
 })
-const History = dynamic(() => import('../panels/history').then((module) => module.History), waiting)
+const History = dynamic(() => import('../panels/history').then((module) => module.History), { loading: Opening })
 
 /** The drawer under the sheet: one panel at a time, loaded when first opened. */
 export function Drawer({
