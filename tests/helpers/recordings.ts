@@ -1,3 +1,5 @@
+import type { FrameSource } from '@/lib/recordings/types'
+
 /* Recordings for tests, made sample by sample: independent of the code that reads them. */
 
 export interface WavOptions {
@@ -103,11 +105,18 @@ export function utf16(text: string): Blob {
 }
 
 /** All samples of one channel. */
-export async function channelOf(
-  source: { frames: number; read(start: number, channels: number[], outs: Float64Array[]): Promise<void> },
-  channel: number,
-): Promise<number[]> {
+export async function samplesOf(source: FrameSource, channel: number): Promise<Float64Array> {
   const out = new Float64Array(source.frames)
   await source.read(0, [channel], [out])
-  return [...out]
+  return out
+}
+
+export const channelOf = async (source: FrameSource, channel: number): Promise<number[]> => [
+  ...(await samplesOf(source, channel)),
+]
+
+/** Index of the first sample whose bits differ, −1 when none does; quicker on long signals than a deep comparison. */
+export function firstDifference(a: Float64Array, b: Float64Array): number {
+  if (a.length !== b.length) return Math.min(a.length, b.length)
+  return a.findIndex((value, i) => !Object.is(value, b[i]))
 }
