@@ -1,6 +1,6 @@
 'use client'
 
-import { useMemo, useState } from 'react'
+import { useMemo, useRef, useState } from 'react'
 import { DesignError, type DesignSpec } from '@/dsp'
 import { Notice } from '@/components/ui/notice'
 import { changedParts } from '@/lib/designs/statement-changes'
@@ -8,7 +8,7 @@ import { formatDegrees, formatFixed, formatHz, formatSeconds } from '@/lib/forma
 import { ChoiceGroup } from '@/components/handover/choice-group'
 import { DataTable, ScrollRegion } from '../panels/chart/data-table'
 import { PlotSheet } from '../panels/chart/plot-sheet'
-import { useWidth } from '../panels/chart/use-width'
+import { useWidth } from '../stack/use-width'
 import { curvesOf, valueRows } from './curves'
 import { figureRows, sideOf, type Side } from './figures'
 import { MarkedStatement } from './marked-statement'
@@ -121,11 +121,12 @@ const units = [
 
 function Overlay({ left, right }: { left: Side; right: Side }) {
   const [unit, setUnit] = useState<DifferenceUnit>('db')
-  const [ref, width] = useWidth<HTMLDivElement>()
+  const place = useRef<HTMLDivElement>(null)
+  const width = useWidth(place)
   const curves = useMemo(() => curvesOf(left, right), [left, right])
   const folds = { left: left.spec.sampleRateHz / 2, right: right.spec.sampleRateHz / 2 }
   const scene = useMemo(
-    () => (width > 120 ? overlayScene(curves, { left: folds.left, right: folds.right }, unit, width) : null),
+    () => overlayScene(curves, { left: folds.left, right: folds.right }, unit, width),
     [curves, folds.left, folds.right, unit, width],
   )
   return (
@@ -140,11 +141,12 @@ function Overlay({ left, right }: { left: Side; right: Side }) {
         <ChoiceGroup legend="Difference in" inline choices={units} value={unit} onChange={(next) => setUnit(next)} />
       </div>
       <div
-        ref={ref}
+        ref={place}
+        className="overflow-hidden"
         role="img"
         aria-label={`Magnitude, phase and group delay of ${left.label} and ${right.label}, and their difference, over frequency; the values are in the table below`}
       >
-        {scene ? <PlotSheet scene={scene} /> : <div className="h-[586px]" />}
+        <PlotSheet scene={scene} />
       </div>
       <DataTable
         summary="Values of the plots"
