@@ -69,6 +69,7 @@ export const pages: Readonly<Record<string, ActionName>> = {
   '/team': 'project.list',
   '/designs/[designId]': 'design.read',
   '/designs/[designId]/compare': 'design.read',
+  '/designs/[designId]/versions/[number]': 'design.read',
   '/dev/mailbox': 'mailbox.read',
 }
 
@@ -76,4 +77,5 @@ export const pages: Readonly<Record<string, ActionName>> = {
 export const routes: Readonly<Record<string, Readonly<Record<string, ActionName>>>> = {
   '/api/health': { GET: 'health.read' },
   '/api/designs/[designId]/draft': { PUT: 'draft.save' },
+  '/api/designs/[designId]/versions/[number]/export': { GET: 'version.export' },
 }

@@ -5,6 +5,8 @@ import { createTestDatabase } from './database'
 const database = await createTestDatabase()
 process.env.DATABASE_URL = database.url
 process.env.APP_ORIGIN ??= 'http://127.0.0.1:3000'
+// Refusals are what many tests are about; their log lines would bury the results.
+process.env.LOG_LEVEL ??= 'silent'
 
 // The first hook registered is the last to run: the file's own hooks close their connections before.
 afterAll(() => database.drop())

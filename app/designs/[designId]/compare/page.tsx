@@ -8,6 +8,7 @@ import { findDesign } from '@/db/queries/designs'
 import { findDraft } from '@/db/queries/drafts'
 import { listVersions } from '@/db/queries/versions'
 import { requireFound } from '@/lib/auth/page-access'
+import { designRecord } from '@/lib/designs/open-design'
 import { designParamsSchema } from '@/lib/designs/schemas'
 
 export const metadata: Metadata = { title: 'Compare' }
@@ -25,10 +26,10 @@ export default async function ComparePage({ params, searchParams }: PageProps) {
   const { access, found } = await requireFound('design.read', `/designs/${designId}/compare`, (may) =>
     findDesign(may, designId),
   )
-  const { role: _, startingSpec, teamId: __, ...design } = found
+  const design = designRecord(found)
   const [versions, draft] = await Promise.all([listVersions(access, designId), findDraft(access, designId)])
   const { a, b } = await searchParams
-  const draftSpec = draft?.spec ?? (versions.length === 0 ? startingSpec : null)
+  const draftSpec = draft?.spec ?? (versions.length === 0 ? found.startingSpec : null)
   const last: Choice = draftSpec ? 'draft' : (versions[0]?.number ?? 'draft')
   const choose = (asked: string | readonly string[] | undefined, otherwise: Choice): Choice => {
     if (asked === 'draft' && draftSpec) return 'draft'

@@ -7,6 +7,7 @@ import { buttonClass } from '@/components/ui/button'
 import { findDesign } from '@/db/queries/designs'
 import { findVersion, listVersions } from '@/db/queries/versions'
 import { requireFound } from '@/lib/auth/page-access'
+import { designRecord } from '@/lib/designs/open-design'
 import { versionParamsSchema } from '@/lib/exports/params'
 import { mayDo } from '@/lib/permissions'
 
@@ -26,7 +27,7 @@ export default async function VersionPage({ params }: { params: Promise<unknown>
       return design && version ? { design, version } : null
     },
   )
-  const { role, startingSpec: _, teamId: __, ...design } = found.design
+  const design = designRecord(found.design)
   const { coefficients, ...version } = found.version
   const numbers = (await listVersions(access, designId)).map((one) => one.number)
   return (
@@ -55,7 +56,7 @@ export default async function VersionPage({ params }: { params: Promise<unknown>
         version={version}
         kept={coefficients}
         numbers={numbers}
-        mayExport={mayDo(role, 'version.export')}
+        mayExport={mayDo(found.design.role, 'version.export')}
       />
     </>
   )

@@ -14,17 +14,22 @@ export const GET = teamRoute('version.export', {
     const version = await findVersion(access, designId, number, tx)
     return design && version ? { design, version } : null
   },
-  run: ({ request, found: { design, version } }) => {
+  run: async ({ request, found: { design, version }, trail }) => {
     const options = exportOptionsFrom(new URL(request.url).searchParams)
     const file = exportFile({ design, version, kept: version.coefficients }, options)
-    return Promise.resolve(
-      new Response(file.text, {
-        headers: {
-          'content-type': file.mediaType,
-          // The name is an identifier, so that it needs no quoting rules.
-          'content-disposition': `attachment; filename="${file.fileName}"`,
-        },
-      }),
-    )
+    // Whose firmware holds which numbers is what a trail is asked years later.
+    const { number, checksum } = version
+    await trail({
+      team: design.teamId,
+      object: `design:${design.id}`,
+      details: { number, checksum, format: options.format },
+    })
+    return new Response(file.text, {
+      headers: {
+        'content-type': file.mediaType,
+        // The name is an identifier, so that it needs no quoting rules.
+        'content-disposition': `attachment; filename="${file.fileName}"`,
+      },
+    })
   },
 })
