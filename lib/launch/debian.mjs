@@ -47,19 +47,19 @@ export async function aptInstall(packages, { recommends = false } = {}) {
   const install = () =>
     whenUnlocked(['-q', ...patience, 'install', '-y', ...(recommends ? [] : ['--no-install-recommends']), ...packages])
   const fresh = listsAreEmpty()
-  if (fresh) await update()
+  let updated = fresh ? await update() : undefined
   let result = await install()
   // Old lists name package files that the mirror no longer keeps.
-  if (result.code !== 0 && !fresh) {
-    await update()
+  if (result.code !== 0 && !updated) {
+    updated = await update()
     result = await install()
   }
   if (result.code === 0) return
-  const lastError = result.output
-    .split('\n')
-    .filter((line) => line.startsWith('E:'))
-    .at(-1)
+  // Without lists an install only says that there is no such package; why there are none, the update said.
+  const failed = updated && updated.code !== 0 ? updated : result
+  const firstError = failed.output.split('\n').find((line) => line.startsWith('E:'))
+  const output = `${updated?.output ?? ''}\n${result.output}`
   const reason =
-    troubleInOutput(result.output, '/var') ?? lastError?.slice(2).trim() ?? `apt-get ended with code ${result.code}`
-  throw new Trouble(`Installing ${packages.join(', ')} failed: ${reason}`, new Error(result.output.slice(-4000)))
+    troubleInOutput(output, '/var') ?? firstError?.slice(2).trim() ?? `apt-get ended with code ${failed.code}.`
+  throw new Trouble(`Installing ${packages.join(', ')} failed: ${reason}`, new Error(output.slice(-4000)))
 }
