@@ -60,7 +60,7 @@ function checkEdges(spec: AnalogSpec): void {
   const [low, high] = edges
   if (edges.length !== count) {
     const wanted = count === 2 ? 'a band takes two edges, low and high' : 'low-pass and high-pass take one corner'
-    const nearest = count === 1 ? low : low !== undefined && low > 0 ? 2 * low : undefined
+    const nearest = count === 2 && low !== undefined && low > 0 ? 2 * low : undefined
     throw new DesignError(
       'edge-count',
       `analog.edgesHz.${count === 2 ? Math.min(edges.length, 1) : 1}`,

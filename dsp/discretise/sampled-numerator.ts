@@ -36,15 +36,28 @@ function group(poles: readonly Complex[]): { pole: Complex; count: number }[] {
 
 /**
  * Fractional bits that keep a double's worth of digits in the numerator and near its roots: twice the sum of the poles' distances from
- * z = 1 in bits (zeros of a band-pass filter gather around 1 in a circle of the corner squared), and 9 bits per pole for binomials and
- * residues.
+ * the axis in bits (residues of a narrow band cancel by about that, and zeros gather around its centre or around z = 1), and 9 bits per
+ * pole for binomials.
  */
 function bitsFor(poles: readonly Complex[]): number {
   const bits = poles.reduce(
-    (sum, pole) => sum + Math.max(0, Math.log2((2 * Math.PI) / Math.hypot(pole.re, pole.im))),
+    (sum, { re, im }) => sum + (im > 0 ? 2 : 1) * Math.max(0, Math.log2((2 * Math.PI) / -re)),
     0,
   )
-  return 256 + 9 * poles.length + Math.ceil(2 * bits)
+  return 256 + 9 * fullCount(poles) + Math.ceil(2 * bits)
+}
+
+/** gain·∏zeros/∏others, with one division. */
+function residue(
+  zeros: readonly BigComplex[],
+  others: readonly BigComplex[],
+  gain: number,
+  fx: FixedPoint,
+): BigComplex {
+  const one: BigComplex = { re: fx.one, im: 0n }
+  const above = zeros.reduce((product, factor) => fx.times(product, factor), { re: fx.fromNumber(gain), im: 0n })
+  const below = others.reduce((product, factor) => fx.times(product, factor), one)
+  return fx.times(above, fx.reciprocal(below))
 }
 
 /** Coefficients of 1/(s − p)ʲ from the series of H(p + u)·u^m, by one linear factor at a time. */
@@ -64,6 +77,7 @@ function expandAt(
     k === 0 ? { re: fx.fromNumber(form.gain), im: 0n } : ZERO,
   )
   const zeros = expand(form.zeros)
+  if (count === 1) return [residue(zeros.map(offset), others.map(offset), form.gain, fx)]
   for (let index = 0; index < Math.max(zeros.length, others.length); index += 1) {
     const zero = zeros[index]
     const other = others[index]

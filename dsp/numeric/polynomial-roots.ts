@@ -1,6 +1,6 @@
 import type { Complex } from '../forms/filter'
 import { add, complex, distance, divide, modulus, multiply, subtract } from './complex'
-import { bitLength, ratio, shortPoint, timesShort, type BigComplex } from './fixed-point'
+import { bitLength, ratio, shortPoint, timesPowerOfTwo, timesShort, type BigComplex } from './fixed-point'
 
 /*
  * Roots of a polynomial whose coefficients are long integers (one common scale, which doesn't matter). They are sought in w = z − 1,
@@ -69,25 +69,81 @@ function newton(lowestFirst: readonly bigint[], w: Complex): Complex {
   return ratio(p, d)
 }
 
+/**
+ * The polynomial in doubles, in x = w/2^exponent with the exponent chosen so that first and last coefficient are alike; the very small
+ * ones may vanish, which only costs accuracy of the first approach.
+ */
+function inDoubles(lowestFirst: readonly bigint[]): { coefficients: number[]; exponent: number } {
+  const degree = lowestFirst.length - 1
+  const levels = lowestFirst.map((c) => (c === 0n ? Number.NEGATIVE_INFINITY : logTwo(c)))
+  const exponent = Math.round(((levels[0] ?? 0) - (levels[degree] ?? 0)) / degree)
+  const highest = Math.max(...levels.map((level, k) => level + exponent * k))
+  const coefficients = lowestFirst.map((c, k) => {
+    const drop = Math.max(0, bitLength(c) - 60)
+    return timesPowerOfTwo(Number(c >> BigInt(drop)), drop + exponent * k - Math.round(highest))
+  })
+  return { coefficients, exponent }
+}
+
+/** p(x)/p′(x) in doubles; beyond the unit circle through the reversed polynomial, so that powers don't overflow. */
+function newtonInDoubles(lowestFirst: readonly number[], x: Complex): Complex {
+  const outside = modulus(x) > 1
+  const y = outside ? divide(complex(1), x) : x
+  const degree = lowestFirst.length - 1
+  let [pr, pi, dr, di] = [0, 0, 0, 0]
+  for (let k = degree; k >= 0; k -= 1) {
+    const c = lowestFirst[outside ? degree - k : k] ?? 0
+    ;[dr, di] = [dr * y.re - di * y.im + pr, dr * y.im + di * y.re + pi]
+    ;[pr, pi] = [pr * y.re - pi * y.im + c, pr * y.im + pi * y.re]
+  }
+  const [p, d] = [complex(pr, pi), complex(dr, di)]
+  if (!outside) return divide(p, d)
+  // p(x) = xⁿ·q(y), y = 1/x: p/p′ = x·q/(n·q − y·q′)
+  const below = subtract({ re: degree * pr, im: degree * pi }, multiply(y, d))
+  return divide(multiply(x, p), below)
+}
+
 /** Ehrlich–Aberth without assumed symmetry, since it isn't known beforehand which roots are real. */
-function iterate(lowestFirst: readonly bigint[], start: readonly Complex[]): Complex[] {
+function iterate(
+  step: (w: Complex) => Complex,
+  start: readonly Complex[],
+  tolerance: number,
+  rounds: number,
+): Complex[] {
   const roots = [...start]
   const settled = roots.map(() => false)
-  for (let round = 0; round < 120 && settled.includes(false); round += 1) {
+  for (let round = 0; round < rounds && settled.includes(false); round += 1) {
     for (let k = 0; k < roots.length; k += 1) {
       const w = roots[k]
       if (w === undefined || settled[k] === true) continue
-      const step = newton(lowestFirst, w)
+      const newton = step(w)
       let pull = complex(0)
       roots.forEach((other, index) => {
         if (index !== k && distance(w, other) > 0) pull = add(pull, divide(complex(1), subtract(w, other)))
       })
-      const move = divide(step, subtract(complex(1), multiply(step, pull)))
+      const move = divide(newton, subtract(complex(1), multiply(newton, pull)))
       roots[k] = subtract(w, move)
-      if (modulus(move) <= 4 * Number.EPSILON * modulus(w)) settled[k] = true
+      if (modulus(move) <= tolerance * modulus(w)) settled[k] = true
     }
   }
   return roots
+}
+
+/** A first approach in doubles where that works, and the start values themselves where it doesn't. */
+function approach(lowestFirst: readonly bigint[]): Complex[] {
+  const start = startValues(lowestFirst)
+  const { coefficients, exponent } = inDoubles(lowestFirst)
+  const unit = timesPowerOfTwo(1, exponent)
+  const scaled = start.map(({ re, im }) => complex(re / unit, im / unit))
+  const rough = iterate((x) => newtonInDoubles(coefficients, x), scaled, 1e-9, 30)
+  const found = rough.map(({ re, im }) => complex(re * unit, im * unit))
+  const usable = found.every(
+    (root, k) =>
+      Number.isFinite(root.re) &&
+      Number.isFinite(root.im) &&
+      found.every((other, index) => index <= k || distance(root, other) > 1e-9 * modulus(root)),
+  )
+  return usable ? found : start
 }
 
 /** Makes the list exactly symmetric: near-real roots are polished on the axis, the others keep their upper member. */
@@ -135,6 +191,8 @@ export function polynomialRoots(highestFirst: readonly bigint[]): Complex[] {
   }
   if (coefficients.length < 2) return roots
   const shifted = shiftByOne(coefficients)
-  const half = symmetrise(shifted, iterate(shifted, startValues(shifted)))
+  const settled = iterate((w) => newton(shifted, w), approach(shifted), 4 * Number.EPSILON, 40)
+  const half = symmetrise(shifted, settled)
+
   return [...roots, ...half.map((w) => complex(1 + w.re, w.im))]
 }

@@ -144,7 +144,7 @@ describe('elliptic prototype', () => {
  * cd((2i − 1)K/n) and the poles 1/(k·cd), both from theta series. One Newton step from each double-precision pole tells its error.
  */
 describe('elliptic poles in 60 digits', () => {
-  const math = create(all, { number: 'BigNumber', precision: 60 })
+  const math = create(all ?? {}, { number: 'BigNumber', precision: 60 })
   const big = (x: number | string) => math.bignumber(x)
   type Big = ReturnType<typeof big>
   const pi = math.acos(big(-1)) as Big

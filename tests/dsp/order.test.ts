@@ -81,7 +81,7 @@ describe('least order', () => {
   })
 
   it('is 6 for the Butterworth examples of Oppenheim & Schafer, with the printed corner when the pass edge is met', () => {
-    // os_impulse_butterworth: analog, Td = 1: corner 0.70320445 rad.
+    // os_impulse_invariance_butterworth: analog, Td = 1: corner 0.70320445 rad.
     const requirement = {
       passHz: 0.2 / 2,
       stopHz: 0.3 / 2,
