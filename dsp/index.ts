@@ -46,7 +46,19 @@ export {
   zeroPhaseMagnitudeDb,
 } from './response/frequency'
 export { groupDelay, groupDelayInto, phaseDelay, phaseResponse, phaseResponseInto } from './response/delay'
+export { departure, worstDeparture, type Departure, type WorstDeparture } from './response/departure'
+export { trustedBand, type TrustedBand } from './response/trusted-band'
+export {
+  lowestRate,
+  rateSweep,
+  type LowestRateOptions,
+  type MethodSweep,
+  type RateSweep,
+  type RateSweepOptions,
+} from './response/rates'
+export { parallelResponse } from './response/parallel'
 export { impulseResponse, stepResponse, type TimeGrid, type TimeResponse } from './response/time'
+export { settlingTime, stepFigures, type StepFigures } from './response/settling'
 
 // Signals
 export { createRunner, runFilter, type Runner, type RunOptions } from './signal/run'
