@@ -9,7 +9,7 @@ export function CoefficientsTable({ kept }: { kept: StoredCoefficients }) {
     <div
       role="region"
       tabIndex={0}
-      aria-labelledby="coefficients-heading"
+      aria-label="Table of the sections"
       className="min-w-0 overflow-x-auto border-t border-graph-strong -outline-offset-2"
     >
       <table className="w-full text-[13px]">

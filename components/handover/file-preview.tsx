@@ -36,7 +36,7 @@ export function FilePreview({
         role="region"
         tabIndex={0}
         aria-label={file ? `First lines of ${file.fileName}` : 'Preview'}
-        className="h-80 min-w-0 overflow-auto border border-graph-strong bg-paper p-3 -outline-offset-2"
+        className="h-80 min-w-0 lg:h-[27rem] overflow-auto border border-graph-strong bg-paper p-3 -outline-offset-2"
       >
         {preview && 'file' in preview ? (
           <pre className="numeric text-[12px] leading-[1.45]">

@@ -10,25 +10,35 @@ export interface MarkedPart {
 const keyOf = (part: StatementPart) => (part.kind === 'text' ? '' : part.key)
 const isSame = (one: StatementPart, other: StatementPart) => one.text === other.text && keyOf(one) === keyOf(other)
 
+/** How much it is worth to lay one part over the other: words of one place in the spec belong together even when they differ. */
+function worth(one: StatementPart, other: StatementPart): number {
+  if (one.kind === 'text' || other.kind === 'text') return isSame(one, other) ? 1 : 0
+  if (one.key !== other.key) return 0
+  return isSame(one, other) ? 4 : 3
+}
+
 /**
- * The later statement with the changed words marked, the earlier words before the ones that replaced them. Words count whole and belong
- * to their place in the spec: a rate of 120 Hz is not an edge of 120 Hz. (Longest common subsequence; Wagner & Fischer 1974.)
+ * The later statement with the changed words marked, each old word before the one that replaced it. Words count whole and belong to their
+ * place in the spec: a rate of 120 Hz is not an edge of 120 Hz. (Alignment of greatest worth; Needleman & Wunsch 1970.)
  */
 export function markedStatement(before: DesignSpec, after: DesignSpec): readonly MarkedPart[] {
   const older = statementParts(before)
   const newer = statementParts(after)
-  const longest = commonLengths(older, newer)
+  const worths = alignmentWorths(older, newer)
+  const rest = (i: number, j: number) => worths[i]?.[j] ?? 0
   const marked: MarkedPart[] = []
   let i = 0
   let j = 0
   while (i < older.length || j < newer.length) {
     const gone = older[i]
     const fresh = newer[j]
-    if (gone && fresh && isSame(gone, fresh)) {
-      marked.push({ mark: 'same', part: fresh })
+    const pair = gone && fresh ? worth(gone, fresh) : 0
+    if (gone && fresh && pair > 0 && rest(i, j) === pair + rest(i + 1, j + 1)) {
+      if (isSame(gone, fresh)) marked.push({ mark: 'same', part: fresh })
+      else marked.push({ mark: 'gone', part: gone }, { mark: 'new', part: fresh })
       i++
       j++
-    } else if (gone && (!fresh || (longest[i + 1]?.[j] ?? 0) >= (longest[i]?.[j + 1] ?? 0))) {
+    } else if (gone && (!fresh || rest(i, j) === rest(i + 1, j))) {
       marked.push({ mark: 'gone', part: gone })
       i++
     } else if (fresh) {
@@ -39,19 +49,19 @@ export function markedStatement(before: DesignSpec, after: DesignSpec): readonly
   return marked
 }
 
-/** lengths[i][j]: how many parts older[i…] and newer[j…] can have in common, in order. */
-function commonLengths(older: readonly StatementPart[], newer: readonly StatementPart[]): number[][] {
-  const lengths = Array.from({ length: older.length + 1 }, () => new Array<number>(newer.length + 1).fill(0))
+/** worths[i][j]: the greatest worth of laying older[i…] over newer[j…], in order. */
+function alignmentWorths(older: readonly StatementPart[], newer: readonly StatementPart[]): number[][] {
+  const worths = Array.from({ length: older.length + 1 }, () => new Array<number>(newer.length + 1).fill(0))
   for (let i = older.length - 1; i >= 0; i--) {
     for (let j = newer.length - 1; j >= 0; j--) {
-      const [one, other, row] = [older[i], newer[j], lengths[i]]
+      const [one, other, row] = [older[i], newer[j], worths[i]]
       if (!one || !other || !row) continue
-      row[j] = isSame(one, other)
-        ? 1 + (lengths[i + 1]?.[j + 1] ?? 0)
-        : Math.max(lengths[i + 1]?.[j] ?? 0, row[j + 1] ?? 0)
+      const pair = worth(one, other)
+      const together = pair > 0 ? pair + (worths[i + 1]?.[j + 1] ?? 0) : 0
+      row[j] = Math.max(together, worths[i + 1]?.[j] ?? 0, row[j + 1] ?? 0)
     }
   }
-  return lengths
+  return worths
 }
 
 const partNames: Readonly<Record<WordKey, string>> = {

@@ -35,12 +35,10 @@ export function CompareSpecs({ left, right }: { left: ComparedSpec; right: Compa
         </p>
         <p className="mt-1 text-[14px] text-pencil">
           {changed.length === 0 ? (
-            <>
-              {left.label} and {right.label} state the same design.
-            </>
+            'Both state the same design.'
           ) : (
             <>
-              Changed from {left.label} to {right.label}: <strong className="text-ink">{changed.join(', ')}</strong>
+              Changed: <strong className="text-ink">{changed.join(', ')}</strong>
             </>
           )}
         </p>
@@ -167,7 +165,7 @@ function Overlay({ left, right }: { left: Side; right: Side }) {
             formatHz(hertz, 4),
             formatFixed(one[0], 3),
             formatFixed(other[0], 3),
-            formatFixed(other[0] === one[0] ? 0 : other[0] - one[0], 3),
+            formatFixed(other[0] - one[0], 3),
             formatDegrees(one[1], 2),
             formatDegrees(other[1], 2),
             formatDegrees(other[1] - one[1], 2),

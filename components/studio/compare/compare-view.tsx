@@ -54,10 +54,10 @@ export function CompareView({
               { label: 'Drawing', value: design.drawingNumber, span: 6 },
               { label: 'From', value: left.short, span: 3 },
               { label: 'To', value: right.short, span: 3 },
-              { label: 'Drawn', value: left.drawn, span: 3 },
-              { label: 'Drawn', value: right.drawn, span: 3 },
-              { label: 'Coefficients', value: left.checksum, span: 3 },
-              { label: 'Coefficients', value: right.checksum, span: 3 },
+              { label: 'From, drawn', value: left.drawn, span: 3 },
+              { label: 'To, drawn', value: right.drawn, span: 3 },
+              { label: 'From, coefficients', value: left.checksum, span: 3 },
+              { label: 'To, coefficients', value: right.checksum, span: 3 },
             ]}
           />
         </div>

@@ -37,7 +37,7 @@ export function curvesOf(left: Side, right: Side): Curves {
     right: curveOn(right.design.digital, gridUpTo(fromHz, right.spec.sampleRateHz / 2, edges)),
     difference: {
       frequenciesHz: shared,
-      // Where both are exactly zero there is no difference to speak of.
+      // Where both are −∞ there is no difference to speak of: NaN, a gap in the trace.
       magnitudeDb: minus(other.magnitudeDb, one.magnitudeDb),
       phaseDegrees: minus(other.phaseDegrees, one.phaseDegrees),
       delaySeconds: minus(other.delaySeconds, one.delaySeconds),
@@ -62,10 +62,7 @@ function curveOn(filter: DigitalFilter, frequenciesHz: Float64Array): Curve {
 }
 
 const minus = (other: Float64Array, one: Float64Array): Float64Array =>
-  other.map((value, k) => {
-    const base = one[k] ?? Number.NaN
-    return value === base ? 0 : value - base
-  })
+  other.map((value, k) => value - (one[k] ?? Number.NaN))
 
 /** One row of the table of values. */
 export interface ValueRow {
