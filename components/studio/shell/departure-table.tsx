@@ -121,7 +121,7 @@ export function DepartureTable({
               <th scope="col" className="text-right">
                 µs
               </th>
-              <th scope="col" className="pl-3 text-right">
+              <th scope="col" className="pl-2 text-right">
                 trusted
               </th>
             </tr>
@@ -130,7 +130,7 @@ export function DepartureTable({
             {rows.map((row) => (
               <tr key={row.id} className="border-b border-graph [&>td]:py-1">
                 <th scope="row" className="py-0.5 text-left font-normal">
-                  <span className="flex items-center gap-2">
+                  <span className="flex items-center gap-1.5">
                     <TraceSwatch id={row.id} />
                     {row.stated || readOnly ? (
                       <span className={classNames(row.stated && 'font-semibold')}>{methodLabels[row.id]}</span>
@@ -148,13 +148,17 @@ export function DepartureTable({
                         {methodLabels[row.id]}
                       </Button>
                     )}
-                    {row.closest ? <span className="text-moss">closest</span> : null}
                   </span>
                 </th>
                 <td className={cell(row.worst.db <= budget.magnitudeDb)}>{formatFixed(row.worst.db, 2)}</td>
                 <td className={cell(row.worst.degrees <= budget.phaseDegrees)}>{formatFixed(row.worst.degrees, 2)}</td>
-                <td className="numeric text-right">{formatNumber(row.worst.microseconds, 3)}</td>
-                <td className="numeric pl-3 text-right whitespace-nowrap">{trustText(row)}</td>
+                <td className="numeric pl-2 text-right">{formatNumber(row.worst.microseconds, 3)}</td>
+                <td className="numeric pl-2 text-right whitespace-nowrap">
+                  {trustText(row)}
+                  {row.closest ? (
+                    <span className="block font-text text-[12px] leading-4 text-moss">closest</span>
+                  ) : null}
+                </td>
               </tr>
             ))}
             {versions.refused.map((refusal) => (

@@ -72,7 +72,7 @@ export function InlineQuantity({
           spellCheck={false}
           disabled={disabled}
           value={shown}
-          className="col-start-1 row-start-1 min-h-6 w-full min-w-0 bg-transparent outline-offset-1"
+          className="col-start-1 row-start-1 min-h-6 w-0 min-w-full bg-transparent outline-offset-1"
           onFocus={(event) => event.currentTarget.select()}
           onChange={(event) => setTyped(event.currentTarget.value)}
           onKeyDown={onKeyDown}

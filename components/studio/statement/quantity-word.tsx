@@ -119,7 +119,7 @@ export function QuantityWord(props: QuantityWordProps) {
           autoComplete="off"
           spellCheck={false}
           value={shown}
-          className="col-start-1 row-start-1 w-full min-w-0 bg-transparent text-inherit outline-none"
+          className="col-start-1 row-start-1 w-0 min-w-full bg-transparent text-inherit outline-none"
           onFocus={(event) => event.currentTarget.select()}
           onChange={(event) => setTyped(event.currentTarget.value)}
           onKeyDown={onKeyDown}
