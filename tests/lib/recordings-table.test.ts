@@ -311,6 +311,24 @@ describe('rate and jitter', () => {
     expect(rowOf(timing.worstFrame)).toBe(52)
   })
 
+  it('rounded stamps with a late sample: the rate is freed of the rounding', async () => {
+    const { timing } = await read(stamps(Array.from({ length: 6000 }, (_, i) => i / 600 + (i >= 3000 ? 0.0005 : 0))))
+    expect([timing.basis, timing.sampleRateHz]).toEqual(['median step', 600])
+    expect(timing.jitterPercent).toBeCloseTo(30, 0)
+  })
+
+  it('truly uneven stamps: 1 / median step', async () => {
+    const list = [0]
+    for (let i = 1; i < 200; i += 1) list.push((list[i - 1] ?? 0) + 0.01 * (1 + 0.2 * Math.sin(i * i)))
+    const steps = list
+      .slice(1)
+      .map((t, i) => t - (list[i] ?? 0))
+      .sort((a, b) => a - b)
+    const { timing } = await read(stamps(list, 12))
+    expect(timing.sampleRateHz).toBeCloseTo(1 / (steps[99] ?? 1), 6)
+    expect(timing.jitterPercent).toBeGreaterThan(15)
+  })
+
   it('ISO stamps, with zones, over midnight, and the time of day alone', async () => {
     const iso = await read(
       text(

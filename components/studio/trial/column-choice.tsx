@@ -91,7 +91,7 @@ export function ColumnChoice({ preview, onChange }: { preview: TablePreview; onC
                   )}
                 </td>
                 <td className="numeric px-2 py-1 text-[12px] whitespace-nowrap text-pencil">
-                  {column.examples.join('  ')}
+                  {column.examples.join(' · ')}
                 </td>
               </tr>
             )

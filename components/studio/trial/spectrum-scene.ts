@@ -56,7 +56,8 @@ export function spectrumScene(
         {
           kind: 'path',
           points: densityPath(reading, reading.before, x, y, box),
-          stroke: { ink: 'pencil', widthPixels: 1.25 },
+          // wide and pale, so that it can be seen under a result that equals it
+          stroke: { ink: 'pencil', widthPixels: 3.5, opacity: 0.55 },
         },
         ...(reading.after
           ? [

@@ -61,7 +61,16 @@ export function timeScene(input: TimeSceneInput): TimePicture {
   const after = { box: bottom, y: linearScale(spans.after, [bottom.bottom, bottom.top]) }
   const ticks = timeTicks(x, width)
   const marks = [
-    ...laneMarks(before, x, ticks, input.before, plain, sampleRateHz, [], laneTitle('Before', input.unit)),
+    ...laneMarks(
+      before,
+      x,
+      ticks,
+      input.before,
+      plain,
+      sampleRateHz,
+      { under: [], over: [] },
+      laneTitle('Before', input.unit),
+    ),
     ...laneMarks(
       after,
       x,
@@ -119,7 +128,7 @@ function laneMarks(
   reading: WindowReading | null,
   style: TraceStyle,
   sampleRateHz: number,
-  ground: readonly Mark[],
+  ground: Ground,
   title: string,
 ): Mark[] {
   const yTicks = valueTicks('plain', y, 24)
@@ -130,8 +139,9 @@ function laneMarks(
       box,
       marks: [
         ...gridMarks(box, { scale: x, ticks }, { scale: y, ticks: yTicks }),
-        ...ground,
+        ...ground.under,
         ...(reading ? traceMarks(reading, style, x, y, box, sampleRateHz) : []),
+        ...ground.over,
       ],
     },
     frameMark(box),
@@ -221,15 +231,22 @@ function envelopePath(
   return points
 }
 
+interface Ground {
+  readonly under: readonly Mark[]
+  /** Words that no trace may run through. */
+  readonly over: readonly Mark[]
+}
+
 /** Hatched ground where the result is not the filter's steady work yet. */
-function shading(input: TimeSceneInput, box: Box, x: Scale): Mark[] {
+function shading(input: TimeSceneInput, box: Box, x: Scale): Ground {
   const { sampleRateHz, startUpFrames, extensionFrames, frames } = input
-  const marks: Mark[] = []
+  const under: Mark[] = []
+  const over: Mark[] = []
   const strip = (from: number, to: number, words: string, side: 'start' | 'end') => {
     const left = Math.max(box.left, x.toPixel(from / sampleRateHz))
     const right = Math.min(box.right, x.toPixel(to / sampleRateHz))
     if (!(right > left)) return
-    marks.push(
+    under.push(
       {
         kind: 'hatch',
         outline: Float64Array.of(left, box.top, right, box.top, right, box.bottom, left, box.bottom),
@@ -254,7 +271,7 @@ function shading(input: TimeSceneInput, box: Box, x: Scale): Mark[] {
         halo: 'sheet',
       } as const
       // beside a strip that is too narrow for its words there is always room at the beginning
-      marks.push(
+      over.push(
         side === 'start'
           ? { ...text, x: fits ? left + 6 : right + 6, anchor: 'start' }
           : { ...text, x: right - 6, anchor: 'end' },
@@ -268,7 +285,7 @@ function shading(input: TimeSceneInput, box: Box, x: Scale): Mark[] {
     strip(0, extensionFrames, words, 'start')
     strip(frames - extensionFrames, frames, words, 'end')
   }
-  return marks
+  return { under, over }
 }
 
 const edge = { ink: 'ochre', widthPixels: 1 } as const

@@ -19,9 +19,9 @@ export const statedTiming = (sampleRateHz: number, basis: 'header' | 'stated'): 
 })
 
 /**
- * Rate and jitter from time stamps in seconds. The rate is 1 / median step; where all steps agree with it up to the rounding of the
- * stamps (`resolutionSeconds`), the mean over the record is the better figure and is taken instead. Jitter is the worst deviation of
- * a step from 1 / rate.
+ * Rate and jitter from time stamps in seconds. The rate is 1 / median step, freed of the rounding of the stamps: where most steps agree
+ * with the median up to that rounding (`resolutionSeconds`), it is 1 / their mean, to as many digits as the stamps bear. Jitter is the
+ * worst deviation of a step from 1 / rate.
  *
  * @param rowOf line of the file for a sample, for the messages
  * @throws RecordingError 'time-order' when time does not go forward, 'bad-rate' when there are fewer than two stamps
@@ -48,7 +48,6 @@ export async function measureTiming(
       row === undefined ? {} : { row },
     )
   }
-  const worstFromMedian = await worstStep(times, median)
   const span = stamps.last - stamps.first
   const meanStep = span / (stamps.lastFrame - stamps.firstFrame)
   // double precision itself rounds stamps far from zero
@@ -56,16 +55,20 @@ export async function measureTiming(
     resolutionSeconds,
     2 * Number.EPSILON * Math.max(Math.abs(stamps.first), Math.abs(stamps.last)),
   )
-  const evenUpToRounding = worstFromMedian.seconds <= rounding * (1 + 1e-6)
+  const even = await evenSteps(times, median, rounding * (1 + 1e-6))
+  const allEven = even.count === even.total
   const rateHz =
     statedRateHz ??
-    (evenUpToRounding && meanStep > 0
-      ? shortestWithin(1 / meanStep, (rounding / span) * 1.01 + 4 * Number.EPSILON)
-      : shortestWithin(1 / median, (2 * Number.EPSILON * Math.abs(stamps.last)) / median + 4 * Number.EPSILON))
+    (even.count * 2 > even.total
+      ? shortestWithin(
+          even.count / even.sum,
+          (rounding * (even.total - even.count + 1) * 1.01) / even.sum + 4 * Number.EPSILON,
+        )
+      : 1 / median)
   const worst = await worstStep(times, 1 / rateHz)
   return {
     sampleRateHz: rateHz,
-    basis: statedRateHz !== null ? 'stated' : evenUpToRounding ? 'mean step' : 'median step',
+    basis: statedRateHz !== null ? 'stated' : allEven ? 'mean step' : 'median step',
     medianStepSeconds: median,
     meanRateHz: 1 / meanStep,
     jitterSeconds: worst.seconds,
@@ -140,6 +143,27 @@ const stepsOf =
       visit(steps.subarray(0, block.length))
     })
   }
+
+/** Steps that agree with the median up to the rounding of the stamps: how many there are, of how many, and their sum. */
+async function evenSteps(
+  times: FrameSource,
+  median: number,
+  within: number,
+): Promise<{ count: number; total: number; sum: number }> {
+  let count = 0
+  let total = 0
+  let sum = 0
+  await stepsOf(times)((steps) => {
+    for (const step of steps) {
+      if (Number.isNaN(step)) continue
+      total += 1
+      if (Math.abs(step - median) > within) continue
+      count += 1
+      sum += step
+    }
+  })
+  return { count, total, sum }
+}
 
 async function worstStep(times: FrameSource, stepSeconds: number): Promise<{ seconds: number; frame: number }> {
   let seconds = 0
