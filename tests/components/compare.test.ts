@@ -153,6 +153,14 @@ describe('the comparison on the page', () => {
     expect(html).toContain('Values of the plots')
   })
 
+  it('marks no words that both say, be they a choice in one and a joint in the other', () => {
+    const bessel = lowPass({ family: 'bessel', normalization: 'magnitude' })
+    for (const html of [markup(lowPass(), bessel), markup(bessel, lowPass())]) {
+      expect(html).toContain('Bessel–Thomson')
+      expect(html).not.toMatch(/<(?:del|ins)[^>]*>(?:<span[^>]*>was <\/span>)?[, ]*down 3/)
+    }
+  })
+
   it('says so when nothing differs', () => {
     expect(markup(lowPass(), lowPass())).toContain('Both state the same design')
   })

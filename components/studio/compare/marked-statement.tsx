@@ -1,25 +1,36 @@
 import type { DesignSpec } from '@/dsp'
 import { markedStatement, type MarkedPart } from '@/lib/designs/statement-changes'
-import { statementText } from '@/lib/designs/statement'
+import { statementParts, statementText } from '@/lib/designs/statement'
 
-/** A statement with what changed since an earlier one: old words struck through, new words underlined on a wash. */
+/**
+ * A statement with what changed since an earlier one: old words struck through, new words underlined on a wash. Only words that carry the
+ * design are marked; what joins them is that of the later statement.
+ */
 export function MarkedStatement({ before, after }: { before: DesignSpec | null; after: DesignSpec }) {
   if (before === null) return <>{statementText(after)}</>
-  return markedStatement(before, after).map((marked, index) => <Piece key={index} {...marked} />)
+  const shown = markedStatement(before, after)
+    .filter(({ mark, part }) => mark !== 'gone' || (part.kind !== 'text' && !isJoint(part.text, after)))
+    .map(({ mark, part }) => ({ part, mark: mark === 'new' && isJoint(part.text, before) ? ('same' as const) : mark }))
+  return shown.map((marked, index) => <Piece key={index} {...marked} next={shown[index + 1]?.part.text ?? ''} />)
 }
 
-function Piece({ mark, part }: MarkedPart) {
-  // What only joins words isn't worth a mark: the later statement's own joints are kept, the earlier one's left out.
-  if (mark === 'same' || !/[\p{L}\d]/u.test(part.text)) return mark === 'gone' ? null : part.text
-  if (mark === 'gone')
-    return (
-      <>
-        <del className="text-pencil decoration-1">
-          <span className="sr-only">was </span>
-          {part.text.trim()}
-          <span className="sr-only">, now</span>
-        </del>{' '}
-      </>
-    )
-  return <ins className="border-b border-spruce bg-spruce-wash font-semibold no-underline">{part.text}</ins>
+/** What is a choice in one family's statement ("down 3 dB at") may be a mere joint in another's: the same words are no change. */
+const isJoint = (words: string, spec: DesignSpec) =>
+  statementParts(spec).some((part) => part.kind === 'text' && part.text.includes(words))
+
+function Piece({ mark, part, next }: MarkedPart & { next: string }) {
+  if (mark === 'same' || part.kind === 'text') return part.text
+  if (mark === 'new')
+    return <ins className="border-b border-spruce bg-spruce-wash font-semibold no-underline">{part.text}</ins>
+  return (
+    <>
+      {' '}
+      <del className="text-pencil decoration-1">
+        <span className="sr-only">was </span>
+        {part.text}
+        <span className="sr-only">, now</span>
+      </del>
+      {/^[,.]/.test(next) ? '' : ' '}
+    </>
+  )
 }

@@ -64,6 +64,7 @@ export function Drawer({
           <History
             versions={saved}
             current={spec}
+            mayEdit={mayEdit}
             compareHref={(a, b) => `/designs/${design.id}/compare?a=${a}&b=${b}`}
             handOverHref={(number) => `/designs/${design.id}/versions/${number}`}
             onRestore={(older, fromNumber) => {
