@@ -210,8 +210,9 @@ function rootsInto(
       outIm[n] = im
     } else {
       const value = evaluateScaled(factors, frequencyHz)
-      outRe[n] = scaleByPowerOfTwo(value.re, value.exponent)
-      outIm[n] = scaleByPowerOfTwo(value.im, value.exponent)
+      // + 0, so that an exact zero is 0 and not −0.
+      outRe[n] = scaleByPowerOfTwo(value.re, value.exponent) + 0
+      outIm[n] = scaleByPowerOfTwo(value.im, value.exponent) + 0
     }
   }
 }
