@@ -15,6 +15,8 @@ const editors = ['owner', 'designer'] as const satisfies readonly Role[]
 export const permissions = {
   'home.read': 'anyone',
   'health.read': 'anyone',
+  /** What the coefficient files hold; who ports a filter need not have an account. */
+  'formats.read': 'anyone',
   /** Answers 404 unless the start command set up its mailbox. */
   'mailbox.read': 'anyone',
   'account.sign-up': 'anyone',
@@ -70,12 +72,14 @@ export const pages: Readonly<Record<string, ActionName>> = {
   '/designs/[designId]': 'design.read',
   '/designs/[designId]/compare': 'design.read',
   '/designs/[designId]/versions/[number]': 'design.read',
+  '/formats': 'formats.read',
   '/dev/mailbox': 'mailbox.read',
 }
 
 /** Route handlers by folder and method. */
 export const routes: Readonly<Record<string, Readonly<Record<string, ActionName>>>> = {
   '/api/health': { GET: 'health.read' },
+  '/api/formats/coefficient-set': { GET: 'formats.read' },
   '/api/designs/[designId]/draft': { PUT: 'draft.save' },
   '/api/designs/[designId]/versions/[number]/export': { GET: 'version.export' },
 }

@@ -1,3 +1,4 @@
+import { z } from 'zod'
 import { DesignError, designFromSpec } from '@/dsp'
 import { coefficientsOf, filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'
@@ -5,6 +6,9 @@ import { coefficientSet, ratioRefusal, writtenFile, type ExportFile, type Export
 import { roundingWords } from '@/lib/exports/about'
 import { differenceEquation, typesetEquation } from '@/lib/exports/equation'
 import { checkIdentifier } from '@/lib/exports/names'
+
+// The content policy allows no code made from strings; zod would otherwise try.
+z.config({ jitless: true })
 
 /* What the hand-over panel shows before anything is downloaded: the very code that the server writes the file with. */
 

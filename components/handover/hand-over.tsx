@@ -1,5 +1,6 @@
 'use client'
 
+import Link from 'next/link'
 import { useEffect, useMemo, useRef, useState, type KeyboardEvent } from 'react'
 import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
@@ -189,7 +190,12 @@ export function HandOver({
             unavailable={'problem' in kept ? kept.problem.message : null}
           />
           <Checksum checksum={version.checksum} numbers={numbers} />
-          <p className="text-[13px] text-pencil">{caution}</p>
+          <p className="text-[13px] text-pencil">
+            {caution}{' '}
+            <Link href="/formats" className="text-spruce underline underline-offset-2">
+              What the files hold
+            </Link>
+          </p>
         </div>
       </div>
     </section>

@@ -3,6 +3,7 @@ import { renderToStaticMarkup } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import type { DesignSpec } from '@/dsp'
 import { equationOf, previewOf, ratioProblem, recomputed } from '@/components/handover/draft-file'
+import { FormatsSheet } from '@/components/handover/formats-sheet'
 import { HandOver } from '@/components/handover/hand-over'
 import { VersionSheet } from '@/components/handover/version-sheet'
 import { History } from '@/components/studio/panels/history'
@@ -10,6 +11,7 @@ import { coefficientsOf } from '@/lib/designs/coefficients'
 import { designFromSpec } from '@/dsp'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { exportFile, exportQuery, type ExportOptions } from '@/lib/exports'
+import { coefficientSetFields } from '@/lib/exports/json-fields'
 import { lowPass, sourceOf } from '../helpers/export-sources'
 
 const design: DesignRecord = {
@@ -152,6 +154,44 @@ describe('the sheet of a version', () => {
     expect(html).not.toContain('Download')
     expect(html).not.toContain('/export')
     expect(html).toContain(versionOf(lowPass()).checksum)
+  })
+})
+
+describe('the page about the files', () => {
+  const html = renderToStaticMarkup(createElement(FormatsSheet, { schemaHref: '/schema' }))
+
+  it('lists every field of the file, nested ones and both structures', () => {
+    for (const path of [
+      'differenceEquation',
+      'coefficients.sections[].b0',
+      'coefficients.a',
+      'kept.analog.poles[].re',
+      'checksum.hex',
+    ])
+      expect(html).toContain(`>${path}<`)
+    expect(html).toContain('href="/schema"')
+  })
+
+  it('names no field that a file lacks, and leaves out none that it has', () => {
+    const listed = new Set(coefficientSetFields().map(({ path }) => path))
+    const found = new Set<string>()
+    const walk = (value: unknown, path: string): void => {
+      if (Array.isArray(value)) value.forEach((item: unknown) => walk(item, `${path}[]`))
+      else if (typeof value === 'object' && value !== null)
+        for (const [key, inner] of Object.entries(value)) {
+          const own = path === '' ? key : `${path}.${key}`
+          found.add(own)
+          walk(inner, own)
+        }
+    }
+    for (const structure of ['sections', 'ratio'] as const) {
+      const spec: DesignSpec = { ...lowPass(), how: { method: 'impulse-invariant' } }
+      walk(JSON.parse(exportFile(sourceOf(spec), { ...options, format: 'json', structure }).text), '')
+    }
+    // A low-pass sampled by its impulse response has no analog zeros to show.
+    const never = ['kept.analog.zeros[].re', 'kept.analog.zeros[].im']
+    expect([...found].filter((path) => !listed.has(path))).toEqual([])
+    expect([...listed].filter((path) => !found.has(path) && !never.includes(path))).toEqual([])
   })
 })
 

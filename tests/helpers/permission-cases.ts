@@ -11,6 +11,7 @@ import TeamPage from '@/app/team/page'
 import DesignPage from '@/app/designs/[designId]/page'
 import ComparePage from '@/app/designs/[designId]/compare/page'
 import VersionPage from '@/app/designs/[designId]/versions/[number]/page'
+import FormatsPage from '@/app/formats/page'
 import MailboxPage from '@/app/dev/mailbox/page'
 import SignInPage from '@/app/(account)/sign-in/page'
 import SignUpPage from '@/app/(account)/sign-up/page'
@@ -98,5 +99,6 @@ export const pageCases: Readonly<Record<string, (team: TestTeam) => Promise<unkn
     ComparePage({ params: Promise.resolve({ designId }), searchParams: search }),
   '/designs/[designId]/versions/[number]': ({ designId }) =>
     VersionPage({ params: Promise.resolve({ designId, number: '1' }) }),
+  '/formats': () => Promise.resolve(FormatsPage()),
   '/dev/mailbox': () => MailboxPage(),
 }
