@@ -1,4 +1,5 @@
-import { closeSync, openSync, readFileSync, rmSync, writeSync } from 'node:fs'
+import { randomBytes } from 'node:crypto'
+import { linkSync, readFileSync, renameSync, rmSync, writeFileSync } from 'node:fs'
 import { setTimeout as pause } from 'node:timers/promises'
 
 /*
@@ -58,19 +59,51 @@ export function readHolder(path) {
  * @returns {{ taken: true, release: () => void } | { taken: false, holder: Record<string, unknown> & { pid: number } }}
  */
 export function takeLock(path, details = {}) {
-  for (;;) {
-    try {
-      const file = openSync(path, 'wx', 0o600)
-      writeSync(file, JSON.stringify({ ...me(), ...details }))
-      closeSync(file)
-      return { taken: true, release: () => rmSync(path, { force: true }) }
-    } catch (error) {
-      if (!(error instanceof Error && 'code' in error && error.code === 'EEXIST')) throw error
+  // Written aside and then linked into place: a lock file is never seen half-written, and of two who come at once only one gets the link.
+  const draft = `${path}.${process.pid}-${randomBytes(4).toString('hex')}`
+  writeFileSync(draft, JSON.stringify({ ...me(), ...details }), { mode: 0o600, flag: 'wx' })
+  try {
+    for (;;) {
+      if (placed(draft, path)) return { taken: true, release: () => rmSync(path, { force: true }) }
+      const holder = readHolder(path)
+      if (holder && isAlive(holder)) return { taken: false, holder }
+      moveAway(path, `${draft}.stale`)
     }
-    const holder = readHolder(path)
-    if (holder && isAlive(holder)) return { taken: false, holder }
-    rmSync(path, { force: true })
+  } finally {
+    rmSync(draft, { force: true })
   }
+}
+
+/**
+ * @param {string} from
+ * @param {string} to
+ * @returns {boolean} false when there is something already
+ */
+function placed(from, to) {
+  try {
+    linkSync(from, to)
+    return true
+  } catch (error) {
+    if (error instanceof Error && 'code' in error && error.code === 'EEXIST') return false
+    throw error
+  }
+}
+
+/**
+ * Removes a stale lock, but not one that somebody else has put in its place since we looked.
+ * @param {string} path
+ * @param {string} aside
+ */
+function moveAway(path, aside) {
+  try {
+    renameSync(path, aside)
+  } catch (error) {
+    if (error instanceof Error && 'code' in error && error.code === 'ENOENT') return
+    throw error
+  }
+  const moved = readHolder(aside)
+  if (moved && isAlive(moved)) placed(aside, path)
+  rmSync(aside, { force: true })
 }
 
 /**

@@ -121,6 +121,29 @@ describe('locks', () => {
     expect(most).toBe(1)
   })
 
+  it('go to one of many processes that find a stale one at the same moment', async () => {
+    const path = join(makeFolder(), 'lock')
+    writeFileSync(path, JSON.stringify({ pid: process.pid, born: 'at another time' }))
+    const source = new URL('../../lib/launch/processes.mjs', import.meta.url).href
+    // Each stays until all have answered: a lock of a process that has ended would be rightly taken over.
+    const everybody = join(scratch, 'everybody-has-answered')
+    const script = `import { existsSync } from 'node:fs'
+      import { takeLock } from '${source}'
+      while (Date.now() < Number(process.argv[1]));
+      console.log(takeLock(${JSON.stringify(path)}).taken)
+      setInterval(() => existsSync(${JSON.stringify(everybody)}) && process.exit(), 50)`
+    const at = String(Date.now() + 1500)
+    let answered = 0
+    const onOutput = (): void => {
+      if (++answered === 4) writeFileSync(everybody, '')
+    }
+    const contenders = Array.from({ length: 4 }, () =>
+      run(process.execPath, ['--input-type=module', '-e', script, at], { onOutput, timeoutSeconds: 25 }),
+    )
+    const answers = (await Promise.all(contenders)).map(({ stdout }) => stdout.trim())
+    expect(answers.filter((answer) => answer === 'true')).toHaveLength(1)
+  })
+
   it('know this process', () => {
     expect(isAlive(me())).toBe(true)
   })
