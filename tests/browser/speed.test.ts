@@ -74,11 +74,12 @@ describe('how light and quick the studio is', () => {
         // Every stroke on any canvas from here on is counted.
         const counted = { strokes: 0 }
         Object.assign(globalThis, { counted })
-        const stroke = CanvasRenderingContext2D.prototype.stroke
-        CanvasRenderingContext2D.prototype.stroke = function (...args: []) {
+        const canvas = CanvasRenderingContext2D.prototype
+        const stroke = canvas.stroke
+        canvas.stroke = function (this: CanvasRenderingContext2D, path?: Path2D) {
           counted.strokes += 1
-          return stroke.apply(this, args)
-        }
+          return path ? stroke.call(this, path) : stroke.call(this)
+        } as typeof stroke
       })
       for (let step = 0; step < 30; step += 1)
         await page.mouse.move(plots.x + plots.width * (0.2 + step / 60), plots.y + plots.height * 0.3)
