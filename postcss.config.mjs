@@ -1,1 +1,4 @@
-export default { plugins: { '@tailwindcss/postcss': {} } }
+/** @type {import('postcss-load-config').Config} */
+const config = { plugins: { '@tailwindcss/postcss': {} } }
+
+export default config

@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto'
-import { chmodSync, chownSync, existsSync, mkdirSync, realpathSync, rmSync } from 'node:fs'
+import { chmodSync, chownSync, existsSync, mkdirSync, realpathSync } from 'node:fs'
 import { dirname, join } from 'node:path'
 import { run } from './run.mjs'
 import { Trouble } from './trouble.mjs'
@@ -60,9 +60,4 @@ export async function databaseHome(wanted, user, fallbackRoot = '/var/lib') {
   chownSync(home, user.uid, user.gid)
   chmodSync(home, 0o700)
   return { home, moved: !reachable }
-}
-
-/** @param {string} home */
-export function removeHome(home) {
-  rmSync(home, { recursive: true, force: true })
 }
