@@ -18,9 +18,9 @@ function shiftByOne(highestFirst: readonly bigint[]): bigint[] {
 
 /**
  * Start values on circles whose radii come from the upper convex hull of log|coefficients| (D. A. Bini, Numer. Algorithms 13, 1996),
- * so that roots of very different size are each begun near their own.
+ * so that roots of very different size are each begun near their own; smallest first.
  */
-function startValues(lowestFirst: readonly bigint[]): Complex[] {
+function circles(lowestFirst: readonly bigint[]): Complex[] {
   const degree = lowestFirst.length - 1
   const height = lowestFirst.map((c) => (c === 0n ? Number.NEGATIVE_INFINITY : logTwo(c)))
   const hull: number[] = []
@@ -49,6 +49,19 @@ function startValues(lowestFirst: readonly bigint[]): Complex[] {
   return values
 }
 
+/** Roots nearer to z = 1 than this are looked for in w. */
+const NEAR_ONE = 0.3
+
+/** Start values in w: those near z = 1 from the circles in w, the others from the circles in z that are farthest from |z| = 1. */
+function startValues(inW: readonly bigint[], inZ: readonly bigint[]): Complex[] {
+  const near = circles(inW).filter((w) => modulus(w) < NEAR_ONE)
+  const away = (z: Complex) => Math.abs(Math.log(modulus(z)))
+  const others = circles(inZ)
+    .sort((a, b) => away(b) - away(a))
+    .slice(0, inZ.length - 1 - near.length)
+  return [...near, ...others.map((z) => complex(z.re - 1, z.im))]
+}
+
 function logTwo(x: bigint): number {
   const drop = Math.max(0, bitLength(x) - 60)
   return Math.log2(Math.abs(Number(x >> BigInt(drop)))) + drop
@@ -69,11 +82,17 @@ function newton(lowestFirst: readonly bigint[], w: Complex): Complex {
   return ratio(p, d)
 }
 
+interface InDoubles {
+  readonly coefficients: readonly number[]
+  /** The variable is divided by this power of two. */
+  readonly unit: number
+}
+
 /**
- * The polynomial in doubles, in x = w/2^exponent with the exponent chosen so that first and last coefficient are alike; the very small
- * ones may vanish, which only costs accuracy of the first approach.
+ * The polynomial in doubles, its variable scaled so that first and last coefficient are alike; the very small ones may vanish, which
+ * only costs accuracy of the first approach.
  */
-function inDoubles(lowestFirst: readonly bigint[]): { coefficients: number[]; exponent: number } {
+function inDoubles(lowestFirst: readonly bigint[]): InDoubles {
   const degree = lowestFirst.length - 1
   const levels = lowestFirst.map((c) => (c === 0n ? Number.NEGATIVE_INFINITY : logTwo(c)))
   const exponent = Math.round(((levels[0] ?? 0) - (levels[degree] ?? 0)) / degree)
@@ -82,7 +101,7 @@ function inDoubles(lowestFirst: readonly bigint[]): { coefficients: number[]; ex
     const drop = Math.max(0, bitLength(c) - 60)
     return timesPowerOfTwo(Number(c >> BigInt(drop)), drop + exponent * k - Math.round(highest))
   })
-  return { coefficients, exponent }
+  return { coefficients, unit: timesPowerOfTwo(1, exponent) }
 }
 
 /** p(x)/p′(x) in doubles; beyond the unit circle through the reversed polynomial, so that powers don't overflow. */
@@ -130,18 +149,21 @@ function iterate(
 }
 
 /** A first approach in doubles where that works, and the start values themselves where it doesn't. */
-function approach(lowestFirst: readonly bigint[]): Complex[] {
-  const start = startValues(lowestFirst)
-  const { coefficients, exponent } = inDoubles(lowestFirst)
-  const unit = timesPowerOfTwo(1, exponent)
-  const scaled = start.map(({ re, im }) => complex(re / unit, im / unit))
-  const rough = iterate((x) => newtonInDoubles(coefficients, x), scaled, 1e-9, 30)
-  const found = rough.map(({ re, im }) => complex(re * unit, im * unit))
+function approach(inW: readonly bigint[], inZ: readonly bigint[]): Complex[] {
+  const start = startValues(inW, inZ)
+  const [w, z] = [inDoubles(inW), inDoubles(inZ)]
+  const step = (at: Complex): Complex => {
+    const near = modulus(at) < NEAR_ONE
+    const { coefficients, unit } = near ? w : z
+    const move = newtonInDoubles(coefficients, { re: (near ? at.re : at.re + 1) / unit, im: at.im / unit })
+    return { re: move.re * unit, im: move.im * unit }
+  }
+  const found = iterate(step, start, 1e-9, 30)
   const usable = found.every(
     (root, k) =>
       Number.isFinite(root.re) &&
       Number.isFinite(root.im) &&
-      found.every((other, index) => index <= k || distance(root, other) > 1e-9 * modulus(root)),
+      found.every((other, index) => index <= k || distance(root, other) > 1e-12 * modulus(root)),
   )
   return usable ? found : start
 }
@@ -179,7 +201,7 @@ function symmetrise(lowestFirst: readonly bigint[], roots: readonly Complex[]): 
 /**
  * Roots of Σ cₖ·z^(n−k) with real long-integer coefficients, good to the last digits of (z − 1).
  *
- * @param highestFirst c₀ … cₙ, c₀ ≠ 0
+ * @param highestFirst c₀ … cₙ, c₀ ≠ 0, as fixed-point numbers: Horner rounds to whole units, so the last ones must mean nothing
  * @returns half list: im > 0 stands for a pair, im = 0 for one real root
  */
 export function polynomialRoots(highestFirst: readonly bigint[]): Complex[] {
@@ -191,7 +213,12 @@ export function polynomialRoots(highestFirst: readonly bigint[]): Complex[] {
   }
   if (coefficients.length < 2) return roots
   const shifted = shiftByOne(coefficients)
-  const settled = iterate((w) => newton(shifted, w), approach(shifted), 4 * Number.EPSILON, 40)
+  const settled = iterate(
+    (w) => newton(shifted, w),
+    approach(shifted, coefficients.toReversed()),
+    4 * Number.EPSILON,
+    60,
+  )
   const half = symmetrise(shifted, settled)
 
   return [...roots, ...half.map((w) => complex(1 + w.re, w.im))]
