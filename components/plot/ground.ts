@@ -5,9 +5,9 @@ import { crisp, type Mark, type Ruling, type Stroke } from './scene'
 /* Ground that a curve must not enter, or that holds no truth: ruled areas with their limiting edges drawn. */
 
 /** A level, or one that changes over frequency; ±Infinity reaches to the plot's own edge. */
-export type GroundEdge = number | ((hz: number) => number)
+type GroundEdge = number | ((hz: number) => number)
 
-export type GroundKind = 'budget' | 'limit' | 'beyond-fold'
+type GroundKind = 'budget' | 'limit' | 'beyond-fold'
 
 export interface Ground<Plot extends string> {
   readonly plot: Plot

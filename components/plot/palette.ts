@@ -1,6 +1,6 @@
 /* The drafting office's inks by name, and their values on the page as it is now. */
 
-export const inks = [
+const inks = [
   'paper',
   'sheet',
   'graph',

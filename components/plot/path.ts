@@ -11,7 +11,7 @@ export interface Box {
   readonly bottom: number
 }
 
-export const PEN_UP = Number.NaN
+const PEN_UP = Number.NaN
 
 /** Strokes may leave the box by this many of its heights before they are cut; clipping hides the rest. */
 const BEYOND = 2

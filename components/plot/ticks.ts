@@ -18,7 +18,7 @@ const decade = (steps: readonly number[], from: number, to: number): number[] =>
 
 /** Decibels are read in slopes (6, 12 dB an octave; 20 dB a decade), degrees in parts of a turn. */
 const stepsBy = {
-  decibels: [...decade([1, 2, 5], -4, -1), 1, 2, 3, 6, 12, 20, 40, 60, 100, 200, 400],
+  decibels: [...decade([1, 2, 5], -4, -1), 1, 2, 3, 6, 12, 20, 40, 60, 100, 200, 400, 1000, 2000],
   degrees: [...decade([1, 2, 5], -4, 0), 10, 15, 30, 45, 90, 180, 360, 720, 1440, 3600, 7200, 14400, 36000],
   plain: decade([1, 2, 5], -15, 12),
 } as const
@@ -26,7 +26,7 @@ const stepsBy = {
 export type Quantity = keyof typeof stepsBy
 
 /** The smallest step of that quantity which keeps ticks `gapPixels` apart. */
-export function tickStep(quantity: Quantity, scale: Scale, gapPixels: number): number {
+function tickStep(quantity: Quantity, scale: Scale, gapPixels: number): number {
   const perPixel = Math.abs(scale.domain[1] - scale.domain[0]) / Math.abs(scale.range[1] - scale.range[0])
   const steps = stepsBy[quantity]
   return steps.find((step) => step / perPixel >= gapPixels) ?? steps[steps.length - 1] ?? 1

@@ -95,6 +95,22 @@ describe('figures of an analog step response', () => {
     close(figures.settlingSeconds, Math.log(50) / (2 * Math.PI * 10), 1e-9)
   })
 
+  it('does the same where a stop band’s floor is all that is left', () => {
+    const spec: AnalogSpec = {
+      family: 'elliptic',
+      response: 'bandpass',
+      order: 6,
+      edgesHz: [80, 120],
+      rippleDb: 0.5,
+      attenuationDb: 60,
+    }
+    const figures = stepFigures(stepCurve(designAnalog(spec)), 0.02)
+    expect(figures.finalValue).toBeCloseTo(1e-3, 6)
+    expect(figures.returnsToZero).toBe(true)
+    expect(figures.overshoot).toBeNull()
+    expect(figures.settlingSeconds).toBeGreaterThan(0.05)
+  })
+
   it('follows a narrow band-pass until it has died away, without missing a swing', () => {
     const spec: AnalogSpec = { family: 'butterworth', response: 'bandpass', order: 1, edgesHz: [99.5, 100.5] }
     const figures = stepFigures(stepCurve(designAnalog(spec)), 0.02)

@@ -26,7 +26,7 @@ export type Gesture =
   /** A handle is stepped by keys; Enter, or leaving it, finishes. */
   | { readonly name: 'keying'; readonly handleId: HandleId }
 
-export interface SpanHz {
+interface SpanHz {
   readonly fromHz: number
   readonly toHz: number
 }
@@ -48,7 +48,7 @@ export const resting: Gesture = { name: 'resting' }
 export const isEditing = (gesture: Gesture): boolean =>
   gesture.name === 'dragging' || gesture.name === 'steepening' || gesture.name === 'keying'
 
-export type Ground = 'plots' | 'axis'
+type GestureGround = 'plots' | 'axis'
 
 export type GestureEvent =
   | {
@@ -63,7 +63,7 @@ export type GestureEvent =
       readonly kind: 'press'
       readonly pointerId: number
       readonly point: Point
-      readonly on: Ground
+      readonly on: GestureGround
       readonly shift: boolean
     }
   | { readonly kind: 'move'; readonly pointerId: number; readonly point: Point; readonly fine: boolean }

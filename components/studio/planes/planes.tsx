@@ -38,7 +38,7 @@ export function Planes({ analog, versions }: PlanesProps) {
           onChange={(next) => setSpan(next)}
         />
       </div>
-      <div className="mt-1 grid grid-cols-2 gap-4">
+      <div className="mt-1 grid grid-cols-[repeat(2,minmax(0,16rem))] gap-4">
         <SPlane analog={analog} frame={frame} />
         <ZPlane versions={versions} span={span} />
       </div>

@@ -14,7 +14,7 @@ export function RootTable({ groups }: { groups: readonly RootsOfOne[] }) {
   const [open, setOpen] = useState(false)
   return (
     <details className="mt-1" onToggle={(event) => setOpen(event.currentTarget.open)}>
-      <summary className="w-fit min-h-6 cursor-pointer font-mono text-[11px] leading-6 text-pencil hover:text-ink">
+      <summary className="w-fit min-h-[24px] cursor-pointer font-mono text-[11px] leading-[24px] text-pencil hover:text-ink">
         table of poles and zeros
       </summary>
       {open ? (

@@ -2,7 +2,7 @@ import type { ReactNode } from 'react'
 import { classNames } from '@/lib/format/class-names'
 
 const word =
-  'inline-flex min-h-6 min-w-6 items-center justify-center rounded px-1 font-mono text-[11px] whitespace-nowrap'
+  'inline-flex min-h-[24px] min-w-[24px] items-center justify-center rounded px-1 font-mono text-[11px] whitespace-nowrap'
 
 /** A few quiet words of which one holds; the way plots are asked for another unit or axis. */
 export function Choice<Value extends string | number | boolean>({

@@ -18,7 +18,7 @@ export interface StackFrame {
 }
 
 /** A view that can be drawn, whatever came in from the address bar. */
-export function soundSpan(view: Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency'>): [number, number] {
+function soundSpan(view: Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency'>): [number, number] {
   const to = Number.isFinite(view.toHz) && view.toHz > 0 ? view.toHz : 1000
   const least = view.logFrequency ? to * 1e-9 : 0
   const from = Number.isFinite(view.fromHz) ? Math.max(view.fromHz, least) : to / 100

@@ -13,7 +13,7 @@ import type { StackView } from '../view'
 
 type Shown = Pick<StackView, 'fromHz' | 'toHz'>
 
-export const frequencyLimits = (scale: Scale): DomainLimits =>
+const frequencyLimits = (scale: Scale): DomainLimits =>
   scale.kind === 'log'
     ? { least: 1e-6, most: 1e9, smallest: 1.01 }
     : { least: 0, most: 1e9, smallest: Math.max(1e-6, scale.domain[1] * 1e-4) }

@@ -91,7 +91,7 @@ function edgePlace(hz: number, analog: Trace, frame: StackFrame): HandlePlace {
   return { x, y: Math.min(bottom - 1, Math.max(top + 1, y)), outside, level: null, angle: 0 }
 }
 
-const EDGE_CLEARANCE_PIXELS = 44
+const FLAG_CLEARANCE_PIXELS = 30
 const GRIP_CLEARANCE_PIXELS = 14
 
 /** On its level, in the middle of the band it is about and out of the way of the edges. */
@@ -99,11 +99,19 @@ function levelPlace(db: number, spec: DesignSpec, frame: StackFrame, which: 'pas
   const box = frame.layout.plots.magnitude
   const [left, right] = widestBand(spec, frame, which)
   const y = Math.min(box.bottom - 2, frame.y.magnitude.toPixel(db))
-  const clear = right - left > 2 * EDGE_CLEARANCE_PIXELS
-  const x = clear
-    ? Math.min(Math.max((left + right) / 2, left + EDGE_CLEARANCE_PIXELS), right - EDGE_CLEARANCE_PIXELS)
-    : (left + right) / 2
+  const { how } = spec
+  const heldAt = how.method === 'bilinear' && typeof how.hold === 'number' ? frame.x.toPixel(how.hold) : null
+  const x = levelX(left, right, heldAt)
   return { x, y, outside: db < frame.y.magnitude.domain[0] ? 'below' : null, level: { left, right, y }, angle: 0 }
+}
+
+/** The middle of a band, or beside the held frequency's flag when that stands there. */
+function levelX(left: number, right: number, heldAt: number | null): number {
+  const middle = (left + right) / 2
+  if (heldAt === null || Math.abs(middle - heldAt) > FLAG_CLEARANCE_PIXELS) return middle
+  const before = heldAt - FLAG_CLEARANCE_PIXELS
+  const after = heldAt + FLAG_CLEARANCE_PIXELS
+  return before - left > right - after ? before : after
 }
 
 /** Pixels of the widest visible pass or stop band, by the edges alone. */

@@ -178,7 +178,9 @@ function Handle({
       className={classNames(
         'group absolute -translate-x-1/2 -translate-y-1/2 touch-none rounded select-none focus-visible:z-10',
         handle.orientation === 'horizontal' ? 'cursor-ew-resize' : 'cursor-ns-resize',
-        isWide ? 'h-6 w-10 pointer-coarse:h-10 pointer-coarse:w-14' : 'size-6 pointer-coarse:size-10',
+        isWide
+          ? 'h-[26px] w-[42px] pointer-coarse:h-[40px] pointer-coarse:w-[56px]'
+          : 'size-[26px] pointer-coarse:size-[40px]',
         isHeld && 'z-10',
       )}
       style={at}

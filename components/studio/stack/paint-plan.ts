@@ -123,7 +123,7 @@ function ticksOf(plot: PlotId, frame: StackFrame, view: StackView): Tick[] {
       return valueTicks(
         view.departureUnit === 'db' ? 'decibels' : view.departureUnit === 'degrees' ? 'degrees' : 'plain',
         scale,
-        22,
+        20,
       )
   }
 }

@@ -39,7 +39,7 @@ export function PlotCorners({
           maxWidth: box.right - box.left,
         }}
       >
-        <span className="text-[12px] leading-6 font-medium text-ink">{plotTitle(plot, view, frame)}</span>
+        <span className="text-[12px] leading-[24px] font-medium text-ink">{plotTitle(plot, view, frame)}</span>
         <span className="pointer-events-auto inline-flex flex-wrap gap-x-1 empty:hidden">
           <CornerControls plot={plot} view={view} onView={onView} />
         </span>

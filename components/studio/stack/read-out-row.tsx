@@ -34,7 +34,7 @@ export function ReadOutRow({
   const hz = view.crosshairHz
   const known = traceIds.filter((id) => traces.some((trace) => trace.id === id) || view.hidden.includes(id))
   return (
-    <div role="group" aria-label="Traces" className="flex flex-wrap items-center gap-x-2.5 text-[12px] leading-6">
+    <div role="group" aria-label="Traces" className="flex flex-wrap items-center gap-x-2.5 text-[12px] leading-[24px]">
       <span className="min-w-[19ch] font-mono whitespace-nowrap tabular-nums">
         {hz === null ? (
           <span className="text-pencil">move over the plots to read</span>
@@ -57,10 +57,7 @@ export function ReadOutRow({
             aria-pressed={!hidden}
             title={hidden ? `Show ${label}` : `Hide ${label}; values of the ${plotWords[plot]}`}
             onClick={() => onToggle(id)}
-            className={classNames(
-              'inline-flex min-h-6 items-center gap-1.5 whitespace-nowrap hover:text-ink',
-              hidden ? 'text-pencil/80' : 'text-pencil',
-            )}
+            className="inline-flex min-h-[24px] items-center gap-1.5 whitespace-nowrap hover:text-ink text-pencil"
           >
             <span className={classNames('inline-flex', hidden && 'opacity-40')}>
               <TraceSample id={id} />

@@ -42,7 +42,8 @@ export interface SpecHandle extends HandleValue {
 /** An edge keeps this far below half the rate; the statement takes the rest. */
 const HIGHEST_EDGE_PART = 0.495
 const LEAST_HZ = 1e-6
-const MOST_HZ = 1e9
+/** Edges lie no lower than this part of the rate. */
+const LEAST_PART_OF_RATE = 1e-6
 const APART = 1.001
 
 /** A bound with four digits, up or down to the safe side: no one wants to read 242.42424 Hz. */
@@ -82,11 +83,12 @@ function frequencyUnder(point: Point, grab: Grab, frame: StackFrame, fine: boole
 function edgeHandles(spec: DesignSpec): SpecHandle[] {
   const { edgesHz } = spec.analog
   const highest = highestEdgeHz(spec.sampleRateHz)
+  const lowest = Math.max(LEAST_HZ, shortened(spec.sampleRateHz * LEAST_PART_OF_RATE * 1.001, 1))
   return edgesHz.map((value, index) => {
     const other = edgesHz.length < 2 ? null : (edgesHz[1 - index] ?? null)
     const bounds = {
       value,
-      min: index === 1 && other !== null ? shortened(other * APART, 1) : LEAST_HZ,
+      min: index === 1 && other !== null ? shortened(other * APART, 1) : lowest,
       max: index === 0 && other !== null ? Math.min(shortened(other / APART, -1), highest) : highest,
     }
     const label = other === null ? 'Corner frequency' : index === 0 ? 'Lower band edge' : 'Upper band edge'
@@ -182,7 +184,11 @@ function foldHandle(spec: DesignSpec): SpecHandle {
   const { sampleRateHz, how, analog } = spec
   const held = how.method === 'bilinear' && typeof how.hold === 'number' ? how.hold : 0
   const least = shortened(Math.max(...analog.edgesHz, held) / HIGHEST_EDGE_PART, 1)
-  const bounds = { value: sampleRateHz, min: least, max: MOST_HZ }
+  const bounds = {
+    value: sampleRateHz,
+    min: least,
+    max: shortened(Math.min(...analog.edgesHz) / LEAST_PART_OF_RATE / 1.001, -1),
+  }
   return {
     ...bounds,
     id: 'fold',

@@ -15,7 +15,7 @@ const GRAB_PIXELS = 7
 const SLOPE_FROM_DB = -6
 
 /** True where a pointer is on the analog slope: steep enough below the pass band, above the floor. */
-export function isOnSlope(slope: Float64Array, point: Point, frame: StackFrame): boolean {
+function isOnSlope(slope: Float64Array, point: Point, frame: StackFrame): boolean {
   const { bottom, left, right } = frame.layout.plots.magnitude
   const from = frame.y.magnitude.toPixel(SLOPE_FROM_DB)
   if (point.y < from || point.y > bottom || point.x < left || point.x > right) return false

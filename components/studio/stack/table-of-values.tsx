@@ -17,7 +17,7 @@ export function TableOfValues({
   const [open, setOpen] = useState(false)
   return (
     <details className="text-[12px]" onToggle={(event) => setOpen(event.currentTarget.open)}>
-      <summary className="w-fit min-h-6 cursor-pointer font-mono text-[11px] leading-6 text-pencil hover:text-ink">
+      <summary className="w-fit min-h-[24px] cursor-pointer font-mono text-[11px] leading-[24px] text-pencil hover:text-ink">
         table of values
       </summary>
       {open ? <Table traces={traces} view={view} frame={frame} /> : null}
