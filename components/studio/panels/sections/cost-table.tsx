@@ -3,16 +3,22 @@ import type { NamedCost } from './structures'
 /** Work and memory a sample takes in each structure. */
 export function CostTable({ costs }: { costs: readonly NamedCost[] }) {
   return (
-    <table className="text-[13px]">
+    <table className="self-start text-[13px]">
       <caption className="sr-only">Cost of a sample in each structure</caption>
       <thead>
-        <tr className="border-b border-graph-strong text-pencil [&>th]:py-1 [&>th]:pl-5 [&>th]:text-right [&>th]:font-normal">
-          <th scope="col" className="[&]:pl-0 [&]:text-left">
+        <tr className="border-b border-graph-strong text-pencil text-right [&>th]:py-1 [&>th]:font-normal">
+          <th scope="col" className="text-left">
             Each sample
           </th>
-          <th scope="col">multiplies</th>
-          <th scope="col">adds</th>
-          <th scope="col">state words</th>
+          <th scope="col" className="pl-5">
+            multiplies
+          </th>
+          <th scope="col" className="pl-5">
+            adds
+          </th>
+          <th scope="col" className="pl-5">
+            state words
+          </th>
         </tr>
       </thead>
       <tbody>

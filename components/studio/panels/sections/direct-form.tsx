@@ -24,7 +24,7 @@ export function DirectForm({ ratio, sections }: { ratio: Ratio; sections: readon
       <p className="text-[13px] text-pencil">
         Rounded to doubles it strays from the design by at most{' '}
         <span className="numeric text-ink">{formatNumber(worstDeviationDb, 3)}&#8201;dB</span>; it is stable.{' '}
-        <span className="numeric">{directEquation}</span>
+        <span className="numeric block">{directEquation}</span>
       </p>
       <NumberTable
         label="Coefficients of b/a"

@@ -12,10 +12,10 @@ export function NumberTable({
   rows: readonly { readonly name: string; readonly values: readonly number[] }[]
 }) {
   return (
-    <ScrollRegion label={label} className="max-h-80 border-y border-graph-strong">
+    <ScrollRegion label={label} className="max-h-80 max-w-fit border-y border-graph-strong">
       <table className="numeric text-[12.5px]">
         <thead className="sticky top-0 bg-paper">
-          <tr className="text-pencil [&>th]:py-1 [&>th]:pr-5 [&>th]:text-left [&>th]:font-normal">
+          <tr className="text-pencil [&>th]:py-1 [&>th]:pr-4 [&>th]:text-left [&>th]:font-normal">
             <th scope="col">
               <span className="sr-only">Place</span>
             </th>
@@ -28,8 +28,8 @@ export function NumberTable({
         </thead>
         <tbody>
           {rows.map(({ name, values }) => (
-            <tr key={name} className="border-t border-graph [&>td]:py-0.5 [&>td]:pr-5 [&>td]:whitespace-nowrap">
-              <th scope="row" className="py-0.5 pr-5 text-left font-normal whitespace-nowrap text-pencil">
+            <tr key={name} className="border-t border-graph [&>td]:py-0.5 [&>td]:pr-4 [&>td]:whitespace-nowrap">
+              <th scope="row" className="py-0.5 pr-4 text-left font-normal whitespace-nowrap text-pencil">
                 {name}
               </th>
               {values.map((value, column) => (

@@ -8,6 +8,7 @@ import { classNames } from '@/lib/format/class-names'
 import { formatHz } from '@/lib/format/quantity'
 import type { Versions } from '../../derive'
 import { Choice } from '../../stack/choice'
+import { useOnPage } from '../chart/use-on-page'
 import { useQuiet } from '../chart/use-quiet'
 import { CascadeTable } from './cascade-table'
 import { CopyButton } from './copy-button'
@@ -30,7 +31,11 @@ const scales = [
 ] as const
 
 /** The stated version as it would be run: its cascade, the ratio b/a, the parallel form where there is one, and what each costs. */
-export function SectionsPanel({ spec, versions: latest }: { spec: DesignSpec; versions: Versions }) {
+export function SectionsPanel(props: { spec: DesignSpec; versions: Versions }) {
+  return useOnPage() ? <StatedStructures {...props} /> : null
+}
+
+function StatedStructures({ spec, versions: latest }: { spec: DesignSpec; versions: Versions }) {
   const versions = useQuiet(latest)
   const [choice, setChoice] = useState<StructureChoice>(usualStructure)
   const stated = versions.digital.find((version) => version.stated)

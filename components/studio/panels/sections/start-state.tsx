@@ -10,7 +10,7 @@ export function StartState({ start }: { start: Float64Array | null }) {
     <>
       <p className="text-[13px] text-pencil">
         State after an endless input of 1; times the first sample, it starts a run without a transient.{' '}
-        <span className="numeric">y = b0·x + s₁, s₁ ← b1·x − a1·y + s₂, s₂ ← b2·x − a2·y</span>
+        <span className="numeric block">y = b0·x + s₁, s₁ ← b1·x − a1·y + s₂, s₂ ← b2·x − a2·y</span>
       </p>
       <NumberTable
         label="Initial state of each section"

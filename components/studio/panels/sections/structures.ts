@@ -13,7 +13,7 @@ import { cascadeCost, directFormCost, parallelCost, type Cost } from './cost'
 import { sectionFacts } from './section-facts'
 
 /** b/a that strays further from the design than this isn't handed out. */
-export const RATIO_LIMIT_DB = 0.01
+const RATIO_LIMIT_DB = 0.01
 
 export interface StructureChoice {
   readonly order: SectionOrder
@@ -30,7 +30,7 @@ export type Ratio =
 
 /** A digital version in each of its structures, with what each costs a sample. */
 export function structuresOf(filter: DigitalFilter, choice: StructureChoice) {
-  // The design's own sections are those of the usual structure; the same numbers are handed over.
+  // The design's own sections are those of the usual structure.
   const isUsual = choice.order === usualStructure.order && choice.scale === usualStructure.scale
   const sections = isUsual ? filter.sections : toSections(filter, choice)
   return { sections, facts: sectionFacts(filter, sections), start: startOf(sections) }

@@ -2,8 +2,12 @@ import type { Section } from '@/dsp'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import type { ZeroFact } from './section-facts'
 
-/** Every digit that a double needs to come back as itself, with a true minus sign. */
-export const fullDigits = (value: number): string => String(value).replace(/-/g, '−')
+/** Every digit that a double needs to come back as itself, with a true minus sign; small ones with a power of ten. */
+export function fullDigits(value: number): string {
+  const magnitude = Math.abs(value)
+  const digits = magnitude > 0 && magnitude < 1e-3 ? value.toExponential() : String(value)
+  return digits.replace(/-/g, '−')
+}
 
 /** The difference equations that the coefficients belong to; the sign of the feedback is part of them. */
 export const sectionEquation = 'y = b0·x + b1·x₁ + b2·x₂ − a1·y₁ − a2·y₂'

@@ -28,14 +28,22 @@ export function FiguresTable({
       <table className="w-full text-[13px]">
         <caption className="pb-1 text-left text-pencil">Step response in figures</caption>
         <thead>
-          <tr className="border-b border-graph-strong text-right text-pencil [&>th]:py-1 [&>th]:pl-3 [&>th]:align-bottom [&>th]:font-normal">
-            <th scope="col" className="text-left [&]:pl-0">
+          <tr className="border-b border-graph-strong text-right text-pencil [&>th]:py-1 [&>th]:font-normal [&>th]:whitespace-nowrap">
+            <th scope="col" className="text-left">
               Version
             </th>
-            <th scope="col">overshoot</th>
-            <th scope="col">rise 10–90 %</th>
-            <th scope="col">settled to ±{tolerancePercent} %</th>
-            <th scope="col">final value</th>
+            <th scope="col" className="pl-2.5">
+              overshoot
+            </th>
+            <th scope="col" className="pl-2.5">
+              rise 10–90&#8201;%
+            </th>
+            <th scope="col" className="pl-2.5">
+              settled ±{tolerancePercent}&#8201;%
+            </th>
+            <th scope="col" className="pl-2.5">
+              final value
+            </th>
           </tr>
         </thead>
         <tbody>
@@ -54,7 +62,9 @@ export function FiguresTable({
               <td className={cell}>
                 {figures.settlingSeconds === null ? 'not seen' : formatSeconds(figures.settlingSeconds, 4)}
               </td>
-              <td className={cell}>{figures.returnsToZero ? '0' : formatNumber(figures.finalValue, 5)}</td>
+              <td className={cell}>
+                {Math.abs(figures.finalValue) < 1e-9 ? '0' : formatNumber(figures.finalValue, 5)}
+              </td>
             </tr>
           ))}
           {refused.map(({ id, label, message }) => (
@@ -65,7 +75,7 @@ export function FiguresTable({
                   {label}
                 </span>
               </th>
-              <td colSpan={4} className="py-1 pl-3">
+              <td colSpan={4} className="py-1 pl-2.5">
                 {message}
               </td>
             </tr>
@@ -75,11 +85,11 @@ export function FiguresTable({
       <p className="max-w-prose pt-1.5 text-[13px] text-pencil">
         Digital versions are judged by their samples, one every period.{' '}
         {returnsToZero
-          ? `This response returns to zero: it has no overshoot or rise, and ±${tolerancePercent} % is a part of its largest swing.`
+          ? `This response returns to zero or near it: it has no overshoot or rise, and ±${tolerancePercent} % is a part of its largest swing.`
           : `±${tolerancePercent} % is a part of the final value.`}
       </p>
     </ScrollRegion>
   )
 }
 
-const cell = 'numeric py-1 pl-3 text-right whitespace-nowrap'
+const cell = 'numeric py-1 pl-2.5 text-right whitespace-nowrap'

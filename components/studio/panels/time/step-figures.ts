@@ -9,7 +9,10 @@ import { largest, type StepCurve } from './step-curve'
 
 export interface StepFigures {
   readonly finalValue: number
-  /** The response ends at zero, so there is no final value to refer to: the settling band is a part of the largest swing. */
+  /**
+   * The response ends at zero, or so near it (a stop band's floor) that there is no final value to refer to: the settling band is then a
+   * part of the largest swing.
+   */
   readonly returnsToZero: boolean
   /** Part of the final value by which the response exceeds it; 0 when it never does, null when it returns to zero. */
   readonly overshoot: number | null
@@ -20,11 +23,14 @@ export interface StepFigures {
   readonly settlingSeconds: number | null
 }
 
+/** No response that means its final value swings to twenty times it. */
+const NEAR_ZERO = 0.05
+
 /** @param tolerance half the settling band, as a part of the final value (0.02 for ±2 %) */
 export function stepFigures(curve: StepCurve, tolerance: number): StepFigures {
   const { finalValue } = curve
   const most = largest(curve.values)
-  const returnsToZero = Math.abs(finalValue) <= 1e-6 * most
+  const returnsToZero = Math.abs(finalValue) <= NEAR_ZERO * most
   const size = returnsToZero ? most : Math.abs(finalValue)
   const peak = returnsToZero ? null : peakOf(curve)
   return {

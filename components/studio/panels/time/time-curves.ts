@@ -6,7 +6,7 @@ import type { Versions } from '../../derive'
 export type TimeKind = 'impulse' | 'step'
 
 /** The analog response over a span of time, as finely as it is drawn. */
-export interface AnalogCurve {
+interface AnalogCurve {
   readonly timesSeconds: Float64Array
   readonly values: Float64Array
   /** Area of the impulse that passes straight through at t = 0; it can't be drawn to scale. */
@@ -26,7 +26,7 @@ const POINTS_PER_SWING = 24
 const LEAST_POINTS = 1024
 const MOST_POINTS = 1 << 16
 /** No more samples than this are computed for a picture. */
-export const MOST_SAMPLES = 1 << 22
+const MOST_SAMPLES = 1 << 22
 
 const respond = (kind: TimeKind, filter: AnyFilter, grid: Parameters<typeof stepResponse>[1]) =>
   kind === 'impulse' ? impulseResponse(filter, grid) : stepResponse(filter, grid)
@@ -60,10 +60,25 @@ export function digitalSamples(
   const { sampleRateHz } = filter
   const first = Math.max(0, Math.floor(from * sampleRateHz) - 1)
   const end = Math.min(MOST_SAMPLES, Math.max(first, Math.ceil(to * sampleRateHz)) + 2)
-  const { values } = respond(kind, filter, { count: end, sampleRateHz })
-  const shown = values.slice(first)
+  const shown = responseFromStart(kind, filter, end).slice(first, end)
   if (kind === 'impulse') for (let k = 0; k < shown.length; k++) shown[k] = (shown[k] ?? 0) * sampleRateHz
   return { id, first, sampleRateHz, values: shown, stated }
+}
+
+/** A recursion can only begin at n = 0: panning and zooming must not run it again and again. */
+const kept = new WeakMap<DigitalFilter, Partial<Record<TimeKind, Float64Array>>>()
+
+function responseFromStart(kind: TimeKind, filter: DigitalFilter, count: number): Float64Array {
+  const known = kept.get(filter) ?? {}
+  const before = known[kind]
+  if (before && before.length >= count) return before
+  // Some more than asked, so that the next few steps outwards find it done.
+  const { values } = respond(kind, filter, {
+    count: Math.min(MOST_SAMPLES, 2 * count),
+    sampleRateHz: filter.sampleRateHz,
+  })
+  kept.set(filter, { ...known, [kind]: values })
+  return values
 }
 
 export function timeCurves(versions: Versions, hidden: readonly TraceId[], kind: TimeKind, span: Span) {

@@ -10,6 +10,7 @@ import { classNames } from '@/lib/format/class-names'
 import { formatNumber, formatSeconds } from '@/lib/format/quantity'
 import type { Versions } from '../../derive'
 import { Choice } from '../../stack/choice'
+import { useOnPage } from '../chart/use-on-page'
 import { useQuiet } from '../chart/use-quiet'
 import { DataTable } from '../chart/data-table'
 import { FiguresTable, type VersionFigures } from './figures-table'
@@ -29,7 +30,11 @@ const kinds = [
 const tolerances = [1, 2, 5].map((value) => ({ value, word: `±${value}\u2009%`, name: `Settled within ±${value} %` }))
 
 /** Impulse and step response of the analog prototype and its digital versions, with what is said of them in figures. */
-export function TimePanel({ spec, versions: latest }: { spec: DesignSpec; versions: Versions }) {
+export function TimePanel(props: { spec: DesignSpec; versions: Versions }) {
+  return useOnPage() ? <TimeResponses {...props} /> : null
+}
+
+function TimeResponses({ spec, versions: latest }: { spec: DesignSpec; versions: Versions }) {
   const versions = useQuiet(latest)
   const sampleRateHz = versions.digital[0]?.filter.sampleRateHz ?? spec.sampleRateHz
   const [kind, setKind] = useState<TimeKind>('step')
@@ -81,14 +86,14 @@ export function TimePanel({ spec, versions: latest }: { spec: DesignSpec; versio
   return (
     <div
       className={classNames(
-        'grid gap-x-8 gap-y-4 lg:grid-cols-[minmax(0,1fr)_minmax(0,30rem)]',
+        'grid gap-x-8 gap-y-4 lg:grid-cols-[minmax(0,1fr)_minmax(0,32rem)]',
         versions !== latest && 'opacity-50',
       )}
     >
       <div className="flex min-w-0 flex-col gap-1">
         <div className="flex flex-wrap items-center gap-x-4 gap-y-1">
           <span className="inline-flex items-center gap-1 text-[13px]">
-            Response to an{' '}
+            Response to a unit{' '}
             <Choice label="Response to" options={kinds} value={kind} onChange={(next) => setKind(next)} />
           </span>
           <span className="inline-flex items-center gap-1" role="group" aria-label="Time axis">

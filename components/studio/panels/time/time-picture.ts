@@ -21,7 +21,7 @@ export interface TimeFrame {
 const AXIS_PIXELS = 22
 const LEFT_PIXELS = 58
 
-export const plotHeight = (width: number): number => (width < 560 ? 230 : 300)
+const plotHeight = (width: number): number => (width < 560 ? 230 : 300)
 
 export function timeFrame(width: number, span: Span, curves: TimeCurves): TimeFrame {
   const height = plotHeight(width)

@@ -33,12 +33,11 @@ export function VersionKeys({
             aria-pressed={!isHidden}
             title={isHidden ? `Show ${label}` : `Hide ${label}`}
             onClick={() => onToggle(id)}
-            className={classNames(
-              'inline-flex min-h-6 items-center gap-1.5 rounded hover:text-ink',
-              isHidden && 'opacity-50',
-            )}
+            className="inline-flex min-h-6 items-center gap-1.5 rounded hover:text-ink"
           >
-            <TraceSample id={id} />
+            <span className={isHidden ? 'opacity-40' : undefined}>
+              <TraceSample id={id} />
+            </span>
             <span className={classNames('text-pencil', stated && 'font-semibold', isHidden && 'line-through')}>
               {label}
             </span>

@@ -1,0 +1,121 @@
+import {
+  DesignError,
+  lowestRate,
+  rateSweep,
+  type AnalogSpec,
+  type DepartureBudget,
+  type DesignMethod,
+  type DesignSpec,
+  type MethodName,
+} from '@/dsp'
+import { methodNames } from '@/lib/designs/words'
+import { methodAsShown } from '../../derive'
+import { statedRate } from './stated-rate'
+
+/*
+ * What the panel asks of the numbers. The answers don't depend on the rate that the design runs at: pulling that line asks nothing.
+ */
+
+/** One analog prototype by every method, judged up to one frequency. */
+export interface Subject {
+  readonly analog: AnalogSpec
+  readonly methods: readonly DesignMethod[]
+  readonly upToHz: number
+}
+
+export interface SweepQuestion extends Subject {
+  readonly removeDelay: boolean
+  readonly ratesHz: Float64Array
+}
+
+export interface LowestQuestion extends Subject {
+  readonly budget: DepartureBudget
+  readonly searchHz: readonly [number, number]
+}
+
+export const departureUnits = ['db', 'degrees', 'microseconds'] as const
+export type DepartureUnit = (typeof departureUnits)[number]
+
+/** The worst departure at each rate; NaN where the method refuses the rate. */
+export type RateCurve = { readonly id: MethodName; readonly ratesHz: Float64Array } & Readonly<
+  Record<DepartureUnit, Float64Array>
+>
+
+export type LowestRate =
+  { readonly id: MethodName; readonly sampleRateHz: number } | { readonly id: MethodName; readonly refused: string }
+
+export const subjectOf = (spec: DesignSpec, upToHz: number): Subject => ({
+  analog: spec.analog,
+  methods: methodNames.map((id) => methodAsShown(spec, id)),
+  upToHz,
+})
+
+export const highestEdge = (analog: AnalogSpec): number => Math.max(...analog.edgesHz)
+
+/** Just above twice the highest frequency that matters: no rate below it can be judged. */
+const leastRate = ({ analog, upToHz }: Pick<Subject, 'analog' | 'upToHz'>) => 2 * Math.max(highestEdge(analog), upToHz)
+
+const SEARCHED_MULTIPLE = 1000
+const DRAWN_MULTIPLE = 100
+
+/** The rates among which the lowest is looked for. */
+export const searchSpan = (subject: Pick<Subject, 'analog' | 'upToHz'>): readonly [number, number] => [
+  leastRate(subject) * 1.0005,
+  Math.max(SEARCHED_MULTIPLE * highestEdge(subject.analog), 2 * leastRate(subject)),
+]
+
+/** The rates that are drawn: wide enough for the rate the design runs at. */
+export function drawnSpan(
+  subject: Pick<Subject, 'analog' | 'upToHz'>,
+  sampleRateHz: number,
+): readonly [number, number] {
+  const least = leastRate(subject)
+  const usual = Math.max(DRAWN_MULTIPLE * highestEdge(subject.analog), 4 * least)
+  return [least * 1.03, Math.max(usual, widened(sampleRateHz * 1.2))]
+}
+
+/** Grown in octaves, so that a rate being pulled doesn't shift the axis all the time. */
+const widened = (hertz: number): number => 2 ** Math.ceil(Math.log2(hertz))
+
+const SWEEP_POINTS = 121
+
+/** Evenly spaced on the logarithmic axis. */
+export function sweepRates([from, to]: readonly [number, number]): Float64Array {
+  return Float64Array.from({ length: SWEEP_POINTS }, (_, k) => from * (to / from) ** (k / (SWEEP_POINTS - 1)))
+}
+
+/** NaN where the method refuses the rate. */
+export function askSweep({ ratesHz, ...question }: SweepQuestion): readonly RateCurve[] {
+  const { methods } = rateSweep({ ...question, ratesHz: [...ratesHz] })
+  const filled = (values: readonly (number | null)[]) => Float64Array.from(values, (value) => value ?? Number.NaN)
+  return methods.flatMap(({ db, degrees, microseconds }, index) => {
+    const how = question.methods[index]
+    if (!how) return []
+    return { id: how.method, ratesHz, db: filled(db), degrees: filled(degrees), microseconds: filled(microseconds) }
+  })
+}
+
+/** The lowest rate as one would state it: rounded up, which dsp vouches for, since its answer holds for higher rates too. */
+export function askLowest({ analog, upToHz, budget, searchHz }: LowestQuestion, how: DesignMethod): LowestRate {
+  const found = lowestRate({ analog, how, upToHz, budget, searchHz })
+  if ('refused' in found) return { id: how.method, refused: found.refused }
+  return { id: how.method, sampleRateHz: statedRate(found.sampleRateHz) }
+}
+
+/** Why a departure can't be judged up to a frequency, or null when it can. */
+export function reasonAgainst(analog: AnalogSpec, upToHz: number): string | null {
+  try {
+    rateSweep({ analog, methods: [], ratesHz: [], upToHz, removeDelay: false })
+    return null
+  } catch (error) {
+    if (error instanceof DesignError) return error.message
+    throw error
+  }
+}
+
+/** The highest edge; where that lies below the band in use (the stop edge of a high-pass), the octave above it that doesn't. */
+export function usualUpTo(analog: AnalogSpec): number {
+  let hertz = highestEdge(analog)
+  for (let octave = 0; octave < 12 && reasonAgainst(analog, hertz) !== null; octave++) hertz *= 2
+  return hertz
+}

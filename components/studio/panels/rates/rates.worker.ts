@@ -1,0 +1,4 @@
+import { expose } from 'comlink'
+import { ratesService } from './rates-service'
+
+expose(ratesService())
