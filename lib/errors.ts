@@ -104,7 +104,7 @@ const codeOf = (value: unknown): string =>
   typeof value === 'object' && value !== null && 'code' in value && typeof value.code === 'string' ? value.code : ''
 
 /** SQLSTATE class 08 and 57P0x, the sockets' own codes, and the pool's words for a wait in vain. */
-export function isDatabaseAway(thrown: unknown): boolean {
+function isDatabaseAway(thrown: unknown): boolean {
   for (const one of causes(thrown)) {
     const code = codeOf(one)
     if (/^(08...|57P0.|53300|ECONNREFUSED|ECONNRESET|ENOTFOUND|EPIPE|ETIMEDOUT)$/.test(code)) return true

@@ -15,7 +15,11 @@ export default async function AccountSettingsPage() {
   const session = await requireSession('/account')
   const sessions = await listSessions(session.account.id)
   return (
-    <SignedInPage crumbs={[{ label: 'Account' }]} label={session.account.label} signOut={signOut}>
+    <SignedInPage
+      crumbs={[{ label: 'Projects', href: '/projects' }, { label: 'Account' }]}
+      label={session.account.label}
+      signOut={signOut}
+    >
       <h1 className="text-[26px]">Account</h1>
       <p className="mt-2 text-[14px] text-pencil">
         {session.account.label}, {session.account.email}

@@ -21,7 +21,11 @@ export default async function TeamPage() {
   const teams = await listTeams(access)
   const members = await Promise.all(teams.map(async (team) => ({ team, people: await listMembers(access, team.id) })))
   return (
-    <SignedInPage crumbs={[{ label: 'Team' }]} label={session.account.label} signOut={signOut}>
+    <SignedInPage
+      crumbs={[{ label: 'Projects', href: '/projects' }, { label: 'Team' }]}
+      label={session.account.label}
+      signOut={signOut}
+    >
       <h1 className="text-[26px]">Team</h1>
       {members.map(({ team, people }) => (
         <section key={team.id} aria-labelledby={`team-${team.id}`} className="mt-8">

@@ -20,9 +20,6 @@ export function SignedInPage({
   return (
     <>
       <Header crumbs={crumbs}>
-        <Link href="/projects" className={buttonClass('quiet')}>
-          Projects
-        </Link>
         <Link href="/team" className={buttonClass('quiet')}>
           Team
         </Link>

@@ -36,11 +36,6 @@ export async function findPasswordHash(accountId: string, on: Executor = databas
   return row?.passwordHash ?? null
 }
 
-export async function findAccount(accountId: string, on: Executor = database()): Promise<AccountRow | null> {
-  const [row] = await on.select(accountColumns).from(accounts).where(eq(accounts.id, accountId))
-  return row ?? null
-}
-
 export async function findAccountByEmail(email: string, on: Executor = database()): Promise<AccountRow | null> {
   const [row] = await on.select(accountColumns).from(accounts).where(eq(accounts.email, email))
   return row ?? null

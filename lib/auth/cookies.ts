@@ -8,7 +8,7 @@ import { env } from '@/lib/env'
  */
 
 const isSecure = () => env().APP_ORIGIN.startsWith('https:')
-export const sessionCookieName = () => (isSecure() ? '__Host-polewright' : 'polewright')
+const sessionCookieName = () => (isSecure() ? '__Host-polewright' : 'polewright')
 
 export async function readSessionCookie(): Promise<string | null> {
   const value = (await cookies()).get(sessionCookieName())?.value

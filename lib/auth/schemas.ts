@@ -5,7 +5,7 @@ import { z } from 'zod'
  */
 
 /** Room for any sentence, and an end to how much work one request can make. */
-export const PASSWORD_MAX_BYTES = 256
+const PASSWORD_MAX_BYTES = 256
 export const PASSWORD_MIN_LENGTH = 8
 
 const bytes = (text: string) => new TextEncoder().encode(text).length
@@ -65,9 +65,3 @@ export const resetSchema = z.strictObject({
 export const changePasswordSchema = z.strictObject({ current: password, password: newPassword })
 
 export const endSessionSchema = z.strictObject({ session: z.string().regex(/^[0-9a-f]{64}$/) })
-
-export type SignUpInput = z.input<typeof signUpSchema>
-export type SignInInput = z.input<typeof signInSchema>
-export type AskResetInput = z.input<typeof askResetSchema>
-export type ResetInput = z.input<typeof resetSchema>
-export type ChangePasswordInput = z.input<typeof changePasswordSchema>

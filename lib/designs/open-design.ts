@@ -14,17 +14,13 @@ export function designRecord({ id, drawingNumber, title, projectId, projectName 
   return { id, drawingNumber, title, projectId, projectName }
 }
 
-export function viewerOf(session: ValidSession, design: DesignRow): Viewer {
+function viewerOf(session: ValidSession, design: DesignRow): Viewer {
   const { id, label } = session.account
   return { accountId: id, label, role: design.role, mayEdit: mayDo(design.role, 'version.save') }
 }
 
 /** The viewer's own draft; before the first version, everybody starts from what the design was opened with. */
-export async function openDraft(
-  session: ValidSession,
-  design: DesignRow,
-  hasVersions: boolean,
-): Promise<DraftRecord | null> {
+async function openDraft(session: ValidSession, design: DesignRow, hasVersions: boolean): Promise<DraftRecord | null> {
   const own = await findDraft(accessFor(session, 'draft.save'), design.id)
   if (own || hasVersions) return own
   return { spec: design.startingSpec, parentNumber: null, revision: 0, updatedAt: new Date().toISOString() }

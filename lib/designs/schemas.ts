@@ -9,8 +9,8 @@ import { singleLine } from '@/lib/auth/schemas'
 const id = z.uuid()
 const versionNumber = z.int().min(1).max(1_000_000)
 
-export const projectName = singleLine('a name', 120)
-export const designTitle = singleLine('a title', 120)
+const projectName = singleLine('a name', 120)
+const designTitle = singleLine('a title', 120)
 
 export const createProjectSchema = z.strictObject({
   teamId: id,
@@ -44,6 +44,3 @@ export const draftSchema = z.strictObject({
 })
 
 export const designParamsSchema = z.strictObject({ designId: id })
-
-export type CreateProjectInput = z.input<typeof createProjectSchema>
-export type CreateDesignInput = z.input<typeof createDesignSchema>

@@ -1,9 +1,11 @@
 import { readFileSync } from 'node:fs'
 import { createHash } from 'node:crypto'
+import { generateDrizzleJson, generateMigration } from 'drizzle-kit/api'
 import pg from 'pg'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { z } from 'zod'
 import { migrateDatabase } from '@/db/migrate'
+import * as schema from '@/db/schema'
 import { createEmptyDatabase, type TestDatabase } from '../helpers/database'
 
 const journal = z
@@ -17,6 +19,18 @@ describe('the journal of migrations', () => {
       expect(entry.idx).toBe(at)
       expect(entry.when).toBeGreaterThan(journal[at - 1]?.when ?? 0)
     })
+  })
+})
+
+describe('the newest snapshot', () => {
+  it('is the schema as written: no migration was forgotten', async () => {
+    const last = String(journal.length - 1).padStart(4, '0')
+    const snapshot = JSON.parse(readFileSync(`drizzle/meta/${last}_snapshot.json`, 'utf8')) as ReturnType<
+      typeof generateDrizzleJson
+    >
+    expect(await generateMigration(snapshot, generateDrizzleJson(schema, snapshot.id))).toEqual([])
+    const { accounts: _, ...less } = schema
+    expect(await generateMigration(snapshot, generateDrizzleJson(less, snapshot.id))).not.toEqual([])
   })
 })
 
