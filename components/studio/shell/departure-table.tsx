@@ -122,7 +122,7 @@ export function DepartureTable({
                 µs
               </th>
               <th scope="col" className="pl-2 text-right">
-                trusted
+                trusted to
               </th>
             </tr>
           </thead>
@@ -154,7 +154,7 @@ export function DepartureTable({
                 <td className={cell(row.worst.degrees <= budget.phaseDegrees)}>{formatFixed(row.worst.degrees, 2)}</td>
                 <td className="numeric pl-2 text-right">{formatNumber(row.worst.microseconds, 3)}</td>
                 <td className="numeric pl-2 text-right whitespace-nowrap">
-                  {trustText(row)}
+                  {trustText(row).replace(/^to /, '')}
                   {row.closest ? (
                     <span className="block font-text text-[12px] leading-4 text-moss">closest</span>
                   ) : null}

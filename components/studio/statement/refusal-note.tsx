@@ -16,7 +16,7 @@ export function RefusalNote({
     <span
       id={id}
       role="alert"
-      className="mx-2 my-1 inline-flex max-w-[26rem] flex-wrap items-center gap-x-2 gap-y-1 border-l-2 border-vermilion bg-sheet py-0.5 pr-1 pl-2 align-middle font-text text-[13px] leading-5 font-normal text-vermilion"
+      className="mx-2 my-1 inline-flex max-w-[26rem] flex-wrap items-center gap-x-2 gap-y-1 border-l-2 border-vermilion bg-sheet py-0.5 pr-1 pl-2 align-middle whitespace-normal font-text text-[13px] leading-5 font-normal text-vermilion"
     >
       <span>{message}</span>
       {nearestText && onUseNearest ? (

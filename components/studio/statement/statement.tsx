@@ -39,16 +39,16 @@ export function Statement({ store, readOnly }: { store: StudioStore; readOnly: b
         aria-label="Statement"
         className="font-heading text-[22px] leading-[1.55] font-normal text-ink sm:text-[26px]"
       >
-        {parts.map((part, index) => (
-          <Fragment key={part.kind === 'text' ? `text-${index}` : part.key}>
-            <Word
-              part={part}
-              store={store}
-              readOnly={readOnly}
-              refusal={part.kind !== 'text' && part.key === refusedWord ? refusal : null}
-            />
-          </Fragment>
-        ))}
+        {parts.map((part, index) => {
+          if (part.kind === 'text') return <Fragment key={`text-${index}`}>{withoutMark(part.text)}</Fragment>
+          // A full stop or a comma never begins a line: it stays with its word.
+          return (
+            <span key={part.key} className="whitespace-nowrap">
+              <Word part={part} store={store} readOnly={readOnly} refusal={part.key === refusedWord ? refusal : null} />
+              {markOf(parts[index + 1]?.text)}
+            </span>
+          )
+        })}
       </h1>
       {homeless ? (
         <p role="alert" className="border-l-2 border-vermilion pl-2 text-[14px] text-vermilion">
@@ -65,12 +65,11 @@ function Word({
   readOnly,
   refusal,
 }: {
-  part: StatementPart
+  part: Exclude<StatementPart, { kind: 'text' }>
   store: StudioStore
   readOnly: boolean
   refusal: { readonly message: string; readonly nearest?: number | string } | null
 }) {
-  if (part.kind === 'text') return part.text
   const { key } = part
   const { spec, propose, begin, change, commit, cancel, dismissRefusal } = store.getState()
   if (part.kind === 'choice') {
@@ -110,6 +109,10 @@ function Word({
     />
   )
 }
+
+const MARK = /^[.,]/
+const markOf = (following: string | undefined): string => MARK.exec(following ?? '')?.[0] ?? ''
+const withoutMark = (text: string): string => text.replace(MARK, '')
 
 /** The field that dsp would name for a word. */
 function fieldOf(key: WordKey): string {
