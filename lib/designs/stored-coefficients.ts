@@ -82,6 +82,3 @@ export function filtersOf(stored: StoredCoefficients): {
 }
 
 export const canonicalText = (stored: StoredCoefficients): string => JSON.stringify(ordered(stored))
-
-export const canonicalCoefficients = (design: Pick<Design, 'analog' | 'digital'>): string =>
-  canonicalText(coefficientsOf(design))

@@ -1,4 +1,5 @@
 import type { Family, MethodName, ResponseKind } from '@/dsp'
+import type { VersionState } from './types'
 
 /** The product's words for the parts of a design; one place, so that the statement, menus, tables and files say the same. */
 
@@ -34,3 +35,14 @@ export const methodLabels: Record<MethodName, string> = {
 }
 
 export const methodNames = Object.keys(methodWords) as readonly MethodName[]
+
+/** Where a version stands, as screens and files say it. */
+export const stateWords: Record<VersionState, string> = {
+  draft: 'not reviewed',
+  'in-review': 'in review',
+  approved: 'approved',
+  returned: 'returned for changes',
+  released: 'released',
+  superseded: 'superseded',
+  withdrawn: 'withdrawn',
+}

@@ -1,3 +1,4 @@
+import { stateWords } from '@/lib/designs/words'
 import { caution, deviationWords, type CoefficientSet } from './coefficient-set'
 import { signWords } from './equation'
 import { decimalText } from './numbers'
@@ -46,16 +47,6 @@ export function aboutLines(set: CoefficientSet): readonly AboutLine[] {
     { key: 'engine', text: version.engineVersion },
     { key: 'caution', text: caution },
   ]
-}
-
-export const stateWords: Readonly<Record<CoefficientSet['source']['version']['state'], string>> = {
-  draft: 'not reviewed',
-  'in-review': 'in review',
-  approved: 'approved',
-  returned: 'returned for changes',
-  released: 'released',
-  superseded: 'superseded',
-  withdrawn: 'withdrawn',
 }
 
 const numberWords = {

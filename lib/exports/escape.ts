@@ -25,7 +25,7 @@ const transliterations: Readonly<Record<string, string>> = {
 }
 
 /** One line of text: every run of blanks, line ends and control characters becomes one space. */
-export function oneLine(text: string): string {
+function oneLine(text: string): string {
   return text.replace(/[\s\p{Cc}\u2028\u2029]+/gu, ' ').trim()
 }
 

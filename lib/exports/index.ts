@@ -5,15 +5,8 @@ import { jsonFile } from './json'
 import type { ExportFormat, ExportOptions } from './options'
 import { numpyFile, octaveFile } from './scripts'
 
-export {
-  coefficientSet,
-  ratioRefusal,
-  caution,
-  deviationWords,
-  type CoefficientSet,
-  type ExportSource,
-} from './coefficient-set'
-export { exportOptionsFrom, exportQuery, type ExportOptions, type ExportFormat } from './options'
+export { coefficientSet, ratioRefusal, caution, type CoefficientSet, type ExportSource } from './coefficient-set'
+export { exportOptionsFrom, exportQuery, type ExportOptions } from './options'
 
 const writers = {
   json: { extension: 'json', mediaType: 'application/json; charset=utf-8', write: jsonFile },

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { canonicalText } from '@/lib/designs/stored-coefficients'
-import { stateWords, structureWords } from './about'
+import { stateWords } from '@/lib/designs/words'
+import { structureWords } from './about'
 import { caution, type CoefficientSet } from './coefficient-set'
 import { asciiJson } from './escape'
 import { feedbackSigns, numberTypes } from './options'

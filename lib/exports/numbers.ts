@@ -6,7 +6,7 @@
 export type NumberType = 'double' | 'float'
 
 /** −0 reads as a difference where there is none; a coefficient of zero is written 0. */
-export function withoutNegativeZero(value: number): number {
+function withoutNegativeZero(value: number): number {
   return value === 0 ? 0 : value
 }
 

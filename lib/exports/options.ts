@@ -4,11 +4,11 @@ import { checkIdentifier } from './names'
 
 /* What can be chosen about a file. The same schema reads the address of a download and the choices of the hand-over panel. */
 
-export const exportFormats = ['json', 'csv', 'c', 'numpy', 'octave'] as const
-export const structures = ['sections', 'ratio'] as const
+const exportFormats = ['json', 'csv', 'c', 'numpy', 'octave'] as const
+const structures = ['sections', 'ratio'] as const
 export const numberTypes = ['double', 'float'] as const
 export const feedbackSigns = ['subtract', 'add'] as const
-export const literalStyles = ['decimal', 'hexadecimal'] as const
+const literalStyles = ['decimal', 'hexadecimal'] as const
 
 export const exportOptionsSchema = z.strictObject({
   format: z.enum(exportFormats),

@@ -1,5 +1,5 @@
 import fc from 'fast-check'
-import { beforeAll, describe, expect, it } from 'vitest'
+import { beforeAll, describe, expect, it, vi } from 'vitest'
 import { DesignError, frequencyResponse, runFilter } from '@/dsp'
 import { filtersOf } from '@/lib/designs/coefficients'
 import {
@@ -12,6 +12,9 @@ import {
 } from '@/lib/exports'
 import { compileAndRun, doubleFromBits } from '../helpers/c-program'
 import { anySpec, everyKind, lowPass, makesFilter, sourceOf } from '../helpers/export-sources'
+
+// Hundreds of designs; on a busy machine that takes longer than a test usually may.
+vi.setConfig({ testTimeout: 120_000 })
 
 /*
  * The headers are compiled with cc, all of them in one program, and run on their test vectors: once whole, once in two blocks and in

@@ -15,6 +15,9 @@ import { coefficientSetJsonSchema, coefficientSetSchema } from '@/lib/exports/js
 import { filtersOf } from '@/lib/designs/coefficients'
 import { everyKind, lowPass, sourceOf } from '../helpers/export-sources'
 
+// Hundreds of designs; on a busy machine that takes longer than a test usually may.
+vi.setConfig({ testTimeout: 120_000 })
+
 /*
  * Each file is read back by its own format's rules, and every number in it compared bit for bit with the version's own.
  */

@@ -1,7 +1,7 @@
 import FFT from 'fft.js'
 import fc from 'fast-check'
 import { freqz } from 'mathjs'
-import { describe, expect, it } from 'vitest'
+import { describe, expect, it, vi } from 'vitest'
 import { z } from 'zod'
 import { frequencyResponse, type DigitalFilter } from '@/dsp'
 import { filtersOf } from '@/lib/designs/coefficients'
@@ -10,6 +10,9 @@ import { runCascade, runRatio, steadyRatioState } from '@/lib/exports/reference-
 import { effectOfRatio, effectOfSections, isStable } from '@/lib/exports/rounding'
 import { testInput, testVectorLength } from '@/lib/exports/test-vector'
 import { everyKind, lowPass, sourceOf } from '../helpers/export-sources'
+
+// Hundreds of designs; on a busy machine that takes longer than a test usually may.
+vi.setConfig({ testTimeout: 120_000 })
 
 /*
  * The numbers in the files against paths that share no code with the ones that made them: mathjs evaluates b/a, fft.js transforms the

@@ -10,7 +10,7 @@ import type { Curve, Curves } from './curves'
 export type DifferenceUnit = 'db' | 'degrees' | 'microseconds'
 
 /** The earlier one is thin, dashed and square; the later one full and round. */
-export const sideStyles = {
+const sideStyles = {
   left: { stroke: { ink: 'slate', widthPixels: 1.6, dash: [7, 4] }, marker: 'square' },
   right: { stroke: { ink: 'spruce', widthPixels: 1.9 }, marker: 'circle' },
 } as const satisfies Record<'left' | 'right', { stroke: Stroke; marker: MarkerShape }>

@@ -4,19 +4,10 @@ import Link from 'next/link'
 import type { DesignSpec } from '@/dsp'
 import { Button, buttonClass } from '@/components/ui/button'
 import { changedParts } from '@/lib/designs/statement-changes'
-import type { VersionState, VersionSummary } from '@/lib/designs/types'
+import type { VersionSummary } from '@/lib/designs/types'
+import { stateWords } from '@/lib/designs/words'
 import { formatInstant } from '@/lib/format/quantity'
 import { MarkedStatement } from '../compare/marked-statement'
-
-export const stateNames: Readonly<Record<VersionState, string>> = {
-  draft: 'not reviewed',
-  'in-review': 'in review',
-  approved: 'approved',
-  returned: 'returned',
-  released: 'released',
-  superseded: 'superseded',
-  withdrawn: 'withdrawn',
-}
 
 /** The versions of a design, newest first, each with the words that changed since the version it was made from. */
 export function History({
@@ -96,7 +87,7 @@ function Entry({
           <span>
             Saved <time dateTime={savedAt}>{formatInstant(savedAt)}</time> by {savedBy}
           </span>
-          <span>{stateNames[state]}</span>
+          <span>{stateWords[state]}</span>
           <span className="numeric" title={`SHA-256 of the coefficients: ${checksum}`}>
             {checksum.slice(0, 4)}…{checksum.slice(-4)}
           </span>
