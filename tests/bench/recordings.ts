@@ -13,7 +13,8 @@ function makeTable(): Blob {
     state = (Math.imul(state, 1_664_525) + 1_013_904_223) >>> 0
     return (state / 2 ** 32 - 0.5) * 20
   }
-  for (let i = 0; i < ROWS; i += 1) lines.push(`${(i / 1000).toFixed(3)},${next().toFixed(5)},${next().toFixed(5)},${next().toFixed(5)}`)
+  for (let i = 0; i < ROWS; i += 1)
+    lines.push(`${(i / 1000).toFixed(3)},${next().toFixed(5)},${next().toFixed(5)},${next().toFixed(5)}`)
   return new Blob([lines.join('\n')])
 }
 
@@ -33,12 +34,19 @@ export async function benchRecordings(): Promise<{ name: string; ms: number; aga
   const { plan } = await guessFile(file)
   const ms = await medianMs(5, async () => {
     const recording = await readTable(file, 'bench', plan, new MemoryBudget(1e9), QUIET)
-    if (recording.source.frames !== ROWS || recording.sampleRateHz !== 1000) throw new Error('the table was not read as written')
+    if (recording.source.frames !== ROWS || recording.sampleRateHz !== 1000)
+      throw new Error('the table was not read as written')
   })
   const againstMs = await medianMs(3, async () => {
     const columns = [0, 1, 2, 3].map(() => new Float64Array(ROWS))
     const lines = (await file.text()).split('\n')
-    for (let i = 0; i < ROWS; i += 1) (lines[i + 1] ?? '').split(',').forEach((cell, k) => (columns[k]![i] = Number(cell)))
+    for (let i = 0; i < ROWS; i += 1)
+      (lines[i + 1] ?? '').split(',').forEach((cell, k) => (columns[k]![i] = Number(cell)))
   })
-  return { name: `table of ${ROWS} rows × 4, read and timed, against split and Number`, ms, againstMs, ratio: ms / againstMs }
+  return {
+    name: `table of ${ROWS} rows × 4, read and timed, against split and Number`,
+    ms,
+    againstMs,
+    ratio: ms / againstMs,
+  }
 }
