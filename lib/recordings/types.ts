@@ -31,7 +31,7 @@ export interface Flaw {
 export interface Timing {
   readonly sampleRateHz: number
   /** Where the rate comes from. 'mean step': time stamps are even up to their own rounding, so the mean is the better figure. */
-  readonly basis: 'header' | 'stated' | 'median step' | 'mean step'
+  readonly basis: 'header' | 'stated' | 'resampled' | 'median step' | 'mean step'
   readonly medianStepSeconds: number
   readonly meanRateHz: number
   /** Worst deviation of a step from 1/rate. */

@@ -1,8 +1,15 @@
-import { DesignError, measureDelay, predictDelay, type DigitalFilter } from '@/dsp'
+import {
+  DesignError,
+  frequencyResponse,
+  measureDelay,
+  predictDelay,
+  welch,
+  type DigitalFilter,
+  type Spectrum,
+} from '@/dsp'
 import type { FrameSource } from '@/lib/recordings/types'
 import type { RunMode } from './run'
 import type { DelayReading } from './shapes'
-import { densityOf } from './spectrum'
 
 /** Samples that are correlated at most, from the end of the start-up on. */
 const MOST_FRAMES = 262_144
@@ -32,15 +39,40 @@ export async function readDelay(
   try {
     const measured = measureDelay(x, y, { sampleRateHz })
     if (run.mode === 'zero-phase') return { ...nothing, measuredSeconds: measured.delaySeconds, predictedSeconds: 0 }
-    const segmentLength = 2 ** Math.min(12, Math.floor(Math.log2(frames)))
-    const spectrum = await densityOf(before, channel, from, from + frames, {
-      sampleRateHz,
-      segmentLength,
-      window: 'hann',
-    })
-    return { ...nothing, measuredSeconds: measured.delaySeconds, predictedSeconds: predictDelay(run.filter, spectrum) }
+    return {
+      ...nothing,
+      measuredSeconds: measured.delaySeconds,
+      predictedSeconds: predictDelay(run.filter, spectrumOf(x, run.filter)),
+    }
   } catch (cause) {
     if (cause instanceof DesignError && cause.code === 'silent') return nothing
     throw cause
+  }
+}
+
+/** Lines that a prediction looks through at most; the finest spectrum that needs no more is taken. */
+const MOST_LINES = 2049
+const FINEST = 14
+/** Lines that carry less of the result than this part of the strongest have no say in where its correlation peaks. */
+const SILENT = 1e-8
+
+/** Spectrum of what went in, as finely resolved as it may be, up to the last line that gets through the design. */
+function spectrumOf(samples: Float64Array, filter: DigitalFilter): Pick<Spectrum, 'frequenciesHz' | 'density'> {
+  const mean = samples.reduce((sum, value) => sum + value, 0) / samples.length
+  const about = samples.map((value) => value - mean)
+  for (let power = Math.min(FINEST, Math.floor(Math.log2(samples.length))); ; power -= 1) {
+    const found = welch(about, {
+      sampleRateHz: filter.sampleRateHz,
+      segmentLength: 2 ** power,
+      overlap: 0.5,
+      window: 'hann',
+    })
+    const { re, im } = frequencyResponse(filter, found.frequenciesHz)
+    const through = found.density.map((density, k) => density * Math.hypot(re[k]!, im[k]!))
+    const strongest = through.reduce((most, value) => Math.max(most, value), 0)
+    const lines = through.findLastIndex((value) => value > SILENT * strongest) + 2
+    if (lines <= MOST_LINES || 2 ** (power - 1) < MOST_LINES - 1) {
+      return { frequenciesHz: found.frequenciesHz.subarray(0, lines), density: found.density.subarray(0, lines) }
+    }
   }
 }

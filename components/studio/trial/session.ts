@@ -192,7 +192,7 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
     const output = ran?.summary.request.channels.includes(channel) ? outputOf(channel) : null
     if (!output && overviews[channel]!.gapFrames > 0) refuseGaps(recording, overviews, [channel])
     const { frames } = recording.source
-    const { from, to } = spectrumSpan(frames, segmentLength, output?.ran.summary ?? null)
+    const { from, to, leftOut } = spectrumSpan(frames, segmentLength, output?.ran.summary ?? null)
     const options = { sampleRateHz: recording.sampleRateHz, segmentLength, window: name }
     const before = await densityOf(output?.ran.input ?? recording.source, channel, from, to, options)
     const after = output ? await densityOf(output.source, output.at, from, to, options) : null
@@ -201,8 +201,7 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
       segmentLength,
       window: name,
       segments: before.segments,
-      from,
-      frames: to - from,
+      leftOut,
       frequenciesHz: before.frequenciesHz,
       before: before.density,
       after: after?.density ?? null,
@@ -297,7 +296,11 @@ function edgeLevels(filter: DigitalFilter, edgesHz: readonly number[]): EdgeLeve
 }
 
 /** Both spectra leave out the same start-up and ends, where the record is long enough for that. */
-function spectrumSpan(frames: number, segmentLength: number, run: RunSummary | null): { from: number; to: number } {
+function spectrumSpan(
+  frames: number,
+  segmentLength: number,
+  run: RunSummary | null,
+): { from: number; to: number; leftOut: SpectrumReading['leftOut'] } {
   const causal = run?.request.mode === 'causal'
   const head = run ? (causal ? run.settlingFrames : run.extensionFrames) : 0
   const tail = run && !causal ? run.extensionFrames : 0
@@ -310,7 +313,7 @@ function spectrumSpan(frames: number, segmentLength: number, run: RunSummary | n
       `The recording has ${frames} samples, fewer than one segment of ${segmentLength}. Choose shorter segments.`,
     )
   }
-  return { from, to }
+  return { from, to, leftOut: !trimmed || head + tail === 0 ? 'nothing' : causal ? 'start-up' : 'ends' }
 }
 
 const demoRecording = (demo: ReturnType<typeof footbridgeDemo>): Recording => ({

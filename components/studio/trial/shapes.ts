@@ -141,9 +141,8 @@ export interface SpectrumReading {
   readonly segmentLength: number
   readonly window: WindowName
   readonly segments: number
-  /** First sample and number of samples that went in. */
-  readonly from: number
-  readonly frames: number
+  /** What was left out of both spectra. */
+  readonly leftOut: 'nothing' | 'start-up' | 'ends'
   readonly frequenciesHz: Float64Array
   readonly before: Float64Array
   readonly after: Float64Array | null

@@ -56,6 +56,7 @@ export function SignalTrial({ spec, mayEdit, onRedesignAt, onStatus }: SignalTri
         ) : state.preview ? (
           <TablePreview
             preview={state.preview}
+            busy={state.task !== null}
             onChange={(change) => void trial.changePlan(change)}
             onRead={() => void trial.readTable()}
             onForget={() => trial.forget()}

@@ -168,5 +168,5 @@ function readOut(spectrum: SpectrumReading, hz: number, density: string) {
 
 const basis = (spectrum: SpectrumReading, sampleRateHz: number): string =>
   `Mean of ${spectrum.segments} segments, half overlapping, each less its mean; lines ${formatHz(sampleRateHz / spectrum.segmentLength, 3)} apart${
-    spectrum.from > 0 ? '; the start-up is left out' : ''
+    spectrum.leftOut === 'nothing' ? '' : `; the ${spectrum.leftOut} left out`
   }.`

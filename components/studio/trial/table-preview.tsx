@@ -23,11 +23,13 @@ const TIME_UNIT_NAMES: Readonly<Record<TimeUnit, string>> = {
 /** How a text file will be read: everything that was detected, each of it correctable, tried on the first lines. */
 export function TablePreview({
   preview,
+  busy,
   onChange,
   onRead,
   onForget,
 }: {
   preview: Preview
+  busy: boolean
   onChange(change: PlanChange): void
   onRead(): void
   onForget(): void
@@ -125,7 +127,7 @@ export function TablePreview({
       <ColumnChoice preview={preview} onChange={onChange} />
       <Found preview={preview} />
       <div className="flex flex-wrap gap-3">
-        <Button kind="primary" disabled={problem !== null} onClick={onRead}>
+        <Button kind="primary" disabled={problem !== null || busy} onClick={onRead}>
           Read the recording
         </Button>
         <Button onClick={onForget}>Close</Button>

@@ -60,10 +60,13 @@ export function createTrial(api: TrialApi): Trial {
     unit: Task['unit'],
     ask: (progress: (done: number, total: number) => void) => Promise<void>,
   ): Promise<void> {
+    // progress travels another way than the answer and may come after it
+    let ended = false
     set({ problem: null, task: { words, unit, done: 0, total: 0 } })
     await ask((done, total) => {
-      if (get().task) set({ task: { words, unit, done, total } })
+      if (!ended) set({ task: { words, unit, done, total } })
     })
+    ended = true
     set({ task: null })
     if (runIsDue) schedule(0)
   }
@@ -129,9 +132,11 @@ export function createTrial(api: TrialApi): Trial {
       saveProblem: null,
     })
     const { mode, start, channels, fillGaps } = settings
+    let ended = false
     const answer = await api.run({ spec: due, mode, start, channels, fillGaps }, (done, total) => {
-      if (question === asked.run) set({ running: { words, unit: 'samples', done, total } })
+      if (question === asked.run && !ended) set({ running: { words, unit: 'samples', done, total } })
     })
+    ended = true
     if (question !== asked.run) return
     if (answer.ok) set({ run: answer.value, running: null })
     else if (answer.problem.code === 'cancelled') set({ running: null })

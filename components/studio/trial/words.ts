@@ -29,6 +29,7 @@ export const formatDelay = (seconds: number): string => formatSeconds(Math.abs(s
 const BASIS: Readonly<Record<Timing['basis'], string>> = {
   header: 'stated in the header',
   stated: 'stated by you',
+  resampled: 'resampled evenly',
   'median step': 'from the median time step',
   'mean step': 'from the mean time step',
 }
@@ -37,8 +38,9 @@ export const rateWords = (timing: Timing): string => `${formatRate(timing.sample
 
 /** Jitter in percent and in time; empty when the rate was stated and nothing was measured. */
 export function jitterWords(timing: Timing): string {
-  if (timing.basis === 'header') return ''
+  if (timing.basis === 'header' || timing.basis === 'resampled') return ''
   if (timing.basis === 'stated' && timing.jitterSeconds === 0) return ''
+  if (timing.jitterPercent < 0.001) return 'jitter below 0.001\u2009%'
   const micros = timing.jitterSeconds * 1e6
   return `jitter ${formatNumber(timing.jitterPercent, 2)}\u2009% (${formatNumber(micros, 3)}\u2009µs)`
 }

@@ -41,7 +41,7 @@ export async function resampleEvenly(
     notes: [...recording.notes, `Resampled evenly by straight lines: ${even.frames} samples from ${source.frames}.`],
     flaws: [],
     flawCount: 0,
-    timing: statedTiming(timing.sampleRateHz, 'stated'),
+    timing: statedTiming(timing.sampleRateHz, 'resampled'),
     rowOf: () => undefined,
     release,
   }

@@ -5,7 +5,7 @@ import { medianOf, type Pass } from './median'
 const BLOCK = 65_536
 
 /** A recording whose rate is stated, not measured: by a header or by the reader. */
-export const statedTiming = (sampleRateHz: number, basis: 'header' | 'stated'): Timing => ({
+export const statedTiming = (sampleRateHz: number, basis: 'header' | 'stated' | 'resampled'): Timing => ({
   sampleRateHz,
   basis,
   medianStepSeconds: 1 / sampleRateHz,
