@@ -11,9 +11,9 @@ const secrets = ['password', 'passwordHash', 'token', 'tokenHash', 'cookie', 'au
 const withoutValues = (text: string) => text.replace(/\nparams:[^\n]*/g, '')
 
 export function loggedError(error: Error): Record<string, unknown> {
-  const { params: _params, ...told } = pino.stdSerializers.err(error) as unknown as Record<string, unknown>
+  const told = Object.entries(pino.stdSerializers.err(error)).filter(([name]) => name !== 'params')
   return Object.fromEntries(
-    Object.entries(told).map(([name, value]) => [name, typeof value === 'string' ? withoutValues(value) : value]),
+    told.map(([name, value]) => [name, typeof value === 'string' ? withoutValues(value) : value]),
   )
 }
 

@@ -29,8 +29,9 @@ describe('the newest snapshot', () => {
       typeof generateDrizzleJson
     >
     expect(await generateMigration(snapshot, generateDrizzleJson(schema, snapshot.id))).toEqual([])
-    const { accounts: _, ...less } = schema
-    expect(await generateMigration(snapshot, generateDrizzleJson(less, snapshot.id))).not.toEqual([])
+    // That a difference would be seen.
+    const fewer = Object.fromEntries(Object.entries(schema).filter(([name]) => name !== 'rateLimits'))
+    expect(await generateMigration(snapshot, generateDrizzleJson(fewer, snapshot.id))).not.toEqual([])
   })
 })
 
