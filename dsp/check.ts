@@ -64,7 +64,7 @@ function checkEdges(spec: AnalogSpec): void {
     throw new DesignError(
       'edge-count',
       `analog.edgesHz.${count === 2 ? Math.min(edges.length, 1) : 1}`,
-      `${edges.length} edges were given; ${wanted}.`,
+      `${edges.length === 1 ? '1 edge was' : `${edges.length} edges were`} given; ${wanted}.`,
       nearest,
     )
   }
@@ -239,6 +239,14 @@ function checkImpulseInvariant(spec: AnalogSpec): void {
   }
 }
 
+export const fittedNotAvailable = () =>
+  new DesignError(
+    'method-not-available',
+    'how.method',
+    'The fitted method isn’t computed yet; bilinear, impulse-invariant, matched-z and step-invariant are.',
+    'bilinear',
+  )
+
 /**
  * Whether a specification can be brought to this sampling rate by this method.
  *
@@ -267,11 +275,6 @@ export function checkDiscretization(spec: AnalogSpec, sampleRateHz: number, how:
     case 'step-invariant':
       return
     case 'fitted':
-      throw new DesignError(
-        'method-not-available',
-        'how.method',
-        'The fitted method isn’t computed yet; bilinear, impulse-invariant, matched-z and step-invariant are.',
-        'bilinear',
-      )
+      throw fittedNotAvailable()
   }
 }

@@ -1,4 +1,4 @@
-import { checkDiscretization } from '../check'
+import { checkDiscretization, fittedNotAvailable } from '../check'
 import { designHalf } from '../design-analog'
 import { DesignError } from '../errors'
 import { toSections } from '../forms/sections'
@@ -16,7 +16,7 @@ import {
   rateDiagnostics,
   repeatedPoleDiagnostics,
 } from './diagnostics'
-import { impulseInvariant } from './impulse-invariant'
+import { impulseInvariant, restoreGain } from './impulse-invariant'
 import { matchedZ } from './matched-z'
 import { bandAngles, keepIfGood, sectionDiagnostics } from './rounding'
 import { stepInvariant } from './step-invariant'
@@ -87,11 +87,8 @@ function byImpulseInvariant(spec: AnalogSpec, sampleRateHz: number, how: Impulse
   const unit = perSample(sampleRateHz)
   const analog = designScaled(spec, unit)
   const halved = how.halfFirstSample === true
-  const plain = impulseInvariant(analog, { halfFirstSample: halved })
-  const restored =
-    how.restoreGain === true
-      ? impulseInvariant(analog, { halfFirstSample: halved, restoreAt: referenceAngle(spec, sampleRateHz) })
-      : plain
+  const plain = impulseInvariant(analog, halved)
+  const restored = how.restoreGain === true ? restoreGain(analog, plain, referenceAngle(spec, sampleRateHz)) : plain
   const jump = fullCount(analog.poles) - fullCount(analog.zeros) === 1
   return {
     ...restored,
@@ -142,7 +139,7 @@ function byMethod(spec: AnalogSpec, sampleRateHz: number, how: Method): Outcome 
     case 'step-invariant':
       return byStepInvariant(spec, sampleRateHz)
     case 'fitted':
-      throw new DesignError('method-not-available', 'how.method', 'The fitted method isn’t computed yet.', 'bilinear')
+      throw fittedNotAvailable()
   }
 }
 
@@ -168,7 +165,7 @@ export function discretize(spec: AnalogSpec, sampleRateHz: number, how: Method):
       'poles-reach-circle',
       'sampleRateHz',
       'At this rate the poles lie closer to the unit circle than double precision can tell; lower the rate or widen the band.',
-      sampleRateHz / 10,
+      Math.max(sampleRateHz / 10, 2.5 * Math.max(...spec.edgesHz)),
     )
   }
   const angles = bandAngles(passBand(spec, sampleRateHz))

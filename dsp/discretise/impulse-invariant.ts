@@ -30,33 +30,33 @@ export function rootsOfSampled(form: HalfForm, { numerator, arithmetic }: Sample
   }
 }
 
-export interface ImpulseInvariantOptions {
-  /** Take half of the first sample where h(0+) ≠ 0, as the Fourier inversion at a jump gives. */
-  readonly halfFirstSample?: boolean
-  /** In rad per sample: where the digital gain is set to the analog one. */
-  readonly restoreAt?: number
-}
-
 /**
  * Impulse-invariant version: h[n] = T·h(nT), the impulse samples times the sampling interval (so that gain is kept, not the height of
  * the pulse). Repeated poles are handled in full; zeros come from the exact numerator.
  * Source: Oppenheim & Schafer 7.1.1; half of the first sample: L. B. Jackson, IEEE Signal Processing Letters 7(10), 2000.
  *
  * @param form strictly proper analog filter in rad per sample (frequencies divided by the sampling rate)
+ * @param halfFirstSample take half of the first sample where h(0+) ≠ 0, as Fourier inversion at a jump gives
  */
-export function impulseInvariant(form: HalfForm, options: ImpulseInvariantOptions = {}): SampledFilter {
-  const firstSample = options.halfFirstSample === true ? 0.5 : 1
+export function impulseInvariant(form: HalfForm, halfFirstSample = false): SampledFilter {
+  const firstSample = halfFirstSample ? 0.5 : 1
   const sampled = sampledForm(form, 'impulse', firstSample)
   const roots = rootsOfSampled(form, sampled, false)
   const jump = fullCount(form.poles) - fullCount(form.zeros) === 1 ? form.gain : 0
   const parallel = parallelOfSamples(sampled.fractions, sampled.arithmetic, jump * (firstSample - 1))
-  const factor = options.restoreAt === undefined ? 1 : gainToRestore(form, roots, options.restoreAt)
-  const scaled = { ...roots, gain: roots.gain * factor }
-  return parallel === undefined ? { form: scaled } : { form: scaled, parallel: scaleParallel(parallel, factor) }
+  return parallel === undefined ? { form: roots } : { form: roots, parallel }
 }
 
-/** |H(jω)| of the analog filter over that of the digital one, at ω rad per sample. */
-function gainToRestore(analog: HalfForm, digital: HalfForm, radians: number): number {
+/**
+ * Scales a digital filter to the analog gain at one frequency. At DC that is unity, but for even orders of the equal-ripple families,
+ * whose gain there is −ripple by design.
+ *
+ * @param radians rad per sample: 0, or the centre of a band
+ */
+export function restoreGain(analog: HalfForm, digital: SampledFilter, radians: number): SampledFilter {
   const wanted = magnitudeAt(fromHalf('s', analog), { re: 0, im: radians })
-  return wanted / magnitudeAt(fromHalf('z', digital), { re: Math.cos(radians), im: Math.sin(radians) })
+  const got = magnitudeAt(fromHalf('z', digital.form), { re: Math.cos(radians), im: Math.sin(radians) })
+  const factor = wanted / got
+  const form = { ...digital.form, gain: digital.form.gain * factor }
+  return digital.parallel === undefined ? { form } : { form, parallel: scaleParallel(digital.parallel, factor) }
 }

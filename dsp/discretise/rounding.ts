@@ -20,7 +20,7 @@ export function bandAngles([low, high]: readonly [number, number]): number[] {
 }
 
 /** Largest difference of a sum of sections from the roots, relative to the peak. */
-export function parallelDeviation(parallel: ParallelForm, filter: Filter<'z'>, angles: readonly number[]): number {
+function parallelDeviation(parallel: ParallelForm, filter: Filter<'z'>, angles: readonly number[]): number {
   let worst = 0
   let peak = 0
   for (const angle of angles) {

@@ -15,8 +15,8 @@ export function stepInvariant(form: HalfForm): SampledFilter {
   // What blocks DC in the analog filter blocks it here, exactly.
   const zeroAtOne = form.zeros.some((zero) => zero.re === 0 && zero.im === 0)
   const roots = rootsOfSampled(form, sampled, zeroAtOne)
-  const negativeZeros = form.zeros.filter((zero) => zero.im === 0 && zero.re > 0).length
-  const dcGain = zeroAtOne ? 0 : form.gain * modulusRatio(form.zeros, form.poles) * (negativeZeros % 2 === 0 ? 1 : -1)
+  const rightZeros = form.zeros.filter((zero) => zero.im === 0 && zero.re > 0).length
+  const dcGain = zeroAtOne ? 0 : form.gain * modulusRatio(form.zeros, form.poles) * (rightZeros % 2 === 0 ? 1 : -1)
   const parallel = parallelOfSteps(sampled.fractions, sampled.arithmetic, dcGain)
   return parallel === undefined ? { form: roots } : { form: roots, parallel }
 }

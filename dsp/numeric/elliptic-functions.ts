@@ -31,7 +31,7 @@ export const completeIntegral = ({ complement }: Modulus): number => Math.PI / (
  *
  * @param x, y, z non-negative, at most one of them zero
  */
-export function carlsonRF(x: number, y: number, z: number): number {
+function carlsonRF(x: number, y: number, z: number): number {
   let [a, b, c] = [x, y, z]
   for (let round = 0; round < 600; round += 1) {
     const average = (a + b + c) / 3

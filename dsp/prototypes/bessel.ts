@@ -81,7 +81,7 @@ function logPower(poles: HalfRoots, omega: number): { value: number; slope: numb
 }
 
 /** Where an all-pole low-pass with unit gain at DC has lost 10·lg 2 dB: Newton on ln|H|², which falls monotonically. */
-export function halfPowerFrequency(poles: HalfRoots): number {
+function halfPowerFrequency(poles: HalfRoots): number {
   let omega = 1
   for (let round = 0; round < 60; round += 1) {
     const { value, slope } = logPower(poles, omega)

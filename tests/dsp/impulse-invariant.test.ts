@@ -29,12 +29,10 @@ function cascadeImpulse(sections: readonly Section[], count: number): Float64Arr
 }
 
 /**
- * h(t) of an analog filter by its state equations in cascade form, integrated with a Taylor series over small steps: no residues, no
- * partial fractions. Poles in rad per sample; samples at t = 0, 1, 2 …
+ * h(t) of an analog filter from its state equations, integrated by a Taylor series over small steps: no residues, no partial fractions.
+ * The poles form a chain x_k′ = p_k·x_k + x_{k−1}, and each zero acts on it as x′ − z·x. Roots in rad per sample, t = 0, 1, 2 …
  */
 function analogImpulse(zeros: readonly Complex[], poles: readonly Complex[], gain: number, count: number): number[] {
-  // Complex first-order stages y′ = p·y + (input′ − z·input …) are avoided: all-pole chain of x_k′ = p_k·x_k + x_{k−1}, and the zeros
-  // act on the last state by (d/dt − z), which is exact on exponentials: apply to the chain as x′ − z·x.
   const order = poles.length
   type C = { re: number; im: number }
   const times = (a: C, b: C): C => ({ re: a.re * b.re - a.im * b.im, im: a.re * b.im + a.im * b.re })
@@ -43,7 +41,6 @@ function analogImpulse(zeros: readonly Complex[], poles: readonly Complex[], gai
     x.map((value, k) => plus(times(poles[k] ?? { re: 0, im: 0 }, value), x[k - 1] ?? { re: 0, im: 0 }))
   let state: C[] = Array.from({ length: order }, (_, k) => ({ re: k === 0 ? gain : 0, im: 0 }))
   const output = (x: readonly C[]): number => {
-    // derivatives of the chain, of which the zeros' polynomial takes a combination
     let vector: C[] = [...x]
     for (const zero of zeros) {
       const slope = flow(vector)
