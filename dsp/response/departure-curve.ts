@@ -92,20 +92,32 @@ export function departureCurve(analog: Filter<'s'>, curve: AnalogCurve, version:
  * The constant delay τ in seconds that best explains a phase departure: least squares of Δφ + ωτ over the judged part of the grid, each
  * point weighted by the stretch of frequency it stands for, and no constant phase allowed beside it. τ > 0: the digital one is later.
  */
-export function bestDelay(
+export function bestDelay(frequenciesHz: Float64Array, radians: Float64Array, counts: Uint8Array): number {
+  return bestDelays(frequenciesHz, radians, counts)(radians.length)
+}
+
+/** The same for the first `end` points, for any `end`, from sums made once. */
+export function bestDelays(
   frequenciesHz: Float64Array,
   radians: Float64Array,
   counts: Uint8Array,
-  end = radians.length,
-): number {
-  let top = 0
-  let bottom = 0
-  for (let n = 0; n < end; n++) {
-    if (counts[n] !== 1) continue
-    const weight = frequenciesHz[Math.min(n + 1, end - 1)]! - frequenciesHz[Math.max(n - 1, 0)]!
-    const omega = TURN * frequenciesHz[n]!
-    top -= weight * omega * radians[n]!
-    bottom += weight * omega * omega
+): (end: number) => number {
+  const count = radians.length
+  const tops = new Float64Array(count + 1)
+  const bottoms = new Float64Array(count + 1)
+  for (let n = 0; n < count; n++) {
+    const weight = frequenciesHz[Math.min(n + 1, count - 1)]! - frequenciesHz[Math.max(n - 1, 0)]!
+    const omega = counts[n] === 1 ? TURN * frequenciesHz[n]! : 0
+    tops[n + 1] = tops[n]! - weight * omega * radians[n]!
+    bottoms[n + 1] = bottoms[n]! + weight * omega * omega
   }
-  return bottom > 0 ? top / bottom : 0
+  return (end) => {
+    if (end < 1) return 0
+    // The last point stands for its lower half only.
+    const last = end - 1
+    const weight = frequenciesHz[last]! - frequenciesHz[Math.max(last - 1, 0)]!
+    const omega = counts[last] === 1 ? TURN * frequenciesHz[last]! : 0
+    const bottom = bottoms[last]! + weight * omega * omega
+    return bottom > 0 ? (tops[last]! - weight * omega * radians[last]!) / bottom : 0
+  }
 }

@@ -19,6 +19,21 @@ const DEGREES = 180 / Math.PI
 const TURN = 2 * Math.PI
 const MICRO = 1e6
 
+const drawn = new WeakMap<Filter<'s'>, AnalogCurve>()
+
+/** The analog side on a caller's grid, kept from call to call: several versions are held against it on the same frequencies. */
+function drawnCurve(analog: Filter<'s'>, grid: Float64Array): AnalogCurve {
+  const before = drawn.get(analog)
+  if (before !== undefined && before.frequenciesHz.length === grid.length) {
+    let n = 0
+    while (n < grid.length && before.frequenciesHz[n] === grid[n]) n++
+    if (n === grid.length) return before
+  }
+  const fresh = analogCurve(analog, grid)
+  drawn.set(analog, fresh)
+  return fresh
+}
+
 /** The best constant delay over a band, on the grid that its filters ask for. */
 function delayOver(analog: Filter<'s'>, digital: DigitalFilter, fromHz: number, toHz: number): number {
   const grid = departureGrid(fromHz, toHz, analog, digital)
@@ -46,7 +61,7 @@ export function departure(
   options: { readonly removeDelayOver?: readonly [number, number] } = {},
 ): Departure {
   const grid = Float64Array.from(frequenciesHz)
-  const { db, radians } = departureCurve(analog, analogCurve(analog, grid), { by: 'roots', filter: digital })
+  const { db, radians } = departureCurve(analog, drawnCurve(analog, grid), { by: 'roots', filter: digital })
   let delaySeconds = 0
   if (options.removeDelayOver !== undefined) {
     const [from, to] = options.removeDelayOver

@@ -1,6 +1,6 @@
 import type { DigitalFilter, Filter } from '../forms/filter'
 import type { DepartureBudget } from '../spec'
-import { analogCurve, bestDelay, departureCurve } from './departure-curve'
+import { analogCurve, bestDelay, bestDelays, departureCurve } from './departure-curve'
 import type { Version } from './departure-curve'
 import { departureGrid, humps } from './departure-grid'
 import { useBandOf } from './use-band'
@@ -16,7 +16,8 @@ export interface TrustedBand {
 }
 
 const TURN = 2 * Math.PI
-const EDGE_ROUNDS = 24
+/** Halvings of the step between two grid points, a hundredth of the band or less: to 1e-7 of it. */
+const EDGE_ROUNDS = 17
 
 /** Departures on a grid, as far as it is judged. */
 interface Judgement {
@@ -42,7 +43,28 @@ function refined(judge: Judge, grid: Float64Array): Judgement {
   const slope = bestDelay(grid, coarse.radians, coarse.counts)
   const level = coarse.radians.map((value, n) => value + TURN * grid[n]! * slope)
   const extra = [...humps(grid, coarse.db), ...humps(grid, coarse.radians), ...humps(grid, level)]
-  return extra.length === 0 ? coarse : judge(Float64Array.from(new Set([...grid, ...extra])).sort())
+  return extra.length === 0 ? coarse : merged(coarse, judge(Float64Array.from(extra).sort()))
+}
+
+/** Two judgements as one, in the order of frequency. */
+function merged(left: Judgement, right: Judgement): Judgement {
+  const count = left.hertz.length + right.hertz.length
+  const out = {
+    hertz: new Float64Array(count),
+    db: new Float64Array(count),
+    radians: new Float64Array(count),
+    counts: new Uint8Array(count),
+  }
+  let [l, r] = [0, 0]
+  for (let n = 0; n < count; n++) {
+    const fromLeft = r >= right.hertz.length || (l < left.hertz.length && left.hertz[l]! <= right.hertz[r]!)
+    const [source, at] = fromLeft ? [left, l++] : [right, r++]
+    out.hertz[n] = source.hertz[at]!
+    out.db[n] = source.db[at]!
+    out.radians[n] = source.radians[at]!
+    out.counts[n] = source.counts[at]!
+  }
+  return out
 }
 
 type Broken = 'magnitude' | 'phase' | null
@@ -55,31 +77,27 @@ function brokenAt(judgement: Judgement, n: number, budget: DepartureBudget, dela
   return degrees <= budget.phaseDegrees ? null : 'phase'
 }
 
-const delayOf = (judgement: Judgement, end: number, budget: DepartureBudget): number =>
-  budget.removeDelay ? bestDelay(judgement.hertz, judgement.radians, judgement.counts, end) : 0
-
-/** What the first `end` points break, if anything, with the best delay over just them. */
-function broken(judgement: Judgement, end: number, budget: DepartureBudget): Broken {
-  const delay = delayOf(judgement, end, budget)
-  for (let n = 0; n < end; n++) {
+/** What the first `end` points break under a delay, the highest first. */
+function broken(judgement: Judgement, end: number, budget: DepartureBudget, delay: number): Broken {
+  for (let n = end - 1; n >= 0; n--) {
     const what = brokenAt(judgement, n, budget, delay)
     if (what !== null) return what
   }
   return null
 }
 
-/** Points from the start that keep the budget: up to the first that fails; with a delay of its own, the longest run that passes. */
+/** A notch that isn't judged ends no band: back to its near side. */
+function beforeNotch({ counts, hertz }: Judgement, kept: number): number {
+  let end = kept
+  if (end < hertz.length) while (end > 0 && counts[end - 1] !== 1) end -= 1
+  return end
+}
+
+/** Points from the start up to the first that fails. */
 function pointsKept(judgement: Judgement, budget: DepartureBudget): number {
-  const count = judgement.hertz.length
   let reach = 0
-  // The level doesn't depend on the delay, so its first failure bounds the search either way.
-  const limit = budget.removeDelay ? { ...budget, phaseDegrees: Infinity } : budget
-  while (reach < count && brokenAt(judgement, reach, limit, 0) === null) reach += 1
-  let kept = reach
-  if (budget.removeDelay) while (kept > 0 && broken(judgement, kept, budget) !== null) kept -= 1
-  // A notch that isn't judged ends no band: back to its near side.
-  if (kept < count) while (kept > 0 && judgement.counts[kept - 1] !== 1) kept -= 1
-  return kept
+  while (reach < judgement.hertz.length && brokenAt(judgement, reach, budget, 0) === null) reach += 1
+  return reach
 }
 
 /** The first `end` points of a judgement and one more. */
@@ -91,39 +109,73 @@ function extended(judge: Judge, judgement: Judgement, end: number, hertz: number
     out[end] = value[0]!
     return out
   }
+  const counts = new Uint8Array(end + 1)
+  counts.set(judgement.counts.subarray(0, end))
+  counts[end] = more.counts[0]!
   return {
     hertz: append(judgement.hertz, more.hertz),
     db: append(judgement.db, more.db),
     radians: append(judgement.radians, more.radians),
-    counts: Uint8Array.of(...judgement.counts.subarray(0, end), more.counts[0]!),
+    counts,
   }
 }
 
-/** From the start of use upwards. */
-function upward(judge: Judge, judgement: Judgement, budget: DepartureBudget): Omit<TrustedBand, 'fromHz'> {
-  const { hertz } = judgement
-  const kept = pointsKept(judgement, budget)
-  if (kept === hertz.length) {
-    return { upToHz: hertz[kept - 1]!, limitedBy: 'half the rate', delaySeconds: delayOf(judgement, kept, budget) }
-  }
-  let limitedBy = broken(judgement, kept + 1, budget) ?? 'phase'
-  if (kept === 0) return { upToHz: hertz[0]!, limitedBy, delaySeconds: 0 }
-  let inside = hertz[kept - 1]!
-  let outside = hertz[kept]!
-  let delaySeconds = delayOf(judgement, kept, budget)
+type UpperEnd = Omit<TrustedBand, 'fromHz'>
+
+/** Halves the way from the last point kept to the first lost; `ask` says what a frequency breaks, and the delay it takes. */
+function upperEnd(
+  inside: number,
+  outside: number,
+  start: { readonly delay: number; readonly limitedBy: Exclude<Broken, null> },
+  ask: (hertz: number) => { readonly what: Broken; readonly delay: number },
+): UpperEnd {
+  let [kept, lost, delaySeconds] = [inside, outside, start.delay]
+  let limitedBy = start.limitedBy
   for (let round = 0; round < EDGE_ROUNDS; round++) {
-    const middle = (inside + outside) / 2
-    const more = extended(judge, judgement, kept, middle)
-    const what = broken(more, kept + 1, budget)
+    const middle = (kept + lost) / 2
+    const { what, delay } = ask(middle)
     if (what === null) {
-      inside = middle
-      delaySeconds = delayOf(more, kept + 1, budget)
+      kept = middle
+      delaySeconds = delay
     } else {
-      outside = middle
+      lost = middle
       limitedBy = what
     }
   }
-  return { upToHz: inside, limitedBy, delaySeconds }
+  return { upToHz: kept, limitedBy, delaySeconds }
+}
+
+/** From the start of use upwards without a delay: the first failure ends the band. */
+function upwardPlain(judge: Judge, judgement: Judgement, budget: DepartureBudget): UpperEnd {
+  const { hertz } = judgement
+  const reach = pointsKept(judgement, budget)
+  const kept = beforeNotch(judgement, reach)
+  if (kept === hertz.length) return { upToHz: hertz[kept - 1]!, limitedBy: 'half the rate', delaySeconds: 0 }
+  const limitedBy = brokenAt(judgement, reach, budget, 0) ?? 'phase'
+  if (kept === 0) return { upToHz: hertz[0]!, limitedBy, delaySeconds: 0 }
+  return upperEnd(hertz[kept - 1]!, hertz[kept]!, { delay: 0, limitedBy }, (middle) => ({
+    what: brokenAt(judge(Float64Array.of(middle)), 0, budget, 0),
+    delay: 0,
+  }))
+}
+
+/** From the start of use upwards, each band with the best delay of its own: the longest that passes. */
+function upwardDelayed(judge: Judge, judgement: Judgement, budget: DepartureBudget): UpperEnd {
+  const { hertz, radians, counts } = judgement
+  const delays = bestDelays(hertz, radians, counts)
+  // The level doesn't depend on the delay, so that its first failure bounds the search.
+  let kept = pointsKept(judgement, { ...budget, phaseDegrees: Infinity })
+  while (kept > 0 && broken(judgement, kept, budget, delays(kept)) !== null) kept -= 1
+  kept = beforeNotch(judgement, kept)
+  const delay = delays(kept)
+  if (kept === hertz.length) return { upToHz: hertz[kept - 1]!, limitedBy: 'half the rate', delaySeconds: delay }
+  const limitedBy = broken(judgement, kept + 1, budget, delays(kept + 1)) ?? 'phase'
+  if (kept === 0) return { upToHz: hertz[0]!, limitedBy, delaySeconds: 0 }
+  return upperEnd(hertz[kept - 1]!, hertz[kept]!, { delay, limitedBy }, (middle) => {
+    const more = extended(judge, judgement, kept, middle)
+    const own = bestDelay(more.hertz, more.radians, more.counts)
+    return { what: broken(more, kept + 1, budget, own), delay: own }
+  })
 }
 
 /** From the start of use downwards, with the delay that the band has. */
@@ -150,8 +202,7 @@ function downward(judge: Judge, judgement: Judgement, budget: DepartureBudget, d
  * as far as the budget holds all the way; for the latter two it then reaches down as well. Notches deeper than 20 dB below the peak,
  * with frequencies in use above them, aren't judged. With `removeDelay` one constant delay is taken off, fitted by least squares over
  * the band from its start up (see departure); the band is the longest that keeps the budget with its own such delay, or with none where
- * that reaches farther. The grid is refined around
- * every root and hump, and the ends are found by halving.
+ * that reaches farther. The grid is refined around every root and hump, and the ends are found by halving.
  *
  * @throws DesignError `not-finite` when a filter has a root that is no finite number
  */
@@ -161,8 +212,8 @@ export function trustedBand(analog: Filter<'s'>, digital: DigitalFilter, budget:
   const fold = digital.sampleRateHz / 2
   if (start >= fold) return { fromHz: start, upToHz: start, limitedBy: 'half the rate', delaySeconds: 0 }
   const judgement = refined(judge, departureGrid(start, fold, analog, digital))
-  const plain = upward(judge, judgement, { ...budget, removeDelay: false })
-  const delayed = budget.removeDelay ? upward(judge, judgement, budget) : plain
+  const plain = upwardPlain(judge, judgement, budget)
+  const delayed = budget.removeDelay ? upwardDelayed(judge, judgement, budget) : plain
   const above = delayed.upToHz >= plain.upToHz ? delayed : plain
   if (start === 0 || above.upToHz === start) return { fromHz: start, ...above }
   const below = refined(judge, departureGrid(0, start, analog, digital))
