@@ -1,13 +1,13 @@
 import { formatDb, formatHz } from '@/lib/format/quantity'
 import type { EdgeLevel, RunSummary } from './shapes'
-import type { TrialState } from './store'
+import type { TrialView } from './store'
 import { formatCount, formatDelay } from './words'
 
 const PREDICTED = 'Where the cross-correlation should peak: the spectrum of what went in, times the design’s response.'
 const MEASURED = 'Where the cross-correlation of before and after peaks.'
 
 /** Measured against predicted delay, and what running forward and backward means. */
-export function DelayLine({ state }: { state: TrialState }) {
+export function DelayLine({ state }: { state: TrialView }) {
   const { delay, run, settings } = state
   if (!run) return null
   const isRun = run.request.channels.includes(settings.shown)

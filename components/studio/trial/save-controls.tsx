@@ -6,7 +6,7 @@ import { SelectField } from '@/components/ui/field'
 import { Notice } from '@/components/ui/notice'
 import { offerDownload } from './offer-download'
 import type { SaveFormat, SaveRequest } from './shapes'
-import type { TrialState } from './store'
+import type { TrialView } from './store'
 import type { Trial } from './trial'
 
 const FORMATS: readonly { readonly value: SaveFormat; readonly word: string }[] = [
@@ -17,10 +17,10 @@ const FORMATS: readonly { readonly value: SaveFormat; readonly word: string }[] 
 ]
 
 /** The result as a file. */
-export function SaveControls({ trial, state }: { trial: Trial; state: TrialState }) {
+export function SaveControls({ trial, state }: { trial: Trial; state: TrialView }) {
   const [format, setFormat] = useState<SaveFormat>('float32')
   const [beyond, setBeyond] = useState<SaveRequest['beyondFullScale']>('refuse')
-  const { run, running, task, saved, saveProblem } = state
+  const { run, runningWords, busyWith, saved, saveProblem } = state
   async function save() {
     const file = await trial.save({ format, beyondFullScale: beyond })
     if (file) offerDownload(file.blob, file.name)
@@ -55,7 +55,7 @@ export function SaveControls({ trial, state }: { trial: Trial; state: TrialState
             </SelectField>
           </div>
         ) : null}
-        <Button disabled={!run || running !== null || task !== null} onClick={() => void save()}>
+        <Button disabled={!run || runningWords !== null || busyWith !== null} onClick={() => void save()}>
           Save the result
         </Button>
       </div>

@@ -2,6 +2,7 @@
 
 import { useEffect } from 'react'
 import { useStore } from 'zustand'
+import { useShallow } from 'zustand/react/shallow'
 import type { DesignSpec } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
@@ -16,7 +17,7 @@ import { RunControls } from './run-controls'
 import { SaveControls } from './save-controls'
 import { sharedTrial } from './shared-trial'
 import { SpectrumPlot } from './spectrum-plot'
-import type { TrialState } from './store'
+import { viewOf, type TrialView } from './store'
 import { TablePreview } from './table-preview'
 import { TimePlot } from './time-plot'
 import type { Trial } from './trial'
@@ -31,7 +32,7 @@ export interface SignalTrialProps {
 /** The design tried on a recording: before and after in time and as spectra, delays, the result as a file. */
 export function SignalTrial({ spec, mayEdit, onRedesignAt, onStatus }: SignalTrialProps) {
   const trial = sharedTrial()
-  const state = useStore(trial.store)
+  const state = useStore(trial.store, useShallow(viewOf))
   useEffect(() => trial.follow(spec), [trial, spec])
   const status = statusOf(state)
   useEffect(() => onStatus?.(status), [onStatus, status])
@@ -42,7 +43,7 @@ export function SignalTrial({ spec, mayEdit, onRedesignAt, onStatus }: SignalTri
     <DropGround onFile={takeFile}>
       <div className="flex min-w-0 flex-col gap-4">
         {state.problem ? <Notice kind="caution">{state.problem.message}</Notice> : null}
-        {state.task ? <Progress task={state.task} onCancel={() => trial.cancel()} /> : null}
+        <TaskProgress trial={trial} of="task" />
         {state.recording ? (
           <Tried
             trial={trial}
@@ -56,12 +57,12 @@ export function SignalTrial({ spec, mayEdit, onRedesignAt, onStatus }: SignalTri
         ) : state.preview ? (
           <TablePreview
             preview={state.preview}
-            busy={state.task !== null}
+            busy={state.busyWith !== null}
             onChange={(change) => void trial.changePlan(change)}
             onRead={() => void trial.readTable()}
             onForget={() => trial.forget()}
           />
-        ) : state.task ? null : (
+        ) : state.busyWith !== null ? null : (
           <DropZone onFile={takeFile} onDemo={openDemo} />
         )}
         <p role="status" className="sr-only">
@@ -82,14 +83,14 @@ function Tried({
   openDemo,
 }: {
   trial: Trial
-  state: TrialState
+  state: TrialView
   spec: DesignSpec
   mayEdit: boolean
   onRedesignAt(rateHz: number): void
   takeFile(file: File): void
   openDemo(): void
 }) {
-  const { recording, settings, running, runProblem, task } = state
+  const { recording, settings, runProblem, busyWith } = state
   if (!recording) return null
   const traceId = spec.how.method
   return (
@@ -142,7 +143,7 @@ function Tried({
           <TraceSample id={traceId} />
           after
         </span>
-        {running && !task ? <Progress slim task={running} onCancel={() => trial.cancel()} /> : null}
+        {busyWith === null ? <TaskProgress trial={trial} of="running" /> : null}
       </div>
       <div className="grid grid-cols-1 gap-6 xl:grid-cols-[3fr_2fr]">
         <TimePlot trial={trial} state={state} traceId={traceId} />
@@ -155,10 +156,16 @@ function Tried({
 }
 
 /** One sentence for readers who don't see the page change. */
-function statusOf({ task, recording, run, running, preview }: TrialState): string {
-  if (task) return `${task.words}…`
-  if (running) return `${running.words}…`
+function statusOf({ busyWith, recording, run, runningWords, preview }: TrialView): string {
+  if (busyWith !== null) return `${busyWith}…`
+  if (runningWords !== null) return `${runningWords}…`
   if (run) return 'The recording was run; before and after are shown.'
   if (recording) return `${recording.name} was read.`
   return preview ? `${preview.fileName} is ready to be read; check how.` : ''
+}
+
+/** The one part that follows each step of a task. */
+function TaskProgress({ trial, of }: { trial: Trial; of: 'task' | 'running' }) {
+  const task = useStore(trial.store, (state) => state[of])
+  return task ? <Progress slim={of === 'running'} task={task} onCancel={() => trial.cancel()} /> : null
 }

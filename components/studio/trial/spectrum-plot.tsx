@@ -13,7 +13,7 @@ import { segmentLengths } from './rates'
 import { changeDb, tableLines } from './reading'
 import type { SpectrumReading } from './shapes'
 import { nearestLine, spectrumScene, wholeSpan } from './spectrum-scene'
-import type { TrialState } from './store'
+import type { TrialView } from './store'
 import type { Trial } from './trial'
 
 const select = 'min-h-6 border border-graph-strong rounded bg-sheet px-1 text-[12px]'
@@ -25,7 +25,7 @@ export function SpectrumPlot({
   traceId,
 }: {
   trial: Trial
-  state: TrialState
+  state: TrialView
   traceId: Parameters<typeof spectrumScene>[3]
 }) {
   const { recording, spectrum, settings } = state

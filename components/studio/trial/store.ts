@@ -83,5 +83,19 @@ export const createTrialStore = () => createStore<TrialState>()(() => emptyTrial
 export type TrialStore = ReturnType<typeof createTrialStore>
 
 /** Samples by which the result is moved back in the picture, when that was asked for. */
-export const shiftFrames = ({ settings, delay, recording }: TrialState): number =>
+export const shiftFrames = ({
+  settings,
+  delay,
+  recording,
+}: Pick<TrialState, 'settings' | 'delay' | 'recording'>): number =>
   settings.aligned && recording ? Math.round((delay?.predictedSeconds ?? 0) * recording.sampleRateHz) : 0
+
+/** The state as the panel shows it: what a task does but not how far it is, so that progress alone doesn't draw the plots again. */
+export type TrialView = Omit<TrialState, 'task' | 'running'> & {
+  readonly busyWith: string | null
+  readonly runningWords: string | null
+}
+
+export function viewOf({ task, running, ...rest }: TrialState): TrialView {
+  return { ...rest, busyWith: task?.words ?? null, runningWords: running?.words ?? null }
+}

@@ -9,7 +9,7 @@ import { Act, Toggle } from '../stack/choice'
 import { useWidth } from '../stack/use-width'
 import { PlotReader } from './plot-reader'
 import { timeTable, valueIn } from './reading'
-import { shiftFrames, type TrialState } from './store'
+import { shiftFrames, type TrialView } from './store'
 import { plotLeft, timeScene } from './time-scene'
 import type { Trial } from './trial'
 
@@ -20,7 +20,7 @@ export function TimePlot({
   traceId,
 }: {
   trial: Trial
-  state: TrialState
+  state: TrialView
   traceId: Parameters<typeof timeScene>[0]['trace']
 }) {
   const frame = useRef<HTMLDivElement>(null)
