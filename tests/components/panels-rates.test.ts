@@ -6,9 +6,11 @@ import {
   askLowest,
   askSweep,
   drawnSpan,
+  reasonAgainst,
   searchSpan,
   subjectOf,
   sweepRates,
+  usualUpTo,
   type LowestQuestion,
   type LowestRate,
   type RateCurve,
@@ -16,7 +18,15 @@ import {
 import { levelTicks, ratesFrame, ratesScene, rateTicks } from '@/components/studio/panels/rates/rates-picture'
 import { ratesService } from '@/components/studio/panels/rates/rates-service'
 import { logScale } from '@/components/plot/scale'
-import { designAnalog, discretize, lowestRate, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
+import {
+  designAnalog,
+  discretize,
+  lowestRate,
+  worstDeparture,
+  type AnalogSpec,
+  type DepartureBudget,
+  type DesignSpec,
+} from '@/dsp'
 import { defaultSpec, withResponse } from '@/lib/designs/edits'
 
 const budget: DepartureBudget = { magnitudeDb: 0.1, phaseDegrees: 1, removeDelay: false }
@@ -69,7 +79,7 @@ describe('the lowest rate', () => {
       const found = lowestRate({ analog: question.analog, how, upToHz: 120, budget, searchHz: question.searchHz })
       const answer = askLowest(question, how)
       expect(answer.id).toBe(how.method)
-      if ('refused' in found) expect(answer).toEqual({ id: how.method, refused: found.refused })
+      if ('refused' in found) expect('refused' in answer && answer.refused.length > 20).toBe(true)
       else {
         const rate = 'sampleRateHz' in answer ? answer.sampleRateHz : Number.NaN
         expect(rate).toBeGreaterThanOrEqual(found.sampleRateHz)
@@ -97,7 +107,29 @@ describe('the lowest rate', () => {
     const spec = withResponse(defaultSpec, 'highpass')
     const highpass = subjectOf(spec, 120)
     const answer = askLowest({ ...highpass, budget, searchHz: searchSpan(highpass) }, { method: 'impulse-invariant' })
-    expect('refused' in answer && answer.refused.length).toBeGreaterThan(20)
+    // The method's own words, without the highest rate before them.
+    expect('refused' in answer ? answer.refused : '').toMatch(/^Sampling the impulse response/)
+    // And the budget's where the method itself would work.
+    const strict = { magnitudeDb: 1e-9, phaseDegrees: 1e-9, removeDelay: false }
+    const broken = askLowest({ ...question, budget: strict }, { method: 'matched-z' })
+    expect('refused' in broken ? broken.refused : '').toMatch(/off by/)
+  })
+
+  it('judges a high-pass over its pass band, wherever its edge is', () => {
+    const highpass = withResponse(defaultSpec, 'highpass').analog
+    expect(usualUpTo(defaultSpec.analog)).toBe(120)
+    expect(usualUpTo(highpass)).toBe(480)
+    // The edge of a Chebyshev II filter is where its stop band ends.
+    const stopEdge: AnalogSpec = {
+      family: 'chebyshev2',
+      response: 'highpass',
+      order: 2,
+      edgesHz: [10],
+      attenuationDb: 80,
+    }
+    expect(reasonAgainst(stopEdge, 10)).not.toBeNull()
+    expect(reasonAgainst(stopEdge, usualUpTo(stopEdge))).toBeNull()
+    expect(reasonAgainst(defaultSpec.analog, 120)).toBeNull()
   })
 
   it('is rounded up in the fourth digit and no further', () => {

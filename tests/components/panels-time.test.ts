@@ -2,7 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { deriveVersions } from '@/components/studio/derive'
 import { stepCurve } from '@/components/studio/panels/time/step-curve'
-import { stepFigures } from '@/components/studio/panels/time/step-figures'
+import { timeFigures } from '@/components/studio/panels/time/time-figures'
 import {
   analogCurve,
   digitalSamples,
@@ -13,7 +13,15 @@ import {
 import { timeFrame, timeScene, valueUnit } from '@/components/studio/panels/time/time-picture'
 import { timeRows } from '@/components/studio/panels/time/time-table'
 import { panned, showing, usualSpan, zoomed } from '@/components/studio/panels/time/time-view'
-import { designAnalog, discretize, impulseResponse, type AnalogSpec, type DesignSpec, type Filter } from '@/dsp'
+import {
+  designAnalog,
+  discretize,
+  impulseResponse,
+  stepFigures,
+  type AnalogSpec,
+  type DesignSpec,
+  type Filter,
+} from '@/dsp'
 import { defaultSpec } from '@/lib/designs/edits'
 
 /** ω²/(s² + 2ζω·s + ω²) */
@@ -50,7 +58,7 @@ describe('figures of an analog step response', () => {
         fc.double({ min: 0.05, max: 0.85, noNaN: true }),
         fc.double({ min: 0.01, max: 1e5, noNaN: true }),
         (damping, hertz) => {
-          const figures = stepFigures(stepCurve(secondOrder(hertz, damping)), 0.02)
+          const figures = timeFigures(stepCurve(secondOrder(hertz, damping)), 0.02)
           const damped = Math.sqrt(1 - damping * damping)
           close(figures.overshoot, Math.exp((-Math.PI * damping) / damped), 1e-7)
           // A peak is flat: its place is only known to the root of the rounding.
@@ -68,7 +76,7 @@ describe('figures of an analog step response', () => {
       const response = (t: number) =>
         1 - (Math.exp(-damping * omega * t) / damped) * Math.sin(omega * damped * t + Math.acos(damping))
       for (const tolerance of [0.01, 0.02, 0.05]) {
-        const settled = stepFigures(stepCurve(secondOrder(50, damping)), tolerance).settlingSeconds ?? Number.NaN
+        const settled = timeFigures(stepCurve(secondOrder(50, damping)), tolerance).settlingSeconds ?? Number.NaN
         expect(Math.abs(Math.abs(response(settled) - 1) / tolerance - 1)).toBeLessThan(1e-6)
         const after = Array.from({ length: 4000 }, (_, k) => Math.abs(response(settled + k * 1e-5) - 1))
         expect(Math.max(...after)).toBeLessThan(tolerance * (1 + 1e-6))
@@ -77,7 +85,7 @@ describe('figures of an analog step response', () => {
   })
 
   it('rises and settles as an exponential of first order', () => {
-    const figures = stepFigures(stepCurve(firstOrder(0.0123)), 0.01)
+    const figures = timeFigures(stepCurve(firstOrder(0.0123)), 0.01)
     close(figures.riseSeconds, 0.0123 * Math.log(9), 1e-9)
     close(figures.settlingSeconds, 0.0123 * Math.log(100), 1e-9)
     expect(figures.overshoot).toBe(0)
@@ -87,7 +95,7 @@ describe('figures of an analog step response', () => {
 
   it('measures against the largest swing where the response returns to zero', () => {
     const spec: AnalogSpec = { family: 'butterworth', response: 'highpass', order: 1, edgesHz: [10] }
-    const figures = stepFigures(stepCurve(designAnalog(spec)), 0.02)
+    const figures = timeFigures(stepCurve(designAnalog(spec)), 0.02)
     expect(figures.returnsToZero).toBe(true)
     expect(figures.overshoot).toBeNull()
     expect(figures.riseSeconds).toBeNull()
@@ -104,7 +112,7 @@ describe('figures of an analog step response', () => {
       rippleDb: 0.5,
       attenuationDb: 60,
     }
-    const figures = stepFigures(stepCurve(designAnalog(spec)), 0.02)
+    const figures = timeFigures(stepCurve(designAnalog(spec)), 0.02)
     expect(figures.finalValue).toBeCloseTo(1e-3, 6)
     expect(figures.returnsToZero).toBe(true)
     expect(figures.overshoot).toBeNull()
@@ -113,10 +121,33 @@ describe('figures of an analog step response', () => {
 
   it('follows a narrow band-pass until it has died away, without missing a swing', () => {
     const spec: AnalogSpec = { family: 'butterworth', response: 'bandpass', order: 1, edgesHz: [99.5, 100.5] }
-    const figures = stepFigures(stepCurve(designAnalog(spec)), 0.02)
+    const figures = timeFigures(stepCurve(designAnalog(spec)), 0.02)
     // The envelope of the resonator decays by exp(−π·B·t) with B = 1 Hz; a swing of 10 ms is the most the band's crossing is off by.
     expect(figures.settlingSeconds).toBeGreaterThan(Math.log(50) / Math.PI - 0.02)
     expect(figures.settlingSeconds).toBeLessThan(Math.log(50) / Math.PI + 0.01)
+  })
+})
+
+describe('figures beside those of dsp, which are found another way', () => {
+  const specs: readonly AnalogSpec[] = [
+    { family: 'bessel', response: 'lowpass', order: 8, edgesHz: [5] },
+    { family: 'elliptic', response: 'lowpass', order: 7, edgesHz: [100], rippleDb: 0.1, attenuationDb: 80 },
+    { family: 'chebyshev1', response: 'bandstop', order: 3, edgesHz: [40, 60], rippleDb: 0.5 },
+    { family: 'butterworth', response: 'highpass', order: 4, edgesHz: [20] },
+  ]
+  it.each(specs)('agree for $family $response', (spec) => {
+    for (const filter of [designAnalog(spec), discretize(spec, 1200, { method: 'bilinear', hold: 'edges' })]) {
+      const theirs = stepFigures(filter)
+      const curve = stepCurve(filter)
+      for (const [tolerance, settled] of [
+        [0.01, theirs.settlingSeconds.within1],
+        [0.02, theirs.settlingSeconds.within2],
+        [0.05, theirs.settlingSeconds.within5],
+      ] as const) {
+        close(timeFigures(curve, tolerance).settlingSeconds, settled, 1e-6)
+      }
+      expect(Math.abs((timeFigures(curve, 0.01).overshoot ?? 0) - theirs.overshoot)).toBeLessThan(1e-6)
+    }
   })
 })
 
@@ -124,9 +155,9 @@ describe('figures of a digital step response', () => {
   const spec: AnalogSpec = { family: 'butterworth', response: 'lowpass', order: 2, edgesHz: [120] }
 
   it('are those of the analog one, sample by sample, for the step-invariant version', () => {
-    const analog = stepFigures(stepCurve(designAnalog(spec)), 0.02)
+    const analog = timeFigures(stepCurve(designAnalog(spec)), 0.02)
     const rate = 1.2e6
-    const digital = stepFigures(stepCurve(discretize(spec, rate, { method: 'step-invariant' })), 0.02)
+    const digital = timeFigures(stepCurve(discretize(spec, rate, { method: 'step-invariant' })), 0.02)
     close(digital.overshoot, analog.overshoot ?? 0, 1e-5)
     close(digital.riseSeconds, analog.riseSeconds ?? 0, 1e-5)
     const late = (digital.settlingSeconds ?? 0) - (analog.settlingSeconds ?? 0)
@@ -137,7 +168,7 @@ describe('figures of a digital step response', () => {
   it('settle on a sample from which all stay inside', () => {
     const filter = discretize(spec, 1200, { method: 'bilinear', hold: 'edges' })
     const curve = stepCurve(filter)
-    const { settlingSeconds } = stepFigures(curve, 0.05)
+    const { settlingSeconds } = timeFigures(curve, 0.05)
     const n = Math.round((settlingSeconds ?? 0) * 1200)
     expect(n / 1200).toBeCloseTo(settlingSeconds ?? 0, 12)
     expect(Math.abs((curve.values[n - 1] ?? 0) - 1)).toBeGreaterThan(0.05)
@@ -229,10 +260,10 @@ describe('curves over time', () => {
 })
 
 describe('the part of time that is shown', () => {
-  const usual = usualSpan([stepFigures(stepCurve(secondOrder(120, 0.7)), 0.02)], 1200)
+  const usual = usualSpan([timeFigures(stepCurve(secondOrder(120, 0.7)), 0.02)], 1200)
 
   it('reaches past the settling, whatever the rate', () => {
-    const settled = stepFigures(stepCurve(secondOrder(120, 0.7)), 0.02).settlingSeconds ?? 0
+    const settled = timeFigures(stepCurve(secondOrder(120, 0.7)), 0.02).settlingSeconds ?? 0
     expect(usual[1]).toBeGreaterThan(settled)
     expect(usual[0]).toBeLessThan(0)
     expect(usualSpan([], 1200)[1]).toBeGreaterThan(8 / 1200)

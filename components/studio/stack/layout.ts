@@ -48,11 +48,13 @@ export function stackLayout(width: number): StackLayout {
     departure: box('departure'),
   }
   const axisTop = plots.departure.bottom
+  // On a narrow sheet the fold line's tag hangs into the strip; the labels make room.
+  const strip = isNarrow(width) ? STRIP_PIXELS + 8 : STRIP_PIXELS
   return {
     width,
-    height: axisTop + STRIP_PIXELS,
+    height: axisTop + strip,
     plots,
-    axis: { top: axisTop, bottom: axisTop + STRIP_PIXELS, trustedY: axisTop + 7, labelBaseline: axisTop + 26 },
+    axis: { top: axisTop, bottom: axisTop + strip, trustedY: axisTop + 7, labelBaseline: axisTop + strip - 10 },
   }
 }
 
