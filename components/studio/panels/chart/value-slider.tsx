@@ -115,7 +115,7 @@ export function ValueSlider({
       aria-valuetext={valueText}
       aria-disabled={disabled || undefined}
       className={classNames(
-        'absolute grid min-h-6 min-w-6 -translate-x-1/2 -translate-y-1/2 touch-none place-items-center rounded select-none focus-visible:z-10',
+        'absolute grid min-h-[24px] min-w-[24px] -translate-x-1/2 -translate-y-1/2 touch-none place-items-center rounded select-none focus-visible:z-10',
         !disabled && (orientation === 'horizontal' ? 'cursor-ew-resize' : 'cursor-ns-resize'),
         className,
       )}

@@ -92,7 +92,10 @@ export function AnswersTable({
                     </td>
                   </>
                 ) : (
-                  <td colSpan={2} className="min-w-48 py-1 pl-4 text-left align-top leading-5 text-pencil">
+                  <td
+                    colSpan={2}
+                    className={classNames('py-1 pl-4 text-left align-top leading-5 text-pencil', answer && 'min-w-48')}
+                  >
                     {answer ? answer.refused : '…'}
                   </td>
                 )}

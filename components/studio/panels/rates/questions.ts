@@ -98,8 +98,15 @@ export function askSweep({ ratesHz, ...question }: SweepQuestion): readonly Rate
 /** The lowest rate as one would state it: rounded up, which dsp vouches for, since its answer holds for higher rates too. */
 export function askLowest({ analog, upToHz, budget, searchHz }: LowestQuestion, how: DesignMethod): LowestRate {
   const found = lowestRate({ analog, how, upToHz, budget, searchHz })
-  if ('refused' in found) return { id: how.method, refused: found.refused }
+  if ('refused' in found)
+    return { id: how.method, refused: refusalAt(searchHz[1], analog, upToHz, how) ?? found.refused }
   return { id: how.method, sampleRateHz: statedRate(found.sampleRateHz) }
+}
+
+/** Why a method refuses even the highest rate, in its own words; null when it doesn't, and only the budget is broken. */
+function refusalAt(rateHz: number, analog: AnalogSpec, upToHz: number, how: DesignMethod): string | null {
+  const { methods } = rateSweep({ analog, methods: [how], ratesHz: [rateHz], upToHz, removeDelay: false })
+  return methods[0]?.refused[0] ?? null
 }
 
 /** Why a departure can't be judged up to a frequency, or null when it can. */
@@ -113,9 +120,13 @@ export function reasonAgainst(analog: AnalogSpec, upToHz: number): string | null
   }
 }
 
-/** The highest edge; where that lies below the band in use (the stop edge of a high-pass), the octave above it that doesn't. */
+/** Octaves above its edge up to which a high-pass filter is judged at first: it is in use from the edge upwards only. */
+const HIGHPASS_OCTAVES = 2
+
+/** Up to where a prototype is judged at first: its highest edge, or two octaves of pass band above the edge of a high-pass. */
 export function usualUpTo(analog: AnalogSpec): number {
-  let hertz = highestEdge(analog)
+  let hertz = highestEdge(analog) * (analog.response === 'highpass' ? 2 ** HIGHPASS_OCTAVES : 1)
+  // The stop edge of a steep high-pass may lie more octaves below its band.
   for (let octave = 0; octave < 12 && reasonAgainst(analog, hertz) !== null; octave++) hertz *= 2
   return hertz
 }

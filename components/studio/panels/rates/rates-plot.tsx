@@ -42,11 +42,7 @@ export function RatesPlot({
       <PlotSheet scene={scene}>
         <span
           className="pointer-events-none absolute rounded bg-sheet/80 px-2 text-[12px] leading-5 font-medium"
-          style={{
-            left: frame.box.left + 2,
-            bottom: frame.height - frame.box.bottom + 3,
-            maxWidth: width - frame.box.left,
-          }}
+          style={{ right: 4, top: frame.box.top + 2, maxWidth: width - frame.box.left }}
         >
           {title}
           <span className="max-sm:hidden"> against the sampling rate</span>

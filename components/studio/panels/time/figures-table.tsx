@@ -3,13 +3,13 @@ import { classNames } from '@/lib/format/class-names'
 import { formatFixed, formatNumber, formatSeconds } from '@/lib/format/quantity'
 import { TraceSample } from '../../stack/trace-sample'
 import { ScrollRegion } from '../chart/data-table'
-import type { StepFigures } from './step-figures'
+import type { TimeFigures } from './time-figures'
 
 export interface VersionFigures {
   readonly id: TraceId
   readonly label: string
   readonly stated: boolean
-  readonly figures: StepFigures
+  readonly figures: TimeFigures
 }
 
 /** Overshoot, rise, settling and final value of each version's step response. */

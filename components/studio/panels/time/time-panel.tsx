@@ -15,7 +15,7 @@ import { useQuiet } from '../chart/use-quiet'
 import { DataTable } from '../chart/data-table'
 import { FiguresTable, type VersionFigures } from './figures-table'
 import { stepCurve } from './step-curve'
-import { stepFigures } from './step-figures'
+import { timeFigures } from './time-figures'
 import { timeCurves, valuesAt, type TimeKind } from './time-curves'
 import { valueUnit } from './time-picture'
 import { TimePlot, ZOOM_STEP, type Crosshair } from './time-plot'
@@ -46,13 +46,13 @@ function TimeResponses({ spec, versions: latest }: { spec: DesignSpec; versions:
   const known = useMemo(() => knownVersions(versions), [versions])
   const rows = useMemo(
     (): readonly VersionFigures[] =>
-      known.map(({ curve, ...version }) => ({ ...version, figures: stepFigures(curve, tolerancePercent / 100) })),
+      known.map(({ curve, ...version }) => ({ ...version, figures: timeFigures(curve, tolerancePercent / 100) })),
     [known, tolerancePercent],
   )
   const usual = useMemo(() => {
     const telling = known.filter(({ id, stated }) => stated || id === 'analog')
     return usualSpan(
-      telling.map(({ curve }) => stepFigures(curve, 0.02)),
+      telling.map(({ curve }) => timeFigures(curve, 0.02)),
       sampleRateHz,
     )
   }, [known, sampleRateHz])
@@ -107,11 +107,14 @@ function TimeResponses({ spec, versions: latest }: { spec: DesignSpec; versions:
               Until settled
             </Button>
           </span>
+          <span className="font-mono text-[12px] whitespace-nowrap tabular-nums">
+            {at === null ? <span className="text-pencil">move over the plot to read</span> : `at ${at}`}
+          </span>
         </div>
         <VersionKeys
           versions={known}
           hidden={hidden}
-          at={at}
+          valueWidth={kind === 'step' ? 'min-w-[7ch]' : 'min-w-[11ch]'}
           valueOf={(id) => {
             const value = crosshair?.values.get(id)
             return value === undefined ? null : written(value)

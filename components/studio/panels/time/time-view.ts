@@ -1,10 +1,10 @@
 import { linearScale, pannedDomain, zoomedDomain, type Span } from '@/components/plot/scale'
-import type { StepFigures } from './step-figures'
+import type { TimeFigures } from './time-figures'
 
 /* Which part of time is looked at. */
 
 /** From a little before the step to a little after the slowest of the given versions has settled. */
-export function usualSpan(figures: readonly StepFigures[], sampleRateHz: number): Span {
+export function usualSpan(figures: readonly TimeFigures[], sampleRateHz: number): Span {
   const settled = figures.map(({ settlingSeconds }) => settlingSeconds ?? 0)
   const to = Math.max(...settled, 8 / sampleRateHz) * 1.25
   return [-to / 25, to]

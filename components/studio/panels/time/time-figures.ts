@@ -7,7 +7,7 @@ import { largest, type StepCurve } from './step-curve'
  * straight line between two samples.
  */
 
-export interface StepFigures {
+export interface TimeFigures {
   readonly finalValue: number
   /**
    * The response ends at zero, or so near it (a stop band's floor) that there is no final value to refer to: the settling band is then a
@@ -27,7 +27,7 @@ export interface StepFigures {
 const NEAR_ZERO = 0.05
 
 /** @param tolerance half the settling band, as a part of the final value (0.02 for ±2 %) */
-export function stepFigures(curve: StepCurve, tolerance: number): StepFigures {
+export function timeFigures(curve: StepCurve, tolerance: number): TimeFigures {
   const { finalValue } = curve
   const most = largest(curve.values)
   const returnsToZero = Math.abs(finalValue) <= NEAR_ZERO * most
