@@ -46,4 +46,4 @@ export function sniff(head: Uint8Array): FileKind {
   return 'table'
 }
 
-export const printable = (text: string): string => `“${text.replace(/[^\x20-\x7e]/g, '·')}”`
+const printable = (text: string): string => `“${text.replace(/[^\x20-\x7e]/g, '·')}”`

@@ -240,6 +240,7 @@ describe('pictures', () => {
       window: 'hann' as const,
       segments: 3,
       leftOut: 'nothing' as const,
+      partFrames: null,
       frequenciesHz: Float64Array.of(0, 10, 20, 30, 40),
       before: Float64Array.of(1, 1e-3, 1e-2, 1e-4, 1e-5),
       after: Float64Array.of(1, 1e-3, 1e-3, 1e-6, 0),

@@ -10,7 +10,7 @@ import { Overview } from './overview'
  * over the whole array at once would give, to the last bit.
  */
 
-export const BLOCK_FRAMES = 65_536
+const BLOCK_FRAMES = 65_536
 
 export type RunMode = 'causal' | 'zero-phase'
 export type RunStart = 'zero' | 'steady'

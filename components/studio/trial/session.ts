@@ -1,19 +1,13 @@
-import {
-  DesignError,
-  designFromSpec,
-  footbridgeDemo,
-  magnitudeDb,
-  zeroPhaseMagnitudeDb,
-  type DigitalFilter,
-} from '@/dsp'
+import { designFromSpec, footbridgeDemo, magnitudeDb, zeroPhaseMagnitudeDb, type DigitalFilter } from '@/dsp'
 import { createBreath } from '@/lib/recordings/breathe'
-import { RecordingError, type RecordingProblem } from '@/lib/recordings/errors'
+import { RecordingError } from '@/lib/recordings/errors'
 import { identify, openWav } from '@/lib/recordings/open'
 import { arraysAsSource, MemoryBudget } from '@/lib/recordings/sample-store'
 import { readTable } from '@/lib/recordings/table/read'
 import { resampleEvenly } from '@/lib/recordings/table/resample'
 import { statedTiming } from '@/lib/recordings/table/timing'
 import type { FrameSource, Recording, TaskControl } from '@/lib/recordings/types'
+import { answered, problemOf } from './answers'
 import type { Progress, TrialApi } from './api'
 import { readDelay } from './delays'
 import { fillGaps } from './fill-gaps'
@@ -32,12 +26,12 @@ import type {
   WindowReading,
   WindowRequest,
 } from './shapes'
-import { densityOf, MOST_SPECTRUM_FRAMES } from './spectrum'
+import { densityOf, spectrumSpan } from './spectrum'
 import { refuseGaps, refuseHopelessGaps, summaryOf } from './summary'
 import { TableDesk } from './table-desk'
 
 /** Samples that all stores together keep in memory; what is more the browser may page to disk. */
-const MEMORY_BYTES = 768e6
+const MEMORY_BYTES = 512e6
 const DEMO_SECONDS = 60
 const DEMO_FRAMES = 3_000_000
 
@@ -192,7 +186,7 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
     const output = ran?.summary.request.channels.includes(channel) ? outputOf(channel) : null
     if (!output && overviews[channel]!.gapFrames > 0) refuseGaps(recording, overviews, [channel])
     const { frames } = recording.source
-    const { from, to, leftOut } = spectrumSpan(frames, segmentLength, output?.ran.summary ?? null)
+    const { from, to, leftOut, isPart } = spectrumSpan(frames, segmentLength, output?.ran.summary ?? null)
     const options = { sampleRateHz: recording.sampleRateHz, segmentLength, window: name }
     const before = await densityOf(output?.ran.input ?? recording.source, channel, from, to, options)
     const after = output ? await densityOf(output.source, output.at, from, to, options) : null
@@ -202,6 +196,7 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
       window: name,
       segments: before.segments,
       leftOut,
+      partFrames: isPart ? to - from : null,
       frequenciesHz: before.frequenciesHz,
       before: before.density,
       after: after?.density ?? null,
@@ -295,27 +290,6 @@ function edgeLevels(filter: DigitalFilter, edgesHz: readonly number[]): EdgeLeve
   return edgesHz.map((hz, k) => ({ hz, onceDb: once[k]!, twiceDb: twice[k]! }))
 }
 
-/** Both spectra leave out the same start-up and ends, where the record is long enough for that. */
-function spectrumSpan(
-  frames: number,
-  segmentLength: number,
-  run: RunSummary | null,
-): { from: number; to: number; leftOut: SpectrumReading['leftOut'] } {
-  const causal = run?.request.mode === 'causal'
-  const head = run ? (causal ? run.settlingFrames : run.extensionFrames) : 0
-  const tail = run && !causal ? run.extensionFrames : 0
-  const trimmed = frames - head - tail >= 4 * segmentLength
-  const from = trimmed ? head : 0
-  const to = Math.min(trimmed ? frames - tail : frames, from + MOST_SPECTRUM_FRAMES)
-  if (to - from < segmentLength) {
-    throw new RecordingError(
-      'too-short',
-      `The recording has ${frames} samples, fewer than one segment of ${segmentLength}. Choose shorter segments.`,
-    )
-  }
-  return { from, to, leftOut: !trimmed || head + tail === 0 ? 'nothing' : causal ? 'start-up' : 'ends' }
-}
-
 const demoRecording = (demo: ReturnType<typeof footbridgeDemo>): Recording => ({
   kind: 'demo',
   name: demo.title,
@@ -330,26 +304,3 @@ const demoRecording = (demo: ReturnType<typeof footbridgeDemo>): Recording => ({
   rowOf: () => undefined,
   release: () => undefined,
 })
-
-async function answered<Value>(ask: () => Promise<Value>): Promise<Answer<Value>> {
-  try {
-    return { ok: true, value: await ask() }
-  } catch (cause) {
-    return { ok: false, problem: problemOf(cause) }
-  }
-}
-
-function problemOf(cause: unknown): RecordingProblem {
-  if (cause instanceof RecordingError) return cause.toProblem()
-  if (cause instanceof DesignError) {
-    const nearest = cause.nearest === undefined ? '' : ` The nearest value that works: ${cause.nearest}.`
-    return {
-      code: 'design-refused',
-      message: `${cause.message}${cause.message.includes(String(cause.nearest)) ? '' : nearest}`,
-    }
-  }
-  return {
-    code: 'unexpected',
-    message: `This went wrong inside: ${cause instanceof Error ? cause.message : String(cause)}`,
-  }
-}

@@ -143,6 +143,8 @@ export interface SpectrumReading {
   readonly segments: number
   /** What was left out of both spectra. */
   readonly leftOut: 'nothing' | 'start-up' | 'ends'
+  /** How many samples went in, when that is only the first part of a very long record. */
+  readonly partFrames: number | null
   readonly frequenciesHz: Float64Array
   readonly before: Float64Array
   readonly after: Float64Array | null

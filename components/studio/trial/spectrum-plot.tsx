@@ -15,6 +15,7 @@ import type { SpectrumReading } from './shapes'
 import { nearestLine, spectrumScene, wholeSpan } from './spectrum-scene'
 import type { TrialView } from './store'
 import type { Trial } from './trial'
+import { formatCount } from './words'
 
 const select = 'min-h-6 border border-graph-strong rounded bg-sheet px-1 text-[12px]'
 
@@ -166,7 +167,13 @@ function readOut(spectrum: SpectrumReading, hz: number, density: string) {
   return { valueText: `${at}, ${text} ${density}`, words: `at ${at}: ${text}` }
 }
 
-const basis = (spectrum: SpectrumReading, sampleRateHz: number): string =>
-  `Mean of ${spectrum.segments} segments, half overlapping, each less its mean; lines ${formatHz(sampleRateHz / spectrum.segmentLength, 3)} apart${
-    spectrum.leftOut === 'nothing' ? '' : `; the ${spectrum.leftOut} left out`
-  }.`
+function basis(spectrum: SpectrumReading, sampleRateHz: number): string {
+  const parts = [
+    `Mean of ${formatCount(spectrum.segments, 'segment', 'segments')}, half overlapping, each less its mean`,
+    `lines ${formatHz(sampleRateHz / spectrum.segmentLength, 3)} apart`,
+  ]
+  if (spectrum.leftOut !== 'nothing') parts.push(`the ${spectrum.leftOut} left out`)
+  if (spectrum.partFrames !== null)
+    parts.push(`from the first ${formatCount(spectrum.partFrames, 'sample', 'samples')} only`)
+  return `${parts.join('; ')}.`
+}

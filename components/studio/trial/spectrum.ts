@@ -1,8 +1,10 @@
 import { welch, type WindowName } from '@/dsp'
+import { RecordingError } from '@/lib/recordings/errors'
 import type { FrameSource } from '@/lib/recordings/types'
+import type { RunSummary, SpectrumReading } from './shapes'
 
 /** Samples that a spectrum is taken from at most: more would only take longer. */
-export const MOST_SPECTRUM_FRAMES = 8_388_608
+const MOST_SPECTRUM_FRAMES = 8_388_608
 /** Samples held at once. */
 const BLOCK_FRAMES = 1 << 19
 const OVERLAP = 0.5
@@ -48,4 +50,31 @@ export async function densityOf(
     segments += found.segments
   }
   return { frequenciesHz, density: sum.map((value) => value / segments), segments }
+}
+
+/** Both spectra leave out the same start-up and ends, where the record is long enough for that. */
+export function spectrumSpan(
+  frames: number,
+  segmentLength: number,
+  run: RunSummary | null,
+): { from: number; to: number; leftOut: SpectrumReading['leftOut']; isPart: boolean } {
+  const causal = run?.request.mode === 'causal'
+  const head = run ? (causal ? run.settlingFrames : run.extensionFrames) : 0
+  const tail = run && !causal ? run.extensionFrames : 0
+  const trimmed = frames - head - tail >= 4 * segmentLength
+  const from = trimmed ? head : 0
+  const end = trimmed ? frames - tail : frames
+  const to = Math.min(end, from + MOST_SPECTRUM_FRAMES)
+  if (to - from < segmentLength) {
+    throw new RecordingError(
+      'too-short',
+      `The recording has ${frames} samples, fewer than one segment of ${segmentLength}. Choose shorter segments.`,
+    )
+  }
+  return {
+    from,
+    to,
+    isPart: to < end,
+    leftOut: !trimmed || head + tail === 0 ? 'nothing' : causal ? 'start-up' : 'ends',
+  }
 }

@@ -3,7 +3,7 @@ import type { Timing } from '@/lib/recordings/types'
 import type { RecordingSummary } from './shapes'
 
 /** Jitter above this deserves a word: the filter takes the samples as even. */
-export const JITTER_CAUTION_PERCENT = 1
+const JITTER_CAUTION_PERCENT = 1
 
 export const formatRate = (hertz: number): string => formatHz(hertz, 7)
 

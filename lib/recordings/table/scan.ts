@@ -13,7 +13,7 @@ import { readStamp, StampClock } from './stamp'
  */
 
 /** Rows handed over at once. */
-export const BLOCK_ROWS = 16_384
+const BLOCK_ROWS = 16_384
 /** A line longer than this is no row of samples. */
 const MAX_LINE_BYTES = 1 << 20
 /** Flaws that are kept to be shown; all are counted. */

@@ -81,7 +81,7 @@ export async function measureTiming(
 }
 
 /** The decimal with fewest digits that is within a relative tolerance of a value: 1/0.0009999999999999787 is 1,000 Hz. */
-export function shortestWithin(value: number, tolerance: number): number {
+function shortestWithin(value: number, tolerance: number): number {
   for (let digits = 1; digits < 17; digits += 1) {
     const shorter = Number(value.toPrecision(digits))
     if (Math.abs(shorter - value) <= tolerance * value) return shorter

@@ -15,7 +15,7 @@ export interface WrittenColumn {
  * User text for a CSV cell: quoted where needed, and kept from being taken for a formula by a leading apostrophe. Numbers never pass
  * through here: −5.2 stays -5.2.
  */
-export function escapeText(text: string): string {
+function escapeText(text: string): string {
   const tame = /^[=+\-@\t\r]/.test(text) ? `'${text}` : text
   return /[",;\r\n\t]/.test(tame) || tame !== tame.trim() ? `"${tame.replaceAll('"', '""')}"` : tame
 }

@@ -9,7 +9,7 @@ const BLOCK_BYTES = 1 << 20
  * Decodes one channel out of interleaved samples. Integers become fractions of full scale, exactly: x / 2^(bits − 1), 8-bit
  * samples being unsigned around 128.
  */
-export function decodeChannel(
+function decodeChannel(
   bytes: DataView,
   layout: WavLayout,
   channel: number,
