@@ -89,7 +89,7 @@ export function splitRoots(
 }
 
 /** x = mantissa · 2^exponent with 1 ≤ |mantissa| < 2 (0 stays 0). */
-export function splitExponent(x: number): readonly [number, number] {
+function splitExponent(x: number): readonly [number, number] {
   if (x === 0 || !Number.isFinite(x)) return [x, 0]
   let exponent = Math.floor(Math.log2(Math.abs(x)))
   let mantissa = scaleByPowerOfTwo(x, -exponent)

@@ -8,6 +8,7 @@ import {
   stepResponse,
   type Complex,
 } from '@/dsp'
+import fixture from '@/tests/fixtures/impulse-high-precision.json'
 import { analog, bilinearLowpass, butterworthHighpass, butterworthLowpass, pair } from '@/tests/helpers/root-filters'
 
 const relative = (got: Float64Array, expected: readonly number[]) => {
@@ -57,6 +58,15 @@ describe('analog impulse response', () => {
     })
     expect(relative(values, expected)).toBeLessThan(1e-11)
   })
+
+  // Expected values: tests/fixtures/impulse-high-precision.json, residues with 80 digits; generator beside it.
+  it.each(fixture.cases)(
+    'of a $name is that of 80-digit residues',
+    ({ zeros, poles, gain, stepSeconds, values: expected }) => {
+      const { values } = impulseResponse(analog(zeros, poles, gain), { count: expected.length, stepSeconds })
+      expect(relative(values, expected)).toBeLessThan(1e-11)
+    },
+  )
 
   it('keeps apart the impulse that a filter with as many zeros as poles passes through', () => {
     // s/(s + a) = 1 − a/(s + a)
