@@ -4,10 +4,9 @@ import { fillGaps } from '@/components/studio/trial/fill-gaps'
 import { Overview } from '@/components/studio/trial/overview'
 import { extensionOf, runOver } from '@/components/studio/trial/run'
 import { createSession } from '@/components/studio/trial/session'
-import { settlingFramesOf } from '@/components/studio/trial/settling'
 import type { Answer, RecordingSummary, RunRequest } from '@/components/studio/trial/shapes'
 import { densityOf } from '@/components/studio/trial/spectrum'
-import { createRunner, designFromSpec, magnitudeDb, runFilter, seededNoise, welch, type DesignSpec } from '@/dsp'
+import { designFromSpec, magnitudeDb, runFilter, seededNoise, welch, type DesignSpec } from '@/dsp'
 import { RecordingError } from '@/lib/recordings/errors'
 import { openWav } from '@/lib/recordings/open'
 import { arraysAsSource, MemoryBudget } from '@/lib/recordings/sample-store'
@@ -121,20 +120,6 @@ describe('running by blocks', () => {
       RecordingError,
     )
     expect(budget.take(8e8)).toBe(true)
-  })
-
-  it('start-up lasts until the step stays within 1 % of its largest value', () => {
-    for (const [family, order] of [
-      ['butterworth', 4],
-      ['bessel', 3],
-      ['butterworth', 8],
-    ] as const) {
-      const filter = designFromSpec({ ...spec, analog: { ...spec.analog, family, order } }).digital
-      const step = new Float64Array(20_000).fill(1)
-      createRunner(filter.sections).process(step, step)
-      const limit = 0.01 * Math.max(...step)
-      expect(settlingFramesOf(filter)).toBe(step.findLastIndex((y) => Math.abs(y - 1) > limit) + 1)
-    }
   })
 })
 
@@ -414,6 +399,24 @@ describe('a table on the desk', () => {
     valueOf(await session.open(makeTable([['time', 'a'], ...stamps.map((t) => [t, t])]), 'x.csv', quiet))
     valueOf(await session.readTable(quiet))
     expect(await problemOf(session.resample(quiet))).toMatchObject({ code: 'no-resampling', row: 7 })
+  })
+})
+
+describe('start-up', () => {
+  it('lasts until a step stays within 1 % of its end, and never longer than the record', async () => {
+    for (const frames of [40, 4000]) {
+      const session = createSession()
+      await opened(session, await wavOf([noise(frames)]))
+      const run = valueOf(await session.run(request(), quiet))
+      const step = runFilter(digital.sections, new Float64Array(4000).fill(1), { mode: 'causal' })
+      const settled = step.findLastIndex((y) => Math.abs(y - 1) > 0.01) + 1
+      expect(settled).toBeLessThan(40)
+      expect(run.settlingFrames).toBe(settled)
+    }
+    const low = { ...spec, analog: { ...spec.analog, edgesHz: [0.5] } }
+    const session = createSession()
+    await opened(session, await wavOf([noise(300)]))
+    expect(valueOf(await session.run(request({ spec: low }), quiet)).settlingFrames).toBe(300)
   })
 })
 

@@ -29,7 +29,7 @@ export function DelayLine({ state }: { state: TrialView }) {
           <Figure
             label="Start-up"
             value={formatDelay(run.settlingFrames / run.request.spec.sampleRateHz)}
-            title="Until the response to a step stays within 1 % of its largest value."
+            title="Until the response to a step stays within 1 % of where it ends (of its largest value, where it ends at 0)."
           />
         ) : null}
       </div>

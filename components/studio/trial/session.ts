@@ -1,4 +1,11 @@
-import { designFromSpec, footbridgeDemo, magnitudeDb, zeroPhaseMagnitudeDb, type DigitalFilter } from '@/dsp'
+import {
+  designFromSpec,
+  footbridgeDemo,
+  magnitudeDb,
+  settlingTime,
+  zeroPhaseMagnitudeDb,
+  type DigitalFilter,
+} from '@/dsp'
 import { createBreath } from '@/lib/recordings/breathe'
 import { RecordingError } from '@/lib/recordings/errors'
 import { identify, openWav } from '@/lib/recordings/open'
@@ -15,7 +22,6 @@ import { CELL, envelopeOf, Overview } from './overview'
 import { sameRate } from './rates'
 import { eachBlock, extensionOf, runOver, type RunOutput } from './run'
 import { saveResult } from './save'
-import { settlingFramesOf } from './settling'
 import type {
   Answer,
   EdgeLevel,
@@ -141,7 +147,7 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
         const { min, max, rms } = output.overviews[k]!
         return { channel, min, max, rms }
       }),
-      settlingFrames: Math.min(recording.source.frames, settlingFramesOf(filter)),
+      settlingFrames: Math.min(recording.source.frames, Math.round(settlingTime(filter) * filter.sampleRateHz)),
       extensionFrames: extension,
       leastFrames: extension + 1,
       edges: edgeLevels(filter, request.spec.analog.edgesHz),

@@ -98,7 +98,7 @@ export interface RunSummary {
     readonly max: number
     readonly rms: number
   }[]
-  /** Causal: samples until the response to a step has settled to 1 %. */
+  /** Causal: samples until the response to a step has settled to 1 %, at most the whole record. */
   readonly settlingFrames: number
   /** Forward–backward: samples of the extension at each end, and the least record length. */
   readonly extensionFrames: number
