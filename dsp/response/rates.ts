@@ -171,7 +171,7 @@ export function lowestRate(options: LowestRateOptions): { sampleRateHz: number }
     let reason = ''
     for (const removeDelay of ways) {
       const worst = worstAt(side, rate, how, removeDelay)
-      if (typeof worst === 'string') return worst
+      if (typeof worst === 'string') return `the rate is refused. ${worst}`
       if (worst.db <= budget.magnitudeDb && worst.degrees <= budget.phaseDegrees) return null
       reason ||=
         worst.db > budget.magnitudeDb
@@ -181,7 +181,7 @@ export function lowestRate(options: LowestRateOptions): { sampleRateHz: number }
     return reason
   }
   const atTop = complaint(highest)
-  if (atTop !== null) return { refused: `Even at ${highest} Hz ${atTop}.`.replace(/\.\.$/, '.') }
+  if (atTop !== null) return { refused: `Even at ${highest} Hz ${atTop.replace(/\.$/, '')}.` }
   const steps = Math.max(1, Math.ceil(Math.log10(highest / lowest) * RATES_PER_DECADE))
   let kept = highest
   for (let step = 1; step <= steps; step++) {

@@ -328,6 +328,10 @@ describe('rates', () => {
     const budget: DepartureBudget = { magnitudeDb: 1e-9, phaseDegrees: 1e-9, removeDelay: false }
     const found = lowestRate({ analog: lowpass(4), how: bilinear, upToHz: 80, budget, searchHz: [250, 1000] })
     expect('refused' in found && found.refused).toMatch(/Even at 1000 Hz the magnitude is off by/)
+    const high: AnalogSpec = { family: 'butterworth', response: 'highpass', order: 2, edgesHz: [100] }
+    const how: Method = { method: 'impulse-invariant' }
+    const never = lowestRate({ analog: high, how, upToHz: 140, budget, searchHz: [300, 1000] })
+    expect('refused' in never && never.refused).toMatch(/^Even at 1000 Hz the rate is refused\. .*[^.]\.$/)
   })
 
   it('refuses a band that ends before the filter comes into use', () => {
