@@ -180,6 +180,7 @@ describe('pictures', () => {
     trace: 'bilinear',
     afterWords: 'After, causal',
     startUpFrames: 120,
+    shiftFrames: 0,
     extensionFrames: 0,
     sameScale: true,
   }
@@ -202,6 +203,12 @@ describe('pictures', () => {
       )
     const { x } = timeScene(input)
     expect(hatches({})).toEqual([[x.toPixel(0), x.toPixel(1.2)]])
+    // moved earlier, less of it is in view; its words still say how long it is
+    expect(hatches({ shiftFrames: 40 })).toEqual([[x.toPixel(0), x.toPixel(0.8)]])
+    const words = flat(timeScene({ ...input, shiftFrames: 40 }).scene.marks).map((mark) =>
+      mark.kind === 'text' ? mark.text : '',
+    )
+    expect(words).toContain('start-up, 1.2\u2009s')
     const ends = hatches({ startUpFrames: 0, extensionFrames: 100 })
     expect(ends).toEqual([
       [x.toPixel(0), x.toPixel(1)],

@@ -42,9 +42,9 @@ export function ColumnChoice({ preview, onChange }: { preview: TablePreview; onC
               <tr key={column.column} className="border-t border-graph">
                 <td className="px-2 py-1 whitespace-nowrap">
                   {isTime ? (
-                    <span className="inline-flex min-h-6 items-center">time</span>
+                    <span className="inline-flex min-h-[24px] items-center">time</span>
                   ) : (
-                    <label className="inline-flex min-h-6 min-w-6 cursor-pointer items-center gap-2">
+                    <label className="inline-flex min-h-[24px] min-w-[24px] cursor-pointer items-center gap-2">
                       <input
                         type="checkbox"
                         className="size-4 accent-spruce"

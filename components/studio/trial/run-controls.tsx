@@ -67,7 +67,7 @@ function Radios<Value extends string>({
     <fieldset className="flex flex-col text-[14px]">
       <legend className="text-[13px] font-medium">{legend}</legend>
       {options.map((option) => (
-        <label key={option.value} className="inline-flex min-h-6 cursor-pointer items-center gap-2">
+        <label key={option.value} className="inline-flex min-h-[24px] cursor-pointer items-center gap-2">
           <input
             type="radio"
             name={name}
@@ -103,7 +103,7 @@ function ChannelChoice({
           <legend className="text-[13px] font-medium">Channels to run</legend>
           <div className="flex flex-wrap gap-x-4">
             {channels.map((channel, index) => (
-              <label key={index} className="inline-flex min-h-6 cursor-pointer items-center gap-2">
+              <label key={index} className="inline-flex min-h-[24px] cursor-pointer items-center gap-2">
                 <input
                   type="checkbox"
                   className="size-4 accent-spruce"

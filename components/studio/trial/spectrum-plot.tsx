@@ -17,7 +17,7 @@ import type { TrialView } from './store'
 import type { Trial } from './trial'
 import { formatCount } from './words'
 
-const select = 'min-h-6 border border-graph-strong rounded bg-sheet px-1 text-[12px]'
+const select = 'min-h-[24px] border border-graph-strong rounded bg-sheet px-1 text-[12px]'
 
 /** Power spectral densities before and after, of the channel that is shown. */
 export function SpectrumPlot({

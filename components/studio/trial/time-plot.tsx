@@ -49,7 +49,8 @@ export function TimePlot({
       unit: channel?.unit ?? '',
       trace: traceId,
       afterWords: wasRun ? `${how}${moved}` : 'After: not run',
-      startUpFrames: wasRun && causal ? Math.max(0, run.settlingFrames - shift) : 0,
+      startUpFrames: wasRun && causal ? run.settlingFrames : 0,
+      shiftFrames: shift,
       extensionFrames: wasRun && run && !causal ? run.extensionFrames : 0,
       sameScale: settings.sameScale,
     })

@@ -24,6 +24,8 @@ export interface TimeSceneInput {
   readonly afterWords: string
   /** Samples at the beginning that are start-up, and at either end that rest on the extension. */
   readonly startUpFrames: number
+  /** Samples by which the result is drawn earlier than it is. */
+  readonly shiftFrames: number
   readonly extensionFrames: number
   readonly sameScale: boolean
 }
@@ -239,7 +241,7 @@ interface Ground {
 
 /** Hatched ground where the result is not the filter's steady work yet. */
 function shading(input: TimeSceneInput, box: Box, x: Scale): Ground {
-  const { sampleRateHz, startUpFrames, extensionFrames, frames } = input
+  const { sampleRateHz, startUpFrames, shiftFrames, extensionFrames, frames } = input
   const under: Mark[] = []
   const over: Mark[] = []
   const strip = (from: number, to: number, words: string, side: 'start' | 'end') => {
@@ -279,7 +281,12 @@ function shading(input: TimeSceneInput, box: Box, x: Scale): Ground {
     }
   }
   if (startUpFrames > 0)
-    strip(0, startUpFrames, `start-up, ${formatQuantity(startUpFrames / sampleRateHz, 's', 3)}`, 'start')
+    strip(
+      -shiftFrames,
+      startUpFrames - shiftFrames,
+      `start-up, ${formatQuantity(startUpFrames / sampleRateHz, 's', 3)}`,
+      'start',
+    )
   if (extensionFrames > 0) {
     const words = `${extensionFrames} samples rest on the extension`
     strip(0, extensionFrames, words, 'start')
