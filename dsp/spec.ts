@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 
 /*
  * The written form of a design, versioned by `format`. The shapes are checked here; whether the numbers make a filter is decided by

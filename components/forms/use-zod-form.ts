@@ -3,7 +3,7 @@
 import { zodResolver } from '@hookform/resolvers/zod'
 import { useState } from 'react'
 import { useForm, type DefaultValues, type FieldValues, type Path } from 'react-hook-form'
-import { z } from 'zod'
+import * as z from 'zod'
 import type { Problem } from '@/lib/designs/types'
 
 // The content policy allows no code made from strings; zod would otherwise try.

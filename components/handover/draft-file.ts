@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 import { DesignError, designFromSpec } from '@/dsp'
 import { coefficientsOf, filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'

@@ -45,8 +45,8 @@ export function studioCommands(
       id: 'toggle-delay',
       name: 'Remove or keep the best constant delay',
       keys: 'Mod+Shift+D',
-      when: () => true,
-      run: () => state().look({ removeDelay: !state().view.removeDelay }),
+      when: () => options.mayEdit,
+      run: () => state().removeDelay(!state().spec.budget.removeDelay),
     },
   ]
 }

@@ -31,27 +31,40 @@ export function methodAsShown(spec: DesignSpec, id: MethodName): DesignMethod {
   return id === 'bilinear' ? { method: id, hold: 'edges' } : { method: id }
 }
 
-export function deriveVersions(spec: DesignSpec, wanted: readonly MethodName[] = methodNames): Versions {
-  const analog = designAnalog(spec.analog)
+/** The versions of a spec, the stated one always and the others as wanted; null while the spec makes no design. */
+export function deriveVersions(spec: DesignSpec, wanted: readonly MethodName[] = methodNames): Versions | null {
+  const analog = orRefusal(() => designAnalog(spec.analog))
+  if (analog instanceof DesignError) return null
   const digital: Versions['digital'][number][] = []
   const refused: Versions['refused'][number][] = []
   for (const id of methodNames) {
     if (id !== spec.how.method && !wanted.includes(id)) continue
-    try {
-      const filter = discretize(spec.analog, spec.sampleRateHz, methodAsShown(spec, id))
-      digital.push({ id, filter, stated: id === spec.how.method })
-    } catch (error) {
-      if (!(error instanceof DesignError)) throw error
-      refused.push({ id, message: error.message })
-    }
+    const stated = id === spec.how.method
+    const filter = orRefusal(() => discretize(spec.analog, spec.sampleRateHz, methodAsShown(spec, id)))
+    if (!(filter instanceof DesignError)) digital.push({ id, filter, stated })
+    else if (stated) return null
+    else refused.push({ id, message: filter.message })
   }
   return { analog, digital, refused }
 }
 
+/** A refusal is an answer here, not an accident. */
+function orRefusal<Value>(make: () => Value): Value | DesignError {
+  try {
+    return make()
+  } catch (error) {
+    if (error instanceof DesignError) return error
+    throw error
+  }
+}
+
+/** The part of the view that curves depend on; the crosshair and the rest don't touch them. */
+export type CurveView = Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency' | 'removeDelay' | 'hidden'>
+
 const GRID_POINTS = 1024
 
 /** The frequencies a curve is computed at: even on the axis as drawn, with the edges and the last frequency met exactly. */
-export function frequencyGrid(view: StackView, upToHz: number, exactly: readonly number[] = []): Float64Array {
+export function frequencyGrid(view: CurveView, upToHz: number, exactly: readonly number[] = []): Float64Array {
   const toHz = Math.min(view.toHz, upToHz)
   const fromHz = Math.min(view.fromHz, toHz)
   const axis = view.logFrequency
@@ -78,7 +91,7 @@ export function delayBand(spec: DesignSpec): readonly [number, number] {
   }
 }
 
-export function deriveTraces(spec: DesignSpec, versions: Versions, view: StackView): readonly Trace[] {
+export function deriveTraces(spec: DesignSpec, versions: Versions, view: CurveView): readonly Trace[] {
   const analogGrid = frequencyGrid(view, Infinity, spec.analog.edgesHz)
   const analog: Trace = {
     id: 'analog',

@@ -32,6 +32,8 @@ export interface StudioCommands {
   redo(): void
   dismissRefusal(): void
   look(change: Partial<StackView>): void
+  /** Whether departure is judged, and drawn, with the best constant delay removed: a part of the budget. */
+  removeDelay(removed: boolean): void
   resetView(): void
   open(drawer: DrawerTab): void
 }
@@ -100,6 +102,10 @@ export function createStudioStore(spec: DesignSpec, view: Partial<StackView> = {
 
     dismissRefusal: () => set({ refusal: refusalOf(get().spec) }),
     look: (change) => set((state) => ({ view: { ...state.view, ...change } })),
+    removeDelay: (removeDelay) => {
+      const { spec: now, propose } = get()
+      propose({ ...now, budget: { ...now.budget, removeDelay } })
+    },
     resetView: () =>
       set((state) => {
         const { fromHz, toHz, magnitudeFloorDb } = usualView(state.spec)

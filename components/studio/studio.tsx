@@ -1,10 +1,9 @@
 'use client'
 
-import { QueryClient, QueryClientProvider } from '@tanstack/react-query'
 import { useSearchParams } from 'next/navigation'
 import { useEffect, useMemo, useState } from 'react'
-import { z } from 'zod'
-import { designSpecSchema } from '@/dsp'
+import { useStore } from 'zustand'
+import type { DesignSpec } from '@/dsp'
 import { Header } from '@/components/frame/header'
 import { Button, buttonClass } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
@@ -14,11 +13,12 @@ import { formatNumber } from '@/lib/format/quantity'
 import { studioCommands, matches } from './commands'
 import { Planes } from './planes/planes'
 import { useAddress, viewFromSearch } from './shell/address'
-import { forgetKeptDraft, keptDraft, useAutosave } from './shell/autosave'
+import { createAutosave } from './shell/autosave'
 import { DepartureTable } from './shell/departure-table'
 import { DraftStatus } from './shell/draft-status'
 import { Drawer } from './shell/drawer'
 import { FiguresLine } from './shell/figures-line'
+import { forgetKeptDraft, keptDraft } from './shell/kept-draft'
 import { SaveVersion } from './shell/save-version'
 import { DesignTitleBlock } from './shell/design-title-block'
 import { useDerived } from './shell/use-derived'
@@ -27,19 +27,8 @@ import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
 
-// The content policy allows no code made from strings; zod would otherwise try.
-z.config({ jitless: true })
-
-export function Studio(props: StudioProps) {
-  const [client] = useState(() => new QueryClient())
-  return (
-    <QueryClientProvider client={client}>
-      <StudioSheet {...props} />
-    </QueryClientProvider>
-  )
-}
-
-function StudioSheet({ design, viewer, versions: savedAtOpening, draft, difference, actions }: StudioProps) {
+/** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
+export function Studio({ design, viewer, versions: savedAtOpening, draft, difference, actions }: StudioProps) {
   const search = useSearchParams()
   const [saved, setSaved] = useState(savedAtOpening)
   const latest = saved[0]
@@ -50,13 +39,14 @@ function StudioSheet({ design, viewer, versions: savedAtOpening, draft, differen
   })
   const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
   const [saving, setSaving] = useState(false)
-  const [kept, setKept] = useState<ReturnType<typeof designSpecSchema.parse> | null>(null)
+  const [kept, setKept] = useState<DesignSpec | null>(null)
 
   const spec = useStudio(store, (state) => state.spec)
-  const view = useStudio(store, (state) => state.view)
   const refusal = useStudio(store, (state) => state.refusal)
-  const { versions, traces, trust, figures } = useDerived(store)
-  const autosave = useAutosave({ designId: design.id, store, draft, parentNumber, enabled: viewer.mayEdit })
+  const { view, drawn, traces, settled } = useDerived(store)
+  const [autosave] = useState(() => createAutosave({ designId: design.id, store, draft, parentNumber }))
+  const autosaveState = useStore(autosave.state)
+  useEffect(() => (viewer.mayEdit ? autosave.start() : undefined), [autosave, viewer.mayEdit])
   useAddress(store)
 
   const commands = useMemo(
@@ -76,8 +66,9 @@ function StudioSheet({ design, viewer, versions: savedAtOpening, draft, differen
 
   useEffect(() => {
     // A draft that never reached the server waits in this browser; it is offered, not forced.
-    const candidate = designSpecSchema.safeParse(keptDraft(design.id))
-    if (candidate.success && !sameSpec(candidate.data, store.getState().spec)) setKept(candidate.data)
+    void keptDraft(design.id).then((found) => {
+      if (found && !sameSpec(found, store.getState().spec)) setKept(found)
+    })
   }, [design.id, store])
 
   const edit = useMemo(() => {
@@ -102,7 +93,7 @@ function StudioSheet({ design, viewer, versions: savedAtOpening, draft, differen
       <Header crumbs={[{ label: design.projectName, href: `/projects/${design.projectId}` }, { label: design.title }]}>
         {viewer.mayEdit ? (
           <>
-            <DraftStatus state={autosave.state} onResolve={autosave.resolveStale} />
+            <DraftStatus state={autosaveState} onResolve={autosave.resolveStale} />
             <Button disabled={!canUndo} onClick={() => store.getState().undo()} title="Undo (Ctrl+Z)">
               Undo
             </Button>
@@ -178,11 +169,11 @@ function StudioSheet({ design, viewer, versions: savedAtOpening, draft, differen
             </Notice>
           ) : null}
           <Statement store={store} readOnly={!viewer.mayEdit} />
-          {versions && figures ? (
+          {settled ? (
             <FiguresLine
-              versions={versions}
-              trust={trust}
-              figures={figures}
+              versions={settled.versions}
+              trust={settled.trust}
+              figures={settled.figures}
               budgetText={`${formatNumber(spec.budget.magnitudeDb)}\u2009dB and ${formatNumber(spec.budget.phaseDegrees)}°${
                 spec.budget.removeDelay ? ', best delay removed' : ''
               }`}
@@ -190,38 +181,37 @@ function StudioSheet({ design, viewer, versions: savedAtOpening, draft, differen
           ) : null}
         </div>
 
-        {versions ? (
-          <div className="mt-2 grid gap-x-8 gap-y-6 lg:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
+        {drawn && settled ? (
+          <div className="mt-2 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
             <ResponseStack
               spec={spec}
               traces={traces}
-              trusted={trust}
+              trusted={settled.trust}
               view={view}
-              onView={store.getState().look}
+              onView={({ removeDelay, ...change }) => {
+                if (removeDelay !== undefined) store.getState().removeDelay(removeDelay)
+                store.getState().look(change)
+              }}
               onResetView={store.getState().resetView}
               edit={edit}
               refusal={refusal}
               readOnly={!viewer.mayEdit}
             />
             <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
-              <Planes
-                analog={versions.analog}
-                versions={versions.digital.filter(({ id }) => !view.hidden.includes(id))}
+              <Planes analog={drawn.analog} versions={drawn.digital.filter(({ id }) => !view.hidden.includes(id))} />
+              <DepartureTable
+                store={store}
+                spec={settled.spec}
+                versions={settled.versions}
+                trust={settled.trust}
+                readOnly={!viewer.mayEdit}
               />
-              <DepartureTable store={store} spec={spec} versions={versions} trust={trust} readOnly={!viewer.mayEdit} />
               <DesignTitleBlock design={design} latest={latest} spec={spec} viewer={viewer} />
             </aside>
           </div>
         ) : null}
 
-        <Drawer
-          store={store}
-          design={design}
-          versions={versions}
-          saved={saved}
-          mayEdit={viewer.mayEdit}
-          onRestored={() => undefined}
-        />
+        <Drawer store={store} design={design} settled={settled} saved={saved} mayEdit={viewer.mayEdit} />
         <footer className="border-t border-graph py-4 text-[13px] text-pencil">
           A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the
           applicable local codes and a licensed practitioner decide.

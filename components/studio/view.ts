@@ -33,6 +33,7 @@ export interface StackView {
   readonly normalised: boolean
   readonly unwrapped: boolean
   readonly departureUnit: DepartureUnit
+  /** As the budget says; the two are never shown apart. */
   readonly removeDelay: boolean
   readonly magnitudeFloorDb: number
   readonly crosshairHz: number | null

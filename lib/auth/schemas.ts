@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 
 /*
  * What the account forms send; the same schemas check it in the browser and on the server. Unknown keys are refused.

@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 import { coefficientSetJsonSchema } from './json'
 
 /** One line of the description of the JSON file. */

@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 import { canonicalText } from '@/lib/designs/stored-coefficients'
 import { stateWords } from '@/lib/designs/words'
 import { structureWords } from './about'

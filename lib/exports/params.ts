@@ -1,4 +1,4 @@
-import { z } from 'zod'
+import * as z from 'zod'
 
 /** Of /designs/[designId]/versions/[number] and the routes under it. A number written in another way than usual names nothing. */
 export const versionParamsSchema = z.strictObject({

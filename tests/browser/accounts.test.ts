@@ -8,8 +8,11 @@ describe('an account of one’s own', () => {
       const email = `new-designer-${Date.now()}@crane-yard.example`
       await page.goto('/sign-up')
       await page.getByLabel(/e-?mail/i).fill(email)
-      await page.getByLabel(/label|how you are shown|name/i).first().fill('designer, crane yard')
-      await page.getByLabel(/^password/i).first().fill('slow sway of the jib 27')
+      await page.getByLabel('How others will see you').fill('designer, crane yard')
+      await page
+        .getByLabel(/^password/i)
+        .first()
+        .fill('slow sway of the jib 27')
       await page.getByRole('button', { name: /create account/i }).click()
       await page.waitForURL(/\/projects/)
       await picture(page, 'empty-projects-1440')
@@ -26,8 +29,14 @@ describe('an account of one’s own', () => {
       expect(link).toBeDefined()
 
       await page.goto(link ?? '')
-      await page.getByLabel(/password/i).first().fill('a steadier jib, 28 m')
-      await page.getByRole('button', { name: /password/i }).last().click()
+      await page
+        .getByLabel(/password/i)
+        .first()
+        .fill('a steadier jib, 28 m')
+      await page
+        .getByRole('button', { name: /password/i })
+        .last()
+        .click()
       await page.waitForURL((url) => !url.pathname.startsWith('/reset'))
 
       // The link works once; the new password works, the old one doesn't.

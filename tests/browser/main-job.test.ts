@@ -55,27 +55,32 @@ describe('the main job, by mouse', () => {
       expect(dragged).not.toContain('run at 2.4 kHz')
       await page.getByRole('button', { name: 'Undo' }).click()
       await expect.poll(() => statement(page)).toContain('run at 2.4 kHz')
+      const saved = page.waitForResponse((answer) => answer.url().endsWith('/draft') && answer.ok())
       await page.getByRole('button', { name: 'Redo' }).click()
       await expect.poll(() => statement(page)).toBe(dragged)
 
       // The draft saves itself: a fresh page shows it.
+      await saved
       await page.getByText(/^Draft saved/).waitFor()
       await page.reload()
       await studioReady(page)
       expect(await statement(page)).toBe(dragged)
 
       // A version, on purpose, with a note.
-      await page.getByRole('button', { name: /^Save version 2/ }).click()
-      await page.getByLabel(/What changed in version 2/).fill('Ripple allowed, rate set by the fold line')
-      await page.getByRole('region', { name: 'Save a version' }).getByRole('button', { name: 'Save version 2' }).click()
-      await page.getByRole('button', { name: 'Version 2 saved' }).waitFor()
+      await page.getByRole('button', { name: /^Save version 1/ }).click()
+      await page.getByLabel(/What changed in version 1/).fill('Ripple allowed, rate set by the fold line')
+      await page.getByRole('region', { name: 'Save a version' }).getByRole('button', { name: 'Save version 1' }).click()
+      await page.getByRole('button', { name: 'Version 1 saved' }).waitFor()
 
       // The history has it, compares it, and hands it over.
       await page.getByRole('tab', { name: 'History' }).click()
-      await page.getByText('Ripple allowed, rate set by the fold line').first().waitFor()
+      await page
+        .getByText(/Ripple allowed, rate set by the fold line/)
+        .first()
+        .waitFor()
       await picture(page, 'studio-history-1440')
       await page.getByRole('link', { name: 'Hand over…' }).click()
-      await page.waitForURL(/\/versions\/2/)
+      await page.waitForURL(/\/versions\/1/)
       await picture(page, 'hand-over-1440')
       await expectAccessible(page)
       await expectFits(page)

@@ -37,8 +37,14 @@ describe('two people on one design', () => {
         await page.reload()
         await studioReady(page)
         await page.getByRole('tab', { name: 'History' }).click()
-        await page.getByText('Steeper', { exact: true }).first().waitFor()
-        await page.getByText('Steeper still', { exact: true }).first().waitFor()
+        await page
+          .getByText(/1 · Steeper$/)
+          .first()
+          .waitFor()
+        await page
+          .getByText(/2 · Steeper still/)
+          .first()
+          .waitFor()
       })
     } finally {
       await other.close()

@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { deriveVersions } from '@/components/studio/derive'
+import { versionsOf } from '../helpers/versions-of'
 import { stepCurve } from '@/components/studio/panels/time/step-curve'
 import { timeFigures } from '@/components/studio/panels/time/time-figures'
 import {
@@ -178,7 +178,7 @@ describe('figures of a digital step response', () => {
 
 describe('curves over time', () => {
   const spec: DesignSpec = { ...defaultSpec, how: { method: 'impulse-invariant' } }
-  const versions = deriveVersions(spec)
+  const versions = versionsOf(spec)
 
   it('scales impulse responses so that samples fall onto the analog curve', () => {
     const filter = versions.digital.find(({ id }) => id === 'impulse-invariant')?.filter
@@ -210,7 +210,7 @@ describe('curves over time', () => {
       ...defaultSpec,
       analog: { family: 'butterworth', response: 'highpass', order: 2, edgesHz: [20] },
     }
-    const curves = timeCurves(deriveVersions(highpass), [], 'impulse', [0, 0.1])
+    const curves = timeCurves(versionsOf(highpass), [], 'impulse', [0, 0.1])
     expect(curves.analog?.impulseArea).toBeCloseTo(1, 12)
     const stated = curves.digital.find((version) => version.stated)
     const [, most] = valueSpan(curves)
@@ -252,7 +252,7 @@ describe('curves over time', () => {
   })
 
   it('writes densities in a unit that keeps the numbers short', () => {
-    const fast = deriveVersions({ ...spec, sampleRateHz: 120_000, analog: { ...spec.analog, edgesHz: [12_000] } })
+    const fast = versionsOf({ ...spec, sampleRateHz: 120_000, analog: { ...spec.analog, edgesHz: [12_000] } })
     expect(valueUnit('impulse', timeCurves(versions, [], 'impulse', [0, 0.02])).symbol).toBe('1/s')
     expect(valueUnit('impulse', timeCurves(fast, [], 'impulse', [0, 0.0002])).symbol).toBe('1/ms')
     expect(valueUnit('step', timeCurves(versions, [], 'step', [0, 0.02])).symbol).toBe('')

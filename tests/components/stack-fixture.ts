@@ -1,4 +1,5 @@
-import { deriveTraces, deriveTrust, deriveVersions } from '@/components/studio/derive'
+import { deriveTraces, deriveTrust } from '@/components/studio/derive'
+import { versionsOf } from '../helpers/versions-of'
 import { stackFrame } from '@/components/studio/stack/frame'
 import { usualView, type StackView } from '@/components/studio/view'
 import type { DesignSpec } from '@/dsp'
@@ -22,7 +23,7 @@ export const ellipticSpec: DesignSpec = {
 
 export function stackOf(spec: DesignSpec, change: Partial<StackView> = {}, width = 946) {
   const view: StackView = { ...usualView(spec), hidden: [], ...change }
-  const versions = deriveVersions(spec)
+  const versions = versionsOf(spec)
   const traces = deriveTraces(spec, versions, view)
   const trusted = deriveTrust(spec, versions)
   const frame = stackFrame(spec, traces, view, width, null)

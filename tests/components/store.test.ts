@@ -96,7 +96,6 @@ describe('the address', () => {
       logFrequency: false,
       unwrapped: false,
       departureUnit: 'db' as const,
-      removeDelay: true,
       magnitudeFloorDb: -100,
       crosshairHz: 200,
       hidden: ['matched-z' as const],

@@ -17,7 +17,6 @@ export function viewToSearch(view: StackView, drawer: DrawerTab): string {
   if (view.normalised) search.set('frequency', 'normalised')
   if (!view.unwrapped) search.set('phase', 'wrapped')
   if (view.departureUnit !== 'degrees') search.set('departure', view.departureUnit)
-  if (view.removeDelay) search.set('delay', 'removed')
   if (view.magnitudeFloorDb !== -60) search.set('floor', String(view.magnitudeFloorDb))
   search.set('without', view.hidden.join('.') || 'none')
   if (view.crosshairHz !== null) search.set('at', short(view.crosshairHz))
@@ -28,7 +27,14 @@ export function viewToSearch(view: StackView, drawer: DrawerTab): string {
 export function viewFromSearch(search: URLSearchParams): { view: Partial<StackView>; drawer?: DrawerTab } {
   const view: { -readonly [Key in keyof StackView]?: StackView[Key] } = {}
   const [from, to] = (search.get('band') ?? '').split('-').map(Number)
-  if (from !== undefined && to !== undefined && from > 0 && to > from && Number.isFinite(to)) {
+  if (
+    from !== undefined &&
+    to !== undefined &&
+    from >= 0 &&
+    to > from &&
+    (from > 0 || search.get('axis') === 'linear') &&
+    Number.isFinite(to)
+  ) {
     view.fromHz = from
     view.toHz = to
   }
@@ -37,7 +43,6 @@ export function viewFromSearch(search: URLSearchParams): { view: Partial<StackVi
   if (search.get('phase') === 'wrapped') view.unwrapped = false
   const unit = search.get('departure')
   if (unit === 'db' || unit === 'degrees' || unit === 'microseconds') view.departureUnit = unit
-  if (search.get('delay') === 'removed') view.removeDelay = true
   const floor = Number(search.get('floor') ?? Number.NaN)
   if (floor <= -20 && floor >= -400) view.magnitudeFloorDb = floor
   const without = search.get('without')

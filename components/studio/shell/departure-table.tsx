@@ -11,7 +11,7 @@ import { delayBand, methodAsShown, type Trust, type Versions } from '../derive'
 import type { StudioStore } from '../store'
 import { trustText } from './figures-line'
 import { InlineQuantity } from './inline-quantity'
-import { TraceSwatch } from './trace-swatch'
+import { TraceSample } from '../stack/trace-sample'
 
 /**
  * Which digital version stays closest to the analog one, up to which frequency: the budget, how far each version keeps it, and its
@@ -86,10 +86,7 @@ export function DepartureTable({
             className="size-4 accent-spruce"
             checked={budget.removeDelay}
             disabled={readOnly}
-            onChange={(event) => {
-              setBudget({ removeDelay: event.currentTarget.checked })
-              store.getState().look({ removeDelay: event.currentTarget.checked })
-            }}
+            onChange={(event) => setBudget({ removeDelay: event.currentTarget.checked })}
           />
           best delay removed
         </label>
@@ -131,7 +128,7 @@ export function DepartureTable({
               <tr key={row.id} className="border-b border-graph [&>td]:py-1">
                 <th scope="row" className="py-0.5 text-left font-normal">
                   <span className="flex items-center gap-1.5">
-                    <TraceSwatch id={row.id} />
+                    <TraceSample id={row.id} />
                     {row.stated || readOnly ? (
                       <span className={classNames(row.stated && 'font-semibold')}>{methodLabels[row.id]}</span>
                     ) : (
@@ -165,7 +162,7 @@ export function DepartureTable({
               <tr key={refusal.id} className="border-b border-graph">
                 <th scope="row" className="py-1 pr-2 text-left align-top font-normal text-pencil">
                   <span className="flex items-center gap-2">
-                    <TraceSwatch id={refusal.id} />
+                    <TraceSample id={refusal.id} />
                     {methodLabels[refusal.id]}
                   </span>
                 </th>

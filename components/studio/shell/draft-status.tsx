@@ -1,8 +1,8 @@
 'use client'
 
-import { useEffect, useState } from 'react'
 import { Button } from '@/components/ui/button'
 import type { DraftRecord } from '@/lib/designs/types'
+import { useOnPage } from '../panels/chart/use-on-page'
 import type { AutosaveState } from './autosave'
 
 /** One quiet line: whether the draft is safe. */
@@ -41,9 +41,8 @@ export function DraftStatus({
 
 /** The reader's own clock; written after hydration, since the server doesn't know it. */
 function SavedAt({ iso }: { iso: string }) {
-  const [text, setText] = useState('')
-  useEffect(() => setText(new Date(iso).toLocaleTimeString(undefined, { hour: '2-digit', minute: '2-digit' })), [iso])
-  return <Line>Draft saved {text}</Line>
+  const clock = useOnPage() ? new Date(iso).toLocaleTimeString(undefined, { hour: '2-digit', minute: '2-digit' }) : ''
+  return <Line>Draft saved {clock}</Line>
 }
 
 function Line({ children }: { children: React.ReactNode }) {

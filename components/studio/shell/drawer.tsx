@@ -1,6 +1,7 @@
 'use client'
 
 import dynamic from 'next/dynamic'
+import type { DepartureBudget, DesignMethod, DesignSpec } from '@/dsp'
 import { Tabs } from '@/components/ui/tabs'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { drawerNames } from '../commands'
@@ -30,24 +31,23 @@ const History = dynamic(() => import('../panels/history').then((module) => modul
 export function Drawer({
   store,
   design,
-  versions,
+  settled,
   saved,
   mayEdit,
-  onRestored,
 }: {
   store: StudioStore
   design: DesignRecord
-  versions: Versions | null
+  /** The design as the panels see it: it may follow a drag a moment later. */
+  settled: { readonly spec: DesignSpec; readonly versions: Versions } | null
   saved: readonly VersionSummary[]
   mayEdit: boolean
-  onRestored(fromNumber: number): void
 }) {
   const spec = useStudio(store, (state) => state.spec)
   const tab = useStudio(store, (state) => state.drawer)
   const { open, propose } = store.getState()
-  const runAt = (sampleRateHz: number) => {
+  const runAt = (sampleRateHz: number, how?: DesignMethod) => {
     const now = store.getState().spec
-    propose({ ...now, sampleRateHz }, 'sampleRateHz')
+    propose({ ...now, sampleRateHz, how: how ?? now.how }, 'sampleRateHz')
   }
 
   return (
@@ -67,15 +67,20 @@ export function Drawer({
             mayEdit={mayEdit}
             compareHref={(a, b) => `/designs/${design.id}/compare?a=${a}&b=${b}`}
             handOverHref={(number) => `/designs/${design.id}/versions/${number}`}
-            onRestore={(older, fromNumber) => {
-              if (propose(older)) onRestored(fromNumber)
-            }}
+            onRestore={(older) => propose(older)}
           />
         ) : null}
         {tab === 'trial' ? <SignalTrial spec={spec} mayEdit={mayEdit} onRedesignAt={runAt} /> : null}
-        {versions && tab === 'rates' ? <RatesPanel spec={spec} onRate={runAt} /> : null}
-        {versions && tab === 'time' ? <TimePanel spec={spec} versions={versions} /> : null}
-        {versions && tab === 'sections' ? <SectionsPanel spec={spec} versions={versions} /> : null}
+        {settled && tab === 'rates' ? (
+          <RatesPanel
+            spec={settled.spec}
+            mayEdit={mayEdit}
+            onRate={runAt}
+            {...(mayEdit && { onBudget: (budget: DepartureBudget) => propose({ ...store.getState().spec, budget }) })}
+          />
+        ) : null}
+        {settled && tab === 'time' ? <TimePanel spec={settled.spec} versions={settled.versions} /> : null}
+        {settled && tab === 'sections' ? <SectionsPanel spec={settled.spec} versions={settled.versions} /> : null}
       </div>
     </section>
   )

@@ -1,30 +1,44 @@
-import { useMemo } from 'react'
-import type { MethodName } from '@/dsp'
+import { useDeferredValue, useMemo } from 'react'
+import { methodNames } from '@/lib/designs/words'
 import { deriveFigures, deriveTraces, deriveTrust, deriveVersions } from '../derive'
-import { refusalOf, type StudioStore } from '../store'
+import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
-import type { TraceId } from '../view'
 
-/** Everything the screen shows of the current design; null while the spec makes none. */
+/**
+ * Everything the screen shows of the current design; null while the spec makes none. What is drawn on the plots follows the hand within
+ * the frame; what stands beside them in words and tables may come a moment later, and gives way to the next movement.
+ */
 export function useDerived(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
-  const view = useStudio(store, (state) => state.view)
-  const { fromHz, toHz, logFrequency, removeDelay, hidden } = view
+  const looked = useStudio(store, (state) => state.view)
+  const { removeDelay } = spec.budget
+  const view = useMemo(() => ({ ...looked, removeDelay }), [looked, removeDelay])
+  const { fromHz, toHz, logFrequency, hidden } = view
 
-  const versions = useMemo(() => {
-    if (refusalOf(spec)) return null
-    return deriveVersions(spec)
-  }, [spec])
-
-  const traces = useMemo(
-    () => (versions ? deriveTraces(spec, versions, { ...view, fromHz, toHz, logFrequency, removeDelay, hidden }) : []),
-    // The crosshair and the other parts of the view don't touch the curves.
-    // eslint-disable-next-line react-hooks/exhaustive-deps
-    [spec, versions, fromHz, toHz, logFrequency, removeDelay, hidden],
+  const drawn = useMemo(
+    () =>
+      deriveVersions(
+        spec,
+        methodNames.filter((id) => !hidden.includes(id)),
+      ),
+    [spec, hidden],
   )
-  const trust = useMemo(() => (versions ? deriveTrust(spec, versions) : []), [spec, versions])
-  const figures = useMemo(() => (versions ? deriveFigures(spec, versions) : null), [spec, versions])
-  return { versions, traces, trust, figures }
-}
+  const traces = useMemo(
+    () => (drawn ? deriveTraces(spec, drawn, { fromHz, toHz, logFrequency, removeDelay, hidden }) : []),
+    [spec, drawn, fromHz, toHz, logFrequency, removeDelay, hidden],
+  )
 
-export const isShown = (hidden: readonly TraceId[], id: MethodName): boolean => !hidden.includes(id)
+  const settledSpec = useDeferredValue(spec)
+  const settled = useMemo(() => {
+    const versions = deriveVersions(settledSpec)
+    if (!versions) return null
+    return {
+      spec: settledSpec,
+      versions,
+      trust: deriveTrust(settledSpec, versions),
+      figures: deriveFigures(settledSpec, versions),
+    }
+  }, [settledSpec])
+
+  return { view, drawn, traces, settled }
+}

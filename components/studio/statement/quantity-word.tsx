@@ -91,7 +91,7 @@ export function QuantityWord(props: QuantityWordProps) {
     }
   }
 
-  function useNearest(nearest: number) {
+  function takeNearest(nearest: number) {
     setUnread(null)
     if (edit.propose(nearest)) setTyped(null)
     input.current?.focus()
@@ -137,7 +137,7 @@ export function QuantityWord(props: QuantityWordProps) {
           id={noteId}
           message={note}
           nearestText={nearest === null ? undefined : nearestText(unit, nearest)}
-          onUseNearest={nearest === null ? undefined : () => useNearest(nearest)}
+          onUseNearest={nearest === null ? undefined : () => takeNearest(nearest)}
         />
       ) : null}
     </span>

@@ -34,7 +34,8 @@ export function AnswersTable({
   /** Null until the first answer. */
   lowest: readonly LowestRate[] | null
   edgeHz: number
-  onRun(id: MethodName, rateHz: number): void
+  /** null for readers: the rate is then plain text. */
+  onRun: ((id: MethodName, rateHz: number) => void) | null
 }) {
   return (
     <ScrollRegion label="Lowest rate by method">
@@ -82,13 +83,17 @@ export function AnswersTable({
                       {multipleWords(answer.sampleRateHz, edgeHz)}
                     </td>
                     <td className="py-1 pl-3 text-right align-top sm:pl-4">
-                      <Button
-                        small
-                        title={`Run the design at ${formatHz(answer.sampleRateHz, 6)} by the ${methodLabels[id]} version`}
-                        onClick={() => onRun(id, answer.sampleRateHz)}
-                      >
-                        Run at {formatHz(answer.sampleRateHz)}
-                      </Button>
+                      {onRun === null ? (
+                        <span className="numeric leading-6">{formatHz(answer.sampleRateHz)}</span>
+                      ) : (
+                        <Button
+                          small
+                          title={`Run the design at ${formatHz(answer.sampleRateHz, 6)} by the ${methodLabels[id]} version`}
+                          onClick={() => onRun(id, answer.sampleRateHz)}
+                        >
+                          Run at {formatHz(answer.sampleRateHz)}
+                        </Button>
+                      )}
                     </td>
                   </>
                 ) : (

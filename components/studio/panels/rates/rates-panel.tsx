@@ -21,6 +21,8 @@ const unitWords: Record<DepartureUnit, string> = { db: 'magnitude', degrees: 'ph
 
 interface RatesPanelProps {
   spec: DesignSpec
+  /** Readers see where the rate stands and can't move it. */
+  mayEdit: boolean
   /** Runs the design at a rate; `how` is set where the rate belongs to a method. */
   onRate(rateHz: number, how?: DesignMethod): void
   /** States a budget in the design; without it budgets can only be tried. */
@@ -35,7 +37,7 @@ export function RatesPanel(props: RatesPanelProps) {
   return useOnPage() ? <Rates {...props} /> : null
 }
 
-function Rates({ spec, onRate, onBudget }: RatesPanelProps) {
+function Rates({ spec, mayEdit, onRate, onBudget }: RatesPanelProps) {
   const [unit, setUnit] = useState<DepartureUnit>('degrees')
   const [upToByHand, setUpToByHand] = useState<number | null>(null)
   const [trial, setTrial] = useState<DepartureBudget | null>(null)
@@ -117,6 +119,7 @@ function Rates({ spec, onRate, onBudget }: RatesPanelProps) {
             rateHz={rateHz}
             limit={limit}
             limitText={limitText(unit, limit, budget, upToHz)}
+            rateIsFixed={!mayEdit}
             onRate={{
               onPreview: setPulledRateHz,
               onCommit: (hertz) => {
@@ -153,7 +156,7 @@ function Rates({ spec, onRate, onBudget }: RatesPanelProps) {
             spotRateHz={spot.answered?.question.ratesHz[0] ?? rateHz}
             lowest={answers}
             edgeHz={edgeHz}
-            onRun={(id, hertz) => onRate(hertz, methodAsShown(spec, id))}
+            onRun={mayEdit ? (id, hertz) => onRate(hertz, methodAsShown(spec, id)) : null}
           />
           <p className="text-[13px] text-pencil">
             Rates tried: {formatHz(searchedHz[0], 3)} to {formatHz(searchedHz[1], 3)}. Green keeps both parts of the

@@ -17,6 +17,7 @@ export function RatesPlot({
   limit,
   limitText,
   onRate,
+  rateIsFixed,
   onLimit,
 }: {
   plan: RatesPlan
@@ -28,6 +29,8 @@ export function RatesPlot({
   limit: number
   limitText: string
   onRate: SliderEvents
+  /** For readers, who may not change the design. */
+  rateIsFixed: boolean
   onLimit: SliderEvents
 }) {
   const ref = useRef<HTMLDivElement>(null)
@@ -49,7 +52,7 @@ export function RatesPlot({
         </span>
         <Lines frame={frame} rateHz={rateHz} limit={limit} />
         <LimitHandle frame={frame} limit={limit} text={limitText} sign={unitSign[plan.unit]} events={onLimit} />
-        <RateHandle frame={frame} rateHz={rateHz} edgeHz={plan.edgeHz} events={onRate} />
+        <RateHandle frame={frame} rateHz={rateHz} edgeHz={plan.edgeHz} events={onRate} disabled={rateIsFixed} />
       </PlotSheet>
     </div>
   )
@@ -93,11 +96,13 @@ function RateHandle({
   rateHz,
   edgeHz,
   events,
+  disabled,
 }: {
   frame: RatesFrame
   rateHz: number
   edgeHz: number
   events: SliderEvents
+  disabled: boolean
 }) {
   const [min, max] = x.domain
   const text = `fs ${formatHz(rateHz)}`
@@ -114,6 +119,7 @@ function RateHandle({
       left={within(x.toPixel(rateHz), Math.max(box.left, half), width - half)}
       top={11}
       round={(hertz) => Number(hertz.toPrecision(3))}
+      disabled={disabled}
       {...events}
     >
       <span className={tag}>{text}</span>

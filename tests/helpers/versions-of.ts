@@ -1,0 +1,9 @@
+import { deriveVersions, type Versions } from '@/components/studio/derive'
+import type { DesignSpec } from '@/dsp'
+
+/** The versions of a spec that is known to make a design. */
+export function versionsOf(spec: DesignSpec): Versions {
+  const versions = deriveVersions(spec)
+  if (!versions) throw new Error('This spec makes no design.')
+  return versions
+}
