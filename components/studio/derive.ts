@@ -64,7 +64,7 @@ export type CurveView = Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency' | 're
 const GRID_POINTS = 1024
 
 /** The frequencies a curve is computed at: even on the axis as drawn, with the edges and the last frequency met exactly. */
-export function frequencyGrid(view: CurveView, upToHz: number, exactly: readonly number[] = []): Float64Array {
+function frequencyGrid(view: CurveView, upToHz: number, exactly: readonly number[] = []): Float64Array {
   const toHz = Math.min(view.toHz, upToHz)
   const fromHz = Math.min(view.fromHz, toHz)
   const axis = view.logFrequency

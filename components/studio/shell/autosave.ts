@@ -21,8 +21,6 @@ interface AutosaveOptions {
   readonly parentNumber: number | null
 }
 
-export type Autosave = ReturnType<typeof createAutosave>
-
 /**
  * Saves the draft once the hand rests. What could not reach the server is kept in this browser until it does, so that a closed tab
  * or a lost connection costs nothing.

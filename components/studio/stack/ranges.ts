@@ -1,3 +1,4 @@
+import { bisectLeft } from 'd3'
 import type { Span } from '@/components/plot/scale'
 import { roundedUp } from '@/components/plot/ticks'
 import type { DesignSpec } from '@/dsp'
@@ -36,7 +37,7 @@ function extremes(frequenciesHz: Float64Array, values: Float64Array, bands: read
   let low = Number.POSITIVE_INFINITY
   let high = Number.NEGATIVE_INFINITY
   for (const [from, to] of bands) {
-    for (let i = firstAtLeast(frequenciesHz, from); i < frequenciesHz.length; i++) {
+    for (let i = bisectLeft(frequenciesHz, from); i < frequenciesHz.length; i++) {
       if ((frequenciesHz[i] ?? Number.NaN) > to) break
       const value = values[i] ?? Number.NaN
       if (!Number.isFinite(value)) continue
@@ -45,17 +46,6 @@ function extremes(frequenciesHz: Float64Array, values: Float64Array, bands: read
     }
   }
   return low <= high ? [low, high] : null
-}
-
-function firstAtLeast(rising: Float64Array, value: number): number {
-  let low = 0
-  let high = rising.length
-  while (low < high) {
-    const middle = (low + high) >> 1
-    if ((rising[middle] ?? 0) < value) low = middle + 1
-    else high = middle
-  }
-  return low
 }
 
 const joined = (spans: readonly (Span | null)[]): Span | null =>

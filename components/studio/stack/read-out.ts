@@ -1,3 +1,4 @@
+import { bisectRight } from 'd3'
 import { formatDb, formatDegrees, formatFixed, formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
 import type { DepartureUnit, Trace } from '../view'
 import type { PlotId } from './props'
@@ -13,13 +14,8 @@ export function valueAt(frequenciesHz: Float64Array, values: Float64Array, hz: n
   const last = frequenciesHz[count - 1] ?? Number.NaN
   const slack = Math.abs(last) * 1e-9
   if (!(hz >= first - slack && hz <= last + slack)) return Number.NaN
-  let low = 0
-  let high = count - 1
-  while (high - low > 1) {
-    const middle = (low + high) >> 1
-    if ((frequenciesHz[middle] ?? 0) <= hz) low = middle
-    else high = middle
-  }
+  const high = Math.min(bisectRight(frequenciesHz, hz, 1, count), count - 1)
+  const low = Math.max(high - 1, 0)
   const f0 = frequenciesHz[low] ?? 0
   const f1 = frequenciesHz[high] ?? 0
   const v0 = values[low] ?? Number.NaN

@@ -1,3 +1,4 @@
+import { bisector } from 'd3'
 import type { FrameSource } from '@/lib/recordings/types'
 import type { Gap } from './overview'
 
@@ -33,13 +34,4 @@ function fill(out: Float64Array, startFrame: number, gaps: readonly Gap[]): void
   }
 }
 
-function firstEndingAfter(gaps: readonly Gap[], frame: number): number {
-  let low = 0
-  let high = gaps.length
-  while (low < high) {
-    const middle = (low + high) >> 1
-    if ((gaps[middle]?.to ?? 0) <= frame) low = middle + 1
-    else high = middle
-  }
-  return low
-}
+const firstEndingAfter = bisector((gap: Gap) => gap.to).right
