@@ -5,29 +5,30 @@ import { canonicalText, type StoredCoefficients } from '@/lib/designs/stored-coe
 
 type Agreement = 'unknown' | 'agrees' | 'differs'
 
-/** The version's checksum, and whether this browser's own computation of the design comes to the same. */
-export function Checksum({ checksum, numbers }: { checksum: string; numbers: StoredCoefficients | null }) {
+/** The version's checksum, and whether the numbers that reached this browser have it. */
+export function Checksum({ checksum, numbers }: { checksum: string; numbers: StoredCoefficients }) {
   const agreement = useAgreement(checksum, numbers)
   return (
     <div className="text-[13px]">
       <p className="text-pencil">SHA-256 of the coefficients</p>
       <p className="numeric wrap-anywhere text-[12px] leading-5 text-ink">{checksum}</p>
-      {agreement === 'agrees' ? <p className="text-moss">Computed again here: the same numbers</p> : null}
+      {agreement === 'agrees' ? (
+        <p className="text-moss">Computed again in this browser: the numbers shown have this checksum</p>
+      ) : null}
       {agreement === 'differs' ? (
         <p className="text-vermilion">
-          Computed again here, some last digits differ. The file carries the numbers that were kept with the version;
-          only the preview above is of the new ones.
+          The numbers shown here do not have this checksum. Don’t use this file; tell the owner of the team.
         </p>
       ) : null}
     </div>
   )
 }
 
-function useAgreement(checksum: string, numbers: StoredCoefficients | null): Agreement {
+function useAgreement(checksum: string, numbers: StoredCoefficients): Agreement {
   const [found, setFound] = useState<{ readonly of: StoredCoefficients; readonly hex: string } | null>(null)
   useEffect(() => {
     // Browsers digest on secure pages only; elsewhere nothing is claimed.
-    if (numbers === null || !globalThis.isSecureContext) return undefined
+    if (!globalThis.isSecureContext) return undefined
     let isCurrent = true
     void digestHex(canonicalText(numbers)).then((hex) => {
       if (isCurrent) setFound({ of: numbers, hex })

@@ -1,6 +1,6 @@
 import * as z from 'zod'
-import { DesignError, designFromSpec } from '@/dsp'
-import { coefficientsOf, filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import { DesignError } from '@/dsp'
+import { filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'
 import { coefficientSet, ratioRefusal, writtenFile, type ExportFile, type ExportOptions } from '@/lib/exports'
 import { roundingWords } from '@/lib/exports/about'
@@ -11,13 +11,6 @@ import { checkIdentifier } from '@/lib/exports/names'
 z.config({ jitless: true })
 
 /* What the hand-over panel shows before anything is downloaded: the very code that the server writes the file with. */
-
-export type Kept = { readonly numbers: StoredCoefficients } | { readonly problem: Problem }
-
-/** The version's numbers computed anew in this browser; where the engine is the one that saved it, they are the kept ones. */
-export function recomputed(version: Pick<VersionSummary, 'spec'>): Kept {
-  return attempt(() => ({ numbers: coefficientsOf(designFromSpec(version.spec)) }))
-}
 
 export type Preview =
   | { readonly file: ExportFile; readonly firstLines: string; readonly restLines: number; readonly rounding: string }

@@ -8,16 +8,14 @@ import type { Preview } from './draft-file'
 export function FilePreview({
   href,
   preview,
-  unavailable,
 }: {
   /** null while what is chosen can't be had. */
   href: string | null
-  preview: Preview | null
+  preview: Preview
   /** Why this browser can't compute the version, which the server still hands over. */
-  unavailable: string | null
 }) {
   const [copied, setCopied] = useState('')
-  const file = preview && 'file' in preview ? preview.file : null
+  const file = 'file' in preview ? preview.file : null
 
   async function copy() {
     if (!file) return
@@ -38,16 +36,14 @@ export function FilePreview({
         aria-label={file ? `First lines of ${file.fileName}` : 'Preview'}
         className="h-80 min-w-0 lg:h-[27rem] overflow-auto border border-graph-strong bg-paper p-3 -outline-offset-2"
       >
-        {preview && 'file' in preview ? (
+        {'file' in preview ? (
           <pre className="numeric text-[12px] leading-[1.45]">
             {preview.firstLines}
             {preview.restLines > 0 ? `\n… ${preview.restLines} more lines` : ''}
           </pre>
         ) : (
           <p className="text-[14px] text-pencil">
-            {unavailable
-              ? `No preview: this engine no longer computes the design (${unavailable}) The file is made from the numbers kept with the version.`
-              : 'Nothing to preview with these choices; the reason stands beside the choice.'}
+            Nothing to preview with these choices; the reason stands beside the choice.
           </p>
         )}
       </div>

@@ -1,6 +1,7 @@
 'use client'
 
 import { useCallback } from 'react'
+import type { StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { exportQuery, type ExportOptions } from '@/lib/exports'
 import { HandOver } from './hand-over'
@@ -9,12 +10,14 @@ import { HandOver } from './hand-over'
 export function HandOverRegion({
   design,
   version,
+  kept,
   exportPath,
 }: {
   design: DesignRecord
   version: VersionSummary
+  kept: StoredCoefficients
   exportPath: string
 }) {
   const exportHref = useCallback((options: ExportOptions) => `${exportPath}?${exportQuery(options)}`, [exportPath])
-  return <HandOver design={design} version={version} exportHref={exportHref} />
+  return <HandOver design={design} version={version} kept={kept} exportHref={exportHref} />
 }

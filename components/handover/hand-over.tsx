@@ -4,12 +4,13 @@ import Link from 'next/link'
 import { useEffect, useMemo, useRef, useState, type KeyboardEvent } from 'react'
 import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
+import type { StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { caution, type ExportOptions } from '@/lib/exports'
 import { defaultIdentifier } from '@/lib/exports/names'
 import { Checksum } from './checksum'
 import { ChoiceGroup } from './choice-group'
-import { equationOf, previewOf, ratioProblem, recomputed } from './draft-file'
+import { equationOf, previewOf, ratioProblem } from './draft-file'
 import { FilePreview } from './file-preview'
 
 const formats = [
@@ -43,11 +44,14 @@ const literalStyles = [
 export function HandOver({
   design,
   version,
+  kept: numbers,
   exportHref,
   onClose,
 }: {
   design: DesignRecord
   version: VersionSummary
+  /** The numbers that were kept with the version, and that its files carry. */
+  kept: StoredCoefficients
   exportHref(options: ExportOptions): string
   onClose?: (() => void) | undefined
 }) {
@@ -62,18 +66,10 @@ export function HandOver({
   const heading = useRef<HTMLHeadingElement>(null)
   const choose = (change: Partial<ExportOptions>) => setOptions((before) => ({ ...before, ...change }))
 
-  const kept = useMemo(() => recomputed(version), [version])
-  const numbers = 'numbers' in kept ? kept.numbers : null
   const asked = useMemo(() => (name === '' ? options : { ...options, name }), [options, name])
-  const preview = useMemo(
-    () => (numbers ? previewOf(design, version, numbers, asked) : null),
-    [design, version, numbers, asked],
-  )
-  const refusedRatio = useMemo(
-    () => (numbers ? ratioProblem(numbers, options.number) : null),
-    [numbers, options.number],
-  )
-  const problem = preview && 'problem' in preview ? preview.problem : null
+  const preview = useMemo(() => previewOf(design, version, numbers, asked), [design, version, numbers, asked])
+  const refusedRatio = useMemo(() => ratioProblem(numbers, options.number), [numbers, options.number])
+  const problem = 'problem' in preview ? preview.problem : null
 
   useEffect(() => {
     // A panel that was opened takes the focus; one that belongs to its page leaves it where it is.
@@ -184,11 +180,7 @@ export function HandOver({
         </div>
 
         <div className="flex min-w-0 flex-col gap-3">
-          <FilePreview
-            href={problem ? null : exportHref(asked)}
-            preview={preview}
-            unavailable={'problem' in kept ? kept.problem.message : null}
-          />
+          <FilePreview href={problem ? null : exportHref(asked)} preview={preview} />
           <Checksum checksum={version.checksum} numbers={numbers} />
           <p className="text-[13px] text-pencil">
             {caution}{' '}

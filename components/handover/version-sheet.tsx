@@ -63,7 +63,12 @@ export function VersionSheet({
       </section>
 
       {mayExport ? (
-        <HandOverRegion design={design} version={version} exportPath={`/api${path}/${version.number}/export`} />
+        <HandOverRegion
+          design={design}
+          version={version}
+          kept={kept}
+          exportPath={`/api${path}/${version.number}/export`}
+        />
       ) : (
         <section aria-labelledby="checksum-heading">
           <h2 id="checksum-heading" className="text-[19px]">

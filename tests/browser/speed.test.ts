@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { signedIn } from './accounts'
 import { withPage } from './browser'
-import { foldLine, openDesign } from './studio'
+import { foldLine, newDesign, openDesign } from './studio'
 
 const FIRST_PAGE_SCRIPT_LIMIT = 300 * 1024
 
@@ -36,7 +36,7 @@ describe('how light and quick the studio is', () => {
 
   it('redraws a drag of the fold line and prints how long an edit takes to the painted frame', async () => {
     await withPage({ state: await signedIn('designer') }, async ({ page }) => {
-      await openDesign(page, /Deck accelerometer/)
+      await newDesign(page, 'Deck accelerometer, pulled about')
       const grip = await foldLine(page).boundingBox()
       if (!grip) throw new Error('The fold line has no handle.')
       const [x, y] = [grip.x + grip.width / 2, grip.y + grip.height / 2]
