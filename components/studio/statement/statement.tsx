@@ -37,7 +37,7 @@ export function Statement({ store, readOnly }: { store: StudioStore; readOnly: b
     <div>
       <h1
         aria-label="Statement"
-        className="font-heading text-[22px] leading-[1.55] font-normal text-ink sm:text-[26px]"
+        className="font-heading text-[22px] leading-[1.55] font-normal text-ink sm:text-[25px]"
       >
         {parts.map((part, index) => {
           if (part.kind === 'text') return <Fragment key={`text-${index}`}>{withoutMark(part.text)}</Fragment>
