@@ -21,7 +21,7 @@ const LEAST_COMPLEMENT = 3e-5
 
 /** A number as a sentence shows it: six significant digits, no exponent where it can be helped. */
 export function show(value: number): string {
-  if (!Number.isFinite(value)) return String(value)
+  if (!Number.isFinite(value) || value === 0) return String(value)
   const rounded = Number(value.toPrecision(6))
   return Math.abs(rounded) >= 1e-4 && Math.abs(rounded) < 1e9 ? String(rounded) : rounded.toExponential()
 }
@@ -72,6 +72,14 @@ function checkEdges(spec: AnalogSpec): void {
     const [least, most] = EDGE_RANGE_HZ
     if (edge >= least && edge <= most) return
     const nearest = Number.isNaN(edge) ? 100 : clamp(edge, EDGE_RANGE_HZ)
+    if (edge <= 0) {
+      throw new DesignError(
+        'edge-out-of-range',
+        `analog.edgesHz.${index}`,
+        `The ${edgeName(spec, index)} must lie above 0 Hz; ${hertz(edge)} was given.`,
+        nearest,
+      )
+    }
     throw new DesignError(
       'edge-out-of-range',
       `analog.edgesHz.${index}`,

@@ -11,10 +11,12 @@ import { defaultSpec } from '@/lib/designs/edits'
 import type { StudioProps, VersionSummary } from '@/lib/designs/types'
 import { formatNumber } from '@/lib/format/quantity'
 import { studioCommands, matches } from './commands'
+import { useOnPage } from './panels/chart/use-on-page'
 import { Planes } from './planes/planes'
 import { useAddress, viewFromSearch } from './shell/address'
 import { createAutosave } from './shell/autosave'
 import { DepartureTable } from './shell/departure-table'
+import { freshest, remember } from './shell/desk'
 import { DraftStatus } from './shell/draft-status'
 import { Drawer } from './shell/drawer'
 import { FiguresLine } from './shell/figures-line'
@@ -28,8 +30,18 @@ import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
 
 /** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
-export function Studio({ design, viewer, versions: savedAtOpening, draft, difference, actions }: StudioProps) {
+export function Studio({
+  design,
+  viewer,
+  versions: broughtVersions,
+  draft: broughtDraft,
+  difference,
+  actions,
+}: StudioProps) {
   const search = useSearchParams()
+  const [{ draft, versions: savedAtOpening }] = useState(() =>
+    freshest(viewer.accountId, design.id, { draft: broughtDraft, versions: broughtVersions }),
+  )
   const [saved, setSaved] = useState(savedAtOpening)
   const latest = saved[0]
   const [store] = useState(() => {
@@ -38,16 +50,24 @@ export function Studio({ design, viewer, versions: savedAtOpening, draft, differ
     return createStudioStore(opening, view, drawer)
   })
   const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
+  const [storedDraft, setStoredDraft] = useState(draft)
+  useEffect(() => {
+    remember(viewer.accountId, design.id, { draft: storedDraft, versions: saved })
+  }, [viewer.accountId, design.id, storedDraft, saved])
   const [saving, setSaving] = useState(false)
   const [kept, setKept] = useState<DesignSpec | null>(null)
 
   const spec = useStudio(store, (state) => state.spec)
   const refusal = useStudio(store, (state) => state.refusal)
   const { view, drawn, traces, settled } = useDerived(store)
-  const [autosave] = useState(() => createAutosave({ designId: design.id, store, draft, parentNumber }))
+  const [autosave] = useState(() =>
+    createAutosave({ designId: design.id, store, draft, parentNumber, onSaved: setStoredDraft }),
+  )
   const autosaveState = useStore(autosave.state)
   useEffect(() => (viewer.mayEdit ? autosave.start() : undefined), [autosave, viewer.mayEdit])
   useAddress(store)
+  // Computed figures may differ in their last digit between the server's engine and this browser's: they are shown here alone.
+  const onPage = useOnPage()
 
   const commands = useMemo(
     () => studioCommands(store, { mayEdit: viewer.mayEdit, openSave: () => setSaving(true) }),
@@ -104,7 +124,7 @@ export function Studio({ design, viewer, versions: savedAtOpening, draft, differ
         ) : null}
         {latest ? (
           <a className={buttonClass()} href={`/designs/${design.id}/versions/${latest.number}`}>
-            Hand over…
+            Hand over version {latest.number}…
           </a>
         ) : null}
         {viewer.mayEdit ? (
@@ -169,7 +189,7 @@ export function Studio({ design, viewer, versions: savedAtOpening, draft, differ
             </Notice>
           ) : null}
           <Statement store={store} readOnly={!viewer.mayEdit} />
-          {settled ? (
+          {onPage && settled ? (
             <FiguresLine
               versions={settled.versions}
               trust={settled.trust}
@@ -181,7 +201,7 @@ export function Studio({ design, viewer, versions: savedAtOpening, draft, differ
           ) : null}
         </div>
 
-        {drawn && settled ? (
+        {onPage && drawn && settled ? (
           <div className="mt-2 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
             <ResponseStack
               spec={spec}

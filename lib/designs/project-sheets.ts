@@ -5,6 +5,7 @@ import type { DesignLine, ProjectSheet } from './project-lines'
 import { formatHz, formatInstant } from '@/lib/format/quantity'
 import { mayDo } from '@/lib/permissions'
 import { statementText } from './statement'
+import { stateWords } from './words'
 
 function lineOf({ id, drawingNumber, title, spec, latest }: DesignListRow): DesignLine {
   return {
@@ -14,7 +15,7 @@ function lineOf({ id, drawingNumber, title, spec, latest }: DesignListRow): Desi
     statement: statementText(spec),
     rate: formatHz(spec.sampleRateHz),
     version: latest ? `v${latest.number}` : 'no version yet',
-    state: 'draft',
+    state: stateWords.draft,
     saved: latest ? `${formatInstant(latest.savedAt).slice(0, 11)}, ${latest.savedBy}` : '',
   }
 }

@@ -96,7 +96,15 @@ function edgePhrase({ analog }: DesignSpec): StatementPart[] {
     case 'chebyshev1':
       return [text(', with '), ripple, text(' of ripple '), ...reach]
     case 'elliptic':
-      return [text(', with '), ripple, text(' of ripple '), ...reach, text(' and '), attenuation, text(' down beyond')]
+      return [
+        text(', with '),
+        ripple,
+        text(' of ripple '),
+        ...reach,
+        text(' and '),
+        attenuation,
+        text(analog.response === 'bandstop' ? ' down between them' : ' down beyond'),
+      ]
     case 'chebyshev2':
       return [text(', '), attenuation, text(` down from `), ...both]
     case 'bessel':

@@ -32,5 +32,12 @@ export const exportFile = (source: ExportSource, options: ExportOptions): Export
 /** The file of a set that is already there. */
 export function writtenFile(set: CoefficientSet): ExportFile {
   const { extension, mediaType, write } = writers[set.options.format]
-  return { fileName: `${set.name}.${extension}`, mediaType, text: write(set) }
+  return { fileName: `${set.name}${variantOf(set.options)}.${extension}`, mediaType, text: write(set) }
+}
+
+/** What tells a file from its neighbours in a folder; the usual choices go without saying. */
+function variantOf({ structure, number, feedback }: ExportOptions): string {
+  return [structure === 'ratio' && '_ba', number === 'float' && '_float', feedback === 'add' && '_added']
+    .filter(Boolean)
+    .join('')
 }

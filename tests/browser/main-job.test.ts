@@ -79,7 +79,7 @@ describe('the main job, by mouse', () => {
         .first()
         .waitFor()
       await picture(page, 'studio-history-1440')
-      await page.getByRole('link', { name: 'Hand over…' }).click()
+      await page.getByRole('link', { name: /^Hand over version/ }).click()
       await page.waitForURL(/\/versions\/1/)
       await picture(page, 'hand-over-1440')
       await expectAccessible(page)

@@ -5,7 +5,10 @@ import { openDesign } from '@/lib/designs/open-design'
 import type { StudioActions } from '@/lib/designs/types'
 import { renameDesign, saveVersion } from '../actions'
 
-export const metadata: Metadata = { title: 'Studio' }
+export async function generateMetadata({ params }: { params: Promise<unknown> }): Promise<Metadata> {
+  const { found } = await requireDesign(params, (id) => `/designs/${id}`)
+  return { title: found.title }
+}
 
 const actions: StudioActions = { saveVersion, renameDesign }
 

@@ -19,13 +19,15 @@ interface AutosaveOptions {
   readonly store: StudioStore
   readonly draft: DraftRecord | null
   readonly parentNumber: number | null
+  /** Told of each draft that reached the server. */
+  onSaved(draft: DraftRecord): void
 }
 
 /**
  * Saves the draft once the hand rests. What could not reach the server is kept in this browser until it does, so that a closed tab
  * or a lost connection costs nothing.
  */
-export function createAutosave({ designId, store, draft, parentNumber }: AutosaveOptions) {
+export function createAutosave({ designId, store, draft, parentNumber, onSaved }: AutosaveOptions) {
   const state = createStore<AutosaveState>()(() => ({ kind: 'idle', savedAt: draft?.updatedAt ?? null }))
   let revision = draft?.revision ?? 0
   let parent = parentNumber
@@ -58,6 +60,7 @@ export function createAutosave({ designId, store, draft, parentNumber }: Autosav
       revision = outcome.revision
       saved = spec
       forgetKeptDraft(designId)
+      onSaved({ spec, parentNumber: parent, revision, updatedAt: outcome.updatedAt })
       state.setState({ kind: 'idle', savedAt: outcome.updatedAt }, true)
       if (!sameSpec(store.getState().spec, spec)) later(QUIET_MS)
     } catch (error) {
@@ -80,7 +83,8 @@ export function createAutosave({ designId, store, draft, parentNumber }: Autosav
       return () => {
         unsubscribe()
         removeEventListener('pagehide', onHide)
-        clearTimeout(timer)
+        // Leaving for another page doesn't wait for the hand to rest.
+        void save()
       }
     },
 

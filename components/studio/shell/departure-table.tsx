@@ -30,7 +30,7 @@ export function DepartureTable({
   trust: readonly Trust[]
   readOnly: boolean
 }) {
-  const edge = delayBand(spec)[1]
+  const [fromHz, edge] = delayBand(spec)
   const [chosenHz, setChosenHz] = useState<number | null>(null)
   const fold = spec.sampleRateHz / 2
   const upToHz = Math.min(chosenHz ?? edge, fold * 0.999)
@@ -41,14 +41,13 @@ export function DepartureTable({
       trust.flatMap((entry, rank) => {
         const version = versions.digital.find(({ id }) => id === entry.id)
         if (!version) return []
-        const fromHz = delayBand(spec)[0]
         const worst = worstDeparture(versions.analog, version.filter, upToHz, {
           ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
           removeDelay: budget.removeDelay,
         })
         return [{ ...entry, worst, closest: rank === 0, stated: version.stated }]
       }),
-    [trust, versions, spec, upToHz, budget.removeDelay],
+    [trust, versions, fromHz, upToHz, budget.removeDelay],
   )
 
   const setBudget = (change: Partial<DepartureBudget>) => {
@@ -94,7 +93,7 @@ export function DepartureTable({
       <div className="overflow-x-auto">
         <table className="mt-1 w-full text-[13px]">
           <caption className="pb-1 text-left text-pencil">
-            Worst up to{' '}
+            Worst {fromHz > 0 ? `from ${formatHz(fromHz)} ` : ''}up to{' '}
             <InlineQuantity
               label="Worst departure up to"
               text={formatHz(upToHz)}
@@ -116,7 +115,9 @@ export function DepartureTable({
                 °
               </th>
               <th scope="col" className="text-right">
-                µs
+                <abbr title="microseconds of phase delay" className="no-underline">
+                  µs
+                </abbr>
               </th>
               <th scope="col" className="pl-2 text-right">
                 trusted to
@@ -149,11 +150,13 @@ export function DepartureTable({
                 </th>
                 <td className={cell(row.worst.db <= budget.magnitudeDb)}>{formatFixed(row.worst.db, 2)}</td>
                 <td className={cell(row.worst.degrees <= budget.phaseDegrees)}>{formatFixed(row.worst.degrees, 2)}</td>
-                <td className="numeric pl-2 text-right">{formatNumber(row.worst.microseconds, 3)}</td>
+                <td className="numeric pl-2 text-right">
+                  {row.worst.microseconds < 0.001 ? '<\u20090.001' : formatNumber(row.worst.microseconds, 3)}
+                </td>
                 <td className="numeric pl-2 text-right whitespace-nowrap">
                   {trustText(row).replace(/^to /, '')}
                   {row.closest ? (
-                    <span className="block font-text text-[12px] leading-4 text-moss">closest</span>
+                    <span className="block font-text text-[12px] leading-4 text-moss">farthest</span>
                   ) : null}
                 </td>
               </tr>

@@ -11,7 +11,8 @@ const HALVINGS = 48
  */
 export function nearestThatWorks(spec: DesignSpec, key: WordKey, standing: number, refused: number): number | null {
   const works = (value: number) => refusalOf(withQuantity(spec, key, value)) === null
-  if (!Number.isFinite(refused) || !works(standing)) return null
+  // Below nothing there is no nearest value that anybody would want.
+  if (!Number.isFinite(refused) || refused <= 0 || !works(standing)) return null
   let good = standing
   let bad = refused
   for (let halving = 0; halving < HALVINGS; halving += 1) {

@@ -40,7 +40,10 @@ export function Statement({ store, readOnly }: { store: StudioStore; readOnly: b
         className="font-heading text-[22px] leading-[1.55] font-normal text-ink sm:text-[25px]"
       >
         {parts.map((part, index) => {
-          if (part.kind === 'text') return <Fragment key={`text-${index}`}>{withoutMark(part.text)}</Fragment>
+          if (part.kind === 'text') {
+            const afterWord = index > 0 && parts[index - 1]?.kind !== 'text'
+            return <Fragment key={`text-${index}`}>{afterWord ? withoutMark(part.text) : part.text}</Fragment>
+          }
           // A full stop or a comma never begins a line: it stays with its word.
           return (
             <span key={part.key} className="whitespace-nowrap">
