@@ -40,10 +40,15 @@ export const methodSchema = z.discriminatedUnion('method', [
   z.strictObject({ method: z.literal('step-invariant') }),
 ])
 
+/** Outside these a budget means nothing, and a plot of it would be all grid. */
+const LEAST_BUDGET = 1e-6
+const MOST_BUDGET_DB = 300
+const MOST_BUDGET_DEGREES = 36_000
+
 /** What the departure of digital from analog may be, and whether the best constant delay is removed before it is judged. */
 export const departureBudgetSchema = z.strictObject({
-  magnitudeDb: z.number().positive(),
-  phaseDegrees: z.number().positive(),
+  magnitudeDb: z.number().min(LEAST_BUDGET).max(MOST_BUDGET_DB),
+  phaseDegrees: z.number().min(LEAST_BUDGET).max(MOST_BUDGET_DEGREES),
   removeDelay: z.boolean(),
 })
 

@@ -32,6 +32,8 @@ function tickStep(quantity: Quantity, scale: Scale, gapPixels: number): number {
   return steps.find((step) => step / perPixel >= gapPixels) ?? steps[steps.length - 1] ?? 1
 }
 
+const MOST_TICKS = 1000
+
 /** Multiples of `step` inside the span, ends included. */
 export function multiples(step: number, [a, b]: Span): number[] {
   const low = Math.min(a, b)
@@ -39,6 +41,8 @@ export function multiples(step: number, [a, b]: Span): number[] {
   const slack = step * 1e-9
   const values: number[] = []
   const last = Math.floor((high + slack) / step)
+  // Whatever the span: an axis never needs more, and memory has an end.
+  if (last - low / step > MOST_TICKS) return []
   // toPrecision: 3 × 0.1 is 0.3, not 0.30000000000000004.
   for (let k = Math.ceil((low - slack) / step); k <= last; k++)
     values.push(k === 0 ? 0 : Number((k * step).toPrecision(12)))

@@ -8,6 +8,7 @@ import {
   magnitudeDb,
   phaseResponse,
   trustedBand,
+  type Departure,
   type DesignMethod,
   type DesignSpec,
   type DigitalFilter,
@@ -49,7 +50,7 @@ export function deriveVersions(spec: DesignSpec, wanted: readonly MethodName[] =
 }
 
 /** A refusal is an answer here, not an accident. */
-function orRefusal<Value>(make: () => Value): Value | DesignError {
+export function orRefusal<Value>(make: () => Value): Value | DesignError {
   try {
     return make()
   } catch (error) {
@@ -85,7 +86,7 @@ export function delayBand(spec: DesignSpec): readonly [number, number] {
     case 'bandstop':
       return [0, first]
     case 'highpass':
-      return [first, Math.min(10 * first, 0.8 * fold)]
+      return [first, Math.min(10 * first, Math.max(0.8 * fold, (first + fold) / 2))]
     case 'bandpass':
       return [first, second]
   }
@@ -116,11 +117,25 @@ export function deriveTraces(spec: DesignSpec, versions: Versions, view: CurveVi
       magnitudeDb: magnitudeDb(filter, grid),
       phaseRadians: phaseResponse(filter, grid),
       groupDelaySeconds: groupDelay(filter, grid),
-      departure: departure(versions.analog, filter, grid, view.removeDelay ? { removeDelayOver: delayBand(spec) } : {}),
+      departure: departureOf(spec, versions.analog, filter, grid, view.removeDelay),
       stated,
       image: beyond ? { frequenciesHz: beyond, magnitudeDb: magnitudeDb(filter, beyond) } : null,
     }))
   return [analog, ...digital]
+}
+
+/** Departure with the best delay removed, or without where the band leaves no room to fit one. */
+function departureOf(
+  spec: DesignSpec,
+  analog: Filter<'s'>,
+  filter: DigitalFilter,
+  grid: Float64Array,
+  removeDelay: boolean,
+): Departure {
+  const removed = removeDelay
+    ? orRefusal(() => departure(analog, filter, grid, { removeDelayOver: delayBand(spec) }))
+    : null
+  return removed === null || removed instanceof DesignError ? departure(analog, filter, grid, {}) : removed
 }
 
 export interface Trust {
@@ -134,7 +149,10 @@ export interface Trust {
 /** How far each version may be trusted, the farthest first. */
 export function deriveTrust(spec: DesignSpec, versions: Versions): readonly Trust[] {
   return versions.digital
-    .map(({ id, filter }) => ({ id, ...trustedBand(versions.analog, filter, spec.budget) }))
+    .flatMap(({ id, filter }) => {
+      const band = orRefusal(() => trustedBand(versions.analog, filter, spec.budget))
+      return band instanceof DesignError ? [] : [{ id, ...band }]
+    })
     .sort((left, right) => right.upToHz - left.upToHz)
 }
 

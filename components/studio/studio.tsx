@@ -6,6 +6,7 @@ import { useStore } from 'zustand'
 import type { DesignSpec } from '@/dsp'
 import { Header } from '@/components/frame/header'
 import { Button, buttonClass } from '@/components/ui/button'
+import { Fence } from '@/components/ui/fence'
 import { Notice } from '@/components/ui/notice'
 import { defaultSpec } from '@/lib/designs/edits'
 import type { StudioProps, VersionSummary } from '@/lib/designs/types'
@@ -203,29 +204,33 @@ export function Studio({
 
         {onPage && drawn && settled ? (
           <div className="mt-2 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
-            <ResponseStack
-              spec={spec}
-              traces={traces}
-              trusted={settled.trust}
-              view={view}
-              onView={({ removeDelay, ...change }) => {
-                if (removeDelay !== undefined) store.getState().removeDelay(removeDelay)
-                store.getState().look(change)
-              }}
-              onResetView={store.getState().resetView}
-              edit={edit}
-              refusal={refusal}
-              readOnly={!viewer.mayEdit}
-            />
-            <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
-              <Planes analog={drawn.analog} versions={drawn.digital.filter(({ id }) => !view.hidden.includes(id))} />
-              <DepartureTable
-                store={store}
-                spec={settled.spec}
-                versions={settled.versions}
-                trust={settled.trust}
+            <Fence what="The plots" retryOn={spec}>
+              <ResponseStack
+                spec={spec}
+                traces={traces}
+                trusted={settled.trust}
+                view={view}
+                onView={({ removeDelay, ...change }) => {
+                  if (removeDelay !== undefined) store.getState().removeDelay(removeDelay)
+                  store.getState().look(change)
+                }}
+                onResetView={store.getState().resetView}
+                edit={edit}
+                refusal={refusal}
                 readOnly={!viewer.mayEdit}
               />
+            </Fence>
+            <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
+              <Fence what="The planes and the departure table" retryOn={spec}>
+                <Planes analog={drawn.analog} versions={drawn.digital.filter(({ id }) => !view.hidden.includes(id))} />
+                <DepartureTable
+                  store={store}
+                  spec={settled.spec}
+                  versions={settled.versions}
+                  trust={settled.trust}
+                  readOnly={!viewer.mayEdit}
+                />
+              </Fence>
               <DesignTitleBlock design={design} latest={latest} spec={spec} viewer={viewer} />
             </aside>
           </div>

@@ -146,9 +146,12 @@ export function measureDelay(before: Float64Array, after: Float64Array, options:
   }
 }
 
+/** Humps of the correlation that reach this part of the highest count as equally high. */
+const NEARLY_HIGHEST = 0.98
+
 /**
  * The delay that {@link measureDelay} should find for a signal of the given spectrum behind a filter: the peak of the correlation
- * Σ S(f)·H(f)·e^{jωτ}. For a narrow band this is the phase delay there; for a broad one a mean, weighted as the signal is.
+ * Σ S(f)·H(f)·e^{jωτ}, of equally high ones the nearest to no delay. For a narrow band this is the phase delay there; for a broad one a mean, weighted as the signal is.
  *
  * @param spectrum of the signal before the filter, from {@link welch}; its line at 0 Hz is left out, as an offset has no delay
  * @returns seconds
@@ -174,14 +177,17 @@ export function predictDelay(filter: AnyFilter, spectrum: Pick<Spectrum, 'freque
   const step = 1 / (8 * Math.sqrt(spread / total))
   const longest = Math.PI / (omega[1]! - omega[0]!)
   const steps = Math.min(Math.ceil(longest / step), 4096)
-  let best = 0
-  let highest = -Infinity
-  for (let n = -Math.min(steps, 256); n <= steps; n++) {
-    const value = correlationAt(lines, n * step)
-    if (value > highest) {
-      highest = value
-      best = n * step
-    }
-  }
+  const first = -Math.min(steps, 256)
+  const values = Float64Array.from({ length: steps - first + 1 }, (_, index) =>
+    correlationAt(lines, (first + index) * step),
+  )
+  const highest = values.reduce((most, value) => Math.max(most, value), -Infinity)
+  // A tone's humps are all but equally high, a period apart: the one nearest to no delay is meant.
+  let best = Infinity
+  values.forEach((value, index) => {
+    const isHump = value >= (values[index - 1] ?? -Infinity) && value >= (values[index + 1] ?? -Infinity)
+    const delay = (first + index) * step
+    if (isHump && value >= NEARLY_HIGHEST * highest && Math.abs(delay) < Math.abs(best)) best = delay
+  })
   return refinePeak(lines, best, step)
 }

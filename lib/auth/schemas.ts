@@ -29,14 +29,18 @@ const password = z
   .min(1, 'Enter your password.')
   .refine((text) => bytes(text) <= 4 * PASSWORD_MAX_BYTES, 'That is longer than any password here.')
 
-/** No control characters or line breaks, which could forge lines in mails and files. */
+/** No control characters or line breaks, which could forge lines in mails and files; none that turn the direction; something to see. */
 export const singleLine = (what: string, max: number) =>
   z
     .string()
     .trim()
     .min(1, `Enter ${what}.`)
     .max(max, `Use at most ${max} characters.`)
-    .refine((text) => !/\p{Cc}|[\u2028\u2029]/u.test(text), 'Use a single line without control characters.')
+    .refine(
+      (text) => !/[\p{Cc}\p{Cs}\u2028\u2029\u061c\u200e\u200f\u202a-\u202e\u2066-\u2069]/u.test(text),
+      'Use a single line without control characters.',
+    )
+    .refine((text) => /[\p{L}\p{N}\p{P}\p{S}]/u.test(text), `Enter ${what}.`)
 
 /** A path of ours to go to afterwards. Anything that a browser could read as another site is dropped, not refused. */
 const next = z

@@ -99,7 +99,7 @@ export function octaveString(text: string): string {
  * separator inside the cell, because a spreadsheet may split at another separator than the comma. Numbers never come through here.
  */
 export function csvText(text: string): string {
-  const guarded = oneLine(text).replace(/(^|[;,|])(\s*)([=+\-@＝＋－＠])/gu, "$1$2'$3")
+  const guarded = oneLine(text).replace(/(^|[;,|])(["'\s]*)([=+\-@＝＋－＠])/gu, "$1$2'$3")
   return /[",;|\t]/.test(guarded) || guarded !== guarded.trim() ? `"${guarded.replace(/"/g, '""')}"` : guarded
 }
 

@@ -5,7 +5,10 @@ import { stepped } from '@/components/studio/statement/apply'
 import { createStudioStore, refusalOf } from '@/components/studio/store'
 import { viewFromSearch, viewToSearch } from '@/components/studio/shell/address'
 import { matches } from '@/components/studio/commands'
+import { deriveFigures, deriveTraces, deriveTrust } from '@/components/studio/derive'
 import { usualView } from '@/components/studio/view'
+import type { DesignSpec } from '@/dsp'
+import { versionsOf } from '../helpers/versions-of'
 import { defaultSpec, withEdge } from '@/lib/designs/edits'
 
 const at = (hertz: number) => withEdge(defaultSpec, 0, hertz)
@@ -118,5 +121,28 @@ describe('keys of commands', () => {
     expect(matches('Mod+Shift+Z', press)).toBe(false)
     expect(matches('Mod+Shift+Z', { ...press, key: 'Z', shiftKey: true })).toBe(true)
     expect(matches('Mod+Z', { ...press, ctrlKey: false })).toBe(false)
+  })
+})
+
+describe('what the screen derives', () => {
+  it('is there for every filter that dsp accepts, also hard against half the rate', () => {
+    const specs: DesignSpec[] = [550, 599.9].map((edge) => ({
+      ...defaultSpec,
+      analog: { ...defaultSpec.analog, response: 'highpass', edgesHz: [edge] },
+    }))
+    specs.push({
+      ...defaultSpec,
+      analog: { ...defaultSpec.analog, response: 'bandpass', order: 12, edgesHz: [599.9, 599.999] },
+    })
+    for (const spec of specs) {
+      for (const removeDelay of [false, true]) {
+        const judged = { ...spec, budget: { ...spec.budget, removeDelay } }
+        const versions = versionsOf(judged)
+        const view = { ...usualView(judged), removeDelay }
+        expect(deriveTraces(judged, versions, view).length).toBeGreaterThan(1)
+        expect(() => deriveTrust(judged, versions)).not.toThrow()
+        expect(Number.isNaN(deriveFigures(judged, versions).delaySeconds)).toBe(false)
+      }
+    }
   })
 })

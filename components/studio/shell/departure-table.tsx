@@ -1,13 +1,13 @@
 'use client'
 
 import { useMemo, useState } from 'react'
-import { worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
+import { DesignError, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { classNames } from '@/lib/format/class-names'
 import { formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
 import { methodLabels } from '@/lib/designs/words'
 import { parseDecibels, parseDegrees, parseFrequency } from '@/lib/units/parse'
-import { delayBand, methodAsShown, type Trust, type Versions } from '../derive'
+import { delayBand, methodAsShown, orRefusal, type Trust, type Versions } from '../derive'
 import type { StudioStore } from '../store'
 import { trustText } from './figures-line'
 import { InlineQuantity } from './inline-quantity'
@@ -33,7 +33,8 @@ export function DepartureTable({
   const [fromHz, edge] = delayBand(spec)
   const [chosenHz, setChosenHz] = useState<number | null>(null)
   const fold = spec.sampleRateHz / 2
-  const upToHz = Math.min(chosenHz ?? edge, fold * 0.999)
+  // Just below the fold line; for a band that begins up there, half-way to it.
+  const upToHz = Math.min(chosenHz ?? edge, Math.max(fold * 0.999, (fromHz + fold) / 2))
   const { budget } = spec
 
   const rows = useMemo(
@@ -41,10 +42,13 @@ export function DepartureTable({
       trust.flatMap((entry, rank) => {
         const version = versions.digital.find(({ id }) => id === entry.id)
         if (!version) return []
-        const worst = worstDeparture(versions.analog, version.filter, upToHz, {
-          ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
-          removeDelay: budget.removeDelay,
-        })
+        const worst = orRefusal(() =>
+          worstDeparture(versions.analog, version.filter, upToHz, {
+            ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
+            removeDelay: budget.removeDelay,
+          }),
+        )
+        if (worst instanceof DesignError) return []
         return [{ ...entry, worst, closest: rank === 0, stated: version.stated }]
       }),
     [trust, versions, fromHz, upToHz, budget.removeDelay],
@@ -52,7 +56,10 @@ export function DepartureTable({
 
   const setBudget = (change: Partial<DepartureBudget>) => {
     const next = { ...spec.budget, ...change }
-    if (!(next.magnitudeDb > 0 && next.phaseDegrees > 0)) return 'A budget is above 0; the least of use is about 0.001.'
+    if (!(next.magnitudeDb >= 1e-6 && next.magnitudeDb <= 300))
+      return 'A magnitude budget lies between 0.000001 and 300 dB.'
+    if (!(next.phaseDegrees >= 1e-6 && next.phaseDegrees <= 36_000))
+      return 'A phase budget lies between 0.000001 and 36 000°.'
     store.getState().propose({ ...store.getState().spec, budget: next })
     return null
   }

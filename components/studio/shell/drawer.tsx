@@ -2,6 +2,7 @@
 
 import dynamic from 'next/dynamic'
 import type { DepartureBudget, DesignMethod, DesignSpec } from '@/dsp'
+import { Fence } from '@/components/ui/fence'
 import { Tabs } from '@/components/ui/tabs'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { drawerNames } from '../commands'
@@ -60,27 +61,29 @@ export function Drawer({
         onChange={open}
       />
       <div id="drawer-panel" role="tabpanel" aria-labelledby={`drawer-panel-${tab}`} className="min-h-64 pt-3 pb-10">
-        {tab === 'history' ? (
-          <History
-            versions={saved}
-            current={spec}
-            mayEdit={mayEdit}
-            compareHref={(a, b) => `/designs/${design.id}/compare?a=${a}&b=${b}`}
-            handOverHref={(number) => `/designs/${design.id}/versions/${number}`}
-            onRestore={(older) => propose(older)}
-          />
-        ) : null}
-        {tab === 'trial' ? <SignalTrial spec={spec} mayEdit={mayEdit} onRedesignAt={runAt} /> : null}
-        {settled && tab === 'rates' ? (
-          <RatesPanel
-            spec={settled.spec}
-            mayEdit={mayEdit}
-            onRate={runAt}
-            {...(mayEdit && { onBudget: (budget: DepartureBudget) => propose({ ...store.getState().spec, budget }) })}
-          />
-        ) : null}
-        {settled && tab === 'time' ? <TimePanel spec={settled.spec} versions={settled.versions} /> : null}
-        {settled && tab === 'sections' ? <SectionsPanel spec={settled.spec} versions={settled.versions} /> : null}
+        <Fence what="This panel" retryOn={tab}>
+          {tab === 'history' ? (
+            <History
+              versions={saved}
+              current={spec}
+              mayEdit={mayEdit}
+              compareHref={(a, b) => `/designs/${design.id}/compare?a=${a}&b=${b}`}
+              handOverHref={(number) => `/designs/${design.id}/versions/${number}`}
+              onRestore={(older) => propose(older)}
+            />
+          ) : null}
+          {tab === 'trial' ? <SignalTrial spec={spec} mayEdit={mayEdit} onRedesignAt={runAt} /> : null}
+          {settled && tab === 'rates' ? (
+            <RatesPanel
+              spec={settled.spec}
+              mayEdit={mayEdit}
+              onRate={runAt}
+              {...(mayEdit && { onBudget: (budget: DepartureBudget) => propose({ ...store.getState().spec, budget }) })}
+            />
+          ) : null}
+          {settled && tab === 'time' ? <TimePanel spec={settled.spec} versions={settled.versions} /> : null}
+          {settled && tab === 'sections' ? <SectionsPanel spec={settled.spec} versions={settled.versions} /> : null}
+        </Fence>
       </div>
     </section>
   )

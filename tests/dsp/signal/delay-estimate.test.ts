@@ -83,6 +83,16 @@ describe('measureDelay', () => {
     }
   })
 
+  it('predicts for a tone the delay within its first period, as measured', () => {
+    const rate = 1200
+    const tone = Float64Array.from({ length: 5000 }, (_, n) => Math.sin(n / 5))
+    const filter = bilinearLowpass(4, 120, rate)
+    const after = runFilter(filter.sections, tone, { mode: 'causal', start: 'zero' })
+    const measured = measureDelay(tone, after, { sampleRateHz: rate })
+    const spectrum = welch(tone, { sampleRateHz: rate, segmentLength: 4096, overlap: 0.5, window: 'hann' })
+    expect(Math.abs(predictDelay(filter, spectrum) - measured.delaySeconds)).toBeLessThan(0.2e-3)
+  })
+
   it('finds none after a zero-phase run', () => {
     const { samples } = footbridgeDemo({ sampleRateHz: 500, durationSeconds: 60 })
     const after = runFilter(bilinearLowpass(4, 25, 500).sections, samples, { mode: 'zero-phase' })
