@@ -151,6 +151,8 @@ describe('user text', () => {
     expect(csvText('+1')).toBe("'+1")
     expect(csvText('-5.2')).toBe("'-5.2")
     expect(csvText('@SUM(A1)')).toBe("'@SUM(A1)")
+    // A quotation mark between the separator and the sign hides nothing.
+    expect(csvText('x;"=1+2;z')).toContain(`;""'=1+2`)
     expect(csvText('a;=1+1')).toBe(`"a;'=1+1"`)
     expect(csvText('\t=1')).toBe("'=1")
     expect(csvText('Deck, logger')).toBe('"Deck, logger"')

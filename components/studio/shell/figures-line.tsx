@@ -18,19 +18,29 @@ export function FiguresLine({
 }) {
   const stated = versions.digital.find((version) => version.stated)
   const statedTrust = trust.find(({ id }) => id === stated?.id)
+  const cautions = stated?.filter.diagnostics.filter(({ severity }) => severity === 'caution') ?? []
   return (
-    <dl className="flex flex-wrap gap-x-7 gap-y-1 text-[14px] text-pencil">
-      <Figure name="Oversampling">{formatNumber(figures.oversampling, 3)}×</Figure>
-      <Figure name={figures.delayAtHz === 0 ? 'Delay at DC' : `Delay at ${formatHz(figures.delayAtHz)}`}>
-        {formatSeconds(figures.delaySeconds)}
-      </Figure>
-      {stated ? <Figure name="Cost">{multipliesPerSample(stated.filter)} multiplies / sample</Figure> : null}
-      {statedTrust ? (
-        <Figure name="Trusted" note={`(${budgetText})`}>
-          {trustText(statedTrust)}
+    <>
+      <dl className="flex flex-wrap gap-x-7 gap-y-1 text-[14px] text-pencil">
+        <Figure name="Oversampling">{formatNumber(figures.oversampling, 3)}×</Figure>
+        <Figure name={figures.delayAtHz === 0 ? 'Delay at DC' : `Delay at ${formatHz(figures.delayAtHz)}`}>
+          {formatSeconds(figures.delaySeconds)}
         </Figure>
+        {stated ? <Figure name="Cost">{multipliesPerSample(stated.filter)} multiplies / sample</Figure> : null}
+        {statedTrust ? (
+          <Figure name="Trusted" note={`(${budgetText})`}>
+            {trustText(statedTrust)}
+          </Figure>
+        ) : null}
+      </dl>
+      {cautions.length > 0 ? (
+        <ul aria-label="Cautions" className="border-l-2 border-ochre pl-3 text-[13px] text-ink">
+          {cautions.map((caution) => (
+            <li key={caution.code}>{caution.message}</li>
+          ))}
+        </ul>
       ) : null}
-    </dl>
+    </>
   )
 }
 
