@@ -51,10 +51,7 @@ export function Studio({
     return createStudioStore(opening, view, drawer)
   })
   const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
-  const [storedDraft, setStoredDraft] = useState(draft)
-  useEffect(() => {
-    remember(viewer.accountId, design.id, { draft: storedDraft, versions: saved })
-  }, [viewer.accountId, design.id, storedDraft, saved])
+  useEffect(() => remember(viewer.accountId, design.id, { versions: saved }), [viewer.accountId, design.id, saved])
   const [saving, setSaving] = useState(false)
   const [kept, setKept] = useState<DesignSpec | null>(null)
 
@@ -62,7 +59,13 @@ export function Studio({
   const refusal = useStudio(store, (state) => state.refusal)
   const { view, drawn, traces, settled } = useDerived(store)
   const [autosave] = useState(() =>
-    createAutosave({ designId: design.id, store, draft, parentNumber, onSaved: setStoredDraft }),
+    createAutosave({
+      designId: design.id,
+      store,
+      draft,
+      parentNumber,
+      onSaved: (stored) => remember(viewer.accountId, design.id, { draft: stored }),
+    }),
   )
   const autosaveState = useStore(autosave.state)
   useEffect(() => (viewer.mayEdit ? autosave.start() : undefined), [autosave, viewer.mayEdit])

@@ -13,8 +13,10 @@ export interface Sheet {
 const desk = new Map<string, Sheet>()
 const place = (accountId: string, designId: string) => `${accountId} ${designId}`
 
-export function remember(accountId: string, designId: string, sheet: Sheet): void {
-  desk.set(place(accountId, designId), sheet)
+/** Puts a new draft, or new versions, on the desk; the other part stays as it lies there. */
+export function remember(accountId: string, designId: string, part: Partial<Sheet>): void {
+  const key = place(accountId, designId)
+  desk.set(key, { ...(desk.get(key) ?? { draft: null, versions: [] }), ...part })
 }
 
 /** The newer of what the page brought and what this tab remembers, part by part. */
