@@ -4,9 +4,12 @@ import { signedIn } from './accounts'
 import { expectAccessible, expectFits, picture, withPage } from './browser'
 import { foldLine, newDesign, statement, studioReady, word } from './studio'
 
-describe('the main job, by mouse', () => {
+describe.each([
+  { width: 1440, scheme: 'light' },
+  { width: 390, scheme: 'dark' },
+] as const)('the main job, by mouse, at $width in $scheme', ({ width, scheme }) => {
   it('goes from a sentence to saved and exported coefficients', async () => {
-    await withPage({ state: await signedIn('designer') }, async ({ page }) => {
+    await withPage({ width, scheme, state: await signedIn('designer') }, async ({ page }) => {
       await newDesign(page, 'Hanger strain, logger low-pass')
       expect(await statement(page)).toContain('A low-pass Butterworth of order 4, down 3 dB at 120 Hz, run at 1.2 kHz')
 
@@ -30,13 +33,14 @@ describe('the main job, by mouse', () => {
       await refusal.waitFor()
       expect(await refusal.textContent()).toMatch(/half the rate|corner|edge/i)
       expect(await statement(page)).toContain('200')
-      await picture(page, 'studio-refusal-1440', { fullPage: false })
+      await picture(page, `studio-refusal-${width}-${scheme}`, { fullPage: false })
       await refusal.getByRole('button', { name: /^Use/ }).click()
       await expect.poll(() => statement(page)).toMatch(/run at 24\d(\.\d+)? Hz/)
       await page.getByRole('button', { name: 'Undo' }).click()
       await expect.poll(() => statement(page)).toContain('run at 2.4 kHz')
 
       // The fold line is dragged: the rate follows, in one step of undo; Escape in mid-drag brings everything back.
+      await foldLine(page).scrollIntoViewIfNeeded()
       const grip = await foldLine(page).boundingBox()
       if (!grip) throw new Error('The fold line has no handle.')
       const [x, y] = [grip.x + grip.width / 2, grip.y + grip.height / 2]
@@ -78,10 +82,10 @@ describe('the main job, by mouse', () => {
         .getByText(/Ripple allowed, rate set by the fold line/)
         .first()
         .waitFor()
-      await picture(page, 'studio-history-1440')
+      await picture(page, `studio-history-${width}-${scheme}`)
       await page.getByRole('link', { name: /^Hand over version/ }).click()
       await page.waitForURL(/\/versions\/1/)
-      await picture(page, 'hand-over-1440')
+      await picture(page, `hand-over-${width}-${scheme}`)
       await expectAccessible(page)
       await expectFits(page)
       const [download] = await Promise.all([
@@ -99,9 +103,12 @@ describe('the main job, by mouse', () => {
   })
 })
 
-describe('the main job, by keyboard alone', () => {
+describe.each([
+  { width: 1440, scheme: 'dark' },
+  { width: 390, scheme: 'light' },
+] as const)('the main job, by keyboard alone, at $width in $scheme', ({ width, scheme }) => {
   it('states, drags, reads and saves without a pointer', async () => {
-    await withPage({ state: await signedIn('designer') }, async ({ page }) => {
+    await withPage({ width, scheme, state: await signedIn('designer') }, async ({ page }) => {
       await newDesign(page, 'Tower tilt, slow channel')
       const tabTo = async (reached: () => Promise<boolean>) => {
         for (let press = 0; press < 80; press += 1) {
@@ -119,7 +126,7 @@ describe('the main job, by keyboard alone', () => {
 
       await tabTo(focused(/^Response/))
       await page.keyboard.press('Enter')
-      await page.getByRole('menuitemradio').first().waitFor()
+      await page.waitForFunction(() => document.activeElement?.getAttribute('role') === 'menuitemradio')
       await page.keyboard.press('ArrowDown')
       await page.keyboard.press('Enter')
       await expect.poll(() => statement(page)).toContain('A high-pass')
