@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { signedIn } from './accounts'
 import { picture, withPage } from './browser'
-import { newDesign, statement, studioReady, word } from './studio'
+import { draftSaved, newDesign, statement, studioReady, word } from './studio'
 
 describe('coming back to a design', () => {
   it('finds the draft and the versions as they were left, by the browser’s Back', async () => {
@@ -30,10 +30,10 @@ describe('coming back to a design', () => {
       await page.getByRole('tab', { name: 'History' }).click()
       await page.getByText(/1 · First/).waitFor()
       // The next edit meets no quarrel with itself.
+      const saved = draftSaved(page, '"order":5')
       await word(page, 'Order').fill('5')
       await word(page, 'Order').press('Enter')
-      await page.getByText(/^Draft saved/).waitFor()
-      await page.waitForTimeout(1500)
+      await saved
       expect(await page.getByText(/changed in another window/).count()).toBe(0)
       await page.reload()
       await studioReady(page)
@@ -46,12 +46,13 @@ describe('coming back to a design', () => {
       await newDesign(page, 'Pump casing, high corner')
       await word(page, 'Edge').fill('550')
       await word(page, 'Edge').press('Enter')
+      const saved = draftSaved(page, '"highpass"')
       await page.getByRole('button', { name: /^Response/ }).click()
       await page.getByRole('menuitemradio', { name: 'high-pass' }).click()
       await expect.poll(() => statement(page)).toContain('A high-pass Butterworth')
       await page.getByRole('list', { name: 'Cautions' }).waitFor()
       await picture(page, 'studio-high-corner-1440')
-      await page.getByText(/^Draft saved/).waitFor()
+      await saved
       await page.reload()
       await studioReady(page)
       expect(await statement(page)).toContain('A high-pass Butterworth')

@@ -34,6 +34,12 @@ export async function newDesign(page: Page, title: string): Promise<void> {
   await studioReady(page)
 }
 
+/** The server's answer to the draft that holds these words of its spec; ask before the edit, await after it. */
+export const draftSaved = (page: Page, words: string) =>
+  page.waitForResponse(
+    (answer) => answer.url().endsWith('/draft') && answer.ok() && (answer.request().postData() ?? '').includes(words),
+  )
+
 /** The statement as it reads, with plain spaces. */
 export async function statement(page: Page): Promise<string> {
   return page.evaluate(() => {

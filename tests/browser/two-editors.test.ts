@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { signedIn } from './accounts'
 import { openPage, picture, withPage } from './browser'
-import { newDesign, statement, studioReady, word } from './studio'
+import { draftSaved, newDesign, statement, studioReady, word } from './studio'
 
 describe('two people on one design', () => {
   it('shows the second both versions and lets them choose; nothing is lost', async () => {
@@ -59,9 +59,10 @@ describe('two people on one design', () => {
         await newDesign(page, 'Deck middle, two windows')
         await second.page.goto(new URL(page.url()).pathname)
         await studioReady(second.page)
+        const saved = draftSaved(second.page, '"order":7')
         await word(second.page, 'Order').fill('7')
         await word(second.page, 'Order').press('Enter')
-        await second.page.getByText(/^Draft saved/).waitFor()
+        await saved
 
         await word(page, 'Order').fill('8')
         await word(page, 'Order').press('Enter')
