@@ -84,7 +84,10 @@ describe('a server that can’t be reached', () => {
     await withPage({ state: await signedIn('designer') }, async ({ page, context, problems }) => {
       await newDesign(page, 'Pier head, on a bad line')
       // The drawer's worker has come before the line goes.
-      await page.getByRole('button', { name: /^Run at/ }).first().waitFor()
+      await page
+        .getByRole('button', { name: /^Run at/ })
+        .first()
+        .waitFor()
       await context.setOffline(true)
       await word(page, 'Order').fill('9')
       await word(page, 'Order').press('Enter')
