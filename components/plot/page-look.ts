@@ -15,9 +15,13 @@ export interface PageLook {
 export const lookWithoutPage: PageLook = { palette: daylight, devicePixelRatio: 1, fontLoads: 0 }
 
 let snapshot: { key: string; look: PageLook } | null = null
+/** Reading colours makes the page settle its styles, which a drag can't afford at every move: they are read again only after news. */
+let isStale = true
 let fontLoads = 0
 
 export function pageLook(): PageLook {
+  if (snapshot && !isStale) return snapshot.look
+  isStale = false
   const look = {
     palette: readPalette(document.documentElement),
     devicePixelRatio: globalThis.devicePixelRatio || 1,
@@ -28,7 +32,13 @@ export function pageLook(): PageLook {
   return snapshot.look
 }
 
-export function onPageLook(changed: () => void): () => void {
+export function onPageLook(heard: () => void): () => void {
+  // Whoever subscribes may have missed news until now.
+  isStale = true
+  const changed = () => {
+    isStale = true
+    heard()
+  }
   const endTheme = onThemeChange(changed)
   const onFonts = () => {
     fontLoads++

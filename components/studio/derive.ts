@@ -1,7 +1,6 @@
 import {
   DesignError,
   departure,
-  designAnalog,
   discretize,
   frequencyResponse,
   groupDelay,
@@ -16,6 +15,8 @@ import {
   type MethodName,
 } from '@/dsp'
 import { methodLabels, methodNames } from '@/lib/designs/words'
+import { orRefusal } from './or-refusal'
+import { statedDesign } from './stated-design'
 import type { StackView, Trace } from './view'
 
 /** The analog prototype and every digital version of it that can be had. */
@@ -34,45 +35,38 @@ export function methodAsShown(spec: DesignSpec, id: MethodName): DesignMethod {
 
 /** The versions of a spec, the stated one always and the others as wanted; null while the spec makes no design. */
 export function deriveVersions(spec: DesignSpec, wanted: readonly MethodName[] = methodNames): Versions | null {
-  const analog = orRefusal(() => designAnalog(spec.analog))
-  if (analog instanceof DesignError) return null
+  const design = statedDesign(spec)
+  if (design instanceof DesignError) return null
   const digital: Versions['digital'][number][] = []
   const refused: Versions['refused'][number][] = []
   for (const id of methodNames) {
     if (id !== spec.how.method && !wanted.includes(id)) continue
-    const stated = id === spec.how.method
+    if (id === spec.how.method) {
+      digital.push({ id, filter: design.digital, stated: true })
+      continue
+    }
     const filter = orRefusal(() => discretize(spec.analog, spec.sampleRateHz, methodAsShown(spec, id)))
-    if (!(filter instanceof DesignError)) digital.push({ id, filter, stated })
-    else if (stated) return null
-    else refused.push({ id, message: filter.message })
+    if (filter instanceof DesignError) refused.push({ id, message: filter.message })
+    else digital.push({ id, filter, stated: false })
   }
-  return { analog, digital, refused }
-}
-
-/** A refusal is an answer here, not an accident. */
-export function orRefusal<Value>(make: () => Value): Value | DesignError {
-  try {
-    return make()
-  } catch (error) {
-    if (error instanceof DesignError) return error
-    throw error
-  }
+  return { analog: design.analog, digital, refused }
 }
 
 /** The part of the view that curves depend on; the crosshair and the rest don't touch them. */
 export type CurveView = Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency' | 'removeDelay' | 'hidden'>
 
-const GRID_POINTS = 1024
+/** How finely curves are drawn: at rest, and while the hand moves and the frame counts. */
+export const curvePoints = { atRest: 1024, inMotion: 360 } as const
 
 /** The frequencies a curve is computed at: even on the axis as drawn, with the edges and the last frequency met exactly. */
-function frequencyGrid(view: CurveView, upToHz: number, exactly: readonly number[] = []): Float64Array {
+function frequencyGrid(view: CurveView, points: number, upToHz: number, exactly: readonly number[] = []): Float64Array {
   const toHz = Math.min(view.toHz, upToHz)
   const fromHz = Math.min(view.fromHz, toHz)
   const axis = view.logFrequency
     ? (part: number) => fromHz * (toHz / fromHz) ** part
     : (part: number) => fromHz + (toHz - fromHz) * part
-  const grid = Float64Array.from({ length: GRID_POINTS }, (_, index) => axis(index / (GRID_POINTS - 1)))
-  grid[GRID_POINTS - 1] = toHz
+  const grid = Float64Array.from({ length: points }, (_, index) => axis(index / (points - 1)))
+  grid[points - 1] = toHz
   const extra = exactly.filter((hertz) => hertz > fromHz && hertz < toHz)
   return extra.length === 0 ? grid : Float64Array.from([...grid, ...extra]).sort()
 }
@@ -92,8 +86,13 @@ export function delayBand(spec: DesignSpec): readonly [number, number] {
   }
 }
 
-export function deriveTraces(spec: DesignSpec, versions: Versions, view: CurveView): readonly Trace[] {
-  const analogGrid = frequencyGrid(view, Infinity, spec.analog.edgesHz)
+export function deriveTraces(
+  spec: DesignSpec,
+  versions: Versions,
+  view: CurveView,
+  points: number = curvePoints.atRest,
+): readonly Trace[] {
+  const analogGrid = frequencyGrid(view, points, Infinity, spec.analog.edgesHz)
   const analog: Trace = {
     id: 'analog',
     label: 'analog',
@@ -106,7 +105,7 @@ export function deriveTraces(spec: DesignSpec, versions: Versions, view: CurveVi
     image: null,
   }
   const fold = spec.sampleRateHz / 2
-  const grid = frequencyGrid(view, fold, spec.analog.edgesHz)
+  const grid = frequencyGrid(view, points, fold, spec.analog.edgesHz)
   const beyond = view.toHz > fold ? analogGrid.filter((hertz) => hertz >= fold) : null
   const digital = versions.digital
     .filter(({ id }) => !view.hidden.includes(id))

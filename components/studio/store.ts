@@ -1,5 +1,6 @@
 import { createStore } from 'zustand/vanilla'
-import { DesignError, designFromSpec, type DesignSpec } from '@/dsp'
+import { DesignError, type DesignSpec } from '@/dsp'
+import { statedDesign } from './stated-design'
 import { type DrawerTab, type Refusal, type StackView, usualView } from './view'
 
 /*
@@ -130,17 +131,13 @@ function following(view: StackView, spec: DesignSpec): StackView {
 
 /** Why a spec makes no design, or null when it does. The field is the edited word's where that is known. */
 export function refusalOf(spec: DesignSpec, field?: string): Refusal | null {
-  try {
-    designFromSpec(spec)
-    return null
-  } catch (error) {
-    if (!(error instanceof DesignError)) throw error
-    return {
-      field: field ?? error.field,
-      message: error.message,
-      // The nearest value belongs to the word it was computed for; beside another word it would mislead.
-      ...(error.nearest !== undefined && (field ?? error.field) === error.field ? { nearest: error.nearest } : {}),
-    }
+  const design = statedDesign(spec)
+  if (!(design instanceof DesignError)) return null
+  return {
+    field: field ?? design.field,
+    message: design.message,
+    // The nearest value belongs to the word it was computed for; beside another word it would mislead.
+    ...(design.nearest !== undefined && (field ?? design.field) === design.field ? { nearest: design.nearest } : {}),
   }
 }
 

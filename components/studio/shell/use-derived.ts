@@ -1,15 +1,20 @@
 import { useDeferredValue, useMemo } from 'react'
 import { methodNames } from '@/lib/designs/words'
-import { deriveFigures, deriveTraces, deriveTrust, deriveVersions } from '../derive'
+import { curvePoints, deriveFigures, deriveTraces, deriveTrust, deriveVersions } from '../derive'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
+import { useUnhurried } from './use-unhurried'
+
+/** How often words and tables are told of a drag that goes on. */
+const TELL_EVERY_MS = 150
 
 /**
  * Everything the screen shows of the current design; null while the spec makes none. What is drawn on the plots follows the hand within
- * the frame; what stands beside them in words and tables may come a moment later, and gives way to the next movement.
+ * the frame, with fewer points until the hand rests; what stands beside them in words and tables comes a moment later.
  */
 export function useDerived(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
+  const inMotion = useStudio(store, (state) => state.gestureMark !== null)
   const looked = useStudio(store, (state) => state.view)
   const { removeDelay } = spec.budget
   const view = useMemo(() => ({ ...looked, removeDelay }), [looked, removeDelay])
@@ -24,11 +29,19 @@ export function useDerived(store: StudioStore) {
     [spec, hidden],
   )
   const traces = useMemo(
-    () => (drawn ? deriveTraces(spec, drawn, { fromHz, toHz, logFrequency, removeDelay, hidden }) : []),
-    [spec, drawn, fromHz, toHz, logFrequency, removeDelay, hidden],
+    () =>
+      drawn
+        ? deriveTraces(
+            spec,
+            drawn,
+            { fromHz, toHz, logFrequency, removeDelay, hidden },
+            inMotion ? curvePoints.inMotion : curvePoints.atRest,
+          )
+        : [],
+    [spec, drawn, fromHz, toHz, logFrequency, removeDelay, hidden, inMotion],
   )
 
-  const settledSpec = useDeferredValue(spec)
+  const settledSpec = useDeferredValue(useUnhurried(spec, inMotion, TELL_EVERY_MS))
   const settled = useMemo(() => {
     const versions = deriveVersions(settledSpec)
     if (!versions) return null
