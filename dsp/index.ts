@@ -5,28 +5,65 @@
 // Shapes, specs and refusals
 export { DesignError } from './errors'
 export { ENGINE_VERSION } from './version'
-export type { Complex, Diagnostic, DigitalFilter, Domain, Filter, ParallelForm, Section } from './forms/filter'
+export {
+  isFir,
+  type AnyDigital,
+  type Complex,
+  type Diagnostic,
+  type DigitalFilter,
+  type Domain,
+  type Filter,
+  type FirFilter,
+  type ParallelForm,
+  type Section,
+} from './forms/filter'
 export {
   analogSpecSchema,
   departureBudgetSchema,
   designSpecSchema,
   familySchema,
+  firKindSchema,
+  firResponseSchema,
+  firSpecSchema,
+  firWindowSchema,
+  isFamilyDesign,
+  isFirDesign,
+  isOwnDesign,
   methodSchema,
+  MOST_MEASURED_ROWS,
+  MOST_TAPS,
+  ownTargetSchema,
   responseSchema,
 } from './spec'
 export type {
   AnalogSpec,
   DepartureBudget,
-  DesignMethod,
   DesignSpec,
   Family,
+  FamilyDesign,
+  FirBand,
+  FirDesign,
+  FirKind,
+  FirResponse,
+  FirSpec,
+  FirWindow,
   Method,
   MethodName,
+  OwnDesign,
+  OwnTarget,
   ResponseKind,
 } from './spec'
+export {
+  MOST_REQUIREMENTS,
+  requirementSchema,
+  sheetSchema,
+  type Requirement,
+  type RequirementKind,
+  type RequirementSheet,
+} from './requirements/requirement'
 
 // Design: spec → analog → digital → sections
-export { designFromSpec, type Design } from './design'
+export { designFromSpec, type Design, type DesignOfFamily } from './design'
 export { checkAnalogSpec, checkDiscretization } from './check'
 export { designAnalog } from './design-analog'
 export { minimumOrder, type LeastOrder } from './prototypes/order'

@@ -8,7 +8,7 @@ import {
   phaseResponse,
   trustedBand,
   type Departure,
-  type DesignMethod,
+  type Method,
   type DesignSpec,
   type DigitalFilter,
   type Filter,
@@ -28,7 +28,7 @@ export interface Versions {
 }
 
 /** A method as the studio runs it beside the stated one: as stated, or with its usual options. */
-export function methodAsShown(spec: DesignSpec, id: MethodName): DesignMethod {
+export function methodAsShown(spec: DesignSpec, id: MethodName): Method {
   if (spec.how.method === id) return spec.how
   return id === 'bilinear' ? { method: id, hold: 'edges' } : { method: id }
 }

@@ -50,3 +50,18 @@ export interface DigitalFilter extends Filter<'z'> {
   readonly parallel?: ParallelForm
   readonly diagnostics: readonly Diagnostic[]
 }
+
+/** A filter of finite impulse response. Its taps are the truth of it: y[n] = Σ taps[k] · x[n − k]. */
+export interface FirFilter {
+  readonly domain: 'z'
+  readonly taps: Float64Array
+  readonly sampleRateHz: number
+  /** 'even': taps[k] = taps[N−1−k]; 'odd': taps[k] = −taps[N−1−k], both to the last bit; 'none': anything else. */
+  readonly symmetry: 'even' | 'odd' | 'none'
+  readonly diagnostics: readonly Diagnostic[]
+}
+
+/** What a design may come to on the digital side. */
+export type AnyDigital = DigitalFilter | FirFilter
+
+export const isFir = (filter: object): filter is FirFilter => 'taps' in filter

@@ -1,5 +1,5 @@
 import fc from 'fast-check'
-import { DesignError, designFromSpec, ENGINE_VERSION, type AnalogSpec, type DesignMethod, type DesignSpec } from '@/dsp'
+import { DesignError, designFromSpec, ENGINE_VERSION, type AnalogSpec, type Method, type DesignSpec } from '@/dsp'
 import { checksumOf, coefficientsOf } from '@/lib/designs/coefficients'
 import type { ExportSource } from '@/lib/exports'
 
@@ -54,7 +54,7 @@ const responses: readonly Partial<AnalogSpec>[] = [
   { response: 'bandpass', edgesHz: [60, 180] },
   { response: 'bandstop', edgesHz: [90, 130] },
 ]
-const methods: readonly DesignMethod[] = [
+const methods: readonly Method[] = [
   { method: 'bilinear', hold: 'edges' },
   { method: 'bilinear', hold: 'none' },
   { method: 'bilinear', hold: 100 },

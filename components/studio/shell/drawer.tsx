@@ -1,7 +1,7 @@
 'use client'
 
 import dynamic from 'next/dynamic'
-import type { DepartureBudget, DesignMethod, DesignSpec } from '@/dsp'
+import type { DepartureBudget, Method, DesignSpec } from '@/dsp'
 import { Fence } from '@/components/ui/fence'
 import { Tabs } from '@/components/ui/tabs'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
@@ -46,7 +46,7 @@ export function Drawer({
   const spec = useStudio(store, (state) => state.spec)
   const tab = useStudio(store, (state) => state.drawer)
   const { open, propose } = store.getState()
-  const runAt = (sampleRateHz: number, how?: DesignMethod) => {
+  const runAt = (sampleRateHz: number, how?: Method) => {
     const now = store.getState().spec
     propose({ ...now, sampleRateHz, how: how ?? now.how }, 'sampleRateHz')
   }

@@ -4,7 +4,7 @@ import {
   rateSweep,
   type AnalogSpec,
   type DepartureBudget,
-  type DesignMethod,
+  type Method,
   type DesignSpec,
   type MethodName,
 } from '@/dsp'
@@ -19,7 +19,7 @@ import { statedRate } from './stated-rate'
 /** One analog prototype by every method, judged up to one frequency. */
 export interface Subject {
   readonly analog: AnalogSpec
-  readonly methods: readonly DesignMethod[]
+  readonly methods: readonly Method[]
   readonly upToHz: number
 }
 
@@ -96,7 +96,7 @@ export function askSweep({ ratesHz, ...question }: SweepQuestion): readonly Rate
 }
 
 /** The lowest rate as one would state it: rounded up, which dsp vouches for, since its answer holds for higher rates too. */
-export function askLowest({ analog, upToHz, budget, searchHz }: LowestQuestion, how: DesignMethod): LowestRate {
+export function askLowest({ analog, upToHz, budget, searchHz }: LowestQuestion, how: Method): LowestRate {
   const found = lowestRate({ analog, how, upToHz, budget, searchHz })
   if ('refused' in found)
     return { id: how.method, refused: refusalAt(searchHz[1], analog, upToHz, how) ?? found.refused }
@@ -104,7 +104,7 @@ export function askLowest({ analog, upToHz, budget, searchHz }: LowestQuestion, 
 }
 
 /** Why a method refuses even the highest rate, in its own words; null when it doesn't, and only the budget is broken. */
-function refusalAt(rateHz: number, analog: AnalogSpec, upToHz: number, how: DesignMethod): string | null {
+function refusalAt(rateHz: number, analog: AnalogSpec, upToHz: number, how: Method): string | null {
   const { methods } = rateSweep({ analog, methods: [how], ratesHz: [rateHz], upToHz, removeDelay: false })
   return methods[0]?.refused[0] ?? null
 }

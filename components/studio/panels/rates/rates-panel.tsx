@@ -2,7 +2,7 @@
 
 import { useMemo, useState } from 'react'
 import { Notice } from '@/components/ui/notice'
-import type { DepartureBudget, DesignMethod, DesignSpec } from '@/dsp'
+import type { DepartureBudget, Method, DesignSpec } from '@/dsp'
 import { methodLabels, methodNames } from '@/lib/designs/words'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { methodAsShown } from '../../derive'
@@ -24,7 +24,7 @@ interface RatesPanelProps {
   /** Readers see where the rate stands and can't move it. */
   mayEdit: boolean
   /** Runs the design at a rate; `how` is set where the rate belongs to a method. */
-  onRate(rateHz: number, how?: DesignMethod): void
+  onRate(rateHz: number, how?: Method): void
   /** States a budget in the design; without it budgets can only be tried. */
   onBudget?(budget: DepartureBudget): void
 }
