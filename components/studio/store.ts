@@ -1,5 +1,6 @@
 import { createStore } from 'zustand/vanilla'
 import { DesignError, type DesignSpec } from '@/dsp'
+import { edgesHzOf } from '@/lib/designs/outline'
 import { statedDesign } from './stated-design'
 import { type DrawerTab, type Refusal, type StackView, usualView } from './view'
 
@@ -20,6 +21,8 @@ export interface StudioState {
   readonly refusal: Refusal | null
   readonly view: StackView
   readonly drawer: DrawerTab
+  /** Another filter held up beside the design, drawn on its plots. */
+  readonly held: { readonly label: string; readonly spec: DesignSpec } | null
 }
 
 export interface StudioCommands {
@@ -37,6 +40,7 @@ export interface StudioCommands {
   removeDelay(removed: boolean): void
   resetView(): void
   open(drawer: DrawerTab): void
+  hold(held: StudioState['held']): void
 }
 
 export type StudioStore = ReturnType<typeof createStudioStore>
@@ -50,6 +54,7 @@ export function createStudioStore(spec: DesignSpec, view: Partial<StackView> = {
     refusal: refusalOf(spec),
     view: { ...usualView(spec), ...view },
     drawer,
+    held: null,
 
     propose(next, field) {
       if (sameSpec(next, get().spec)) {
@@ -113,6 +118,7 @@ export function createStudioStore(spec: DesignSpec, view: Partial<StackView> = {
         return { view: { ...state.view, fromHz, toHz, magnitudeFloorDb } }
       }),
     open: (tab) => set({ drawer: tab }),
+    hold: (held) => set({ held }),
   }))
 }
 
@@ -122,7 +128,7 @@ function stepped(state: StudioState, mark: DesignSpec): Pick<StudioState, 'past'
 
 /** Keeps what matters on the sheet: when an edge or the fold line has left the view, the view opens to it. */
 function following(view: StackView, spec: DesignSpec): StackView {
-  const needed = [...spec.analog.edgesHz, spec.sampleRateHz / 2]
+  const needed = [...edgesHzOf(spec), spec.sampleRateHz / 2]
   const inside = needed.every((hertz) => hertz > view.fromHz && hertz < view.toHz)
   if (inside) return view
   const { fromHz, toHz } = usualView(spec)

@@ -13,7 +13,6 @@ import type { StudioProps, VersionSummary } from '@/lib/designs/types'
 import { formatNumber } from '@/lib/format/quantity'
 import { studioCommands, matches } from './commands'
 import { useOnPage } from './panels/chart/use-on-page'
-import { Planes } from './planes/planes'
 import { useAddress, viewFromSearch } from './shell/address'
 import { createAutosave } from './shell/autosave'
 import { DepartureTable } from './shell/departure-table'
@@ -24,8 +23,9 @@ import { FiguresLine } from './shell/figures-line'
 import { forgetKeptDraft, keptDraft } from './shell/kept-draft'
 import { SaveVersion } from './shell/save-version'
 import { DesignTitleBlock } from './shell/design-title-block'
-import { useDerived } from './shell/use-derived'
-import { ResponseStack } from './stack/response-stack'
+import { LivePlanes } from './shell/live-planes'
+import { LivePlots } from './shell/live-plots'
+import { useSettled } from './shell/use-derived'
 import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
@@ -55,9 +55,8 @@ export function Studio({
   const [saving, setSaving] = useState(false)
   const [kept, setKept] = useState<DesignSpec | null>(null)
 
-  const spec = useStudio(store, (state) => state.spec)
-  const refusal = useStudio(store, (state) => state.refusal)
-  const { view, drawn, traces, settled } = useDerived(store)
+  // Told at intervals of a drag: what stands here in words needn't follow the hand within the frame, the plots do.
+  const { spec, made } = useSettled(store)
   const [autosave] = useState(() =>
     createAutosave({
       designId: design.id,
@@ -94,11 +93,6 @@ export function Studio({
       if (found && !sameSpec(found, store.getState().spec)) setKept(found)
     })
   }, [design.id, store])
-
-  const edit = useMemo(() => {
-    const { begin, change, commit, cancel } = store.getState()
-    return { begin, change: (next: typeof spec) => void change(next), commit, cancel }
-  }, [store])
 
   function goOnFrom(version: VersionSummary) {
     setSaved((list) => (list.some(({ number }) => number === version.number) ? list : [version, ...list]))
@@ -193,11 +187,11 @@ export function Studio({
             </Notice>
           ) : null}
           <Statement store={store} readOnly={!viewer.mayEdit} />
-          {onPage && settled ? (
+          {onPage && made ? (
             <FiguresLine
-              versions={settled.versions}
-              trust={settled.trust}
-              figures={settled.figures}
+              versions={made.versions}
+              trust={made.trust}
+              figures={made.figures}
               budgetText={`${formatNumber(spec.budget.magnitudeDb)}\u2009dB and ${formatNumber(spec.budget.phaseDegrees)}°${
                 spec.budget.removeDelay ? ', best delay removed' : ''
               }`}
@@ -205,32 +199,19 @@ export function Studio({
           ) : null}
         </div>
 
-        {onPage && drawn && settled ? (
+        {onPage && made ? (
           <div className="mt-2 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
             <Fence what="The plots" retryOn={spec}>
-              <ResponseStack
-                spec={spec}
-                traces={traces}
-                trusted={settled.trust}
-                view={view}
-                onView={({ removeDelay, ...change }) => {
-                  if (removeDelay !== undefined) store.getState().removeDelay(removeDelay)
-                  store.getState().look(change)
-                }}
-                onResetView={store.getState().resetView}
-                edit={edit}
-                refusal={refusal}
-                readOnly={!viewer.mayEdit}
-              />
+              <LivePlots store={store} trusted={made.trust} readOnly={!viewer.mayEdit} />
             </Fence>
             <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
               <Fence what="The planes and the departure table" retryOn={spec}>
-                <Planes analog={drawn.analog} versions={drawn.digital.filter(({ id }) => !view.hidden.includes(id))} />
+                <LivePlanes store={store} />
                 <DepartureTable
                   store={store}
-                  spec={settled.spec}
-                  versions={settled.versions}
-                  trust={settled.trust}
+                  spec={made.spec}
+                  versions={made.versions}
+                  trust={made.trust}
                   readOnly={!viewer.mayEdit}
                 />
               </Fence>
@@ -239,7 +220,7 @@ export function Studio({
           </div>
         ) : null}
 
-        <Drawer store={store} design={design} settled={settled} saved={saved} mayEdit={viewer.mayEdit} />
+        <Drawer store={store} design={design} spec={spec} settled={made} saved={saved} mayEdit={viewer.mayEdit} />
         <footer className="border-t border-graph py-4 text-[13px] text-pencil">
           A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the
           applicable local codes and a licensed practitioner decide.

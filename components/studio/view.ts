@@ -1,6 +1,8 @@
-import type { DesignSpec, MethodName } from '@/dsp'
+import type { DesignSpec } from '@/dsp'
+import type { TraceId } from '@/components/plot/trace-style'
+import { lowestEdgeHz } from '@/lib/designs/outline'
 
-export type TraceId = 'analog' | MethodName
+export type { TraceId }
 
 /** One curve through every plot of the stack, on its own frequency grid. */
 export interface Trace {
@@ -10,7 +12,7 @@ export interface Trace {
   readonly magnitudeDb: Float64Array
   readonly phaseRadians: Float64Array
   readonly groupDelaySeconds: Float64Array
-  /** Digital minus analog; null for the analog prototype itself. */
+  /** Digital minus what it is held against; null for that line itself. */
   readonly departure: {
     readonly db: Float64Array
     readonly degrees: Float64Array
@@ -52,7 +54,7 @@ export interface Refusal {
 
 /** The frequencies that the stack opens with: a decade and more below the lowest edge, up to the whole sampling rate. */
 export function usualView(spec: DesignSpec): StackView {
-  const lowEdge = Math.min(...spec.analog.edgesHz)
+  const lowEdge = lowestEdgeHz(spec)
   return {
     fromHz: Math.min(lowEdge / 15, spec.sampleRateHz / 75),
     toHz: spec.sampleRateHz,

@@ -1,4 +1,5 @@
 import 'server-only'
+import { responseOf, type ResponseName } from '@/lib/designs/outline'
 import { and, eq, inArray } from 'drizzle-orm'
 import { designSpecSchema, type DesignSpec } from '@/dsp'
 import type { DesignRecord, Role } from '@/lib/designs/types'
@@ -45,7 +46,15 @@ export async function lockDesign(tx: Transaction, access: Access, designId: stri
   return findDesign(access, designId, tx)
 }
 
-const responseLetters = { lowpass: 'LP', highpass: 'HP', bandpass: 'BP', bandstop: 'BS' } as const
+const responseLetters: Record<ResponseName, string> = {
+  lowpass: 'LP',
+  highpass: 'HP',
+  bandpass: 'BP',
+  bandstop: 'BS',
+  multiband: 'MB',
+  differentiator: 'DF',
+  own: 'OR',
+}
 
 export interface NewDesign {
   readonly projectId: string
@@ -62,7 +71,7 @@ export async function insertDesign(
   const next = await takeSerial(tx, access, projectId)
   if (!next) return null
   const { code, serial } = next
-  const drawingNumber = `${code}-${responseLetters[spec.analog.response]}-${String(serial).padStart(3, '0')}`
+  const drawingNumber = `${code}-${responseLetters[responseOf(spec)]}-${String(serial).padStart(3, '0')}`
   const [row] = await tx
     .insert(designs)
     .values({ projectId, serial, drawingNumber, title, startingSpec: spec, createdBy: access.accountId })

@@ -14,12 +14,7 @@ export const notHeld: Method = { method: 'bilinear', hold: 'none' }
 export const matchedZ: Method = { method: 'matched-z' }
 export const impulseInvariant: Method = { method: 'impulse-invariant', restoreGain: true }
 
-export const spec = (
-  analog: AnalogSpec,
-  sampleRateHz: number,
-  how: Method,
-  budget = usualBudget,
-): DesignSpec => ({
+export const spec = (analog: AnalogSpec, sampleRateHz: number, how: Method, budget = usualBudget): DesignSpec => ({
   format: 1,
   analog,
   sampleRateHz,

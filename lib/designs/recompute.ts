@@ -1,6 +1,12 @@
 import 'server-only'
 import { designFromSpec, DesignError, ENGINE_VERSION, type Complex, type DesignSpec, type Section } from '@/dsp'
-import { coefficientsOf, type StoredCoefficients } from './coefficients'
+import {
+  coefficientsOf,
+  isStoredTaps,
+  type StoredCoefficients,
+  type StoredRoots,
+  type StoredTaps,
+} from './coefficients'
 import type { RecomputeDifference } from './types'
 
 /** Below this a difference is the last bits of another processor's or engine's elementary functions, not another filter. */
@@ -58,6 +64,8 @@ function sectionDifference(stored: readonly Section[], fresh: readonly Section[]
 
 /** The largest relative difference of two sets of coefficients, over the roles: gains, zeros, poles, sections; analog and digital. */
 export function worstRelativeDifference(stored: StoredCoefficients, fresh: StoredCoefficients): number {
+  if (isStoredTaps(stored) || isStoredTaps(fresh))
+    return isStoredTaps(stored) && isStoredTaps(fresh) ? tapsDifference(stored, fresh) : Infinity
   if ((stored.parallel === null) !== (fresh.parallel === null)) return Infinity
   return Math.max(
     relative(stored.sampleRateHz, fresh.sampleRateHz),
@@ -67,10 +75,25 @@ export function worstRelativeDifference(stored: StoredCoefficients, fresh: Store
     sectionDifference(stored.sections, fresh.sections),
     relative(stored.parallel?.direct ?? 0, fresh.parallel?.direct ?? 0),
     sectionDifference(stored.parallel?.terms ?? [], fresh.parallel?.terms ?? []),
-    relative(stored.analog.gain, fresh.analog.gain),
-    rootDifference(stored.analog.zeros, fresh.analog.zeros),
-    rootDifference(stored.analog.poles, fresh.analog.poles),
+    originalDifference(stored.analog, fresh.analog),
   )
+}
+
+function originalDifference(stored: StoredRoots | null, fresh: StoredRoots | null): number {
+  if (!stored || !fresh) return stored === fresh ? 0 : Infinity
+  return Math.max(
+    relative(stored.gain, fresh.gain),
+    rootDifference(stored.zeros, fresh.zeros),
+    rootDifference(stored.poles, fresh.poles),
+  )
+}
+
+/** Relative to the largest tap. */
+function tapsDifference(stored: StoredTaps, fresh: StoredTaps): number {
+  if (stored.taps.length !== fresh.taps.length) return Infinity
+  const scale = Math.max(...stored.taps.map(Math.abs))
+  const differences = stored.taps.map((tap, k) => Math.abs(tap - (fresh.taps[k] ?? NaN)) / scale)
+  return Math.max(relative(stored.sampleRateHz, fresh.sampleRateHz), ...differences)
 }
 
 interface StoredVersion {

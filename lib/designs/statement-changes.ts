@@ -1,4 +1,4 @@
-import type { DesignSpec } from '@/dsp'
+import { isOwnDesign, type DesignSpec } from '@/dsp'
 import { statementParts, type StatementPart, type WordKey } from './statement'
 
 /** A piece of two statements laid over each other: what both say, what only the earlier one said, what only the later one says. */
@@ -64,7 +64,7 @@ function alignmentWorths(older: readonly StatementPart[], newer: readonly Statem
   return worths
 }
 
-const partNames: Readonly<Record<WordKey, string>> = {
+const partNames: Readonly<Record<string, string>> = {
   'analog.response': 'response',
   'analog.family': 'family',
   'analog.order': 'order',
@@ -78,7 +78,16 @@ const partNames: Readonly<Record<WordKey, string>> = {
   'how.hold': 'held frequency',
   'how.holdHz': 'held frequency',
   'how.options': 'options of the method',
+  'how.upToHz': 'fitted band',
+  'how.order': 'poles of the fit',
+  'fir.response': 'response',
+  'fir.kind': 'kind of filter',
+  'fir.taps': 'number of taps',
+  'fir.attenuationDb': 'side lobes',
+  'own.given': 'how the response is given',
 }
+
+const nameOf = (key: WordKey): string => partNames[key] ?? (key.startsWith('fir.bands.') ? 'bands' : key)
 
 /** What differs between two specs, by name: "sampling rate", "held frequency", "departure budget". Empty when nothing does. */
 export function changedParts(before: DesignSpec, after: DesignSpec): readonly string[] {
@@ -89,12 +98,15 @@ export function changedParts(before: DesignSpec, after: DesignSpec): readonly st
   const names = new Set<string>()
   for (const key of [...older.keys(), ...newer.keys()]) {
     const [one, other] = [older.get(key), newer.get(key)]
-    if (!one || !other || !isSame(one, other) || exactly(one) !== exactly(other)) names.add(partNames[key])
+    if (!one || !other || !isSame(one, other) || exactly(one) !== exactly(other)) names.add(nameOf(key))
   }
   if (JSON.stringify(budgetOf(before)) !== JSON.stringify(budgetOf(after))) names.add('departure budget')
+  if (JSON.stringify(before.sheet ?? []) !== JSON.stringify(after.sheet ?? [])) names.add('requirement sheet')
+  if (JSON.stringify(ownOf(before)) !== JSON.stringify(ownOf(after))) names.add('response of its own')
   return [...names]
 }
 
 /** Two values that are written alike may still differ further down. */
 const exactly = (part: StatementPart) => (part.kind === 'quantity' ? part.value : part.text)
+const ownOf = (spec: DesignSpec) => (isOwnDesign(spec) ? spec.own : null)
 const budgetOf = ({ budget }: DesignSpec) => [budget.magnitudeDb, budget.phaseDegrees, budget.removeDelay]

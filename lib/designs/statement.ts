@@ -1,63 +1,16 @@
-import type { DesignSpec } from '@/dsp'
-import { formatHz, formatNumber } from '@/lib/format/quantity'
-import { familyWords, methodWords, responseWords } from './words'
+import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign, type OwnDesign } from '@/dsp'
+import { firOpening } from './fir-statement'
+import { choice, decibels, hertz, order, poles, text, type StatementPart } from './statement-parts'
+import { familyWords, methodWords, ownWords, responseWords } from './words'
 
-/** Where a word stands in the spec; the same paths that a DesignError names in `field`. */
-export type WordKey =
-  | 'analog.response'
-  | 'analog.family'
-  | 'analog.order'
-  | 'analog.normalization'
-  | 'analog.rippleDb'
-  | 'analog.attenuationDb'
-  | 'analog.edgesHz.0'
-  | 'analog.edgesHz.1'
-  | 'sampleRateHz'
-  | 'how.method'
-  | 'how.hold'
-  | 'how.holdHz'
-  | 'how.options'
-
-/** The statement, cut into plain text and the words that carry the design. */
-export type StatementPart =
-  | { readonly kind: 'text'; readonly text: string }
-  | { readonly kind: 'choice'; readonly key: WordKey; readonly text: string }
-  | {
-      readonly kind: 'quantity'
-      readonly key: WordKey
-      readonly text: string
-      readonly value: number
-      readonly unit: 'Hz' | 'dB' | 'order'
-    }
-
-const text = (words: string): StatementPart => ({ kind: 'text', text: words })
-const choice = (key: WordKey, words: string): StatementPart => ({ kind: 'choice', key, text: words })
-const hertz = (key: WordKey, value: number): StatementPart => ({
-  kind: 'quantity',
-  key,
-  value,
-  unit: 'Hz',
-  text: formatHz(value, 6),
-})
-const decibels = (key: WordKey, value: number): StatementPart => ({
-  kind: 'quantity',
-  key,
-  value,
-  unit: 'dB',
-  text: `${formatNumber(value, 5)}\u2009dB`,
-})
+export type { QuantityUnit, StatementPart, WordKey } from './statement-parts'
 
 /** The design as a sentence, in parts. */
 export function statementParts(spec: DesignSpec): readonly StatementPart[] {
-  return [
-    ...opening(spec),
-    ...edgePhrase(spec),
-    text(', run at '),
-    hertz('sampleRateHz', spec.sampleRateHz),
-    text(' by the '),
-    ...methodPhrase(spec),
-    text('.'),
-  ]
+  const rate = [text(', run at '), hertz('sampleRateHz', spec.sampleRateHz)]
+  if (isFirDesign(spec)) return [...firOpening(spec), ...rate, text('.')]
+  const opening = isFamilyDesign(spec) ? [...familyOpening(spec), ...edgePhrase(spec)] : ownOpening(spec)
+  return [...opening, ...rate, text(' by the '), ...methodPhrase(spec), text('.')]
 }
 
 /** The same sentence as one string. */
@@ -67,24 +20,22 @@ export function statementText(spec: DesignSpec): string {
     .join('')
 }
 
-function opening({ analog }: DesignSpec): StatementPart[] {
+function familyOpening({ analog }: FamilyDesign): StatementPart[] {
   return [
     text('A '),
     choice('analog.response', responseWords[analog.response]),
     text(' '),
     choice('analog.family', familyWords[analog.family]),
     text(' of '),
-    {
-      kind: 'quantity',
-      key: 'analog.order',
-      value: analog.order,
-      unit: 'order',
-      text: `order ${analog.order}`,
-    },
+    order('analog.order', analog.order),
   ]
 }
 
-function edgePhrase({ analog }: DesignSpec): StatementPart[] {
+function ownOpening({ own }: OwnDesign): StatementPart[] {
+  return [text('The response “'), text(own.name), text('”, '), choice('own.given', ownWords[own.given])]
+}
+
+function edgePhrase({ analog }: FamilyDesign): StatementPart[] {
   const [first = 0, second] = analog.edgesHz
   const ripple = decibels('analog.rippleDb', analog.rippleDb ?? 0)
   const attenuation = decibels('analog.attenuationDb', analog.attenuationDb ?? 0)
@@ -126,7 +77,7 @@ export const besselWords = {
 } as const
 
 function passBandReach(
-  response: DesignSpec['analog']['response'],
+  response: FamilyDesign['analog']['response'],
   low: StatementPart,
   second?: number,
 ): StatementPart[] {
@@ -143,25 +94,36 @@ function passBandReach(
   }
 }
 
-function methodPhrase({ how, analog }: DesignSpec): StatementPart[] {
+function methodPhrase(spec: FamilyDesign | OwnDesign): StatementPart[] {
+  const { how } = spec
   const method = choice('how.method', methodWords[how.method])
   switch (how.method) {
     case 'bilinear': {
       if (how.hold === 'none') return [method, text(', '), choice('how.hold', 'not held')]
-      if (how.hold === 'edges')
-        return [
-          method,
-          text(' '),
-          choice('how.hold', analog.edgesHz.length > 1 ? 'held at both edges' : 'held at its edge'),
-        ]
+      if (how.hold === 'edges') {
+        const several = isFamilyDesign(spec) && spec.analog.edgesHz.length > 1
+        return [method, text(' '), choice('how.hold', several ? 'held at both edges' : 'held at its edge')]
+      }
       return [method, text(' '), choice('how.hold', 'held at'), text(' '), hertz('how.holdHz', how.hold)]
     }
     case 'impulse-invariant':
       return [method, text(', '), choice('how.options', impulseWords(how))]
+    case 'fitted':
+      return [
+        method,
+        ...(how.order === undefined ? [] : [text(' with '), poles('how.order', how.order)]),
+        text(' up to '),
+        hertz('how.upToHz', how.upToHz),
+        text(', '),
+        choice('how.options', fittedWords(how)),
+      ]
     default:
       return [method]
   }
 }
+
+export const fittedWords = ({ freeDelay }: { freeDelay?: boolean | undefined }): string =>
+  freeDelay ? 'one delay free' : 'delay kept'
 
 export function impulseWords(how: {
   halfFirstSample?: boolean | undefined

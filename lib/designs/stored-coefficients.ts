@@ -1,4 +1,4 @@
-import type { Complex, Design, DigitalFilter, Filter, Section } from '@/dsp'
+import { isFir, type AnyDigital, type Complex, type Design, type Filter, type FirFilter, type Section } from '@/dsp'
 
 /*
  * The numbers of a design as they are kept, signed and compared. One text for the same numbers, always: keys in this order, no spaces,
@@ -12,14 +12,28 @@ export interface StoredRoots {
   readonly poles: readonly Complex[]
 }
 
-export interface StoredCoefficients extends StoredRoots {
+/** The numbers of a filter with poles. */
+export interface StoredRecursive extends StoredRoots {
   readonly format: 1
   readonly sampleRateHz: number
   readonly sections: readonly Section[]
   /** Present where the method yields a sum of sections (impulse-invariant, step-invariant), which is then the form that runs. */
   readonly parallel: { readonly direct: number; readonly terms: readonly Section[] } | null
-  readonly analog: StoredRoots
+  /** Null where the original was given as a table. */
+  readonly analog: StoredRoots | null
 }
+
+/** The numbers of an FIR filter. */
+export interface StoredTaps {
+  readonly format: 1
+  readonly sampleRateHz: number
+  readonly taps: readonly number[]
+  readonly symmetry: FirFilter['symmetry']
+}
+
+export type StoredCoefficients = StoredRecursive | StoredTaps
+
+export const isStoredTaps = (stored: StoredCoefficients): stored is StoredTaps => 'taps' in stored
 
 function plain(value: number): number {
   if (!Number.isFinite(value)) throw new RangeError('A coefficient is not a finite number, so that it can’t be kept.')
@@ -42,6 +56,10 @@ const roots = ({ gain, zeros, poles }: StoredRoots): StoredRoots => ({
 
 /** The same numbers with their keys in canonical order; jsonb forgets the order. */
 function ordered(stored: StoredCoefficients): StoredCoefficients {
+  if (isStoredTaps(stored)) {
+    const { sampleRateHz, taps, symmetry } = stored
+    return { format: 1, sampleRateHz: plain(sampleRateHz), taps: taps.map(plain), symmetry }
+  }
   return {
     format: 1,
     sampleRateHz: plain(stored.sampleRateHz),
@@ -51,23 +69,32 @@ function ordered(stored: StoredCoefficients): StoredCoefficients {
       direct: plain(stored.parallel.direct),
       terms: stored.parallel.terms.map(section),
     },
-    analog: roots(stored.analog),
+    analog: stored.analog && roots(stored.analog),
   }
 }
 
 export function coefficientsOf({ analog, digital }: Pick<Design, 'analog' | 'digital'>): StoredCoefficients {
+  if (isFir(digital)) {
+    const { sampleRateHz, taps, symmetry } = digital
+    return ordered({ format: 1, sampleRateHz, taps: Array.from(taps), symmetry })
+  }
   const { sampleRateHz, gain, zeros, poles, sections, parallel } = digital
   return ordered({ format: 1, sampleRateHz, gain, zeros, poles, sections, parallel: parallel ?? null, analog })
 }
 
 /** A stored version's numbers as filters again; what is exported are these, never a recomputation. */
 export function filtersOf(stored: StoredCoefficients): {
-  readonly analog: Filter<'s'>
-  readonly digital: DigitalFilter
+  readonly analog: Filter<'s'> | null
+  readonly digital: AnyDigital
 } {
+  if (isStoredTaps(stored)) {
+    const { sampleRateHz, taps, symmetry } = stored
+    const digital: FirFilter = { domain: 'z', sampleRateHz, taps: Float64Array.from(taps), symmetry, diagnostics: [] }
+    return { analog: null, digital }
+  }
   const { sampleRateHz, gain, zeros, poles, sections, parallel } = stored
   return {
-    analog: { domain: 's', ...stored.analog },
+    analog: stored.analog && { domain: 's', ...stored.analog },
     digital: {
       domain: 'z',
       sampleRateHz,

@@ -76,6 +76,18 @@ export function parseOrder(input: string): Parsed {
     : refused(`“${input.trim()}” isn’t an order; type a whole number from 1 to 24.`)
 }
 
+/** A whole number from "63", "63 taps" or "5 poles". */
+export function parseCount(input: string): Parsed {
+  const match = /^([+-]?\d+)\s*(?:taps?|poles?)?$/i.exec(tidy(input))
+  return match ? found(Number(match[1])) : refused(`“${input.trim()}” isn’t a count; type a whole number.`)
+}
+
+/** A number without a unit, such as a gain or a weight. */
+export function parsePlainNumber(input: string): Parsed {
+  const match = new RegExp(`^(${NUMBER})$`).exec(tidy(input))
+  return match ? found(toNumber(match[1] ?? '')) : refused(`“${input.trim()}” isn’t a number; type one, such as 0.5.`)
+}
+
 function found(value: number): Parsed {
   return Number.isFinite(value) ? { ok: true, value } : refused('That number is too large to work with.')
 }

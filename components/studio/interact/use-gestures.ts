@@ -1,5 +1,6 @@
 import { useCallback, useEffect, useLayoutEffect, useRef, useState } from 'react'
-import type { DesignSpec } from '@/dsp'
+import { isFamilyDesign, type DesignSpec } from '@/dsp'
+import { withAnalog } from '@/lib/designs/edits'
 import type { StackView } from '../view'
 import type { StackFrame } from '../stack/frame'
 import { pannedView, pinchedView } from '../stack/framing'
@@ -33,7 +34,7 @@ export function useGestures(scope: GestureScope) {
     const { spec, frame, handles, edit, onView, onReadPlot } = latest.current
     switch (effect.do) {
       case 'begin':
-        finder.current = orderFinder(spec)
+        finder.current = isFamilyDesign(spec) ? orderFinder(spec) : null
         edit.begin()
         return
       case 'set': {
@@ -42,10 +43,11 @@ export function useGestures(scope: GestureScope) {
         return
       }
       case 'set-by-slope': {
+        if (!isFamilyDesign(spec)) return
         const { order } = spec.analog
         const db = frame.y.magnitude.toValue(effect.point.y) - effect.offsetDb
         const found = finder.current?.(frame.x.toValue(effect.point.x), db, order) ?? order
-        if (found !== order) edit.change({ ...spec, analog: { ...spec.analog, order: found } })
+        if (found !== order) edit.change(withAnalog(spec, { order: found }))
         return
       }
       case 'commit':

@@ -3,8 +3,8 @@
 import { useState, type ReactNode } from 'react'
 import { written } from '@/components/plot/scene'
 import { roundedUp } from '@/components/plot/ticks'
-import type { DigitalFilter, Filter, MethodName } from '@/dsp'
-import { methodLabels } from '@/lib/designs/words'
+import type { Complex, Filter } from '@/dsp'
+import { versionLabels, type VersionId } from '@/lib/designs/words'
 import { formatNumber } from '@/lib/format/quantity'
 import { Choice } from '../stack/choice'
 import { describeAnalog, describeDigital } from './describe'
@@ -14,19 +14,29 @@ import { ellipseThrough } from './root-groups'
 import { RootTable } from './root-table'
 
 export interface PlanesProps {
-  readonly analog: Filter<'s'>
-  readonly versions: readonly { readonly id: MethodName; readonly filter: DigitalFilter }[]
+  /** Null where the original is not known by its roots. */
+  readonly analog: Filter<'s'> | null
+  readonly versions: readonly VersionRoots[]
+}
+
+export interface VersionRoots {
+  readonly id: VersionId
+  readonly zeros: readonly Complex[]
+  readonly poles: readonly Complex[]
 }
 
 /** The s-plane of the prototype beside the z-plane of its digital versions; both follow every drag. */
 export function Planes({ analog, versions }: PlanesProps) {
   const [span, setSpan] = useState<ZPlaneSpan>('circle')
-  const frame = sPlaneFrame(analog)
+  const frame = analog && sPlaneFrame(analog)
   return (
     <section aria-label="Poles and zeros" className="min-w-0">
       <div className="flex flex-wrap items-center justify-between gap-x-3">
         <h2 className="font-text text-[12px] font-semibold tracking-wide text-pencil">
-          s-plane ({frame.exponent === 0 ? null : <>×10{superscript(frame.exponent)} </>}rad/s) and z-plane
+          {frame ? (
+            <>s-plane ({frame.exponent === 0 ? null : <>×10{superscript(frame.exponent)} </>}rad/s) and </>
+          ) : null}
+          z-plane
         </h2>
         <Choice
           label="Part of the z-plane shown"
@@ -39,13 +49,13 @@ export function Planes({ analog, versions }: PlanesProps) {
         />
       </div>
       <div className="mt-1 grid grid-cols-[repeat(2,minmax(0,16rem))] gap-4">
-        <SPlane analog={analog} frame={frame} />
+        {analog && frame ? <SPlane analog={analog} frame={frame} /> : null}
         <ZPlane versions={versions} span={span} />
       </div>
       <RootTable
         groups={[
-          { label: 'analog, rad/s', ...analog },
-          ...versions.map(({ id, filter }) => ({ label: methodLabels[id], zeros: filter.zeros, poles: filter.poles })),
+          ...(analog ? [{ label: 'analog, rad/s', ...analog }] : []),
+          ...versions.map(({ id, zeros, poles }) => ({ label: versionLabels[id], zeros, poles })),
         ]}
       />
     </section>
@@ -94,14 +104,10 @@ const radii = [6, 4.6, 3.4, 2.4]
 
 function ZPlane({ versions, span }: { versions: PlanesProps['versions']; span: ZPlaneSpan }) {
   const frame = zPlaneFrame(
-    versions.flatMap(({ filter }) => filter.poles),
+    versions.flatMap(({ poles }) => poles),
     span,
   )
-  const described = versions.map(({ id, filter }) => ({
-    label: methodLabels[id],
-    poles: filter.poles,
-    zeros: filter.zeros,
-  }))
+  const described = versions.map(({ id, poles, zeros }) => ({ label: versionLabels[id], poles, zeros }))
   return (
     <Plane label={describeDigital(described)}>
       <path d={`M${frame.x(0)} 0V${PLANE_SIZE}M0 ${frame.y(0)}H${PLANE_SIZE}`} className="stroke-graph-strong" />
@@ -109,12 +115,12 @@ function ZPlane({ versions, span }: { versions: PlanesProps['versions']; span: Z
       <Word x={PLANE_SIZE - 6} y={PLANE_SIZE - 8} anchor="end">
         {span === 'circle' ? 'Re z' : `${formatNumber(frame.perPixel * PLANE_SIZE, 2)} wide`}
       </Word>
-      {versions.map(({ id, filter }, index) => (
+      {versions.map(({ id, poles, zeros }, index) => (
         <RootMarks
           key={id}
           id={id}
-          poles={filter.poles}
-          zeros={filter.zeros}
+          poles={poles}
+          zeros={zeros}
           frame={frame}
           radius={radii[Math.min(index, radii.length - 1)] ?? 3}
         />

@@ -1,6 +1,7 @@
 'use client'
 
 import { useEffect } from 'react'
+import { traceStyles } from '@/components/plot/trace-style'
 import type { StudioStore } from '../store'
 import { type DrawerTab, drawerTabs, type StackView, type TraceId } from '../view'
 
@@ -8,7 +9,7 @@ import { type DrawerTab, drawerTabs, type StackView, type TraceId } from '../vie
  * The address bar holds the view: range, axis, what is shown, which drawer. A link to a sheet opens as its sender saw it.
  */
 
-const traceIds: readonly TraceId[] = ['analog', 'bilinear', 'impulse-invariant', 'matched-z', 'step-invariant']
+const traceIds = Object.keys(traceStyles) as readonly TraceId[]
 
 export function viewToSearch(view: StackView, drawer: DrawerTab): string {
   const search = new URLSearchParams()

@@ -1,13 +1,14 @@
 'use client'
 
 import { useMemo, useState } from 'react'
-import { DesignError, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
+import { DesignError, isFir, isFirDesign, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { classNames } from '@/lib/format/class-names'
 import { formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
-import { methodLabels } from '@/lib/designs/words'
+import { versionLabels } from '@/lib/designs/words'
 import { parseDecibels, parseDegrees, parseFrequency } from '@/lib/units/parse'
-import { delayBand, methodAsShown, type Trust, type Versions } from '../derive'
+import { passBandOf } from '@/lib/designs/outline'
+import { methodAsShown, type Trust, type Versions } from '../derive'
 import { orRefusal } from '../or-refusal'
 import type { StudioStore } from '../store'
 import { trustText } from './figures-line'
@@ -31,7 +32,7 @@ export function DepartureTable({
   trust: readonly Trust[]
   readOnly: boolean
 }) {
-  const [fromHz, edge] = delayBand(spec)
+  const [fromHz, edge] = passBandOf(spec)
   const [chosenHz, setChosenHz] = useState<number | null>(null)
   const fold = spec.sampleRateHz / 2
   // Just below the fold line; for a band that begins up there, half-way to it.
@@ -41,10 +42,12 @@ export function DepartureTable({
   const rows = useMemo(
     () =>
       trust.flatMap((entry, rank) => {
+        const { analog } = versions
         const version = versions.digital.find(({ id }) => id === entry.id)
-        if (!version) return []
+        if (!version || !analog || isFir(version.filter)) return []
+        const { filter } = version
         const worst = orRefusal(() =>
-          worstDeparture(versions.analog, version.filter, upToHz, {
+          worstDeparture(analog, filter, upToHz, {
             ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
             removeDelay: budget.removeDelay,
           }),
@@ -139,19 +142,20 @@ export function DepartureTable({
                   <span className="flex items-center gap-1.5">
                     <TraceSample id={row.id} />
                     {row.stated || readOnly ? (
-                      <span className={classNames(row.stated && 'font-semibold')}>{methodLabels[row.id]}</span>
+                      <span className={classNames(row.stated && 'font-semibold')}>{versionLabels[row.id]}</span>
                     ) : (
                       <Button
                         kind="quiet"
                         small
                         className="-mx-2"
-                        title={`Run the statement by the ${methodLabels[row.id]} version`}
+                        title={`Run the statement by the ${versionLabels[row.id]} version`}
                         onClick={() => {
                           const now = store.getState().spec
+                          if (isFirDesign(now) || row.id === 'fir') return
                           store.getState().propose({ ...now, how: methodAsShown(now, row.id) }, 'how.method')
                         }}
                       >
-                        {methodLabels[row.id]}
+                        {versionLabels[row.id]}
                       </Button>
                     )}
                   </span>
@@ -174,7 +178,7 @@ export function DepartureTable({
                 <th scope="row" className="py-1 pr-2 text-left align-top font-normal text-pencil">
                   <span className="flex items-center gap-2">
                     <TraceSample id={refusal.id} />
-                    {methodLabels[refusal.id]}
+                    {versionLabels[refusal.id]}
                   </span>
                 </th>
                 <td colSpan={4} className="py-1 text-pencil">

@@ -1,15 +1,16 @@
 'use client'
 
 import dynamic from 'next/dynamic'
-import type { DepartureBudget, Method, DesignSpec } from '@/dsp'
+import { isFirDesign, type DepartureBudget, type DesignSpec, type Method } from '@/dsp'
+import { withRate } from '@/lib/designs/edits'
 import { Fence } from '@/components/ui/fence'
 import { Tabs } from '@/components/ui/tabs'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { drawerNames } from '../commands'
-import type { Versions } from '../derive'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { drawerTabs } from '../view'
+import type { Settled } from './use-derived'
 
 const Opening = () => <p className="py-6 text-[14px] text-pencil">Opening…</p>
 const RatesPanel = dynamic(() => import('../panels/rates/rates-panel').then((module) => module.RatesPanel), {
@@ -32,6 +33,7 @@ const History = dynamic(() => import('../panels/history').then((module) => modul
 export function Drawer({
   store,
   design,
+  spec,
   settled,
   saved,
   mayEdit,
@@ -39,16 +41,17 @@ export function Drawer({
   store: StudioStore
   design: DesignRecord
   /** The design as the panels see it: it may follow a drag a moment later. */
-  settled: { readonly spec: DesignSpec; readonly versions: Versions } | null
+  spec: DesignSpec
+  settled: Settled | null
   saved: readonly VersionSummary[]
   mayEdit: boolean
 }) {
-  const spec = useStudio(store, (state) => state.spec)
   const tab = useStudio(store, (state) => state.drawer)
   const { open, propose } = store.getState()
   const runAt = (sampleRateHz: number, how?: Method) => {
     const now = store.getState().spec
-    propose({ ...now, sampleRateHz, how: how ?? now.how }, 'sampleRateHz')
+    const moved = withRate(now, sampleRateHz)
+    propose(how && !isFirDesign(moved) ? { ...moved, how } : moved, 'sampleRateHz')
   }
 
   return (

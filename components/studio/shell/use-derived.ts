@@ -1,57 +1,82 @@
 import { useDeferredValue, useMemo } from 'react'
 import { methodNames } from '@/lib/designs/words'
-import { curvePoints, deriveFigures, deriveTraces, deriveTrust, deriveVersions } from '../derive'
+import {
+  curvePoints,
+  deriveCandidateTrace,
+  deriveFigures,
+  deriveTraces,
+  deriveTrust,
+  deriveVersions,
+  type Versions,
+} from '../derive'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
+import type { DesignSpec } from '@/dsp'
 import { useUnhurried } from './use-unhurried'
 
-/** How often words and tables are told of a drag that goes on. */
+/*
+ * Two paces. What is drawn follows the hand within the frame, with fewer points until the hand rests; what stands beside it in words and
+ * tables is told at intervals and gives way to the next movement. Only small components listen at the first pace.
+ */
+
 const TELL_EVERY_MS = 150
 
-/**
- * Everything the screen shows of the current design; null while the spec makes none. What is drawn on the plots follows the hand within
- * the frame, with fewer points until the hand rests; what stands beside them in words and tables comes a moment later.
- */
-export function useDerived(store: StudioStore) {
+const drawnVersions = new WeakMap<DesignSpec, { readonly wanted: string; readonly versions: Versions | null }>()
+
+/** The versions that are drawn; the plots and the planes ask for the same ones. */
+function versionsDrawn(spec: DesignSpec, hidden: readonly string[]): Versions | null {
+  const wanted = methodNames.filter((id) => !hidden.includes(id))
+  const known = drawnVersions.get(spec)
+  if (known?.wanted === wanted.join()) return known.versions
+  const versions = deriveVersions(spec, wanted)
+  drawnVersions.set(spec, { wanted: wanted.join(), versions })
+  return versions
+}
+
+/** At the pace of the hand: the spec as it stands in this frame, and its versions. */
+export function useDrawnVersions(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
+  const hidden = useStudio(store, (state) => state.view.hidden)
+  const versions = useMemo(() => versionsDrawn(spec, hidden), [spec, hidden])
+  return { spec, hidden, versions }
+}
+
+/** At the pace of the hand: the curves. */
+export function useDrawnTraces(store: StudioStore) {
+  const { spec, versions } = useDrawnVersions(store)
   const inMotion = useStudio(store, (state) => state.gestureMark !== null)
   const looked = useStudio(store, (state) => state.view)
+  const held = useStudio(store, (state) => state.held)
   const { removeDelay } = spec.budget
   const view = useMemo(() => ({ ...looked, removeDelay }), [looked, removeDelay])
   const { fromHz, toHz, logFrequency, hidden } = view
-
-  const drawn = useMemo(
-    () =>
-      deriveVersions(
-        spec,
-        methodNames.filter((id) => !hidden.includes(id)),
-      ),
-    [spec, hidden],
+  const curveView = useMemo(
+    () => ({ fromHz, toHz, logFrequency, removeDelay, hidden }),
+    [fromHz, toHz, logFrequency, removeDelay, hidden],
   )
-  const traces = useMemo(
-    () =>
-      drawn
-        ? deriveTraces(
-            spec,
-            drawn,
-            { fromHz, toHz, logFrequency, removeDelay, hidden },
-            inMotion ? curvePoints.inMotion : curvePoints.atRest,
-          )
-        : [],
-    [spec, drawn, fromHz, toHz, logFrequency, removeDelay, hidden, inMotion],
+  const points = inMotion ? curvePoints.inMotion : curvePoints.atRest
+  const own = useMemo(
+    () => (versions ? deriveTraces(spec, versions, curveView, points) : []),
+    [spec, versions, curveView, points],
   )
-
-  const settledSpec = useDeferredValue(useUnhurried(spec, inMotion, TELL_EVERY_MS))
-  const settled = useMemo(() => {
-    const versions = deriveVersions(settledSpec)
-    if (!versions) return null
-    return {
-      spec: settledSpec,
-      versions,
-      trust: deriveTrust(settledSpec, versions),
-      figures: deriveFigures(settledSpec, versions),
-    }
-  }, [settledSpec])
-
-  return { view, drawn, traces, settled }
+  const candidate = useMemo(
+    () => (held ? deriveCandidateTrace(held, curveView, points) : null),
+    [held, curveView, points],
+  )
+  const traces = useMemo(() => (candidate ? [...own, candidate] : own), [own, candidate])
+  return { spec, view, traces }
 }
+
+/** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design. */
+export function useSettled(store: StudioStore) {
+  const now = useStudio(store, (state) => state.spec)
+  const inMotion = useStudio(store, (state) => state.gestureMark !== null)
+  const spec = useDeferredValue(useUnhurried(now, inMotion, TELL_EVERY_MS))
+  const made = useMemo(() => {
+    const versions = deriveVersions(spec)
+    return versions && { spec, versions, trust: deriveTrust(spec, versions), figures: deriveFigures(spec, versions) }
+  }, [spec])
+  return { spec, made }
+}
+
+export type Settled = NonNullable<ReturnType<typeof useSettled>['made']>

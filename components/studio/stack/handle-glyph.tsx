@@ -1,19 +1,18 @@
 import type { HandlePlace } from './handle-places'
-import type { HandleId } from './spec-handles'
+import type { HandleLook } from './spec-handles'
 
 /** What a handle looks like, around 0, 0. */
-export function HandleGlyph({ id, angle, outside }: { id: HandleId } & Pick<HandlePlace, 'angle' | 'outside'>) {
-  switch (id) {
-    case 'edge-0':
-    case 'edge-1':
+export function HandleGlyph({ look, angle, outside }: { look: HandleLook } & Pick<HandlePlace, 'angle' | 'outside'>) {
+  switch (look) {
+    case 'edge':
       return (
         <>
           <circle r={7} fill="var(--sheet)" stroke="var(--ink)" strokeWidth={1.6} />
           <circle r={2.4} fill="var(--ink)" />
         </>
       )
-    case 'ripple':
-    case 'attenuation':
+    case 'pass-level':
+    case 'stop-level':
       return (
         <>
           <rect
@@ -29,7 +28,7 @@ export function HandleGlyph({ id, angle, outside }: { id: HandleId } & Pick<Hand
           <path d="M-5 -1.6H5M-5 1.6H5" stroke="var(--ink)" strokeWidth={1.1} />
         </>
       )
-    case 'order':
+    case 'slope':
       return (
         <g transform={`rotate(${angle + 90})`}>
           <rect
@@ -46,6 +45,12 @@ export function HandleGlyph({ id, angle, outside }: { id: HandleId } & Pick<Hand
       )
     case 'hold':
       return <path d="M-6.5 -7H6.5V0L0 6.5L-6.5 0Z" fill="var(--sheet)" stroke="var(--spruce)" strokeWidth={1.5} />
+    case 'fit':
+      return <path d="M-6.5 -7H6.5V0L0 6.5L-6.5 0Z" fill="var(--sheet)" stroke="var(--slate)" strokeWidth={1.5} />
+    case 'limit-edge':
+      return <path d="M-4 -7H4V7H-4Z" fill="var(--sheet)" stroke="var(--vermilion)" strokeWidth={1.3} />
+    case 'limit-level':
+      return <path d="M-7 -4H7V4H-7Z" fill="var(--sheet)" stroke="var(--vermilion)" strokeWidth={1.3} />
     case 'fold': {
       // Out of view it points to where the line stands, and keeps within the sheet.
       const words = outside === 'right' ? 'fs/2→' : outside === 'left' ? '←fs/2' : 'fs/2'

@@ -1,10 +1,10 @@
 import type { Scale } from '@/components/plot/scale'
 import { written } from '@/components/plot/scene'
-import type { DesignSpec } from '@/dsp'
+import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign } from '@/dsp'
 import type { Trace } from '../view'
 import type { StackFrame } from './frame'
 import { foldTagY } from './layout'
-import type { HandleId, Point, SpecHandle } from './spec-handles'
+import type { HandleLook, Point, SpecHandle } from './spec-handles'
 import { valueAt } from './read-out'
 
 /* Where the handles stand on the plots. */
@@ -24,7 +24,17 @@ export interface PlacedHandle {
 }
 
 /** As the Tab key should meet them: the edges, the levels, the slope, the held frequency, the rate. */
-const tabOrder: readonly HandleId[] = ['edge-0', 'edge-1', 'ripple', 'attenuation', 'order', 'hold', 'fold']
+const tabOrder: readonly HandleLook[] = [
+  'edge',
+  'pass-level',
+  'stop-level',
+  'slope',
+  'hold',
+  'fit',
+  'fold',
+  'limit-edge',
+  'limit-level',
+]
 
 /** Every handle that can stand somewhere in this frame. */
 export function placedHandles(
@@ -38,7 +48,7 @@ export function placedHandles(
       const place = handlePlace(handle, spec, traces, frame)
       return place ? [{ handle, place: writtenPlace(place) }] : []
     })
-    .sort((a, b) => tabOrder.indexOf(a.handle.id) - tabOrder.indexOf(b.handle.id))
+    .sort((a, b) => tabOrder.indexOf(a.handle.look) - tabOrder.indexOf(b.handle.look))
 }
 
 /** Levels steeper than this part of the way to the floor carry the slope's grip. */
@@ -58,21 +68,34 @@ function handlePlace(
 ): HandlePlace | null {
   const analog = traces.find((trace) => trace.id === 'analog')
   if (!analog) return null
-  switch (handle.id) {
-    case 'edge-0':
-    case 'edge-1':
+  switch (handle.look) {
+    case 'edge':
       return edgePlace(handle.value, analog, frame)
-    case 'ripple':
-      return levelPlace(handle.value, spec, frame, 'pass')
-    case 'attenuation':
-      return levelPlace(handle.value, spec, frame, 'stop')
-    case 'order':
-      return gripPlace(spec, analog, frame)
+    case 'pass-level':
+      return isFamilyDesign(spec) ? levelPlace(handle.value, spec, frame, 'pass') : null
+    case 'stop-level':
+      return isFamilyDesign(spec) ? levelPlace(handle.value, spec, frame, 'stop') : null
+    case 'slope':
+      return isFamilyDesign(spec) ? gripPlace(spec, analog, frame) : null
     case 'hold':
+    case 'fit':
       return { ...pinnedX(handle.value, frame), y: frame.layout.plots.magnitude.top, level: null, angle: 0 }
     case 'fold':
       return { ...pinnedX(handle.value / 2, frame), y: foldTagY(frame.layout), level: null, angle: 0 }
+    case 'limit-edge':
+      return limitPlace(handle.value, handle.across ?? 0, frame)
+    case 'limit-level':
+      return limitPlace(handle.across ?? 0, handle.value, frame)
   }
+}
+
+/** A corner or a level of a requirement's ground; out of view when its frequency is. */
+function limitPlace(hz: number, db: number, frame: StackFrame): HandlePlace | null {
+  const { top, bottom } = frame.layout.plots.magnitude
+  const { x, outside } = pinnedX(hz, frame)
+  const y = frame.y.magnitude.toPixel(db)
+  if (outside !== null || !(y >= top && y <= bottom)) return null
+  return { x, y, outside: null, level: null, angle: 0 }
 }
 
 function pinnedX(hz: number, frame: StackFrame): Pick<HandlePlace, 'x' | 'outside'> {
@@ -95,12 +118,12 @@ const FLAG_CLEARANCE_PIXELS = 30
 const GRIP_CLEARANCE_PIXELS = 14
 
 /** On its level, in the middle of the band it is about and out of the way of the edges. */
-function levelPlace(db: number, spec: DesignSpec, frame: StackFrame, which: 'pass' | 'stop'): HandlePlace {
+function levelPlace(db: number, spec: FamilyDesign, frame: StackFrame, which: 'pass' | 'stop'): HandlePlace {
   const box = frame.layout.plots.magnitude
   const [left, right] = widestBand(spec, frame, which)
   const y = Math.min(box.bottom - 2, frame.y.magnitude.toPixel(db))
-  const { how } = spec
-  const heldAt = how.method === 'bilinear' && typeof how.hold === 'number' ? frame.x.toPixel(how.hold) : null
+  const held = isFirDesign(spec) || spec.how.method !== 'bilinear' ? null : spec.how.hold
+  const heldAt = typeof held === 'number' ? frame.x.toPixel(held) : null
   const x = levelX(left, right, heldAt)
   return { x, y, outside: db < frame.y.magnitude.domain[0] ? 'below' : null, level: { left, right, y }, angle: 0 }
 }
@@ -115,16 +138,16 @@ function levelX(left: number, right: number, heldAt: number | null): number {
 }
 
 /** Pixels of the widest visible pass or stop band, by the edges alone. */
-function widestBand(spec: DesignSpec, frame: StackFrame, which: 'pass' | 'stop'): [number, number] {
+function widestBand({ analog }: FamilyDesign, frame: StackFrame, which: 'pass' | 'stop'): [number, number] {
   const { left, right } = frame.layout.plots.magnitude
-  const [first = 1, second = first] = spec.analog.edgesHz
+  const [first = 1, second = first] = analog.edgesHz
   const x = (hz: number) => Math.min(right, Math.max(left, frame.x.toPixel(hz)))
   const below: [number, number] = [left, x(first)]
   const between: [number, number] = [x(first), x(second)]
   const above = (hz: number): [number, number] => [x(hz), right]
   const width = ([a, b]: [number, number]) => b - a
   const wider = (a: [number, number], b: [number, number]) => (width(a) >= width(b) ? a : b)
-  switch (spec.analog.response) {
+  switch (analog.response) {
     case 'lowpass':
       return which === 'pass' ? below : above(first)
     case 'highpass':
@@ -137,7 +160,7 @@ function widestBand(spec: DesignSpec, frame: StackFrame, which: 'pass' | 'stop')
 }
 
 /** Half-way down the visible part of the analog slope; at the plot's side, on the curve, where the slope runs out of view. */
-function gripPlace(spec: DesignSpec, analog: Trace, frame: StackFrame): HandlePlace {
+function gripPlace(spec: FamilyDesign, analog: Trace, frame: StackFrame): HandlePlace {
   const { analog: design } = spec
   const [first = 1, second = first] = design.edgesHz
   // Towards the stop band: upwards in frequency, or downwards from the edge where the pass band lies above.

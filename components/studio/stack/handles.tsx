@@ -81,7 +81,7 @@ function LevelLines({ placed, frame }: { placed: readonly PlacedHandle[]; frame:
             />
           )
         }
-        if (handle.id !== 'hold' || place.outside !== null) return null
+        if ((handle.look !== 'hold' && handle.look !== 'fit') || place.outside !== null) return null
         return (
           <line
             key={handle.id}
@@ -128,7 +128,7 @@ function Handle({
       width="1"
       height="1"
     >
-      <HandleGlyph id={handle.id} angle={place.angle} outside={place.outside} />
+      <HandleGlyph look={handle.look} angle={place.angle} outside={place.outside} />
     </svg>
   )
   const at = { left: place.x, top: place.y }

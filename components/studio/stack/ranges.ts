@@ -1,7 +1,8 @@
 import { bisectLeft } from 'd3'
 import type { Span } from '@/components/plot/scale'
 import { roundedUp } from '@/components/plot/ticks'
-import type { DesignSpec } from '@/dsp'
+import { isFirDesign, type DesignSpec } from '@/dsp'
+import { edgesHzOf, highestEdgeHz, responseOf } from '@/lib/designs/outline'
 import type { StackView, Trace } from '../view'
 import type { PlotId } from './props'
 
@@ -15,9 +16,13 @@ export type Ranges = Readonly<Record<PlotId, Span>>
 const DEGREES = 180 / Math.PI
 
 /** Frequencies that the design lets through, lowest first. */
-export function passBands({ analog }: DesignSpec): readonly Span[] {
-  const [first = 0, second = first] = analog.edgesHz
-  switch (analog.response) {
+export function passBands(spec: DesignSpec): readonly Span[] {
+  if (isFirDesign(spec))
+    return spec.fir.bands.filter(({ gain }) => gain !== 0).map(({ fromHz, toHz }): Span => [fromHz, toHz])
+  const [first = 0, second = first] = edgesHzOf(spec)
+  switch (responseOf(spec)) {
+    default:
+      return [[0, second]]
     case 'lowpass':
       return [[0, first]]
     case 'highpass':
@@ -116,8 +121,7 @@ function departureRange(
 
 function departureReach(spec: DesignSpec, unit: StackView['departureUnit'], most: number): number {
   if (unit === 'microseconds') {
-    const highestEdge = Math.max(...spec.analog.edgesHz)
-    return roundedUp(Math.max(most * 1.1, 3 * microsecondsOf(spec.budget.phaseDegrees, highestEdge)))
+    return roundedUp(Math.max(most * 1.1, 3 * microsecondsOf(spec.budget.phaseDegrees, highestEdgeHz(spec))))
   }
   const budget = unit === 'db' ? spec.budget.magnitudeDb : spec.budget.phaseDegrees
   const parts = Math.max(3, (most * 1.1) / budget)

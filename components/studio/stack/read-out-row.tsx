@@ -1,4 +1,4 @@
-import { methodLabels } from '@/lib/designs/words'
+import { versionLabels } from '@/lib/designs/words'
 import { classNames } from '@/lib/format/class-names'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { traceStyles } from '@/components/plot/trace-style'
@@ -8,6 +8,8 @@ import { formatPlotted, plottedValue } from './read-out'
 import { TraceSample } from './trace-sample'
 
 const traceIds = Object.keys(traceStyles) as readonly TraceId[]
+
+const traceLabel = (id: TraceId): string => (id === 'analog' || id === 'candidate' ? id : versionLabels[id])
 
 const plotWords: Readonly<Record<PlotId, string>> = {
   magnitude: 'magnitude',
@@ -48,7 +50,7 @@ export function ReadOutRow({
       {known.map((id) => {
         const hidden = view.hidden.includes(id)
         const trace = hidden ? undefined : traces.find((candidate) => candidate.id === id)
-        const label = trace?.label ?? (id === 'analog' ? 'analog' : methodLabels[id])
+        const label = trace?.label ?? traceLabel(id)
         const value = trace && hz !== null ? plottedValue(trace, plot, hz, view) : Number.NaN
         return (
           <button

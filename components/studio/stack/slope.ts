@@ -1,11 +1,11 @@
-import { DesignError, designAnalog, magnitudeDb, type DesignSpec, type Filter } from '@/dsp'
+import { DesignError, designAnalog, magnitudeDb, type FamilyDesign, type Filter } from '@/dsp'
 import { MOST_ORDER } from './spec-handles'
 
 /** The order whose analog curve passes nearest to a level at a frequency; ties and plateaus keep to the order at hand. */
 export type OrderFinder = (hz: number, db: number, orderNow: number) => number
 
 /** A finder for one design; the candidates are designed on first use and kept, so that a drag asks each for one value only. */
-export function orderFinder({ analog }: DesignSpec): OrderFinder {
+export function orderFinder({ analog }: FamilyDesign): OrderFinder {
   let candidates: readonly { readonly order: number; readonly filter: Filter<'s'> }[] | null = null
   return (hz, db, orderNow) => {
     candidates ??= designedOrders(analog)
@@ -25,7 +25,7 @@ export function orderFinder({ analog }: DesignSpec): OrderFinder {
   }
 }
 
-function designedOrders(analog: DesignSpec['analog']) {
+function designedOrders(analog: FamilyDesign['analog']) {
   const found: { order: number; filter: Filter<'s'> }[] = []
   for (let order = 1; order <= MOST_ORDER; order++) {
     try {

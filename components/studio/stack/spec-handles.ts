@@ -1,8 +1,10 @@
 import { clamped, steppedBy, steppedDigit, type HandleValue, type StepSize } from '@/components/plot/handle'
 import { valuePerPixel } from '@/components/plot/scale'
 import { roundedStep, roundedTo } from '@/components/plot/ticks'
-import type { DesignSpec } from '@/dsp'
-import { withAnalog, withEdge, withHold } from '@/lib/designs/edits'
+import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign, type FirDesign } from '@/dsp'
+import { withAnalog, withEdge, withHold, withRate } from '@/lib/designs/edits'
+import { withBand } from '@/lib/designs/fir-edits'
+import { lowestEdgeHz } from '@/lib/designs/outline'
 import { formatDb, formatHz } from '@/lib/format/quantity'
 import type { StackFrame } from './frame'
 
@@ -11,7 +13,21 @@ import type { StackFrame } from './frame'
  * a dragging pointer (the scale's inverse) and the spec with that value put in.
  */
 
-export type HandleId = 'edge-0' | 'edge-1' | 'ripple' | 'attenuation' | 'hold' | 'fold' | 'order'
+export type HandleId =
+  | 'edge-0'
+  | 'edge-1'
+  | 'ripple'
+  | 'attenuation'
+  | 'hold'
+  | 'fit'
+  | 'fold'
+  | 'order'
+  | `band-${number}-${'from' | 'to'}`
+  | `sheet-${number}-${'from' | 'to' | 'level'}`
+
+/** What a handle looks like, which also tells where it stands. */
+export type HandleLook =
+  'edge' | 'pass-level' | 'stop-level' | 'slope' | 'hold' | 'fit' | 'fold' | 'limit-edge' | 'limit-level'
 
 export interface Point {
   readonly x: number
@@ -28,6 +44,9 @@ export interface Grab {
 
 export interface SpecHandle extends HandleValue {
   readonly id: HandleId
+  readonly look: HandleLook
+  /** The other coordinate of a requirement's edge or level: dB for an edge, Hz for a level. */
+  readonly across?: number
   readonly label: string
   /** Path of the spec's part, by which a refusal is set beside its handle. */
   readonly field: string
@@ -58,7 +77,12 @@ const highestEdgeHz = (sampleRateHz: number): number => shortened(sampleRateHz *
 export const MOST_ORDER = 24
 
 export function specHandles(spec: DesignSpec): readonly SpecHandle[] {
-  const { analog, how } = spec
+  if (isFirDesign(spec)) return [...bandHandles(spec), foldHandle(spec)]
+  return [...(isFamilyDesign(spec) ? familyHandles(spec) : []), ...methodHandles(spec), foldHandle(spec)]
+}
+
+function familyHandles(spec: FamilyDesign): SpecHandle[] {
+  const { analog } = spec
   const handles: SpecHandle[] = [...edgeHandles(spec)]
   const hasRipple = analog.family === 'chebyshev1' || analog.family === 'elliptic'
   const hasAttenuation = analog.family === 'chebyshev2' || analog.family === 'elliptic'
@@ -66,9 +90,45 @@ export function specHandles(spec: DesignSpec): readonly SpecHandle[] {
   if (hasAttenuation && analog.attenuationDb !== undefined)
     handles.push(attenuationHandle(analog.attenuationDb, analog.rippleDb))
   handles.push(orderHandle(analog.order))
-  if (how.method === 'bilinear' && typeof how.hold === 'number') handles.push(holdHandle(how.hold, spec.sampleRateHz))
-  handles.push(foldHandle(spec))
   return handles
+}
+
+function methodHandles({ how, sampleRateHz }: Exclude<DesignSpec, { fir: unknown }>): SpecHandle[] {
+  if (how.method === 'bilinear' && typeof how.hold === 'number') return [holdHandle(how.hold, sampleRateHz)]
+  return how.method === 'fitted' ? [fitHandle(how.upToHz, sampleRateHz)] : []
+}
+
+/** Every edge of an FIR filter's bands that doesn't lie at 0 Hz or at half the rate. */
+function bandHandles(spec: FirDesign): SpecHandle[] {
+  const fold = spec.sampleRateHz / 2
+  const { bands } = spec.fir
+  return bands.flatMap((band, index) =>
+    (['from', 'to'] as const).flatMap((end): SpecHandle[] => {
+      const value = end === 'from' ? band.fromHz : band.toHz
+      if (value === 0 || value >= fold) return []
+      const below = end === 'from' ? (bands[index - 1]?.toHz ?? 0) : band.fromHz
+      const above = end === 'from' ? band.toHz : (bands[index + 1]?.fromHz ?? fold)
+      const bounds = {
+        value,
+        min: shortened(Math.max(below * APART, fold * 1e-4), 1),
+        max: shortened(above / APART, -1),
+      }
+      return [
+        {
+          ...bounds,
+          id: `band-${index}-${end}`,
+          look: 'edge',
+          label: `Band ${index + 1}, ${end === 'from' ? 'lower' : 'upper'} edge`,
+          field: `fir.bands.${index}.${end}Hz`,
+          orientation: 'horizontal',
+          valueText: formatHz(value),
+          next: (size, direction) => steppedDigit(bounds, size, direction),
+          under: (point, grab, frame, fine) => clamped(frequencyUnder(point, grab, frame, fine), bounds),
+          apply: (now, hz) => (isFirDesign(now) ? withBand(now, index, end === 'from' ? 'fromHz' : 'toHz', hz) : now),
+        },
+      ]
+    }),
+  )
 }
 
 /** The frequency under a pointer, rounded to what a pixel can tell. */
@@ -80,7 +140,7 @@ function frequencyUnder(point: Point, grab: Grab, frame: StackFrame, fine: boole
   return roundedTo(frame.x.toValue(at), step)
 }
 
-function edgeHandles(spec: DesignSpec): SpecHandle[] {
+function edgeHandles(spec: FamilyDesign): SpecHandle[] {
   const { edgesHz } = spec.analog
   const highest = highestEdgeHz(spec.sampleRateHz)
   const lowest = Math.max(LEAST_HZ, shortened(spec.sampleRateHz * LEAST_PART_OF_RATE * 1.001, 1))
@@ -95,13 +155,14 @@ function edgeHandles(spec: DesignSpec): SpecHandle[] {
     return {
       ...bounds,
       id: index === 0 ? 'edge-0' : 'edge-1',
+      look: 'edge',
       label,
       field: `analog.edgesHz.${index}`,
       orientation: 'horizontal',
       valueText: formatHz(value),
       next: (size, direction) => steppedDigit(bounds, size, direction),
       under: (point, grab, frame, fine) => clamped(frequencyUnder(point, grab, frame, fine), bounds),
-      apply: (now, hz) => withEdge(now, index === 0 ? 0 : 1, hz),
+      apply: (now, hz) => (isFamilyDesign(now) ? withEdge(now, index === 0 ? 0 : 1, hz) : now),
     }
   })
 }
@@ -115,6 +176,7 @@ function rippleHandle(rippleDb: number, attenuationDb: number | undefined): Spec
   return {
     ...bounds,
     id: 'ripple',
+    look: 'pass-level',
     label: 'Pass-band ripple',
     field: 'analog.rippleDb',
     orientation: 'vertical',
@@ -125,7 +187,7 @@ function rippleHandle(rippleDb: number, attenuationDb: number | undefined): Spec
       const value = grab.value * 2 ** ((point.y - grab.point.y) / lever)
       return clamped(roundedTo(value, roundedStep(Math.abs(value) / 50)), bounds)
     },
-    apply: (now, level) => withAnalog(now, { ...now.analog, rippleDb: -level }),
+    apply: (now, level) => (isFamilyDesign(now) ? withAnalog(now, { rippleDb: -level }) : now),
   }
 }
 
@@ -134,6 +196,7 @@ function attenuationHandle(attenuationDb: number, rippleDb: number | undefined):
   return {
     ...bounds,
     id: 'attenuation',
+    look: 'stop-level',
     label: 'Stop-band level',
     field: 'analog.attenuationDb',
     orientation: 'vertical',
@@ -145,7 +208,7 @@ function attenuationHandle(attenuationDb: number, rippleDb: number | undefined):
       const step = roundedStep(valuePerPixel(y, at)) * (fine ? 0.1 : 1)
       return clamped(roundedTo(y.toValue(at), step), bounds)
     },
-    apply: (now, level) => withAnalog(now, { ...now.analog, attenuationDb: -level }),
+    apply: (now, level) => (isFamilyDesign(now) ? withAnalog(now, { attenuationDb: -level }) : now),
   }
 }
 
@@ -154,13 +217,14 @@ function orderHandle(order: number): SpecHandle {
   return {
     ...bounds,
     id: 'order',
+    look: 'slope',
     label: 'Order, by the slope',
     field: 'analog.order',
     orientation: 'vertical',
     valueText: `order ${order}`,
     next: (size, direction) => clamped(order + direction * (size === 'coarse' ? 4 : 1), bounds),
     under: () => null,
-    apply: (now, value) => withAnalog(now, { ...now.analog, order: Math.round(value) }),
+    apply: (now, value) => (isFamilyDesign(now) ? withAnalog(now, { order: Math.round(value) }) : now),
   }
 }
 
@@ -169,35 +233,66 @@ function holdHandle(holdHz: number, sampleRateHz: number): SpecHandle {
   return {
     ...bounds,
     id: 'hold',
+    look: 'hold',
     label: 'Held frequency',
     field: 'how.hold',
     orientation: 'horizontal',
     valueText: `held at ${formatHz(holdHz)}`,
     next: (size, direction) => steppedDigit(bounds, size, direction),
     under: (point, grab, frame, fine) => clamped(frequencyUnder(point, grab, frame, fine), bounds),
-    apply: (now, hz) => withHold(now, hz),
+    apply: (now, hz) => (isFirDesign(now) ? now : withHold(now, hz)),
+  }
+}
+
+/** Up to where the fitted version is fitted. */
+function fitHandle(upToHz: number, sampleRateHz: number): SpecHandle {
+  const bounds = { value: upToHz, min: shortened(sampleRateHz * 1e-3, 1), max: highestEdgeHz(sampleRateHz) }
+  return {
+    ...bounds,
+    id: 'fit',
+    look: 'fit',
+    label: 'Fitted up to',
+    field: 'how.upToHz',
+    orientation: 'horizontal',
+    valueText: `fitted up to ${formatHz(upToHz)}`,
+    next: (size, direction) => steppedDigit(bounds, size, direction),
+    under: (point, grab, frame, fine) => clamped(frequencyUnder(point, grab, frame, fine), bounds),
+    apply: (now, hz) =>
+      isFirDesign(now) || now.how.method !== 'fitted' ? now : { ...now, how: { ...now.how, upToHz: hz } },
   }
 }
 
 /** The fold line stands at half the sampling rate; the slider's value is the rate itself. */
 function foldHandle(spec: DesignSpec): SpecHandle {
-  const { sampleRateHz, how, analog } = spec
-  const held = how.method === 'bilinear' && typeof how.hold === 'number' ? how.hold : 0
-  const least = shortened(Math.max(...analog.edgesHz, held) / HIGHEST_EDGE_PART, 1)
+  const { sampleRateHz } = spec
+  const least = shortened(highestTurn(spec) / HIGHEST_EDGE_PART, 1)
   const bounds = {
     value: sampleRateHz,
     min: least,
-    max: shortened(Math.min(...analog.edgesHz) / LEAST_PART_OF_RATE / 1.001, -1),
+    max: shortened(lowestEdgeHz(spec) / LEAST_PART_OF_RATE / 1.001, -1),
   }
   return {
     ...bounds,
     id: 'fold',
+    look: 'fold',
     label: 'Sampling rate, by the fold line at half of it',
     field: 'sampleRateHz',
     orientation: 'horizontal',
     valueText: `sampled at ${formatHz(sampleRateHz)}, folds at ${formatHz(sampleRateHz / 2)}`,
     next: (size, direction) => steppedDigit(bounds, size, direction),
     under: (point, grab, frame, fine) => clamped(2 * frequencyUnder(point, grab, frame, fine), bounds),
-    apply: (now, rate) => ({ ...now, sampleRateHz: rate }),
+    apply: withRate,
   }
 }
+
+/** The highest frequency of the statement that must stay below half the rate. */
+function highestTurn(spec: DesignSpec): number {
+  if (isFirDesign(spec)) return spec.fir.kind === 'half-band' ? spec.sampleRateHz * 1e-3 : highestFirEdge(spec)
+  const { how } = spec
+  const held = how.method === 'bilinear' && typeof how.hold === 'number' ? how.hold : 0
+  const fitted = how.method === 'fitted' ? how.upToHz : 0
+  return Math.max(isFamilyDesign(spec) ? Math.max(...spec.analog.edgesHz) : 0, held, fitted, spec.sampleRateHz * 1e-3)
+}
+
+const highestFirEdge = ({ fir, sampleRateHz }: FirDesign): number =>
+  Math.max(...fir.bands.flatMap(({ fromHz, toHz }) => [fromHz, toHz]).filter((hz) => hz < sampleRateHz / 2))

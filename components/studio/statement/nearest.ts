@@ -4,6 +4,7 @@ import { refusalOf } from '../store'
 import { withQuantity } from './apply'
 
 const HALVINGS = 48
+const isCountKey = (key: WordKey): boolean => key === 'analog.order' || key === 'fir.taps' || key === 'how.order'
 
 /**
  * The value nearest to a refused one that makes a design, for the word that was edited, whichever part of the spec the refusal
@@ -16,7 +17,7 @@ export function nearestThatWorks(spec: DesignSpec, key: WordKey, standing: numbe
   let good = standing
   let bad = refused
   for (let halving = 0; halving < HALVINGS; halving += 1) {
-    const middle = key === 'analog.order' ? Math.trunc((good + bad) / 2) : (good + bad) / 2
+    const middle = isCountKey(key) ? Math.trunc((good + bad) / 2) : (good + bad) / 2
     if (middle === good || middle === bad) break
     if (works(middle)) good = middle
     else bad = middle

@@ -2,12 +2,11 @@
 
 import { useId, useRef, useState, type KeyboardEvent } from 'react'
 import { classNames } from '@/lib/format/class-names'
+import type { QuantityUnit } from '@/lib/designs/statement'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { RefusalNote } from './refusal-note'
 import { parseQuantity, stepped } from './apply'
 import { wordLook } from './word-look'
-
-type Unit = 'Hz' | 'dB' | 'order'
 
 export interface QuantityEdit {
   /** A finished value; false when it was refused. */
@@ -23,7 +22,7 @@ interface QuantityWordProps {
   readonly label: string
   readonly text: string
   readonly value: number
-  readonly unit: Unit
+  readonly unit: QuantityUnit
   readonly nyquistHz: number | null
   readonly refusal: { readonly message: string; readonly nearest?: number | string } | null
   readonly readOnly: boolean
@@ -148,7 +147,7 @@ function asNumber(nearest: number | string | undefined): number | null {
   return typeof nearest === 'number' ? nearest : null
 }
 
-function nearestText(unit: Unit, nearest: number): string {
+function nearestText(unit: QuantityUnit, nearest: number): string {
   if (unit === 'Hz') return formatHz(nearest, 6)
   if (unit === 'dB') return `${formatNumber(nearest, 5)}\u2009dB`
   return String(nearest)

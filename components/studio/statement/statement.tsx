@@ -9,7 +9,7 @@ import { ChoiceWord } from './choice-word'
 import { nearestThatWorks } from './nearest'
 import { QuantityWord } from './quantity-word'
 
-const labels: Record<WordKey, string> = {
+const labels: Readonly<Record<string, string>> = {
   'analog.response': 'Response',
   'analog.family': 'Family',
   'analog.order': 'Order',
@@ -23,6 +23,25 @@ const labels: Record<WordKey, string> = {
   'how.hold': 'Held frequency',
   'how.holdHz': 'Frequency held exactly',
   'how.options': 'Options of the method',
+  'how.upToHz': 'Fitted up to',
+  'how.order': 'Poles of the fitted version',
+  'fir.response': 'Response',
+  'fir.kind': 'Kind of filter',
+  'fir.taps': 'Number of taps',
+  'fir.attenuationDb': 'Side lobes down',
+  'own.given': 'How the response is given',
+}
+
+const bandLabels: Readonly<Record<string, string>> = {
+  fromHz: 'begins at',
+  toHz: 'ends at',
+  gain: 'gain',
+  weight: 'weight',
+}
+
+function labelOf(key: WordKey): string {
+  const [, , index, part = ''] = key.startsWith('fir.bands.') ? key.split('.') : []
+  return index === undefined ? (labels[key] ?? key) : `Band ${Number(index) + 1} ${bandLabels[part] ?? part}`
 }
 
 /** The sentence that is the design, every word of it editable where it stands. */
@@ -79,7 +98,7 @@ function Word({
     const { current, options } = optionsFor(key, spec)
     return (
       <ChoiceWord
-        label={labels[key]}
+        label={labelOf(key)}
         text={part.text}
         current={current}
         options={options}
@@ -93,7 +112,7 @@ function Word({
   // A bound is the number's own; the refusal of an edited word stands beside that word, whatever else it would have broken.
   return (
     <QuantityWord
-      label={labels[key]}
+      label={labelOf(key)}
       text={part.text}
       value={part.value}
       unit={part.unit}

@@ -6,6 +6,7 @@ import { useShallow } from 'zustand/react/shallow'
 import type { DesignSpec } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
+import { statedId } from '../derive'
 import { TraceSample } from '../stack/trace-sample'
 import { DelayLine } from './delay-line'
 import { DropGround, DropZone } from './drop-zone'
@@ -92,7 +93,7 @@ function Tried({
 }) {
   const { recording, settings, runProblem, busyWith } = state
   if (!recording) return null
-  const traceId = spec.how.method
+  const traceId = statedId(spec)
   return (
     <>
       <RecordingBar

@@ -5,7 +5,7 @@ import {
   type AnalogSpec,
   type DepartureBudget,
   type Method,
-  type DesignSpec,
+  type FamilyDesign,
   type MethodName,
 } from '@/dsp'
 import { methodNames } from '@/lib/designs/words'
@@ -44,7 +44,7 @@ export type RateCurve = { readonly id: MethodName; readonly ratesHz: Float64Arra
 export type LowestRate =
   { readonly id: MethodName; readonly sampleRateHz: number } | { readonly id: MethodName; readonly refused: string }
 
-export const subjectOf = (spec: DesignSpec, upToHz: number): Subject => ({
+export const subjectOf = (spec: FamilyDesign, upToHz: number): Subject => ({
   analog: spec.analog,
   methods: methodNames.map((id) => methodAsShown(spec, id)),
   upToHz,

@@ -2,7 +2,14 @@
 
 import { useMemo, useState } from 'react'
 import { Notice } from '@/components/ui/notice'
-import type { DepartureBudget, Method, DesignSpec } from '@/dsp'
+import {
+  isFamilyDesign,
+  isFirDesign,
+  type DepartureBudget,
+  type DesignSpec,
+  type FamilyDesign,
+  type Method,
+} from '@/dsp'
 import { methodLabels, methodNames } from '@/lib/designs/words'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { methodAsShown } from '../../derive'
@@ -33,11 +40,20 @@ interface RatesPanelProps {
  * The worst departure up to a chosen frequency against the sampling rate, for every method, and the lowest rate that keeps a budget. A
  * budget can be tried here without changing the design's.
  */
-export function RatesPanel(props: RatesPanelProps) {
-  return useOnPage() ? <Rates {...props} /> : null
+export function RatesPanel({ spec, ...props }: RatesPanelProps) {
+  const onPage = useOnPage()
+  if (!onPage) return null
+  if (isFamilyDesign(spec)) return <Rates spec={spec} {...props} />
+  return (
+    <Notice kind="note">
+      {isFirDesign(spec)
+        ? 'An FIR filter is stated by its bands and has no analog original to depart from; its requirement lines say what a rate does to it.'
+        : 'The sweep over rates asks for a filter of a known family. For a response of your own, pull the fold line and read the departure table.'}
+    </Notice>
+  )
 }
 
-function Rates({ spec, mayEdit, onRate, onBudget }: RatesPanelProps) {
+function Rates({ spec, mayEdit, onRate, onBudget }: RatesPanelProps & { spec: FamilyDesign }) {
   const [unit, setUnit] = useState<DepartureUnit>('degrees')
   const [upToByHand, setUpToByHand] = useState<number | null>(null)
   const [trial, setTrial] = useState<DepartureBudget | null>(null)

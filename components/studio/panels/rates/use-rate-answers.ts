@@ -1,12 +1,12 @@
 'use client'
 
 import { useMemo } from 'react'
-import type { DepartureBudget, DesignSpec } from '@/dsp'
+import type { DepartureBudget, FamilyDesign } from '@/dsp'
 import { drawnSpan, searchSpan, subjectOf, sweepRates, type LowestQuestion, type SweepQuestion } from './questions'
 import { useAnswer, useRatesClient } from './use-rates'
 
 /** The three questions of the panel, each asked again only when something that it depends on has changed. */
-export function useRateAnswers(spec: DesignSpec, upToHz: number, budget: DepartureBudget, spotRateHz: number) {
+export function useRateAnswers(spec: FamilyDesign, upToHz: number, budget: DepartureBudget, spotRateHz: number) {
   const client = useRatesClient()
 
   // Specs are replaced whole at every step of a drag; what hasn't changed in them must not be asked again.

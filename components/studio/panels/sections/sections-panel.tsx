@@ -1,12 +1,12 @@
 'use client'
 
 import { useMemo, useState, type ReactNode } from 'react'
-import { DesignError, type DesignSpec, type DigitalFilter } from '@/dsp'
+import { DesignError, isFir, type DesignSpec, type DigitalFilter } from '@/dsp'
 import { Notice } from '@/components/ui/notice'
-import { methodLabels } from '@/lib/designs/words'
+import { versionLabels } from '@/lib/designs/words'
 import { classNames } from '@/lib/format/class-names'
 import { formatHz } from '@/lib/format/quantity'
-import type { Versions } from '../../derive'
+import { statedId, type Versions } from '../../derive'
 import { Choice } from '../../stack/choice'
 import { useOnPage } from '../chart/use-on-page'
 import { useQuiet } from '../chart/use-quiet'
@@ -16,6 +16,7 @@ import { CostTable } from './cost-table'
 import { DirectForm } from './direct-form'
 import { ParallelTable } from './parallel-table'
 import { StartState } from './start-state'
+import { TapsPanel } from './taps-panel'
 import { costsOf, ratioOf, structuresOf, usualStructure, type StructureChoice } from './structures'
 import { sectionEquation, sectionsAsText } from './written'
 
@@ -32,18 +33,21 @@ const scales = [
 
 /** The stated version as it would be run: its cascade, the ratio b/a, the parallel form where there is one, and what each costs. */
 export function SectionsPanel(props: { spec: DesignSpec; versions: Versions }) {
-  return useOnPage() ? <StatedStructures {...props} /> : null
+  const onPage = useOnPage()
+  const fir = props.versions.digital.find(({ stated }) => stated)?.filter
+  if (!onPage) return null
+  return fir && isFir(fir) ? <TapsPanel filter={fir} /> : <StatedStructures {...props} />
 }
 
 function StatedStructures({ spec, versions: latest }: { spec: DesignSpec; versions: Versions }) {
   const versions = useQuiet(latest)
   const [choice, setChoice] = useState<StructureChoice>(usualStructure)
   const stated = versions.digital.find((version) => version.stated)
-  const filter = stated?.filter
+  const filter = stated && !isFir(stated.filter) ? stated.filter : undefined
   const made = useMemo(() => (filter ? structuresOrRefusal(filter, choice) : null), [filter, choice])
   const ratio = useMemo(() => (filter ? ratioOf(filter) : null), [filter])
   if (!stated || !filter || !made || !ratio) {
-    const reason = versions.refused.find(({ id }) => id === spec.how.method)?.message
+    const reason = versions.refused.find(({ id }) => id === statedId(spec))?.message
     return (
       <Notice kind="caution">{reason ?? 'The statement makes no digital version, so there are no sections.'}</Notice>
     )
@@ -54,7 +58,7 @@ function StatedStructures({ spec, versions: latest }: { spec: DesignSpec; versio
   return (
     <div className={classNames('flex flex-col gap-7', versions !== latest && 'opacity-50')}>
       <Part
-        title={`${count}, ${methodLabels[stated.id]} at ${formatHz(filter.sampleRateHz)}`}
+        title={`${count}, ${versionLabels[stated.id]} at ${formatHz(filter.sampleRateHz)}`}
         controls={
           <>
             <span className="inline-flex items-center gap-1 text-[13px] text-pencil">

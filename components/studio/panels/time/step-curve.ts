@@ -1,4 +1,6 @@
-import { frequencyResponse, stepResponse, type AnyFilter, type Complex } from '@/dsp'
+import { frequencyResponse, isFir, stepResponse, type AnyFilter, type Complex, type FirFilter } from '@/dsp'
+
+type WithPoles = Exclude<AnyFilter, FirFilter>
 
 /*
  * A step response followed until it has died away, closely enough that no swing of it is missed.
@@ -23,6 +25,7 @@ const MOST_POINTS = 1 << 19
 
 export function stepCurve(filter: AnyFilter): StepCurve {
   const finalValue = frequencyResponse(filter, [0]).re[0] ?? 0
+  if (isFir(filter)) return finiteCurve(filter, finalValue)
   const { slowestSeconds, fastestHz } = paceOf(filter)
   let horizonSeconds = slowestSeconds * (7 + filter.poles.length / 4)
   for (;;) {
@@ -36,7 +39,16 @@ export function stepCurve(filter: AnyFilter): StepCurve {
   }
 }
 
-function pointsOver(filter: AnyFilter, seconds: number, fastestHz: number): number {
+/** After as many samples as there are taps an FIR filter stands still. */
+function finiteCurve(filter: FirFilter, finalValue: number): StepCurve {
+  const { timesSeconds, values } = stepResponse(filter, {
+    count: filter.taps.length + 2,
+    stepSeconds: 1 / filter.sampleRateHz,
+  })
+  return { filter, timesSeconds, values, finalValue, complete: true }
+}
+
+function pointsOver(filter: WithPoles, seconds: number, fastestHz: number): number {
   if (filter.domain === 'z') return Math.ceil(seconds * filter.sampleRateHz) + 2
   return Math.max(LEAST_POINTS, Math.ceil(seconds * fastestHz * POINTS_PER_SWING))
 }
@@ -58,7 +70,7 @@ export function largest(values: Float64Array): number {
 }
 
 /** The slowest decay and the fastest swing among the poles; a digital pole counts by its logarithm. */
-function paceOf(filter: AnyFilter): { slowestSeconds: number; fastestHz: number } {
+function paceOf(filter: WithPoles): { slowestSeconds: number; fastestHz: number } {
   let slowestSeconds = filter.domain === 'z' ? 1 / filter.sampleRateHz : 0
   let fastestHz = 0
   for (const pole of filter.poles) {

@@ -1,4 +1,4 @@
-import { impulseResponse, stepResponse, type AnyFilter, type DigitalFilter, type Filter } from '@/dsp'
+import { impulseResponse, stepResponse, type AnyDigital, type AnyFilter, type Filter } from '@/dsp'
 import type { TraceId } from '@/components/plot/trace-style'
 import type { Span } from '@/components/plot/scale'
 import type { Versions } from '../../derive'
@@ -51,7 +51,7 @@ export function analogCurve(filter: Filter<'s'>, kind: TimeKind, [from, to]: Spa
 }
 
 export function digitalSamples(
-  filter: DigitalFilter,
+  filter: AnyDigital,
   id: TraceId,
   stated: boolean,
   kind: TimeKind,
@@ -66,9 +66,9 @@ export function digitalSamples(
 }
 
 /** A recursion can only begin at n = 0: panning and zooming must not run it again and again. */
-const kept = new WeakMap<DigitalFilter, Partial<Record<TimeKind, Float64Array>>>()
+const kept = new WeakMap<AnyDigital, Partial<Record<TimeKind, Float64Array>>>()
 
-function responseFromStart(kind: TimeKind, filter: DigitalFilter, count: number): Float64Array {
+function responseFromStart(kind: TimeKind, filter: AnyDigital, count: number): Float64Array {
   const known = kept.get(filter) ?? {}
   const before = known[kind]
   if (before && before.length >= count) return before
@@ -83,7 +83,7 @@ function responseFromStart(kind: TimeKind, filter: DigitalFilter, count: number)
 
 export function timeCurves(versions: Versions, hidden: readonly TraceId[], kind: TimeKind, span: Span) {
   return {
-    analog: hidden.includes('analog') ? null : analogCurve(versions.analog, kind, span),
+    analog: hidden.includes('analog') || !versions.analog ? null : analogCurve(versions.analog, kind, span),
     digital: versions.digital
       .filter(({ id }) => !hidden.includes(id))
       .map(({ id, filter, stated }) => digitalSamples(filter, id, stated, kind, span)),
@@ -101,7 +101,7 @@ export function valuesAt(
   sampleRateHz: number,
 ): ReadonlyMap<TraceId, number> {
   const found = new Map<TraceId, number>()
-  if (curves.analog) {
+  if (curves.analog && versions.analog) {
     const { values } = respond(kind, versions.analog, {
       count: 1,
       startSeconds: n / sampleRateHz,

@@ -5,7 +5,7 @@ import type { Span } from '@/components/plot/scale'
 import type { TraceId } from '@/components/plot/trace-style'
 import { Button } from '@/components/ui/button'
 import type { DesignSpec } from '@/dsp'
-import { methodLabels } from '@/lib/designs/words'
+import { versionLabels } from '@/lib/designs/words'
 import { classNames } from '@/lib/format/class-names'
 import { formatNumber, formatSeconds } from '@/lib/format/quantity'
 import type { Versions } from '../../derive'
@@ -161,7 +161,7 @@ function TimeResponses({ spec, versions: latest }: { spec: DesignSpec; versions:
         </span>
         <FiguresTable
           rows={rows}
-          refused={versions.refused.map(({ id, message }) => ({ id, label: methodLabels[id], message }))}
+          refused={versions.refused.map(({ id, message }) => ({ id, label: versionLabels[id], message }))}
           tolerancePercent={tolerancePercent}
         />
       </div>
@@ -171,10 +171,12 @@ function TimeResponses({ spec, versions: latest }: { spec: DesignSpec; versions:
 
 function knownVersions(versions: Versions) {
   return [
-    { id: 'analog' as const, label: 'analog', stated: false, curve: stepCurve(versions.analog) },
+    ...(versions.analog
+      ? [{ id: 'analog' as const, label: 'analog', stated: false, curve: stepCurve(versions.analog) }]
+      : []),
     ...versions.digital.map(({ id, filter, stated }) => ({
       id,
-      label: methodLabels[id],
+      label: versionLabels[id],
       stated,
       curve: stepCurve(filter),
     })),
