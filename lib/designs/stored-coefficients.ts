@@ -1,4 +1,6 @@
-import { isFir, type AnyDigital, type Complex, type Design, type Filter, type FirFilter, type Section } from '@/dsp'
+import { isFir, type AnyDigital, type Complex, type Design,
+  type DesignOfFamily,
+  type DigitalFilter, type Filter, type FirFilter, type Section } from '@/dsp'
 
 /*
  * The numbers of a design as they are kept, signed and compared. One text for the same numbers, always: keys in this order, no spaces,
@@ -73,6 +75,11 @@ function ordered(stored: StoredCoefficients): StoredCoefficients {
   }
 }
 
+/** The numbers of a design of a known family: roots on both sides. */
+export type StoredFamily = StoredRecursive & { readonly analog: StoredRoots }
+
+export function coefficientsOf(design: Pick<DesignOfFamily, 'analog' | 'digital'>): StoredFamily
+export function coefficientsOf(design: Pick<Design, 'analog' | 'digital'>): StoredCoefficients
 export function coefficientsOf({ analog, digital }: Pick<Design, 'analog' | 'digital'>): StoredCoefficients {
   if (isFir(digital)) {
     const { sampleRateHz, taps, symmetry } = digital
@@ -83,6 +90,11 @@ export function coefficientsOf({ analog, digital }: Pick<Design, 'analog' | 'dig
 }
 
 /** A stored version's numbers as filters again; what is exported are these, never a recomputation. */
+export function filtersOf(stored: StoredFamily): { readonly analog: Filter<'s'>; readonly digital: DigitalFilter }
+export function filtersOf(stored: StoredCoefficients): {
+  readonly analog: Filter<'s'> | null
+  readonly digital: AnyDigital
+}
 export function filtersOf(stored: StoredCoefficients): {
   readonly analog: Filter<'s'> | null
   readonly digital: AnyDigital

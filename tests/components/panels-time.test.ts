@@ -19,7 +19,7 @@ import {
   impulseResponse,
   stepFigures,
   type AnalogSpec,
-  type DesignSpec,
+  type FamilyDesign,
   type Filter,
 } from '@/dsp'
 import { defaultSpec } from '@/lib/designs/edits'
@@ -177,7 +177,7 @@ describe('figures of a digital step response', () => {
 })
 
 describe('curves over time', () => {
-  const spec: DesignSpec = { ...defaultSpec, how: { method: 'impulse-invariant' } }
+  const spec: FamilyDesign = { ...defaultSpec, how: { method: 'impulse-invariant' } }
   const versions = versionsOf(spec)
 
   it('scales impulse responses so that samples fall onto the analog curve', () => {
@@ -206,7 +206,7 @@ describe('curves over time', () => {
   })
 
   it('knows the area of an impulse that passes straight through and doesn’t let its sample flatten the rest', () => {
-    const highpass: DesignSpec = {
+    const highpass: FamilyDesign = {
       ...defaultSpec,
       analog: { family: 'butterworth', response: 'highpass', order: 2, edgesHz: [20] },
     }

@@ -2,11 +2,11 @@ import { deriveTraces, deriveTrust } from '@/components/studio/derive'
 import { versionsOf } from '../helpers/versions-of'
 import { stackFrame } from '@/components/studio/stack/frame'
 import { usualView, type StackView } from '@/components/studio/view'
-import type { DesignSpec } from '@/dsp'
+import type { FamilyDesign } from '@/dsp'
 
 /* A design as the stack is handed it: everything derived from the spec, as on the page. */
 
-export const plainSpec: DesignSpec = {
+export const plainSpec: FamilyDesign = {
   format: 1,
   analog: { family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [120] },
   sampleRateHz: 600,
@@ -14,14 +14,14 @@ export const plainSpec: DesignSpec = {
   budget: { magnitudeDb: 0.1, phaseDegrees: 1, removeDelay: false },
 }
 
-export const ellipticSpec: DesignSpec = {
+export const ellipticSpec: FamilyDesign = {
   ...plainSpec,
   analog: { family: 'elliptic', response: 'bandpass', order: 3, edgesHz: [400, 900], rippleDb: 0.5, attenuationDb: 50 },
   sampleRateHz: 4000,
   how: { method: 'bilinear', hold: 600 },
 }
 
-export function stackOf(spec: DesignSpec, change: Partial<StackView> = {}, width = 946) {
+export function stackOf(spec: FamilyDesign, change: Partial<StackView> = {}, width = 946) {
   const view: StackView = { ...usualView(spec), hidden: [], ...change }
   const versions = versionsOf(spec)
   const traces = deriveTraces(spec, versions, view)

@@ -3,10 +3,10 @@ import { sliderKey, steppedBy, steppedDigit } from '@/components/plot/handle'
 import { placedHandles } from '@/components/studio/stack/handle-places'
 import { orderFinder } from '@/components/studio/stack/slope'
 import { specHandles, type SpecHandle } from '@/components/studio/stack/spec-handles'
-import { designFromSpec, designAnalog, magnitudeDb, type DesignSpec } from '@/dsp'
+import { designFromSpec, designAnalog, magnitudeDb, type FamilyDesign } from '@/dsp'
 import { ellipticSpec, plainSpec, stackOf } from './stack-fixture'
 
-const handleOf = (spec: DesignSpec, id: string): SpecHandle => {
+const handleOf = (spec: FamilyDesign, id: string): SpecHandle => {
   const found = specHandles(spec).find((handle) => handle.id === id)
   if (!found) throw new Error(`no handle ${id}`)
   return found
@@ -17,7 +17,7 @@ const grabAt = (handle: SpecHandle, x: number, y: number) => ({
   value: handle.value,
 })
 
-const kinds: readonly DesignSpec[] = [
+const kinds: readonly FamilyDesign[] = [
   plainSpec,
   ellipticSpec,
   {
@@ -39,7 +39,7 @@ const kinds: readonly DesignSpec[] = [
 
 describe('handles of a spec', () => {
   it('are those parts that the family has', () => {
-    const ids = (spec: DesignSpec) => specHandles(spec).map(({ id }) => id)
+    const ids = (spec: FamilyDesign) => specHandles(spec).map(({ id }) => id)
     expect(ids(plainSpec)).toEqual(['edge-0', 'order', 'fold'])
     expect(ids(ellipticSpec)).toEqual(['edge-0', 'edge-1', 'ripple', 'attenuation', 'order', 'hold', 'fold'])
   })

@@ -7,9 +7,10 @@ import { viewFromSearch, viewToSearch } from '@/components/studio/shell/address'
 import { matches } from '@/components/studio/commands'
 import { deriveFigures, deriveTraces, deriveTrust } from '@/components/studio/derive'
 import { usualView } from '@/components/studio/view'
-import type { DesignSpec } from '@/dsp'
+import type { FamilyDesign } from '@/dsp'
 import { versionsOf } from '../helpers/versions-of'
 import { defaultSpec, withEdge } from '@/lib/designs/edits'
+import { edgesHzOf } from '@/lib/designs/outline'
 
 const at = (hertz: number) => withEdge(defaultSpec, 0, hertz)
 
@@ -29,7 +30,7 @@ describe('the studio’s store', () => {
     const { begin, change, commit, cancel } = store.getState()
     begin()
     for (const hertz of [130, 140, 150]) change(at(hertz))
-    expect(store.getState().spec.analog.edgesHz).toEqual([150])
+    expect(edgesHzOf(store.getState().spec)).toEqual([150])
     cancel()
     expect(store.getState().spec).toBe(defaultSpec)
     expect(store.getState().past).toHaveLength(0)
@@ -41,7 +42,7 @@ describe('the studio’s store', () => {
     store.getState().undo()
     expect(store.getState().spec).toEqual(defaultSpec)
     store.getState().redo()
-    expect(store.getState().spec.analog.edgesHz).toEqual([150])
+    expect(edgesHzOf(store.getState().spec)).toEqual([150])
   })
 
   it('undoes any run of edits back to where it began, and redoes them to where it ended', () => {
@@ -126,7 +127,7 @@ describe('keys of commands', () => {
 
 describe('what the screen derives', () => {
   it('is there for every filter that dsp accepts, also hard against half the rate', () => {
-    const specs: DesignSpec[] = [550, 599.9].map((edge) => ({
+    const specs: FamilyDesign[] = [550, 599.9].map((edge) => ({
       ...defaultSpec,
       analog: { ...defaultSpec.analog, response: 'highpass', edgesHz: [edge] },
     }))

@@ -1,25 +1,25 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { designFromSpec, ENGINE_VERSION, type DesignSpec } from '@/dsp'
+import { designFromSpec, ENGINE_VERSION, type FamilyDesign } from '@/dsp'
 import {
   canonicalText,
   checksumOf,
   checksumOfStored,
   coefficientsOf,
   filtersOf,
-  type StoredCoefficients,
+  type StoredFamily,
 } from '@/lib/designs/coefficients'
 import { defaultSpec } from '@/lib/designs/edits'
 import { recomputeDifference, worstRelativeDifference } from '@/lib/designs/recompute'
 
-const bandPass: DesignSpec = {
+const bandPass: FamilyDesign = {
   ...defaultSpec,
   analog: { family: 'butterworth', response: 'bandpass', order: 4, edgesHz: [10, 200] },
 }
-const impulse: DesignSpec = { ...defaultSpec, how: { method: 'impulse-invariant' } }
+const impulse: FamilyDesign = { ...defaultSpec, how: { method: 'impulse-invariant' } }
 const specs = [defaultSpec, bandPass, impulse]
-const storedOf = (spec: DesignSpec) => coefficientsOf(designFromSpec(spec))
-const versionOf = (spec: DesignSpec, coefficients = storedOf(spec), engineVersion = ENGINE_VERSION) => ({
+const storedOf = (spec: FamilyDesign) => coefficientsOf(designFromSpec(spec))
+const versionOf = (spec: FamilyDesign, coefficients = storedOf(spec), engineVersion = ENGINE_VERSION) => ({
   number: 3,
   spec,
   coefficients,
@@ -45,8 +45,8 @@ describe('canonical coefficients', () => {
   it('write each number so that it reads back to the same double', () => {
     fc.assert(
       fc.property(fc.double({ noNaN: true, noDefaultInfinity: true }), (value) => {
-        const stored: StoredCoefficients = { ...storedOf(defaultSpec), gain: value }
-        const back = JSON.parse(canonicalText(stored)) as StoredCoefficients
+        const stored: StoredFamily = { ...storedOf(defaultSpec), gain: value }
+        const back = JSON.parse(canonicalText(stored)) as StoredFamily
         return Object.is(back.gain, value === 0 ? 0 : value)
       }),
     )
@@ -72,7 +72,7 @@ describe('canonical coefficients', () => {
 
   it('have the SHA-256 of their text for a checksum', () => {
     // The digest of this very text, by sha256sum of GNU coreutils.
-    const tiny: StoredCoefficients = {
+    const tiny: StoredFamily = {
       format: 1,
       sampleRateHz: 1000,
       gain: 0.5,
@@ -109,7 +109,7 @@ describe('computing a version anew', () => {
   })
 
   const nudge = (value: number) => value * (1 + 1e-9)
-  const changes: Record<string, (stored: StoredCoefficients) => StoredCoefficients> = {
+  const changes: Record<string, (stored: StoredFamily) => StoredFamily> = {
     'the gain': (stored) => ({ ...stored, gain: nudge(stored.gain) }),
     'the rate': (stored) => ({ ...stored, sampleRateHz: nudge(stored.sampleRateHz) }),
     'a pole': (stored) => ({
@@ -126,7 +126,7 @@ describe('computing a version anew', () => {
     }),
   }
   it.each(Object.keys(changes))('notices a change of 1e-9 in %s', (what) => {
-    const low: DesignSpec = { ...defaultSpec, analog: { ...defaultSpec.analog, edgesHz: [0.5] } }
+    const low: FamilyDesign = { ...defaultSpec, analog: { ...defaultSpec.analog, edgesHz: [0.5] } }
     const changed = changes[what]?.(storedOf(low))
     const difference = recomputeDifference(versionOf(low, changed, '0.9.0'))
     expect(difference).toMatchObject({ versionNumber: 3, storedEngine: '0.9.0', currentEngine: ENGINE_VERSION })
@@ -144,7 +144,7 @@ describe('computing a version anew', () => {
   })
 
   it('counts a refusal by today’s engine as a difference', () => {
-    const impossible: DesignSpec = { ...defaultSpec, analog: { ...defaultSpec.analog, edgesHz: [700] } }
+    const impossible: FamilyDesign = { ...defaultSpec, analog: { ...defaultSpec.analog, edgesHz: [700] } }
     expect(recomputeDifference(versionOf(impossible, storedOf(defaultSpec)))?.worstRelative).toBe(Infinity)
   })
 })

@@ -1,9 +1,9 @@
 import { describe, expect, it } from 'vitest'
-import type { DesignSpec } from '@/dsp'
+import type { FamilyDesign } from '@/dsp'
 import { defaultSpec, withFamily, withHold, withMethod, withResponse } from '@/lib/designs/edits'
 import { statementText } from '@/lib/designs/statement'
 
-const plain = (spec: DesignSpec) => statementText(spec).replaceAll('\u2009', ' ')
+const plain = (spec: FamilyDesign) => statementText(spec).replaceAll('\u2009', ' ')
 
 describe('the sentence that is the design', () => {
   it('names family, order, edge, rate, method and the frequency held', () => {
@@ -25,8 +25,8 @@ describe('the sentence that is the design', () => {
     expect(withResponse(band, 'lowpass').analog.edgesHz).toEqual([120])
   })
   it('drops the options of a method that is left', () => {
-    const restored: DesignSpec = { ...defaultSpec, how: { method: 'impulse-invariant', restoreGain: true } }
+    const restored: FamilyDesign = { ...defaultSpec, how: { method: 'impulse-invariant', restoreGain: true } }
     expect(plain(restored)).toContain('impulse-invariant method, gain restored')
-    expect(withMethod(restored, 'matched-z').how).toEqual({ method: 'matched-z' })
+    expect(withMethod(restored, 'matched-z')).toMatchObject({ how: { method: 'matched-z' } })
   })
 })
