@@ -61,6 +61,15 @@ export {
   type RequirementKind,
   type RequirementSheet,
 } from './requirements/requirement'
+export {
+  checkRequirement,
+  checkSheet,
+  type RequirementCurve,
+  type RequirementResult,
+  type RequirementUnit,
+} from './requirements/evaluate'
+export type { Judged } from './requirements/departure-line'
+export { multipliesPerSample } from './forms/cost'
 
 // Design: spec → analog → digital → sections
 export { designFromSpec, type Design, type DesignOfFamily } from './design'
