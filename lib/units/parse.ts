@@ -76,9 +76,32 @@ export function parseOrder(input: string): Parsed {
     : refused(`“${input.trim()}” isn’t an order; type a whole number from 1 to 24.`)
 }
 
-/** A whole number from "63", "63 taps" or "5 poles". */
+const SECONDS: Readonly<Record<string, number>> = { '': 1, m: 1e-3, u: 1e-6, µ: 1e-6, n: 1e-9 }
+const TIME = new RegExp(String.raw`^(${NUMBER})\s*(?:([munµ]?)s|(min))$`)
+
+/** Seconds from "5 ms", "200 µs", "200us", "0.5 s", "2 min". A bare number is not taken: nobody means 200 s beside 200 µs. */
+export function parseSeconds(input: string): Parsed {
+  const text = tidy(input)
+    .replace(/\u03bc/g, 'µ')
+    .replace(/sec(?:onds?)?$/i, 's')
+  const match = TIME.exec(text)
+  if (match) return found(toNumber(match[1] ?? '') * (match[3] ? 60 : (SECONDS[match[2] ?? ''] ?? 1)))
+  return refused(
+    new RegExp(`^${NUMBER}$`).test(text)
+      ? `Say the unit too: ${text} s, ${text} ms or ${text} µs.`
+      : `“${input.trim()}” isn’t a time; try 5 ms or 200 µs.`,
+  )
+}
+
+/** Per cent from "5", "5 %", "0,5%". */
+export function parsePercent(input: string): Parsed {
+  const match = new RegExp(String.raw`^(${NUMBER})\s*(?:%|per ?cent)?$`, 'i').exec(tidy(input))
+  return match ? found(toNumber(match[1] ?? '')) : refused(`“${input.trim()}” isn’t a part; type per cent, such as 5.`)
+}
+
+/** A whole number from "63", "63 taps", "5 poles", "16 bits" or "20 multiplies". */
 export function parseCount(input: string): Parsed {
-  const match = /^([+-]?\d+)\s*(?:taps?|poles?)?$/i.exec(tidy(input))
+  const match = /^([+-]?\d+)\s*(?:taps?|poles?|bits?|multipl(?:y|ies))?$/i.exec(tidy(input))
   return match ? found(Number(match[1])) : refused(`“${input.trim()}” isn’t a count; type a whole number.`)
 }
 

@@ -4,24 +4,13 @@ import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign } from 
 import type { Trace } from '../view'
 import type { StackFrame } from './frame'
 import { foldTagY } from './layout'
-import type { HandleLook, Point, SpecHandle } from './spec-handles'
+import type { HandleLook, HandlePlace, PlacedHandle, SpecHandle } from './handle-shape'
 import { valueAt } from './read-out'
+import { limitPlace, withRoom } from '../sheet/limit-places'
 
 /* Where the handles stand on the plots. */
 
-export interface HandlePlace extends Point {
-  /** Where its value lies when that is out of view; the handle then waits at the plot's side. */
-  readonly outside: 'left' | 'right' | 'below' | null
-  /** The horizontal line that a level handle sits on; null for the others. */
-  readonly level: { readonly left: number; readonly right: number; readonly y: number } | null
-  /** Of the curve under it, in degrees downwards; 0 where it doesn't matter. */
-  readonly angle: number
-}
-
-export interface PlacedHandle {
-  readonly handle: SpecHandle
-  readonly place: HandlePlace
-}
+export type { HandlePlace, PlacedHandle } from './handle-shape'
 
 /** As the Tab key should meet them: the edges, the levels, the slope, the held frequency, the rate. */
 const tabOrder: readonly HandleLook[] = [
@@ -43,12 +32,13 @@ export function placedHandles(
   traces: readonly Trace[],
   frame: StackFrame,
 ): readonly PlacedHandle[] {
-  return handles
+  const placed = handles
     .flatMap((handle) => {
       const place = handlePlace(handle, spec, traces, frame)
-      return place ? [{ handle, place: writtenPlace(place) }] : []
+      return place ? [{ handle, place }] : []
     })
     .sort((a, b) => tabOrder.indexOf(a.handle.look) - tabOrder.indexOf(b.handle.look))
+  return withRoom(placed, frame).map(({ handle, place }) => ({ handle, place: writtenPlace(place) }))
 }
 
 /** Levels steeper than this part of the way to the floor carry the slope's grip. */
@@ -83,19 +73,9 @@ function handlePlace(
     case 'fold':
       return { ...pinnedX(handle.value / 2, frame), y: foldTagY(frame.layout), level: null, angle: 0 }
     case 'limit-edge':
-      return limitPlace(handle.value, handle.across ?? 0, frame)
     case 'limit-level':
-      return limitPlace(handle.across ?? 0, handle.value, frame)
+      return limitPlace(handle, frame)
   }
-}
-
-/** A corner or a level of a requirement's ground; out of view when its frequency is. */
-function limitPlace(hz: number, db: number, frame: StackFrame): HandlePlace | null {
-  const { top, bottom } = frame.layout.plots.magnitude
-  const { x, outside } = pinnedX(hz, frame)
-  const y = frame.y.magnitude.toPixel(db)
-  if (outside !== null || !(y >= top && y <= bottom)) return null
-  return { x, y, outside: null, level: null, angle: 0 }
 }
 
 function pinnedX(hz: number, frame: StackFrame): Pick<HandlePlace, 'x' | 'outside'> {

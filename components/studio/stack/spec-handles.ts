@@ -1,4 +1,4 @@
-import { clamped, steppedBy, steppedDigit, type HandleValue, type StepSize } from '@/components/plot/handle'
+import { clamped, steppedBy, steppedDigit } from '@/components/plot/handle'
 import { valuePerPixel } from '@/components/plot/scale'
 import { roundedStep, roundedTo } from '@/components/plot/ticks'
 import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign, type FirDesign } from '@/dsp'
@@ -6,57 +6,15 @@ import { withAnalog, withEdge, withHold, withRate } from '@/lib/designs/edits'
 import { withBand } from '@/lib/designs/fir-edits'
 import { lowestEdgeHz } from '@/lib/designs/outline'
 import { formatDb, formatHz } from '@/lib/format/quantity'
-import type { StackFrame } from './frame'
+import { sheetHandles } from '../sheet/sheet-handles'
+import { frequencyUnder, type SpecHandle } from './handle-shape'
 
 /*
  * The parts of a spec that can be taken hold of on the plots. Each is a slider: a value with bounds, steps for the keys, the value under
  * a dragging pointer (the scale's inverse) and the spec with that value put in.
  */
 
-export type HandleId =
-  | 'edge-0'
-  | 'edge-1'
-  | 'ripple'
-  | 'attenuation'
-  | 'hold'
-  | 'fit'
-  | 'fold'
-  | 'order'
-  | `band-${number}-${'from' | 'to'}`
-  | `sheet-${number}-${'from' | 'to' | 'level'}`
-
-/** What a handle looks like, which also tells where it stands. */
-export type HandleLook =
-  'edge' | 'pass-level' | 'stop-level' | 'slope' | 'hold' | 'fit' | 'fold' | 'limit-edge' | 'limit-level'
-
-export interface Point {
-  readonly x: number
-  readonly y: number
-}
-
-/** Where a drag began: the point, and the handle's value then. */
-export interface Grab {
-  readonly point: Point
-  /** From the handle's centre to the pointer, so that it doesn't jump under the hand. */
-  readonly offset: Point
-  readonly value: number
-}
-
-export interface SpecHandle extends HandleValue {
-  readonly id: HandleId
-  readonly look: HandleLook
-  /** The other coordinate of a requirement's edge or level: dB for an edge, Hz for a level. */
-  readonly across?: number
-  readonly label: string
-  /** Path of the spec's part, by which a refusal is set beside its handle. */
-  readonly field: string
-  readonly orientation: 'horizontal' | 'vertical'
-  readonly valueText: string
-  next(size: StepSize, direction: 1 | -1): number
-  /** null for a handle whose drag needs more than the frame (the slope). */
-  under(point: Point, grab: Grab, frame: StackFrame, fine: boolean): number | null
-  apply(spec: DesignSpec, value: number): DesignSpec
-}
+export type { Grab, HandleId, HandleLook, Point, SpecHandle } from './handle-shape'
 
 /** An edge keeps this far below half the rate; the statement takes the rest. */
 const HIGHEST_EDGE_PART = 0.495
@@ -77,8 +35,10 @@ const highestEdgeHz = (sampleRateHz: number): number => shortened(sampleRateHz *
 export const MOST_ORDER = 24
 
 export function specHandles(spec: DesignSpec): readonly SpecHandle[] {
-  if (isFirDesign(spec)) return [...bandHandles(spec), foldHandle(spec)]
-  return [...(isFamilyDesign(spec) ? familyHandles(spec) : []), ...methodHandles(spec), foldHandle(spec)]
+  const own = isFirDesign(spec)
+    ? bandHandles(spec)
+    : [...(isFamilyDesign(spec) ? familyHandles(spec) : []), ...methodHandles(spec)]
+  return [...own, foldHandle(spec), ...sheetHandles(spec)]
 }
 
 function familyHandles(spec: FamilyDesign): SpecHandle[] {
@@ -129,15 +89,6 @@ function bandHandles(spec: FirDesign): SpecHandle[] {
       ]
     }),
   )
-}
-
-/** The frequency under a pointer, rounded to what a pixel can tell. */
-function frequencyUnder(point: Point, grab: Grab, frame: StackFrame, fine: boolean): number {
-  const [start, end] = frame.x.range
-  // Past the plot's sides the hand pulls no further.
-  const at = Math.min(end, Math.max(start, point.x - grab.offset.x))
-  const step = roundedStep(valuePerPixel(frame.x, at)) * (fine ? 0.1 : 1)
-  return roundedTo(frame.x.toValue(at), step)
 }
 
 function edgeHandles(spec: FamilyDesign): SpecHandle[] {
