@@ -69,6 +69,8 @@ export {
   type RequirementUnit,
 } from './requirements/evaluate'
 export type { Judged } from './requirements/departure-line'
+export { contradictions, type Contradiction } from './requirements/contradictions'
+export { requirementTemplates, type RequirementTemplate, type TemplateOptions } from './requirements/templates'
 export { multipliesPerSample } from './forms/cost'
 
 // Design: spec → analog → digital → sections
