@@ -247,19 +247,49 @@ function checkImpulseInvariant(spec: AnalogSpec): void {
   }
 }
 
-export const fittedNotAvailable = () =>
-  new DesignError(
-    'method-not-available',
-    'how.method',
-    'The fitted method isn’t computed yet; bilinear, impulse-invariant, matched-z and step-invariant are.',
-    'bilinear',
+/** The nearest end of a fit that works, as a part of the rate. */
+const USUAL_END_OF_FIT = 0.45
+
+/**
+ * Whether a fit can end where it is to end.
+ *
+ * @param fromHz what the fit must reach beyond, such as the low end of the pass band
+ */
+export function checkFit(how: Extract<Method, { method: 'fitted' }>, sampleRateHz: number, fromHz: number): void {
+  if (how.order !== undefined && !(Number.isInteger(how.order) && how.order >= 1 && how.order <= MAX_ORDER)) {
+    throw new DesignError(
+      'order-out-of-range',
+      'how.order',
+      `A fitted version has 1 to ${MAX_ORDER} poles where their number is stated; ${how.order} was given.`,
+      Number.isNaN(how.order) ? 4 : clamp(Math.round(how.order), [1, MAX_ORDER]),
+    )
+  }
+  const { upToHz } = how
+  const half = sampleRateHz / 2
+  const usual = tidy(USUAL_END_OF_FIT * sampleRateHz, 'down')
+  if (!(upToHz > 0 && upToHz < half)) {
+    throw new DesignError(
+      'fit-out-of-range',
+      'how.upToHz',
+      `0 < end of the fit < ${hertz(half)} (half the rate); ${hertz(upToHz)} was given.`,
+      usual,
+    )
+  }
+  if (upToHz > fromHz) return
+  // Where the pass band begins too near half the rate, the middle of what is left.
+  throw new DesignError(
+    'fit-below-pass-band',
+    'how.upToHz',
+    `The fit must reach into the pass band, which begins at ${hertz(fromHz)}; ${hertz(upToHz)} was given.`,
+    2 * fromHz < half ? 2 * fromHz : (fromHz + half) / 2,
   )
+}
 
 /**
  * Whether a specification can be brought to this sampling rate by this method.
  *
- * @throws DesignError as checkAnalogSpec, and with field `sampleRateHz`, `analog.edgesHz.0`, `analog.edgesHz.1`, `how.hold` or
- * `how.method`
+ * @throws DesignError as checkAnalogSpec, and with field `sampleRateHz`, `analog.edgesHz.0`, `analog.edgesHz.1`, `how.hold`,
+ * `how.upToHz`, `how.order` or `how.method`
  */
 export function checkDiscretization(spec: AnalogSpec, sampleRateHz: number, how: Method): void {
   checkAnalogSpec(spec)
@@ -283,6 +313,10 @@ export function checkDiscretization(spec: AnalogSpec, sampleRateHz: number, how:
     case 'step-invariant':
       return
     case 'fitted':
-      throw fittedNotAvailable()
+      return checkFit(
+        how,
+        sampleRateHz,
+        spec.response === 'highpass' || spec.response === 'bandpass' ? (spec.edgesHz[0] ?? 0) : 0,
+      )
   }
 }

@@ -2,7 +2,8 @@ import { show } from '../check'
 import { modulus, subtract } from '../numeric/complex'
 import { fromHalf, valueAt, type HalfForm } from '../forms/zeros-poles-gain'
 import type { Diagnostic } from '../forms/filter'
-import type { AnalogSpec } from '../spec'
+import type { FittedVersion } from './fitted'
+import type { Original } from './original'
 
 /** Above this part of the rate an edge is cautioned. */
 const NEAR_HALF_RATE = 0.45
@@ -15,8 +16,8 @@ const FLOOR_DB = -300
 const plural = (count: number, one: string, many: string) => `${count} ${count === 1 ? one : many}`
 
 /** What the rate does to any method. */
-export function rateDiagnostics(spec: AnalogSpec, sampleRateHz: number): Diagnostic[] {
-  return spec.edgesHz.flatMap((edge, index): Diagnostic[] =>
+export function rateDiagnostics({ edgesHz }: Original, sampleRateHz: number): Diagnostic[] {
+  return edgesHz.flatMap((edge, index): Diagnostic[] =>
     edge > NEAR_HALF_RATE * sampleRateHz
       ? [
           {
@@ -32,9 +33,10 @@ export function rateDiagnostics(spec: AnalogSpec, sampleRateHz: number): Diagnos
 }
 
 /** What becomes of a maximally flat delay. */
-export function delayDiagnostics(spec: AnalogSpec, sampleRateHz: number, bilinear: boolean): Diagnostic[] {
-  if (spec.family !== 'bessel') return []
-  if (spec.response !== 'lowpass') {
+export function delayDiagnostics(original: Original, sampleRateHz: number, bilinear: boolean): Diagnostic[] {
+  const { family, edgesHz } = original
+  if (family?.family !== 'bessel') return []
+  if (family.response !== 'lowpass') {
     return [
       {
         code: 'flat-delay-is-lowpass',
@@ -45,7 +47,7 @@ export function delayDiagnostics(spec: AnalogSpec, sampleRateHz: number, bilinea
       },
     ]
   }
-  const part = (spec.edgesHz[0] ?? 0) / sampleRateHz
+  const part = (edgesHz[0] ?? 0) / sampleRateHz
   if (!bilinear || part <= DELAY_BENDS) return []
   return [
     {
@@ -180,4 +182,37 @@ export function firstSampleDiagnostics(jump: boolean, halved: boolean): Diagnost
       field: 'how.halfFirstSample',
     },
   ]
+}
+
+/** What a fit came to. */
+export function fittedDiagnostics(fit: FittedVersion, sampleRateHz: number, freeDelay: boolean): Diagnostic[] {
+  const found: Diagnostic[] = []
+  if (freeDelay) {
+    const micro = (1e6 * fit.delay) / sampleRateHz
+    found.push({
+      code: 'fitted-delay',
+      severity: 'note',
+      message: `With the delay left free, this version comes ${show(Math.abs(Math.round(micro * 1000) / 1000))} µs ${micro < 0 ? 'earlier' : 'later'} than the original.`,
+      field: 'how.freeDelay',
+      value: fit.delay / sampleRateHz,
+    })
+  }
+  if (fit.kept !== 'fit') {
+    found.push({
+      code: 'fit-no-better',
+      severity: 'note',
+      message: `No better fit than the ${fit.kept} version was found; this is that version.`,
+      field: 'how.method',
+    })
+  }
+  if (fit.endedEarly) {
+    found.push({
+      code: 'fit-ended-early',
+      severity: 'note',
+      message:
+        'At this order the fit is ended early, so that it can follow the hand; a lower order is fitted to the end.',
+      field: 'how.order',
+    })
+  }
+  return found
 }

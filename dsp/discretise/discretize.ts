@@ -1,23 +1,25 @@
-import { checkDiscretization, fittedNotAvailable } from '../check'
-import { designHalf } from '../design-analog'
+import { checkDiscretization } from '../check'
 import { DesignError } from '../errors'
 import { toSections } from '../forms/sections'
 import { expand, fromHalf, fullCount, type HalfForm } from '../forms/zeros-poles-gain'
 import { modulus } from '../numeric/complex'
-import { bilinearFactor, bilinearHalf, warp, warpedWidth } from './bilinear'
+import { bilinearFactor, bilinearHalf } from './bilinear'
 import {
   aliasingDiagnostics,
   bilinearDiagnostics,
   delayDiagnostics,
   firstSampleDiagnostics,
+  fittedDiagnostics,
   foldedPoleDiagnostics,
   holdDiagnostics,
   matchedDiagnostics,
   rateDiagnostics,
   repeatedPoleDiagnostics,
 } from './diagnostics'
+import { fittedVersion } from './fitted'
 import { impulseInvariant, restoreGain } from './impulse-invariant'
 import { matchedZ } from './matched-z'
+import { originalOfFamily, type Original } from './original'
 import { bandAngles, keepIfGood, sectionDiagnostics } from './rounding'
 import { stepInvariant } from './step-invariant'
 import type { Diagnostic, DigitalFilter, ParallelForm, Section } from '../forms/filter'
@@ -32,114 +34,104 @@ interface Outcome {
 
 type Hold = Extract<Method, { method: 'bilinear' }>['hold']
 type ImpulseInvariant = Extract<Method, { method: 'impulse-invariant' }>
-
-/** The analog filter with time in samples: edges in `unit` per Hz. */
-function designScaled(spec: AnalogSpec, unit: number): HalfForm {
-  const [low = 0, high = 0] = spec.edgesHz
-  return designHalf(
-    spec,
-    spec.edgesHz.map((edge) => edge * unit),
-    (high - low) * unit,
-  )
-}
+type Fitted = Extract<Method, { method: 'fitted' }>
 
 const perSample = (sampleRateHz: number) => (2 * Math.PI) / sampleRateHz
 
-function byBilinear(spec: AnalogSpec, sampleRateHz: number, hold: Hold): Outcome {
-  const [low = 0, high = 0] = spec.edgesHz
+function byBilinear(original: Original, sampleRateHz: number, hold: Hold): Outcome {
   const analog =
-    hold === 'edges'
-      ? designHalf(
-          spec,
-          spec.edgesHz.map((edge) => warp(edge, sampleRateHz)),
-          warpedWidth(low, high, sampleRateHz),
-        )
-      : designScaled(spec, perSample(sampleRateHz) / bilinearFactor(sampleRateHz, hold))
+    hold === 'edges' && original.warped !== null
+      ? original.warped(sampleRateHz)
+      : original.scaled(perSample(sampleRateHz) / bilinearFactor(sampleRateHz, hold === 'edges' ? 'none' : hold))
   const excess = fullCount(analog.poles) - fullCount(analog.zeros)
   return {
     form: bilinearHalf(analog),
-    diagnostics: [...bilinearDiagnostics(excess), ...delayDiagnostics(spec, sampleRateHz, true)],
+    diagnostics: [...bilinearDiagnostics(excess), ...delayDiagnostics(original, sampleRateHz, true)],
   }
 }
 
 /** Where a gain is compared, in rad per sample: DC, the centre of the band, or half the rate. */
-function referenceAngle(spec: AnalogSpec, sampleRateHz: number): number {
-  const [low = 0, high = 0] = spec.edgesHz
-  if (spec.response === 'highpass') return Math.PI
-  return spec.response === 'bandpass' ? Math.sqrt(low) * Math.sqrt(high) * perSample(sampleRateHz) : 0
+function referenceAngle({ gainAtHz }: Original, sampleRateHz: number): number {
+  return gainAtHz === 'half the rate' ? Math.PI : Math.min(gainAtHz * perSample(sampleRateHz), Math.PI)
 }
 
 /** The pass band in rad per sample; of a band-stop filter, the lower one. */
-function passBand(spec: AnalogSpec, sampleRateHz: number): readonly [number, number] {
-  const [low = 0, high = 0] = spec.edgesHz.map((edge) => edge * perSample(sampleRateHz))
-  switch (spec.response) {
-    case 'lowpass':
-    case 'bandstop':
-      return [0, low]
-    case 'highpass':
-      return [low, Math.PI]
-    case 'bandpass':
-      return [low, high]
-  }
+function passBand({ passHz: [low, high] }: Original, sampleRateHz: number): readonly [number, number] {
+  const unit = perSample(sampleRateHz)
+  return high === Infinity || low * unit >= Math.PI
+    ? [Math.min(low * unit, Math.PI / 2), Math.PI]
+    : [low * unit, high * unit]
 }
 
-function byImpulseInvariant(spec: AnalogSpec, sampleRateHz: number, how: ImpulseInvariant): Outcome {
-  const unit = perSample(sampleRateHz)
-  const analog = designScaled(spec, unit)
+function byImpulseInvariant(original: Original, sampleRateHz: number, how: ImpulseInvariant): Outcome {
+  const analog = original.scaled(perSample(sampleRateHz))
   const halved = how.halfFirstSample === true
   const plain = impulseInvariant(analog, halved)
-  const restored = how.restoreGain === true ? restoreGain(analog, plain, referenceAngle(spec, sampleRateHz)) : plain
+  const restored = how.restoreGain === true ? restoreGain(analog, plain, referenceAngle(original, sampleRateHz)) : plain
   const jump = fullCount(analog.poles) - fullCount(analog.zeros) === 1
   return {
     ...restored,
     diagnostics: [
-      ...aliasingDiagnostics(analog, plain.form, passBand(spec, sampleRateHz)),
+      ...aliasingDiagnostics(analog, plain.form, passBand(original, sampleRateHz)),
       ...firstSampleDiagnostics(jump, halved),
       ...foldedPoleDiagnostics(expand(analog.poles).filter((pole) => Math.abs(pole.im) > Math.PI).length),
       ...repeatedPoleDiagnostics(restored.parallel !== undefined),
-      ...delayDiagnostics(spec, sampleRateHz, false),
+      ...delayDiagnostics(original, sampleRateHz, false),
     ],
   }
 }
 
-function byMatchedZ(spec: AnalogSpec, sampleRateHz: number): Outcome {
+function byMatchedZ(original: Original, sampleRateHz: number): Outcome {
   const { form, placed, foldedPoles } = matchedZ(
-    designScaled(spec, perSample(sampleRateHz)),
-    referenceAngle(spec, sampleRateHz),
+    original.scaled(perSample(sampleRateHz)),
+    referenceAngle(original, sampleRateHz),
   )
   return {
     form,
     diagnostics: [
       ...matchedDiagnostics(placed.fromInfinity, placed.fromAboveHalfRate, foldedPoles),
-      ...delayDiagnostics(spec, sampleRateHz, false),
+      ...delayDiagnostics(original, sampleRateHz, false),
     ],
   }
 }
 
-function byStepInvariant(spec: AnalogSpec, sampleRateHz: number): Outcome {
-  const held = stepInvariant(designScaled(spec, perSample(sampleRateHz)))
+function byStepInvariant(original: Original, sampleRateHz: number): Outcome {
+  const held = stepInvariant(original.scaled(perSample(sampleRateHz)))
   return {
     ...held,
     diagnostics: [
       ...holdDiagnostics(sampleRateHz),
       ...repeatedPoleDiagnostics(held.parallel !== undefined),
-      ...delayDiagnostics(spec, sampleRateHz, false),
+      ...delayDiagnostics(original, sampleRateHz, false),
     ],
   }
 }
 
-function byMethod(spec: AnalogSpec, sampleRateHz: number, how: Method): Outcome {
+function byFit(original: Original, sampleRateHz: number, how: Fitted): Outcome {
+  const rivals = [
+    byBilinear(original, sampleRateHz, original.warped === null ? 'none' : 'edges').form,
+    byMatchedZ(original, sampleRateHz).form,
+  ]
+  const fitted = fittedVersion(original.scaled(perSample(sampleRateHz)), rivals, {
+    upTo: how.upToHz * perSample(sampleRateHz),
+    freeDelay: how.freeDelay === true,
+    order: how.order,
+  })
+  return { form: fitted.form, diagnostics: fittedDiagnostics(fitted, sampleRateHz, how.freeDelay === true) }
+}
+
+function byMethod(original: Original, sampleRateHz: number, how: Method): Outcome {
   switch (how.method) {
     case 'bilinear':
-      return byBilinear(spec, sampleRateHz, how.hold)
+      return byBilinear(original, sampleRateHz, how.hold)
     case 'impulse-invariant':
-      return byImpulseInvariant(spec, sampleRateHz, how)
+      return byImpulseInvariant(original, sampleRateHz, how)
     case 'matched-z':
-      return byMatchedZ(spec, sampleRateHz)
+      return byMatchedZ(original, sampleRateHz)
     case 'step-invariant':
-      return byStepInvariant(spec, sampleRateHz)
+      return byStepInvariant(original, sampleRateHz)
     case 'fitted':
-      throw fittedNotAvailable()
+      return byFit(original, sampleRateHz, how)
   }
 }
 
@@ -157,7 +149,39 @@ const isStable = ({ a1, a2 }: Section) => Math.abs(a2) < 1 && Math.abs(a1) < 1 +
  */
 export function discretize(spec: AnalogSpec, sampleRateHz: number, how: Method): DigitalFilter {
   checkDiscretization(spec, sampleRateHz, how)
-  const { form, parallel, diagnostics } = byMethod(spec, sampleRateHz, how)
+  return discretizeOriginal(originalOfFamily(spec), sampleRateHz, how)
+}
+
+/**
+ * The same for any original; whoever calls this has checked that the method suits it.
+ *
+ * @throws DesignError `poles-reach-circle` as above
+ */
+export function discretizeOriginal(original: Original, sampleRateHz: number, how: Method): DigitalFilter {
+  const { form, parallel, diagnostics } = byMethod(original, sampleRateHz, how)
+  const angles = bandAngles(passBand(original, sampleRateHz))
+  const digital = digitalOf(form, sampleRateHz, angles, Math.max(...original.edgesHz, original.passHz[0]))
+  const { kept, diagnostics: left } = keepIfGood(parallel, digital, angles)
+  return {
+    ...digital,
+    ...(kept === undefined ? {} : { parallel: kept }),
+    diagnostics: [...rateDiagnostics(original, sampleRateHz), ...diagnostics, ...left, ...digital.diagnostics],
+  }
+}
+
+/**
+ * The digital filter of a z-plane form: its sections, and a caution where rounding them shows.
+ *
+ * @param angles rad per sample where the filter passes
+ * @param highestHz the highest frequency that a lower rate must still hold
+ * @throws DesignError `poles-reach-circle`
+ */
+export function digitalOf(
+  form: HalfForm,
+  sampleRateHz: number,
+  angles: readonly number[],
+  highestHz: number,
+): DigitalFilter {
   const filter = fromHalf('z', form)
   const sections = toSections(filter)
   if (filter.poles.some((pole) => modulus(pole) >= 1) || !sections.every(isStable)) {
@@ -165,21 +189,8 @@ export function discretize(spec: AnalogSpec, sampleRateHz: number, how: Method):
       'poles-reach-circle',
       'sampleRateHz',
       'At this rate the poles lie closer to the unit circle than double precision can tell; lower the rate or widen the band.',
-      Math.max(sampleRateHz / 10, 2.5 * Math.max(...spec.edgesHz)),
+      Math.max(sampleRateHz / 10, 2.5 * highestHz),
     )
   }
-  const angles = bandAngles(passBand(spec, sampleRateHz))
-  const { kept, diagnostics: left } = keepIfGood(parallel, filter, angles)
-  return {
-    ...filter,
-    sampleRateHz,
-    sections,
-    ...(kept === undefined ? {} : { parallel: kept }),
-    diagnostics: [
-      ...rateDiagnostics(spec, sampleRateHz),
-      ...diagnostics,
-      ...left,
-      ...sectionDiagnostics(sections, filter, angles),
-    ],
-  }
+  return { ...filter, sampleRateHz, sections, diagnostics: sectionDiagnostics(sections, filter, angles) }
 }

@@ -1,0 +1,155 @@
+import { fromHalf, fullCount, valueAt, type HalfForm } from '../forms/zeros-poles-gain'
+import { levenbergMarquardt, type Stop } from '../numeric/levenberg-marquardt'
+import { fitProblem, productOf, rootsOf, type FitTarget, type Product } from './fitted-product'
+import { targetOf } from './fitted-target'
+import { magnitudeMatched } from './magnitude-matched'
+
+/** A form on the z-plane as a fit judges it. */
+export interface FittedForm {
+  readonly form: HalfForm
+  /** Samples by which it comes later than the original; 0 unless a delay was left free. */
+  readonly delay: number
+  /** Weighted sum of squares of the complex error over the grid of the target. */
+  readonly cost: number
+  /** The largest weighted complex error. */
+  readonly worst: number
+  readonly endedEarly: boolean
+}
+
+export interface FittedVersion extends FittedForm {
+  /** 'fit', or the name of the version that the fit couldn't better. */
+  readonly kept: 'fit' | 'bilinear' | 'matched-z'
+}
+
+/** Linearisations that a fit from each start is given first, and those of the best ones after that. */
+const FIRST_STEPS = 4
+const MOST_STEPS = 40
+/** Steps that lower the error by less than this end a fit: about a thousandth of the error itself. */
+const TOLERANCE = 2e-3
+/** A fit this good, in root mean square, is good enough to be ended: 0.0001 dB and 0.0006°. */
+const GOOD = 1e-5
+/** Points × unknowns² that all linearisations of one fit may come to, some 40 ms of work. */
+const WORK = 2.4e7
+
+/** Error of a z-plane form against the target with its best real gain under a given delay. */
+export function judged(form: HalfForm, target: FitTarget, delay: number, keepGain = false): FittedForm {
+  const filter = fromHalf('z', keepGain ? form : { ...form, gain: 1 })
+  const count = target.omega.length
+  const re = new Float64Array(count)
+  const im = new Float64Array(count)
+  let above = 0
+  let below = 0
+  for (let k = 0; k < count; k++) {
+    const omega = target.omega[k]!
+    const value = valueAt(filter, { re: Math.cos(omega), im: Math.sin(omega) })
+    const [c, s] = [Math.cos(delay * omega), Math.sin(delay * omega)]
+    re[k] = value.re * c - value.im * s
+    im[k] = value.re * s + value.im * c
+    const weight = target.weight[k]! ** 2
+    above += weight * (re[k]! * target.re[k]! + im[k]! * target.im[k]!)
+    below += weight * (re[k]! * re[k]! + im[k]! * im[k]!)
+  }
+  const gain = keepGain || above === 0 ? 1 : above / below
+  let cost = 0
+  let worst = 0
+  for (let k = 0; k < count; k++) {
+    const error = target.weight[k]! * Math.hypot(gain * re[k]! - target.re[k]!, gain * im[k]! - target.im[k]!)
+    cost += error * error
+    worst = Math.max(worst, error)
+  }
+  return { form: keepGain ? form : { ...form, gain }, delay, cost, worst, endedEarly: false }
+}
+
+const formOf = (product: Product, target: FitTarget): FittedForm =>
+  judged(rootsOf(product, target), target, product.delay)
+
+/**
+ * Fits from several starts, and goes on from the best.
+ *
+ * @param starts forms on the z-plane; those with another number of poles than `order` are left out
+ * @param order poles of the result
+ * @param good root mean square of the weighted error at which a fit is ended
+ * @returns null when no start has the order
+ */
+export function fitFrom(starts: readonly HalfForm[], order: number, target: FitTarget, good = GOOD): FittedForm | null {
+  const problem = fitProblem(target)
+  const size = 2 * order + 1 + (target.freeDelay ? 1 : 0)
+  let left = Math.max(2, Math.floor(WORK / (target.omega.length * size * size)))
+  const enough = good * good * target.omega.length
+  const stop = (steps: number): Stop => ({ steps: Math.min(steps, left), tolerance: TOLERANCE, cost: enough })
+  const usable = starts.filter((form) => fullCount(form.poles) === order).map((form) => productOf(form, order, target))
+  const ranked = usable
+    .map((state) => ({ state, cost: problem.cost(state) }))
+    .sort((a, b) => a.cost - b.cost)
+    // With little work to spare only the best starts are tried.
+    .slice(0, Math.max(1, Math.floor(left / (2 * FIRST_STEPS))))
+    .map(({ state }) => {
+      const fit = levenbergMarquardt(problem, state, stop(FIRST_STEPS))
+      left -= fit.steps
+      return fit
+    })
+    .sort((a, b) => a.cost - b.cost)
+  let best: { state: Product; cost: number } | undefined
+  for (const start of ranked.slice(0, 2)) {
+    if (best !== undefined && (best.cost <= enough || left < 2)) break
+    const fit = levenbergMarquardt(problem, start.state, stop(best === undefined ? Math.min(MOST_STEPS, Math.ceil(left * 0.75)) : MOST_STEPS)) // prettier-ignore
+    left -= fit.steps
+    if (best === undefined || fit.cost < best.cost) best = fit
+  }
+  return best === undefined ? null : { ...formOf(best.state, target), endedEarly: left <= 1 && best.cost > enough }
+}
+
+interface FitOptions {
+  /** Upper end of the fit, rad per sample. */
+  readonly upTo: number
+  readonly freeDelay: boolean
+  readonly order: number | undefined
+}
+
+/** The delay in samples with which a version comes nearest to the target, by least squares on its phase error where it isn't weak. */
+function likelyDelay(form: HalfForm, target: FitTarget): number {
+  const filter = fromHalf('z', { ...form, gain: form.gain === 0 ? 1 : form.gain })
+  let before = 0
+  let turns = 0
+  let above = 0
+  let below = 0
+  for (let k = 0; k < target.omega.length; k++) {
+    const omega = target.omega[k]!
+    const { re, im } = valueAt(filter, { re: Math.cos(omega), im: Math.sin(omega) })
+    const angle = Math.atan2(im * target.re[k]! - re * target.im[k]!, re * target.re[k]! + im * target.im[k]!)
+    if (k > 0) turns -= Math.round((angle - before) / (2 * Math.PI))
+    before = angle
+    above -= omega * (angle + 2 * Math.PI * turns)
+    below += omega * omega
+  }
+  return below > 0 ? above / below : 0
+}
+
+/**
+ * The fitted version: the digital filter whose complex response is nearest to the analog one from 0 up to a frequency, errors weighted as
+ * fitWeights says. It has as many poles as the original unless an order is stated, and zeros exactly where the original has them on
+ * the axis inside the band. Starts are the bilinear, the matched-z and the magnitude-matched version; poles and zeros are then moved
+ * together by damped Gauss–Newton steps in coordinates that can't leave the unit circle. The result is never worse than the rivals, in the
+ * criterion and in the largest weighted error: where the fit doesn't better both, it is the better rival itself.
+ *
+ * @param form the original in rad per sample
+ * @param rivals its bilinear version, held at the edges where there are any, and its matched-z version
+ */
+export function fittedVersion(form: HalfForm, rivals: readonly HalfForm[], options: FitOptions): FittedVersion {
+  const analog = fromHalf('s', form)
+  const order = options.order ?? analog.poles.length
+  const target = targetOf(analog, options.upTo, options.freeDelay, order)
+  const named = rivals.map((rival, index) => {
+    const delays = options.freeDelay ? [0, likelyDelay(rival, target)] : [0]
+    const [better] = delays.map((delay) => judged(rival, target, delay, true)).sort((a, b) => a.cost - b.cost)
+    return { ...better!, kept: index === 0 ? ('bilinear' as const) : ('matched-z' as const) }
+  })
+  const sameOrder = order === analog.poles.length
+  const least = Math.min(...named.map(({ cost }) => cost)) / target.omega.length
+  const good = Math.min(GOOD, 0.1 * Math.sqrt(least))
+  const fit = fitFrom([...rivals, magnitudeMatched(form)], order, target, good)
+  if (fit === null) return named[0]!
+  if (!sameOrder || named.every((rival) => fit.cost <= rival.cost && fit.worst <= rival.worst)) return { ...fit, kept: 'fit' } // prettier-ignore
+  const [best] = named.sort((a, b) => a.worst - b.worst)
+  return best!
+}
