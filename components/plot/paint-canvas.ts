@@ -1,4 +1,5 @@
 import type { Box } from './path'
+import { hatchPattern } from './hatch-pattern'
 import type { Palette } from './palette'
 import { outlineBox, rulingLines, type Mark, type Scene, type Stroke } from './scene'
 import { markerOutline } from './trace-style'
@@ -18,6 +19,7 @@ export type Brush = Pick<
   | 'rect'
   | 'roundRect'
   | 'clip'
+  | 'createPattern'
   | 'fill'
   | 'stroke'
   | 'fillRect'
@@ -45,10 +47,10 @@ export function paintCanvas(brush: Brush, scene: Scene, palette: Palette, device
   brush.clearRect(0, 0, scene.width, scene.height)
   brush.lineJoin = 'round'
   brush.textBaseline = 'alphabetic'
-  for (const mark of scene.marks) paintMark(brush, mark, palette)
+  for (const mark of scene.marks) paintMark(brush, mark, palette, devicePixelRatio)
 }
 
-function paintMark(brush: Brush, mark: Mark, palette: Palette): void {
+function paintMark(brush: Brush, mark: Mark, palette: Palette, devicePixelRatio: number): void {
   switch (mark.kind) {
     case 'fill':
       brush.globalAlpha = mark.opacity ?? 1
@@ -71,10 +73,18 @@ function paintMark(brush: Brush, mark: Mark, palette: Palette): void {
       stroke(brush, mark.stroke, palette)
       return
     case 'hatch': {
-      brush.save()
       brush.beginPath()
       tracePoints(brush, mark.outline)
       brush.closePath()
+      const pattern = hatchPattern(brush, mark, palette, devicePixelRatio)
+      if (pattern) {
+        brush.globalAlpha = mark.stroke.opacity ?? 1
+        brush.fillStyle = pattern
+        brush.fill()
+        brush.globalAlpha = 1
+        return
+      }
+      brush.save()
       brush.clip()
       const lines = rulingLines(outlineBox(mark.outline), mark.ruling, mark.gapPixels)
       brush.beginPath()
@@ -118,7 +128,7 @@ function paintMark(brush: Brush, mark: Mark, palette: Palette): void {
       brush.beginPath()
       traceBox(brush, mark.box, 0)
       brush.clip()
-      for (const inner of mark.marks) paintMark(brush, inner, palette)
+      for (const inner of mark.marks) paintMark(brush, inner, palette, devicePixelRatio)
       brush.restore()
       return
   }

@@ -1,5 +1,16 @@
 import type { DesignSpec } from '@/dsp'
-import { delayFreeBudget, heldAt, heldAtEdges, impulseInvariant, matchedZ, notHeld, spec } from './specs'
+import {
+  delayFreeBudget,
+  firSpec,
+  fittedTo,
+  heldAt,
+  heldAtEdges,
+  impulseInvariant,
+  matchedZ,
+  notHeld,
+  pendulum,
+  spec,
+} from './specs'
 
 /*
  * The demo: what a small measurement team has on its desk. Each history is one that such a filter really has; the notes say why the next
@@ -45,7 +56,15 @@ const footbridge: SeedProject = {
           daysAgo: 58,
         },
         {
-          spec: spec({ family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [120] }, 600, heldAt(120)),
+          spec: {
+            ...spec({ family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [120] }, 600, heldAt(120)),
+            sheet: [
+              { kind: 'pass', fromHz: 0, toHz: 80, withinDb: 0.2 },
+              { kind: 'lose-tone', hz: 250, attenuationDb: 50 },
+              { kind: 'phase-departure', upToHz: 60, withinDegrees: 5, removeDelay: true },
+              { kind: 'overshoot', atMostPercent: 15 },
+            ],
+          },
           note: 'Order 4 for the hanger rattle at 250 Hz. Phase leaves the analog one well below the corner; see Rates before agreeing to 600 Hz.',
           by: 'owner',
           daysAgo: 33,
@@ -72,7 +91,15 @@ const footbridge: SeedProject = {
           daysAgo: 41,
         },
         {
-          spec: spec({ family: 'butterworth', response: 'lowpass', order: 6, edgesHz: [50] }, 800, heldAtEdges),
+          spec: {
+            ...spec({ family: 'butterworth', response: 'lowpass', order: 6, edgesHz: [50] }, 800, heldAtEdges),
+            sheet: [
+              { kind: 'pass', fromHz: 0, toHz: 35, withinDb: 0.1 },
+              { kind: 'stop', fromHz: 75, attenuationDb: 20 },
+              { kind: 'phase-departure', upToHz: 50, withinDegrees: 3, removeDelay: false },
+              { kind: 'cost', atMostMultiplies: 20 },
+            ],
+          },
           note: 'Twice the rate, so that the phase between channels can be compared with the analog test rig up to 50 Hz.',
           by: 'owner',
           daysAgo: 20,
@@ -228,6 +255,28 @@ const pumpHall: SeedProject = {
           by: 'owner',
           daysAgo: 15,
         },
+        {
+          spec: firSpec(
+            {
+              kind: 'equiripple',
+              response: 'lowpass',
+              taps: 85,
+              bands: [
+                { fromHz: 0, toHz: 2000, gain: 1, weight: 1 },
+                { fromHz: 3120, toHz: 10_240, gain: 0, weight: 50 },
+              ],
+            },
+            20_480,
+            [
+              { kind: 'pass', fromHz: 0, toHz: 2000, withinDb: 0.05 },
+              { kind: 'stop', fromHz: 3120, attenuationDb: 80 },
+              { kind: 'delay-spread', fromHz: 0, toHz: 2000, atMostSeconds: 1e-5 },
+            ],
+          ),
+          note: 'The same two wishes as taps: the delay is one number for all channels, at four times the work.',
+          by: 'designer',
+          daysAgo: 6,
+        },
       ],
     },
   ],
@@ -276,6 +325,23 @@ const operatorSeat: SeedProject = {
           note: 'Stated by its −3 dB point, as the test plan does.',
           by: 'owner',
           daysAgo: 27,
+        },
+      ],
+    },
+    {
+      title: 'Axle velocity sensor, as its maker states it',
+      versions: [
+        {
+          spec: pendulum('Axle sensor, 4.5 Hz', 4.5, 0.6, 250, notHeld),
+          note: 'The sensor’s own response by its poles, so that the logger can be held against it.',
+          by: 'designer',
+          daysAgo: 14,
+        },
+        {
+          spec: pendulum('Axle sensor, 4.5 Hz', 4.5, 0.6, 250, fittedTo(100)),
+          note: 'Fitted up to 100 Hz: closer in phase than the transforms at this rate.',
+          by: 'designer',
+          daysAgo: 5,
         },
       ],
     },

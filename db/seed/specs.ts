@@ -1,4 +1,13 @@
-import type { AnalogSpec, DepartureBudget, Method, DesignSpec } from '@/dsp'
+import type {
+  AnalogSpec,
+  DepartureBudget,
+  FamilyDesign,
+  FirDesign,
+  FirSpec,
+  Method,
+  OwnDesign,
+  RequirementSheet,
+} from '@/dsp'
 
 /*
  * Short ways to write a spec, for the demo's many.
@@ -14,10 +23,51 @@ export const notHeld: Method = { method: 'bilinear', hold: 'none' }
 export const matchedZ: Method = { method: 'matched-z' }
 export const impulseInvariant: Method = { method: 'impulse-invariant', restoreGain: true }
 
-export const spec = (analog: AnalogSpec, sampleRateHz: number, how: Method, budget = usualBudget): DesignSpec => ({
+export const spec = (analog: AnalogSpec, sampleRateHz: number, how: Method, budget = usualBudget): FamilyDesign => ({
   format: 1,
   analog,
   sampleRateHz,
   how,
   budget,
 })
+
+export const firSpec = (fir: FirSpec, sampleRateHz: number, sheet: RequirementSheet): FirDesign => ({
+  format: 1,
+  fir,
+  sampleRateHz,
+  budget: usualBudget,
+  sheet,
+})
+
+/** A pendulum-type velocity sensor by its roots: two zeros at rest, a damped pair at its own frequency. */
+export const pendulum = (
+  name: string,
+  ownHz: number,
+  damping: number,
+  sampleRateHz: number,
+  how: Method,
+): OwnDesign => {
+  const omega = 2 * Math.PI * ownHz
+  const im = omega * Math.sqrt(1 - damping ** 2)
+  return {
+    format: 1,
+    own: {
+      given: 'roots',
+      name,
+      zeros: [
+        { re: 0, im: 0 },
+        { re: 0, im: 0 },
+      ],
+      poles: [
+        { re: -damping * omega, im },
+        { re: -damping * omega, im: -im },
+      ],
+      gain: 1,
+    },
+    sampleRateHz,
+    how,
+    budget: usualBudget,
+  }
+}
+
+export const fittedTo = (upToHz: number): Method => ({ method: 'fitted', upToHz })

@@ -1,41 +1,61 @@
 'use client'
 
-import { useId, useState, type KeyboardEvent } from 'react'
+import { useId, useRef, useState, type KeyboardEvent } from 'react'
 import { classNames } from '@/lib/format/class-names'
 import type { Parsed } from '@/lib/units/parse'
+import { RefusalNote } from '../statement/refusal-note'
 
-/** A small number typed in place beside its words; refused with a sentence, Escape brings the old one back. */
+/** Why a value can't be used, with the nearest one that can where there is one. */
+export interface Refused {
+  readonly message: string
+  readonly nearest?: number
+  readonly nearestText?: string
+}
+
+/**
+ * A small number typed in place beside its words; refused with a sentence, Escape brings the old one back. What is typed belongs to the
+ * value that it was typed over: when another value comes in, it is let go.
+ */
 export function InlineQuantity({
   label,
   text,
   parse,
   onValue,
   onStep,
+  onStepped,
   disabled = false,
 }: {
   label: string
   text: string
   parse(text: string): Parsed | Promise<Parsed>
   /** Answers with the reason when the value can't be used. */
-  onValue(value: number): string | null
+  onValue(value: number): string | Refused | null
   onStep?(direction: 1 | -1): void
+  /** A run of steps has ended: the key is up, or the focus gone. */
+  onStepped?(): void
   disabled?: boolean
 }) {
-  const [typed, setTyped] = useState<string | null>(null)
-  const [problem, setProblem] = useState<string | null>(null)
+  const [entry, setEntry] = useState<{ over: string; words: string; problem: Refused | null } | null>(null)
   const id = useId()
+  const input = useRef<HTMLInputElement>(null)
+  const { words: typed = null, problem = null } = entry?.over === text ? entry : {}
   const shown = typed ?? text
+  const letGo = () => setEntry(null)
 
   async function finish() {
     if (typed === null || typed === text) {
-      setTyped(null)
-      setProblem(null)
+      letGo()
       return
     }
     const parsed = await parse(typed)
     const reason = parsed.ok ? onValue(parsed.value) : parsed.message
-    setProblem(reason)
-    if (reason === null) setTyped(null)
+    if (reason === null) letGo()
+    else setEntry({ over: text, words: typed, problem: typeof reason === 'string' ? { message: reason } : reason })
+  }
+
+  function takeNearest(nearest: number) {
+    if (onValue(nearest) === null) letGo()
+    input.current?.focus()
   }
 
   function onKeyDown(event: KeyboardEvent) {
@@ -44,8 +64,7 @@ export function InlineQuantity({
       void finish()
     } else if (event.key === 'Escape') {
       event.preventDefault()
-      setTyped(null)
-      setProblem(null)
+      letGo()
     } else if (onStep && typed === null && (event.key === 'ArrowUp' || event.key === 'ArrowDown')) {
       event.preventDefault()
       onStep(event.key === 'ArrowUp' ? 1 : -1)
@@ -64,6 +83,7 @@ export function InlineQuantity({
           {shown || ' '}
         </span>
         <input
+          ref={input}
           aria-label={label}
           aria-invalid={problem ? true : undefined}
           aria-describedby={problem ? id : undefined}
@@ -74,15 +94,24 @@ export function InlineQuantity({
           value={shown}
           className="col-start-1 row-start-1 min-h-6 w-0 min-w-full bg-transparent outline-offset-1"
           onFocus={(event) => event.currentTarget.select()}
-          onChange={(event) => setTyped(event.currentTarget.value)}
+          onChange={(event) => setEntry({ over: text, words: event.currentTarget.value, problem })}
           onKeyDown={onKeyDown}
-          onBlur={() => void finish()}
+          onKeyUp={(event) => {
+            if (event.key === 'ArrowUp' || event.key === 'ArrowDown') onStepped?.()
+          }}
+          onBlur={() => {
+            onStepped?.()
+            void finish()
+          }}
         />
       </span>
       {problem ? (
-        <span id={id} role="alert" className="text-[13px] text-vermilion">
-          {problem}
-        </span>
+        <RefusalNote
+          id={id}
+          message={problem.message}
+          nearestText={problem.nearest === undefined ? undefined : (problem.nearestText ?? String(problem.nearest))}
+          onUseNearest={problem.nearest === undefined ? undefined : () => takeNearest(problem.nearest ?? 0)}
+        />
       ) : null}
     </>
   )

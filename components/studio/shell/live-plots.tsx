@@ -1,4 +1,5 @@
 import { useMemo } from 'react'
+import { useSheetGrounds } from '../sheet/use-sheet-grounds'
 import { ResponseStack } from '../stack/response-stack'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
@@ -16,6 +17,7 @@ export function LivePlots({
   readOnly: boolean
 }) {
   const { spec, view, traces } = useDrawnTraces(store)
+  const grounds = useSheetGrounds(spec, view, traces)
   const refusal = useStudio(store, (state) => state.refusal)
   const { edit, onView, resetView } = useMemo(() => {
     const { begin, change, commit, cancel, look, removeDelay: remove, resetView } = store.getState()
@@ -32,6 +34,7 @@ export function LivePlots({
     <ResponseStack
       spec={spec}
       traces={traces}
+      grounds={grounds}
       trusted={trusted}
       view={view}
       onView={onView}

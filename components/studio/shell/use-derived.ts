@@ -1,4 +1,4 @@
-import { useDeferredValue, useMemo } from 'react'
+import { useMemo } from 'react'
 import { methodNames } from '@/lib/designs/words'
 import {
   curvePoints,
@@ -12,7 +12,7 @@ import {
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import type { DesignSpec } from '@/dsp'
-import { useUnhurried } from './use-unhurried'
+import { usePacedSpec } from './use-paced-spec'
 
 /*
  * Two paces. What is drawn follows the hand within the frame, with fewer points until the hand rests; what stands beside it in words and
@@ -69,9 +69,7 @@ export function useDrawnTraces(store: StudioStore) {
 
 /** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design. */
 export function useSettled(store: StudioStore) {
-  const now = useStudio(store, (state) => state.spec)
-  const inMotion = useStudio(store, (state) => state.gestureMark !== null)
-  const spec = useDeferredValue(useUnhurried(now, inMotion, TELL_EVERY_MS))
+  const spec = usePacedSpec(store, TELL_EVERY_MS)
   const made = useMemo(() => {
     const versions = deriveVersions(spec)
     return versions && { spec, versions, trust: deriveTrust(spec, versions), figures: deriveFigures(spec, versions) }

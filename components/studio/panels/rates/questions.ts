@@ -46,7 +46,10 @@ export type LowestRate =
 
 export const subjectOf = (spec: FamilyDesign, upToHz: number): Subject => ({
   analog: spec.analog,
-  methods: methodNames.map((id) => methodAsShown(spec, id)),
+  // Fitted to just where it is judged, unless the statement says otherwise: that doesn't change with the rate.
+  methods: methodNames.map((id) =>
+    id === 'fitted' && spec.how.method !== id ? { method: id, upToHz } : methodAsShown(spec, id),
+  ),
   upToHz,
 })
 

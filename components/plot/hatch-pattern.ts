@@ -1,0 +1,49 @@
+import type { Palette } from './palette'
+import type { Ruling, Stroke } from './scene'
+
+/* Ruled ground as a tile: filling with it costs a small part of what stroking every line does, and a drag repaints it each frame. */
+
+export interface HatchLook {
+  readonly ruling: Ruling
+  readonly gapPixels: number
+  readonly stroke: Stroke
+}
+
+const kept = new Map<string, CanvasPattern>()
+/** Colours change with the theme; more looks than this at one time there are not. */
+const MOST_KEPT = 24
+
+/** A repeating tile of 45° lines, anchored at the canvas's corner; null where there is no canvas to make one on. */
+export function hatchPattern(
+  brush: { createPattern(tile: OffscreenCanvas, repeat: 'repeat'): CanvasPattern | null },
+  { ruling, gapPixels, stroke }: HatchLook,
+  palette: Palette,
+  devicePixelRatio: number,
+): CanvasPattern | null {
+  if (typeof OffscreenCanvas === 'undefined' || stroke.dash?.length) return null
+  const colour = palette.inks[stroke.ink]
+  const key = [ruling, gapPixels, stroke.widthPixels, colour, devicePixelRatio].join()
+  const known = kept.get(key)
+  if (known) return known
+  // The gap is measured across the lines.
+  const size = Math.max(1, Math.round(gapPixels * Math.SQRT2 * devicePixelRatio))
+  const tile = new OffscreenCanvas(size, size)
+  const pen = tile.getContext('2d')
+  if (!pen) return null
+  pen.strokeStyle = colour
+  pen.lineWidth = stroke.widthPixels * devicePixelRatio
+  pen.beginPath()
+  // The line and its neighbours, whose edges reach into this tile's corners.
+  for (const shift of [-size, 0, size]) {
+    const [from, to] = ruling === 'rising' ? [2 * size, -size] : [-size, 2 * size]
+    pen.moveTo(shift - size, from)
+    pen.lineTo(shift + 2 * size, to)
+  }
+  pen.stroke()
+  const pattern = brush.createPattern(tile, 'repeat')
+  if (!pattern) return null
+  pattern.setTransform(new DOMMatrix().scale((gapPixels * Math.SQRT2) / size))
+  if (kept.size >= MOST_KEPT) kept.clear()
+  kept.set(key, pattern)
+  return pattern
+}
