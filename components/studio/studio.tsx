@@ -26,6 +26,7 @@ import { DesignTitleBlock } from './shell/design-title-block'
 import { LivePlanes } from './shell/live-planes'
 import { LivePlots } from './shell/live-plots'
 import { useSettled } from './shell/use-derived'
+import { SheetPanel } from './sheet/sheet-panel'
 import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
@@ -204,7 +205,7 @@ export function Studio({
             <Fence what="The plots" retryOn={spec}>
               <LivePlots store={store} trusted={made.trust} readOnly={!viewer.mayEdit} />
             </Fence>
-            <aside aria-label="Planes, departure and title block" className="flex min-w-0 flex-col gap-5">
+            <aside aria-label="Planes, departure, requirements and title block" className="flex min-w-0 flex-col gap-5">
               <Fence what="The planes and the departure table" retryOn={spec}>
                 <LivePlanes store={store} />
                 <DepartureTable
@@ -214,6 +215,9 @@ export function Studio({
                   trust={made.trust}
                   readOnly={!viewer.mayEdit}
                 />
+              </Fence>
+              <Fence what="The requirement sheet" retryOn={spec}>
+                <SheetPanel store={store} spec={spec} readOnly={!viewer.mayEdit} />
               </Fence>
               <DesignTitleBlock design={design} latest={latest} spec={spec} viewer={viewer} />
             </aside>

@@ -227,9 +227,15 @@ export function marginWords(result: Judgement): string {
   return says ? `${word} by ${resultQuantity(Math.abs(margin), result)}` : word
 }
 
+/** A frequency below this part of the rate is as good as 0 Hz: no axis shows it. */
+const NEXT_TO_NOTHING = 1e-5
+export const isNearDc = (hertz: number, sampleRateHz: number): boolean => hertz < sampleRateHz * NEXT_TO_NOTHING
+
 /** "worst at 118 Hz"; null where no frequency is the worst one. */
-export const worstWords = (worstHz: number | null): string | null =>
-  worstHz === null ? null : `worst at ${worstHz === 0 ? 'DC' : formatHz(worstHz, 3)}`
+export function worstWords(worstHz: number | null, sampleRateHz: number): string | null {
+  if (worstHz === null) return null
+  return isNearDc(worstHz, sampleRateHz) ? 'worst at DC' : `worst at ${formatHz(worstHz, 3)}`
+}
 
 /** Room as a part of the limit, by which lines of different units are ranked. */
 export const relativeMargin = ({ margin, limit }: Pick<RequirementResult, 'margin' | 'limit'>): number =>

@@ -30,8 +30,9 @@ export const sheetOf = (spec: DesignSpec): RequirementSheet => spec.sheet ?? []
 
 /** The design with another sheet; an empty sheet is none. */
 export function withSheet<Spec extends DesignSpec>(spec: Spec, lines: RequirementSheet): Spec {
-  const { sheet: _, ...rest } = spec
-  return (lines.length === 0 ? rest : { ...spec, sheet: lines }) as Spec
+  const next = { ...spec, sheet: lines }
+  if (lines.length === 0) delete (next as DesignSpec).sheet
+  return next
 }
 
 export function withLine<Spec extends DesignSpec>(spec: Spec, index: number, line: Requirement): Spec {
@@ -237,7 +238,8 @@ export function lineOptions(
   foldHz: number,
 ): { readonly current: string; readonly options: readonly LineOption[] } {
   if (choice === 'reach' && line.kind === 'stop') {
-    const { toHz: _, ...open } = line
+    const { kind, fromHz, attenuationDb } = line
+    const open = { kind, fromHz, attenuationDb }
     const toHz = line.toHz ?? Number(Math.min(2 * line.fromHz || foldHz / 2, foldHz).toPrecision(4))
     return {
       current: line.toHz === undefined ? 'above' : 'to',
