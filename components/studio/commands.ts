@@ -12,10 +12,12 @@ export interface StudioCommand {
 }
 
 export const drawerNames: Record<DrawerTab, string> = {
+  candidates: 'Candidates',
   rates: 'Rates',
   time: 'Time response',
   sections: 'Sections',
   trial: 'Signal trial',
+  original: 'Original',
   history: 'History',
 }
 

@@ -42,7 +42,7 @@ export interface StackView {
   readonly hidden: readonly TraceId[]
 }
 
-export const drawerTabs = ['rates', 'time', 'sections', 'trial', 'history'] as const
+export const drawerTabs = ['candidates', 'rates', 'time', 'sections', 'trial', 'original', 'history'] as const
 export type DrawerTab = (typeof drawerTabs)[number]
 
 /** A refusal as the studio shows it, beside the word that `field` names. */

@@ -13,6 +13,13 @@ import { drawerTabs } from '../view'
 import type { Settled } from './use-derived'
 
 const Opening = () => <p className="py-6 text-[14px] text-pencil">Opening…</p>
+const CandidatesPanel = dynamic(
+  () => import('../candidates/candidates-panel').then((module) => module.CandidatesPanel),
+  { loading: Opening },
+)
+const OriginalPanel = dynamic(() => import('../original/original-panel').then((module) => module.OriginalPanel), {
+  loading: Opening,
+})
 const RatesPanel = dynamic(() => import('../panels/rates/rates-panel').then((module) => module.RatesPanel), {
   loading: Opening,
 })
@@ -76,6 +83,12 @@ export function Drawer({
             />
           ) : null}
           {tab === 'trial' ? <SignalTrial spec={spec} mayEdit={mayEdit} onRedesignAt={runAt} /> : null}
+          {tab === 'candidates' ? (
+            <CandidatesPanel store={store} designId={design.id} spec={spec} mayEdit={mayEdit} />
+          ) : null}
+          {tab === 'original' ? (
+            <OriginalPanel store={store} spec={spec} settled={settled} readOnly={!mayEdit} />
+          ) : null}
           {settled && tab === 'rates' ? (
             <RatesPanel
               spec={settled.spec}

@@ -1,0 +1,4 @@
+import { expose } from 'comlink'
+import { candidatesService } from './candidates-service'
+
+expose(candidatesService)
