@@ -193,7 +193,7 @@ export function checkAnalogSpec(spec: AnalogSpec): void {
   }
 }
 
-function checkRate(sampleRateHz: number): void {
+export function checkRate(sampleRateHz: number): void {
   const range = [2 * EDGE_RANGE_HZ[0], EDGE_RANGE_HZ[1] / LEAST_PART_OF_RATE] as const
   if (sampleRateHz > range[0] && sampleRateHz <= range[1]) return
   const nearest = Number.isNaN(sampleRateHz) ? 1000 : clamp(sampleRateHz, [2 * range[0], range[1]])
@@ -247,6 +247,17 @@ function checkImpulseInvariant(spec: AnalogSpec): void {
   }
 }
 
+/** Whether a frequency can be held by the bilinear transform; `usualHz` is offered instead of one that isn't positive. */
+export function checkHold(hold: number | 'edges' | 'none', sampleRateHz: number, usualHz: number): void {
+  if (typeof hold !== 'number' || (hold > 0 && hold < sampleRateHz / 2)) return
+  throw new DesignError(
+    'hold-out-of-range',
+    'how.hold',
+    `0 < held frequency < ${hertz(sampleRateHz / 2)} (half the rate); ${hertz(hold)} was given.`,
+    hold > 0 ? tidy(sampleRateHz * 0.4995, 'down') : usualHz,
+  )
+}
+
 /** The nearest end of a fit that works, as a part of the rate. */
 const USUAL_END_OF_FIT = 0.45
 
@@ -296,17 +307,8 @@ export function checkDiscretization(spec: AnalogSpec, sampleRateHz: number, how:
   checkRate(sampleRateHz)
   checkEdgesAgainstRate(spec, sampleRateHz)
   switch (how.method) {
-    case 'bilinear': {
-      if (typeof how.hold !== 'number') return
-      if (how.hold > 0 && how.hold < sampleRateHz / 2) return
-      const nearest = how.hold > 0 ? tidy(sampleRateHz * 0.4995, 'down') : (spec.edgesHz[0] ?? 1)
-      throw new DesignError(
-        'hold-out-of-range',
-        'how.hold',
-        `0 < held frequency < ${hertz(sampleRateHz / 2)} (half the rate); ${hertz(how.hold)} was given.`,
-        nearest,
-      )
-    }
+    case 'bilinear':
+      return checkHold(how.hold, sampleRateHz, spec.edgesHz[0] ?? 1)
     case 'impulse-invariant':
       return checkImpulseInvariant(spec)
     case 'matched-z':

@@ -1,8 +1,9 @@
 import { fromHalf, fullCount, valueAt, type HalfForm } from '../forms/zeros-poles-gain'
 import { levenbergMarquardt, type Stop } from '../numeric/levenberg-marquardt'
 import { fitProblem, productOf, rootsOf, type FitTarget, type Product } from './fitted-product'
-import { targetOf } from './fitted-target'
+import { fitWeights, targetOf } from './fitted-target'
 import { magnitudeMatched } from './magnitude-matched'
+import { vectorFit } from './vector-fit'
 
 /** A form on the z-plane as a fit judges it. */
 export interface FittedForm {
@@ -147,9 +148,29 @@ export function fittedVersion(form: HalfForm, rivals: readonly HalfForm[], optio
   const sameOrder = order === analog.poles.length
   const least = Math.min(...named.map(({ cost }) => cost)) / target.omega.length
   const good = Math.min(GOOD, 0.1 * Math.sqrt(least))
-  const fit = fitFrom([...rivals, magnitudeMatched(form)], order, target, good)
+  const starts = sameOrder ? [...rivals, magnitudeMatched(form)] : vectorFit(target, order)
+  const fit = fitFrom(starts, order, target, good)
   if (fit === null) return named[0]!
   if (!sameOrder || named.every((rival) => fit.cost <= rival.cost && fit.worst <= rival.worst)) return { ...fit, kept: 'fit' } // prettier-ignore
   const [best] = named.sort((a, b) => a.worst - b.worst)
   return best!
+}
+
+/** A fit of measured values that agrees to this, in root mean square, is ended. */
+const GOOD_ON_VALUES = 1e-10
+
+/**
+ * The digital filter nearest to values of a response, from starts found by vector fitting.
+ *
+ * @param values the response on rising angles in rad per sample
+ * @param order poles; fewer than there are values
+ */
+export function fitValues(
+  values: Pick<FitTarget, 'omega' | 're' | 'im' | 'upTo' | 'freeDelay'>,
+  order: number,
+): FittedVersion {
+  const weight = fitWeights(values.re.map((re, k) => Math.hypot(re, values.im[k]!)))
+  const target: FitTarget = { ...values, weight, pinned: { atZero: 0, angles: [] } }
+  const fit = fitFrom(vectorFit(target, order), order, target, GOOD_ON_VALUES)
+  return { ...fit!, kept: 'fit' }
 }
