@@ -71,6 +71,19 @@ export {
 export type { Judged } from './requirements/departure-line'
 export { contradictions, type Contradiction } from './requirements/contradictions'
 export { requirementTemplates, type RequirementTemplate, type TemplateOptions } from './requirements/templates'
+export { candidateSteps, searchCandidates } from './candidates/search'
+export { sketchFrequencies } from './candidates/figures'
+export {
+  isOffered,
+  type CandidateFigures,
+  type CandidateOutcome,
+  type CandidateParts,
+  type CandidateRequest,
+  type CandidateRow,
+  type OfferedRow,
+  type RefusedRow,
+  type Spend,
+} from './candidates/request'
 export { multipliesPerSample } from './forms/cost'
 
 // Design: spec → analog → digital → sections
