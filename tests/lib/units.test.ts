@@ -1,5 +1,13 @@
 import { describe, expect, it } from 'vitest'
-import { parseDecibels, parseDegrees, parseFrequency, parseOrder } from '@/lib/units/parse'
+import {
+  parseDecibels,
+  parseDegrees,
+  parseFrequency,
+  parseOrder,
+  parseCount,
+  parsePercent,
+  parseSeconds,
+} from '@/lib/units/parse'
 
 const at = { nyquistHz: 500 }
 
@@ -36,6 +44,35 @@ describe('frequencies as people type them', () => {
 
   it('does not let the sampling rate be given as a part of itself', async () => {
     expect((await parseFrequency('0.8 Nyquist', { nyquistHz: null })).ok).toBe(false)
+  })
+})
+
+describe('times, parts and counts', () => {
+  it.each([
+    ['5 ms', 5e-3],
+    ['200 µs', 2e-4],
+    ['200 \u03bcs', 2e-4],
+    ['200us', 2e-4],
+    ['0,5 s', 0.5],
+    ['90 ns', 9e-8],
+    ['2 min', 120],
+    ['3 sec', 3],
+  ])('%s', (text, seconds) => {
+    const parsed = parseSeconds(text)
+    expect(parsed.ok && parsed.value).toBeCloseTo(seconds, 12)
+  })
+  it.each(['200', '', 'soon', '5 m', '5 Hz'])('takes %j for no time', (text) => {
+    const parsed = parseSeconds(text)
+    expect(parsed.ok).toBe(false)
+    if (!parsed.ok) expect(parsed.message).toMatch(/ms or/)
+  })
+  it('reads per cent, bits and multiplies', () => {
+    expect(parsePercent('5')).toEqual({ ok: true, value: 5 })
+    expect(parsePercent('2,5 %')).toEqual({ ok: true, value: 2.5 })
+    expect(parsePercent('half').ok).toBe(false)
+    expect(parseCount('16 bits')).toEqual({ ok: true, value: 16 })
+    expect(parseCount('1 multiply')).toEqual({ ok: true, value: 1 })
+    expect(parseCount('20 multiplies')).toEqual({ ok: true, value: 20 })
   })
 })
 
