@@ -140,9 +140,11 @@ const LEAST = 1e-12
  */
 export function productOf(form: HalfForm, order: number, target: FitTarget): Product {
   const t = Math.tan(target.upTo / 2)
+  const room = order - pinnedCount(target.pinned)
   const zeros = withoutPinned(form.zeros, target.pinned)
-  const lacking = order - pinnedCount(target.pinned) - fullCount(zeros)
-  const all = [...zeros, ...Array.from({ length: Math.max(0, lacking) }, () => ({ re: -1, im: 0 }))]
+  while (fullCount(zeros) > room) zeros.pop()
+  const lacking = room - fullCount(zeros)
+  const all = [...zeros, ...Array.from({ length: lacking }, () => ({ re: -1, im: 0 }))]
   const above = factors(all.map((root) => toBand(root, t)))
   const below = factors(form.poles.map((root) => toBand(root, t)))
   const logs = ([n0 = 1, n1 = 1]: number[]) => [Math.log(Math.max(n1, LEAST)), Math.log(Math.max(n0, LEAST * LEAST))]

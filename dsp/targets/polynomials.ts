@@ -15,6 +15,8 @@ const BITS = 512
 /** A change in the sixth digit of a coefficient then moves a pole by a thousandth of itself, or by a tenth. */
 const NOTED_CONDITION = 1e3
 const CAUTIONED_CONDITION = 1e5
+/** From here on the poles count as one that is repeated. */
+const REPEATED_CONDITION = 1e9
 
 function trimmed(coefficients: readonly number[], field: string): number[] {
   coefficients.forEach((value, index) => {
@@ -80,11 +82,12 @@ function conditionDiagnostics(denominator: readonly number[], poles: readonly Co
     {
       code: 'polynomials-ill-conditioned',
       severity: condition > CAUTIONED_CONDITION ? 'caution' : 'note',
-      message: Number.isFinite(condition)
-        ? `A change of a coefficient in its sixth digit moves a pole by up to ${show(Number((condition * 1e-4).toPrecision(2)))} %; where the poles are known, give the roots.`
-        : 'A pole is repeated, so that it moves far for the smallest change of a coefficient; where the poles are known, give the roots.',
+      message:
+        condition < REPEATED_CONDITION
+          ? `A change of a coefficient in its sixth digit moves a pole by up to ${show(Number((condition * 1e-4).toPrecision(2)))} %; where the poles are known, give the roots.`
+          : 'A pole is repeated, so that it moves far for the smallest change of a coefficient; where the poles are known, give the roots.',
       field: 'own.denominator',
-      value: Number.isFinite(condition) ? condition : Number.MAX_VALUE,
+      value: Math.min(condition, Number.MAX_VALUE),
     },
   ]
 }
