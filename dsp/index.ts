@@ -93,6 +93,9 @@ export { designAnalog } from './design-analog'
 export { minimumOrder, type LeastOrder } from './prototypes/order'
 export type { OrderRequirement } from './prototypes/order-check'
 export { discretize } from './discretise/discretize'
+export { fittedAdvantage, type FittedAdvantage, type Rival, type RivalDeparture } from './discretise/fitted-advantage'
+export { designOwn, referenceOfTarget, type OwnDesignResult } from './targets/design-own'
+export type { MeasuredTable } from './targets/measured'
 export { toSections, type SectionOptions, type SectionOrder } from './forms/sections'
 export type { SectionScale } from './forms/section-scaling'
 export { toTransferFunction, type TransferFunction } from './forms/transfer-function'
@@ -108,6 +111,14 @@ export {
 } from './response/frequency'
 export { groupDelay, groupDelayInto, phaseDelay, phaseResponse, phaseResponseInto } from './response/delay'
 export { departure, worstDeparture, type Departure, type WorstDeparture } from './response/departure'
+export {
+  referenceDelay,
+  referenceMagnitudeDb,
+  referencePhase,
+  referenceResponse,
+  type Reference,
+} from './response/reference'
+export { departureFrom, residual, type Residual } from './response/departure-from-reference'
 export { trustedBand, type TrustedBand } from './response/trusted-band'
 export {
   lowestRate,
