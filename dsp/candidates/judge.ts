@@ -1,15 +1,9 @@
 import { show } from '../check'
 import type { Judged } from '../requirements/departure-line'
-import { checkRequirement, checkSheet, type RequirementResult } from '../requirements/evaluate'
+import { checkRequirement, type RequirementResult } from '../requirements/evaluate'
 import { duration, lineName } from '../requirements/line-words'
 import type { Requirement, RequirementSheet } from '../requirements/requirement'
-
-/** How far a design is from a sheet: the line that it misses, by which part of its limit. */
-export interface Miss {
-  readonly index: number
-  readonly parts: number
-  readonly result: RequirementResult
-}
+import type { Miss } from './screen'
 
 export type Verdict = { readonly results: readonly RequirementResult[] } | { readonly miss: Miss }
 
@@ -32,9 +26,23 @@ const EFFORT: Readonly<Record<Requirement['kind'], number>> = {
 /** Misses further than this, or without a measure, are all alike. */
 const FAR = 1e3
 
-export function missOf(index: number, result: RequirementResult): Miss {
+function missOf(index: number, result: RequirementResult): Miss {
   const parts = -result.margin / (result.limit > 0 ? result.limit : 1)
-  return { index, parts: Number.isFinite(parts) ? Math.min(parts, FAR) : FAR, result }
+  return { index, parts: Number.isFinite(parts) ? Math.min(parts, FAR) : FAR, words: words(index, result) }
+}
+
+function amount({ unit, margin }: RequirementResult): string {
+  const size = Math.abs(margin)
+  if (unit === 's') return duration(Number(size.toPrecision(3)))
+  const rounded = show(Number(size.toPrecision(3)))
+  if (unit === 'multiplies') return `${rounded} ${size === 1 ? 'multiply' : 'multiplies'}`
+  return unit === '°' ? `${rounded}°` : `${rounded} ${unit}`
+}
+
+function words(index: number, result: RequirementResult): string {
+  const name = lineName(index, result.requirement)
+  if (Number.isFinite(result.margin)) return `misses ${name} by ${amount(result)}`
+  return result.reason === undefined ? `misses ${name}` : `misses ${name}: ${result.reason}`
 }
 
 /** Judges line after line, the quick ones first, and stops at the first that is missed. */
@@ -47,30 +55,4 @@ export function judge(design: Judged, sheet: RequirementSheet): Verdict {
     results[index] = result
   }
   return { results }
-}
-
-/** The line that a design misses furthest, all of them judged; null when it misses none. */
-export function worstMiss(design: Judged, sheet: RequirementSheet): Miss | null {
-  let worst: Miss | null = null
-  checkSheet(design, sheet).forEach((result, index) => {
-    if (result.met) return
-    const miss = missOf(index, result)
-    if (worst === null || miss.parts > worst.parts) worst = miss
-  })
-  return worst
-}
-
-function amount({ unit, margin }: RequirementResult): string {
-  const size = Math.abs(margin)
-  if (unit === 's') return duration(Number(size.toPrecision(3)))
-  const rounded = show(Number(size.toPrecision(3)))
-  if (unit === 'multiplies') return `${rounded} ${size === 1 ? 'multiply' : 'multiplies'}`
-  return unit === '°' ? `${rounded}°` : `${rounded} ${unit}`
-}
-
-/** A miss as a clause: “misses line 3 (…) by 2.1°”. */
-export function missWords({ index, result }: Miss): string {
-  const name = lineName(index, result.requirement)
-  if (Number.isFinite(result.margin)) return `misses ${name} by ${amount(result)}`
-  return result.reason === undefined ? `misses ${name}` : `misses ${name}: ${result.reason}`
 }

@@ -2,15 +2,17 @@ import { designFromSpec, type Design } from '../design'
 import { designAnalog } from '../design-analog'
 import { discretize } from '../discretise/discretize'
 import { DesignError } from '../errors'
-import type { AnyDigital, Filter } from '../forms/filter'
+import { checkDiscretization } from '../check'
+import { magnitudeDb } from '../response/frequency'
+import { sampledResponse, sampledSystem } from '../response/sampled'
 import { minimumOrder } from '../prototypes/order'
 import type { AnalogSpec, Family, FamilyDesign, Method, MethodName } from '../spec'
 import type { RequirementSheet } from '../requirements/requirement'
 import { keptDelay } from './figures'
-import { judge, missWords, worstMiss, type Miss, type Verdict } from './judge'
+import { judge, type Verdict } from './judge'
 import type { Outline } from './outline'
 import type { CandidateRequest } from './request'
-import { passRoom, screenOf, stopRoom, type Screen } from './screen'
+import { passRoom, quickMiss, screenOf, stopRoom, type Levels, type Miss, type Screen } from './screen'
 import { slideOf, type Slide } from './slide'
 
 /*
@@ -23,11 +25,14 @@ export const MOST_ORDER = 24
 /** Orders that may pass without coming nearer to the sheet before a search gives up. */
 const PATIENCE = 4
 const PLACES = 5
-const NARROWINGS = 14
-const LAST_NARROWINGS = 24
+const NARROWINGS = 10
+const LAST_NARROWINGS = 22
 /** Missed by less than this part of its limit, a bound is sought more closely. */
 const CLOSE = 0.02
-const REFINEMENTS = 6
+const REFINEMENTS = 5
+/** Ripple is lessened by up to this factor, in so many halvings of its logarithm. */
+const LEAST_RIPPLE = 1 / 64
+const FLATTENINGS = 4
 
 export interface Found {
   readonly spec: FamilyDesign
@@ -95,9 +100,27 @@ const specAt = ({ request, how }: Task, analog: AnalogSpec): FamilyDesign => ({
   how,
 })
 
-/** What the quick look is taken at: the digital filter, or for a fitted one, which is slow to make, its original. */
-const quick = ({ how, request }: Task, analog: AnalogSpec): AnyDigital | Filter<'s'> =>
-  how.method === 'fitted' ? designAnalog(analog) : discretize(analog, request.sampleRateHz, how)
+/**
+ * Levels for the quick look: of the digital filter, or of what gives nearly the same sooner. An impulse- or step-invariant filter takes
+ * long to find its zeros, and is looked at through its state space; a fitted one is looked at by its original.
+ */
+function quick({ how, request }: Task, analog: AnalogSpec): Levels {
+  if (how.method === 'fitted') {
+    const filter = designAnalog(analog)
+    return (at) => magnitudeDb(filter, at)
+  }
+  if (how.method === 'impulse-invariant' || how.method === 'step-invariant') {
+    checkDiscretization(analog, request.sampleRateHz, how)
+    const kind = how.method === 'step-invariant' ? 'step' : 'impulse'
+    const system = sampledSystem(designAnalog(analog), request.sampleRateHz, kind)
+    return (at) => {
+      const { re, im } = sampledResponse(system, at)
+      return re.map((x, n) => 20 * Math.log10(Math.hypot(x, im[n]!)))
+    }
+  }
+  const filter = discretize(analog, request.sampleRateHz, how)
+  return (at) => magnitudeDb(filter, at)
+}
 
 interface Span {
   readonly low: number
@@ -177,8 +200,8 @@ function* outermost(task: Task, order: number, good: Place, bad: number): Genera
 function* flattest(task: Task, order: number, start: Place): Generator<null, Place> {
   if (task.family !== 'chebyshev1' && task.family !== 'elliptic') return start
   let best = start
-  let [bad, good] = [start.shape.ripple / 1000, start.shape.ripple]
-  for (let round = 0; round < REFINEMENTS; round++) {
+  let [bad, good] = [start.shape.ripple * LEAST_RIPPLE, start.shape.ripple]
+  for (let round = 0; round < FLATTENINGS; round++) {
     yield null
     const shape = { ...start.shape, ripple: Math.sqrt(bad * good) }
     let found: Place | undefined
@@ -214,27 +237,45 @@ function* spent(task: Task, order: number, places: readonly Place[]): Generator<
   return task.request.spend === 'flatter' ? yield* flattest(task, order, best) : best
 }
 
-/** A lower bound of the order by the published formulas, from the mildest lines; the other methods may do with a little less. */
-function startOrder({ outline, slide, family, how, request }: Task): number {
+const hasFormula = (family: Family): boolean => family !== 'bessel' && family !== 'critically-damped'
+
+/** Least order at which the quick look finds an original (or its bilinear version) with room; for the families without a formula. */
+function leastByLooking(task: Task): number {
+  const plain: Task = task.how.method === 'bilinear' ? task : { ...task, how: { method: 'fitted', upToHz: 1 } }
+  const [shape] = shapesOf(task.family, true, false)
+  if (shape === undefined) return 1
+  let [short, enough] = [0, MOST_ORDER]
+  while (enough - short > 1) {
+    const middle = (short + enough) >> 1
+    if (spanOf(plain, middle, shape).isEmpty) short = middle
+    else enough = middle
+  }
+  return enough
+}
+
+/** A lower bound of the order, by the published formulas from the mildest lines; methods that don't keep to them may do with less. */
+function startOrder(task: Task): number {
+  const { outline, slide, family, how, request } = task
   const kept = outline.stretches.filter(({ isKept }) => isKept)
   const lost = outline.stretches.filter(({ isKept }) => !isKept)
   const rippleDb = Math.max(...kept.map(({ mildestDb }) => mildestDb))
   const attenuationDb = Math.min(...lost.map(({ mildestDb }) => mildestDb))
-  if (attenuationDb <= rippleDb) return 1
   const isExact = how.method === 'bilinear'
+  const spare = isExact ? 0 : 2
+  if (!hasFormula(family)) return Math.max(1, leastByLooking(task) - spare)
   const [low, high] = slide.edgesAt(1)
   const [stopLow, stopHigh] = slide.edgesAt(slide.wide)
-  if (low === undefined || stopLow === undefined || slide.narrow !== 1) return 1
-  const band = high !== undefined && stopHigh !== undefined
+  if (attenuationDb <= rippleDb || low === undefined || stopLow === undefined || slide.narrow !== 1) return 1
+  const isBand = high !== undefined && stopHigh !== undefined
   try {
     const least = minimumOrder(family, {
-      passHz: band ? [low, high] : low,
-      stopHz: band ? [stopLow, stopHigh] : stopLow,
+      passHz: isBand ? [low, high] : low,
+      stopHz: isBand ? [stopLow, stopHigh] : stopLow,
       rippleDb,
       attenuationDb,
       ...(isExact ? { sampleRateHz: request.sampleRateHz } : {}),
     })
-    return isExact ? least.order : Math.max(1, least.order - 2)
+    return Math.max(1, least.order - spare)
   } catch (error) {
     if (error instanceof DesignError) return error.code === 'order-too-high' ? MOST_ORDER : 1
     throw error
@@ -250,9 +291,12 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
       const span = spanOf(task, order, shape)
       yield null
       if (span.isEmpty) {
-        const miss = worstMiss(designFromSpec(specAt(task, analogAt(task, order, span.low, shape))), task.request.sheet)
-        if (miss !== null && (nearest === null || miss.parts < nearest.parts)) nearest = miss
-        if (miss !== null) continue
+        for (const omega of [span.low, Math.sqrt(task.slide.narrow * task.slide.wide), task.slide.narrow]) {
+          const levels = quick(task, analogAt(task, order, omega, shape))
+          const miss = quickMiss(task.screen, levels, task.request.sheet)
+          if (miss !== null && (nearest === null || miss.parts < nearest.parts)) nearest = miss
+        }
+        continue
       }
       const places: Place[] = []
       for (const omega of placesOf(span, task.request.spend)) {
@@ -309,7 +353,7 @@ export function* searchRecursive(request: CandidateRequest, outline: Outline, fa
   }
   if (nearest === null) return { miss: null, reason: refused?.message ?? 'No order could be tried.' }
   const { order, miss } = nearest
-  const words = missWords(miss)
+  const { words } = miss
   const reason =
     order === MOST_ORDER
       ? `It ${words} even at order ${MOST_ORDER}.`

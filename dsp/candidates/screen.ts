@@ -1,11 +1,14 @@
-import type { AnyDigital, Filter } from '../forms/filter'
-import { magnitudeDb } from '../response/frequency'
+import { show } from '../check'
+import { lineName } from '../requirements/line-words'
 import type { RequirementSheet } from '../requirements/requirement'
 
 /*
  * A quick look at pass and stop lines: the ends of each band and a few points between. It never refuses what would pass in earnest, so
  * that it may narrow a search, and what it lets through is judged in full afterwards.
  */
+
+/** Levels in dB at frequencies in Hz. */
+export type Levels = (frequenciesHz: Float64Array) => Float64Array
 
 export interface Screen {
   readonly pass: Probe
@@ -15,6 +18,8 @@ export interface Screen {
 interface Probe {
   readonly hz: Float64Array
   readonly limitsDb: Float64Array
+  /** Which line of the sheet each point belongs to. */
+  readonly lines: Uint8Array
 }
 
 const BETWEEN = 14
@@ -22,14 +27,16 @@ const BETWEEN = 14
 function probes(sheet: RequirementSheet, foldHz: number, isKept: boolean): Probe {
   const hz: number[] = []
   const limits: number[] = []
-  const add = (at: number, db: number) => {
-    hz.push(at)
-    limits.push(db)
-  }
-  for (const line of sheet) {
+  const lines: number[] = []
+  sheet.forEach((line, index) => {
+    const add = (at: number, db: number) => {
+      hz.push(at)
+      limits.push(db)
+      lines.push(index)
+    }
     if (line.kind === 'keep-tone' && isKept) add(line.hz, line.withinDb)
     if (line.kind === 'lose-tone' && !isKept) add(line.hz, line.attenuationDb)
-    if (line.kind !== (isKept ? 'pass' : 'stop')) continue
+    if (line.kind !== (isKept ? 'pass' : 'stop')) return
     const db = line.kind === 'pass' ? line.withinDb : line.attenuationDb
     const toHz = line.toHz ?? foldHz
     // Crowding at both ends, where a mask is met or missed: Chebyshev points.
@@ -37,8 +44,8 @@ function probes(sheet: RequirementSheet, foldHz: number, isKept: boolean): Probe
       const part = (1 - Math.cos((Math.PI * k) / BETWEEN)) / 2
       add(k === BETWEEN ? toHz : line.fromHz + (toHz - line.fromHz) * part, db)
     }
-  }
-  return { hz: Float64Array.from(hz), limitsDb: Float64Array.from(limits) }
+  })
+  return { hz: Float64Array.from(hz), limitsDb: Float64Array.from(limits), lines: Uint8Array.from(lines) }
 }
 
 export function screenOf(sheet: RequirementSheet, sampleRateHz: number): Screen {
@@ -46,14 +53,38 @@ export function screenOf(sheet: RequirementSheet, sampleRateHz: number): Screen 
 }
 
 /** Least room in dB over the points of the pass lines; negative where one is missed. */
-export function passRoom({ pass }: Screen, filter: AnyDigital | Filter<'s'>): number {
-  return magnitudeDb(filter, pass.hz).reduce(
-    (least, db, n) => Math.min(least, pass.limitsDb[n]! - Math.abs(db)),
-    Infinity,
-  )
+export function passRoom({ pass }: Screen, levels: Levels): number {
+  return levels(pass.hz).reduce((least, db, n) => Math.min(least, pass.limitsDb[n]! - Math.abs(db)), Infinity)
 }
 
 /** Least room in dB over the points of the stop lines. */
-export function stopRoom({ stop }: Screen, filter: AnyDigital | Filter<'s'>): number {
-  return magnitudeDb(filter, stop.hz).reduce((least, db, n) => Math.min(least, -db - stop.limitsDb[n]!), Infinity)
+export function stopRoom({ stop }: Screen, levels: Levels): number {
+  return levels(stop.hz).reduce((least, db, n) => Math.min(least, -db - stop.limitsDb[n]!), Infinity)
+}
+
+/** A line missed, and by what part of its limit. */
+export interface Miss {
+  readonly index: number
+  readonly parts: number
+  /** “misses line 3 (…) by 2.1 dB” */
+  readonly words: string
+}
+
+/** The line missed furthest at the points of the quick look; null when it sees none missed. */
+export function quickMiss({ pass, stop }: Screen, levels: Levels, sheet: RequirementSheet): Miss | null {
+  let worst: { readonly index: number; readonly parts: number; readonly db: number } | null = null
+  const look = ({ hz, limitsDb, lines }: Probe, room: (db: number, limit: number) => number) => {
+    levels(hz).forEach((db, n) => {
+      const short = -room(db, limitsDb[n]!)
+      const parts = short / limitsDb[n]!
+      if (short > 0 && (worst === null || parts > worst.parts)) worst = { index: lines[n]!, parts, db: short }
+    })
+  }
+  look(pass, (db, limit) => limit - Math.abs(db))
+  look(stop, (db, limit) => -db - limit)
+  if (worst === null) return null
+  const { index, parts, db } = worst as { index: number; parts: number; db: number }
+  const line = sheet[index]
+  if (line === undefined) return null
+  return { index, parts, words: `misses ${lineName(index, line)} by ${show(Number(db.toPrecision(3)))} dB` }
 }

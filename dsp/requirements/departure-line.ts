@@ -1,9 +1,11 @@
 import type { Design } from '../design'
 import { isFir, type DigitalFilter, type Filter } from '../forms/filter'
 import { departure, worstDeparture } from '../response/departure'
+import { departureFrom } from '../response/departure-from-reference'
 import { magnitudeDb } from '../response/frequency'
+import { referenceMagnitudeDb } from '../response/reference'
 import { USE_DEPTH_DB, useBandOf } from '../response/use-band'
-import { largest, type Extreme } from './extremes'
+import { bandGrid, largest, type Extreme } from './extremes'
 import { hertz } from './line-words'
 import type { Requirement } from './requirement'
 
@@ -40,14 +42,38 @@ function fromAnalog(analog: Filter<'s'>, digital: DigitalFilter, line: Departure
   return closer.value > found.value ? closer : found
 }
 
+/** The worst departure from a measured table, or of or from what has no roots to compare by. */
+function fromOther({ reference, digital }: Judged, line: DepartureLine): Extreme | string {
+  const isLevel = line.kind === 'magnitude-departure'
+  const band = [0, line.upToHz] as const
+  const options = line.kind === 'phase-departure' && line.removeDelay ? { removeDelayOver: band } : {}
+  const { delaySeconds } = departureFrom(reference, digital, [0], options)
+  const rows = reference.kind === 'measured' ? [...reference.table.frequenciesHz] : []
+  const inside = rows.filter((hz) => hz <= line.upToHz)
+  const grid = Float64Array.from(new Set([...bandGrid(digital, ...band), ...inside])).sort()
+  const sizes = (at: Float64Array): Float64Array => {
+    const { db, degrees } = departureFrom(reference, digital, at)
+    const wanted = referenceMagnitudeDb(reference, at)
+    return Float64Array.from(at, (hz, n) => {
+      const off = isLevel ? db[n]! : degrees[n]! + 360 * hz * delaySeconds
+      // Where the reference says nothing or passes nothing, nothing departs from it.
+      return Number.isNaN(off) || wanted[n] === -Infinity ? 0 : Math.abs(off)
+    })
+  }
+  if (referenceMagnitudeDb(reference, grid).every((level) => Number.isNaN(level) || level === -Infinity)) {
+    return `Up to ${hertz(line.upToHz)} nothing is stated to hold it against.`
+  }
+  return largest(sizes, grid)
+}
+
 /**
  * The worst departure that a line speaks of, from where the reference comes into use up to the line's frequency.
  * @returns value in dB or degrees and where it is; a sentence when it can't be judged
  */
-export function departureExtreme(
-  { reference, digital }: Judged,
-  line: DepartureLine,
-): (Extreme & { readonly note?: string }) | string {
+export function departureExtreme(design: Judged, line: DepartureLine): (Extreme & { readonly note?: string }) | string {
+  const { reference, digital } = design
   if (reference.kind === 'analog' && !isFir(digital)) return fromAnalog(reference.filter, digital, line)
-  return 'There is no original to hold it against.'
+  const found = fromOther(design, line)
+  if (typeof found === 'string' || reference.kind !== 'ideal') return found
+  return { ...found, note: 'Held against the stated ideal, there being no analog original.' }
 }

@@ -193,8 +193,8 @@ function refusal(line: Requirement, foldHz: number): string | null {
  *
  * Masks are followed between grid points: the grid crowds at every root, and each hump of importance is closed in on, so that `value` is the
  * worst over the whole band to rounding and `worstHz` where it stands. Departures are held against the design's reference. The step
- * response is measured by its final value, or by the step itself where that is below a twentieth of the largest value (a filter that
- * blocks 0 Hz). Words are rounded to nearest, with one power-of-two scale each for the b and the a of a section (see word-length.ts).
+ * response is measured by its final value, or by the step itself where the gain at 0 Hz is 20 dB below the strongest (a
+ * filter that blocks 0 Hz). Words are rounded to nearest, with one power-of-two scale each for the b and the a of a section (see word-length.ts).
  *
  * @param design what is judged: its reference and its digital filter
  * @param sheet the whole sheet, whose pass bands a word-length line is judged over

@@ -1,6 +1,7 @@
 import { isFir, type AnyDigital } from '../forms/filter'
-import { frequencyResponse } from '../response/frequency'
+import { frequencyResponse, magnitudeDb } from '../response/frequency'
 import { createRunner } from '../signal/run'
+import { bandGrid } from './extremes'
 
 /*
  * What a sheet asks of a step response. It is measured in parts of its final value; a filter that blocks 0 Hz, or nearly, has none to
@@ -18,8 +19,8 @@ export interface StepShape {
 const BLOCK = 4096
 /** No response is followed longer than this. */
 const MOST_SAMPLES = 2 ** 21
-/** A final value below this part of the largest one counts as none. */
-const NEARLY_NOTHING = 0.05
+/** A filter with less than this part of its strongest gain at 0 Hz, 20 dB, isn't in use there: its final value counts as none. */
+const OUT_OF_USE = 0.1
 
 /** Samples after which nothing moves: the time constants of the slowest pole, more for each pole that may repeat it. */
 function horizonOf(filter: AnyDigital): number {
@@ -67,7 +68,11 @@ export function stepShape(filter: AnyDigital, within: number): StepShape | null 
     }
     from += values.length
   }
-  const isNothing = Math.abs(end) < NEARLY_NOTHING * Math.max(highest, -lowest)
+  const peakDb = magnitudeDb(filter, bandGrid(filter, 0, filter.sampleRateHz / 2)).reduce(
+    (most, db) => Math.max(most, db),
+    -Infinity,
+  )
+  const isNothing = Math.abs(end) < OUT_OF_USE * 10 ** (peakDb / 20)
   const unit = isNothing ? 1 : Math.abs(end)
   const upward = isNothing ? start < 0 : end > 0
   const past = upward ? highest - end : end - lowest
