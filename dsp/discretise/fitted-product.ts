@@ -189,26 +189,38 @@ function evaluate(product: Product, target: FitTarget, axis: Axis, into: Float64
       if (3 * i < zeroPairs.length) {
         const fr = zeroPairs[3 * i]! - zeroPairs[3 * i + 2]! * square
         const fi = zeroPairs[3 * i + 1]! * nu
-        ;[re, im] = [re * fr - im * fi, re * fi + im * fr]
+        const next = re * fr - im * fi
+        im = re * fi + im * fr
+        re = next
       }
       if (2 * i < a.length) {
         const fr = a[2 * i + 1]! - square
         const fi = a[2 * i]! * nu
         const norm = fr * fr + fi * fi
-        ;[re, im] = [(re * fr + im * fi) / norm, (im * fr - re * fi) / norm]
+        const next = (re * fr + im * fi) / norm
+        im = (im * fr - re * fi) / norm
+        re = next
       }
     }
     if (zeroSingle !== null) {
-      const [fr, fi] = [zeroSingle[0]!, zeroSingle[1]! * nu]
-      ;[re, im] = [re * fr - im * fi, re * fi + im * fr]
+      const fr = zeroSingle[0]!
+      const fi = zeroSingle[1]! * nu
+      const next = re * fr - im * fi
+      im = re * fi + im * fr
+      re = next
     }
     if (poleSingle !== null) {
       const norm = single * single + square
-      ;[re, im] = [(re * single + im * nu) / norm, (im * single - re * nu) / norm]
+      const next = (re * single + im * nu) / norm
+      im = (im * single - re * nu) / norm
+      re = next
     }
     if (delay !== 0) {
-      const [c, s] = [Math.cos(delay * target.omega[k]!), Math.sin(delay * target.omega[k]!)]
-      ;[re, im] = [re * c - im * s, re * s + im * c]
+      const c = Math.cos(delay * target.omega[k]!)
+      const s = Math.sin(delay * target.omega[k]!)
+      const next = re * c - im * s
+      im = re * s + im * c
+      re = next
     }
     into[2 * k] = re
     into[2 * k + 1] = im
@@ -346,7 +358,8 @@ export function fitProblem(target: FitTarget): SquaresProblem<Product> {
       const er = hr - weight * target.re[k]!
       const ei = hi - weight * target.im[k]!
       for (let i = 0; i < size; i++) {
-        const [ar, ai] = [rowRe[i]!, rowIm[i]!]
+        const ar = rowRe[i]!
+        const ai = rowIm[i]!
         gradient[i] = gradient[i]! + ar * er + ai * ei
         const row = i * size
         for (let j = 0; j <= i; j++) normal[row + j] = normal[row + j]! + ar * rowRe[j]! + ai * rowIm[j]!

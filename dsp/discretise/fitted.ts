@@ -25,12 +25,14 @@ export interface FittedVersion extends FittedForm {
 /** Linearisations that a fit from each start is given first, and those of the best ones after that. */
 const FIRST_STEPS = 4
 const MOST_STEPS = 40
-/** Steps that lower the error by less than this end a fit: about a thousandth of the error itself. */
-const TOLERANCE = 2e-3
-/** A fit this good, in root mean square, is good enough to be ended: 0.0001 dB and 0.0006°. */
-const GOOD = 1e-5
+/** Steps that lower the sum of squares by less than this part of it end a fit. */
+const TOLERANCE = 5e-3
+/** A fit this good, in root mean square, is good enough to be ended: 0.0004 dB and 0.003°. */
+const GOOD = 5e-5
+/** A fit worse than this is worth a second way to it. */
+const POOR = 0.004
 /** Points × unknowns² that all linearisations of one fit may come to, some 40 ms of work. */
-const WORK = 2.4e7
+const WORK = 1.4e7
 
 /** Error of a z-plane form against the target with its best real gain under a given delay. */
 export function judged(form: HalfForm, target: FitTarget, delay: number, keepGain = false): FittedForm {
@@ -77,6 +79,7 @@ export function fitFrom(starts: readonly HalfForm[], order: number, target: FitT
   const size = 2 * order + 1 + (target.freeDelay ? 1 : 0)
   let left = Math.max(2, Math.floor(WORK / (target.omega.length * size * size)))
   const enough = good * good * target.omega.length
+  const poor = Math.max(enough, POOR * POOR * target.omega.length)
   const stop = (steps: number): Stop => ({ steps: Math.min(steps, left), tolerance: TOLERANCE, cost: enough })
   const usable = starts.filter((form) => fullCount(form.poles) === order).map((form) => productOf(form, order, target))
   const ranked = usable
@@ -92,7 +95,7 @@ export function fitFrom(starts: readonly HalfForm[], order: number, target: FitT
     .sort((a, b) => a.cost - b.cost)
   let best: { state: Product; cost: number } | undefined
   for (const start of ranked.slice(0, 2)) {
-    if (best !== undefined && (best.cost <= enough || left < 2)) break
+    if (best !== undefined && (best.cost <= poor || left < 2)) break
     const fit = levenbergMarquardt(problem, start.state, stop(best === undefined ? Math.min(MOST_STEPS, Math.ceil(left * 0.75)) : MOST_STEPS)) // prettier-ignore
     left -= fit.steps
     if (best === undefined || fit.cost < best.cost) best = fit

@@ -18,12 +18,14 @@ export interface SquaresProblem<State> {
 const FIRST_DAMPING = 1e-3
 const LEAST_DAMPING = 1e-13
 const MOST_DAMPING = 1e8
+/** A valley may be flat for a step or two before it falls again. */
+const SLOW_STEPS = 3
 
 /** What ends an iteration. */
 export interface Stop {
   /** Upper limit of linearisations. */
   readonly steps: number
-  /** A step that lowers the cost by less than this part of it is the last. */
+  /** Three steps in a row that each lower the cost by less than this part of it are the last. */
   readonly tolerance: number
   /** A cost that is low enough. */
   readonly cost: number
@@ -45,6 +47,7 @@ export function levenbergMarquardt<State>(
   let damping = FIRST_DAMPING
   let growth = 2
   let steps = 0
+  let slow = 0
   while (steps < stop.steps && cost > stop.cost) {
     const here = problem.linearise(state)
     steps += 1
@@ -67,7 +70,9 @@ export function levenbergMarquardt<State>(
       state = next
       cost = reached
     }
-    if (fall < stop.tolerance) break
+    if (fall === 0) break
+    slow = fall < stop.tolerance ? slow + 1 : 0
+    if (slow >= SLOW_STEPS) break
   }
   return { state, cost, steps }
 }
