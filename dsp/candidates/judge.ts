@@ -23,12 +23,20 @@ const EFFORT: Readonly<Record<Requirement['kind'], number>> = {
   'word-length': 7,
 }
 
+/** Lines of the magnitude itself. */
+export const LEVEL_KINDS: ReadonlySet<Requirement['kind']> = new Set(['pass', 'stop', 'keep-tone', 'lose-tone'])
+
 /** Misses further than this, or without a measure, are all alike. */
 const FAR = 1e3
 
 function missOf(index: number, result: RequirementResult): Miss {
   const parts = -result.margin / (result.limit > 0 ? result.limit : 1)
-  return { index, parts: Number.isFinite(parts) ? Math.min(parts, FAR) : FAR, words: words(index, result) }
+  return {
+    index,
+    parts: Number.isFinite(parts) ? Math.min(parts, FAR) : FAR,
+    words: words(index, result),
+    isLate: !LEVEL_KINDS.has(result.requirement.kind),
+  }
 }
 
 function amount({ unit, margin }: RequirementResult): string {
@@ -45,9 +53,12 @@ function words(index: number, result: RequirementResult): string {
   return result.reason === undefined ? `misses ${name}` : `misses ${name}: ${result.reason}`
 }
 
-/** Judges line after line, the quick ones first, and stops at the first that is missed. */
-export function judge(design: Judged, sheet: RequirementSheet): Verdict {
-  const order = sheet.map((line, index) => ({ line, index })).sort((a, b) => EFFORT[a.line.kind] - EFFORT[b.line.kind])
+/** Judges line after line, the quick ones first, and stops at the first that is missed; only lines of some kinds if asked. */
+export function judge(design: Judged, sheet: RequirementSheet, isAsked = (_: Requirement): boolean => true): Verdict {
+  const order = sheet
+    .map((line, index) => ({ line, index }))
+    .filter(({ line }) => isAsked(line))
+    .sort((a, b) => EFFORT[a.line.kind] - EFFORT[b.line.kind])
   const results: RequirementResult[] = []
   for (const { line, index } of order) {
     const result = checkRequirement(design, line, sheet)

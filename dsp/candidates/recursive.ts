@@ -9,10 +9,10 @@ import { minimumOrder } from '../prototypes/order'
 import type { AnalogSpec, Family, FamilyDesign, Method, MethodName } from '../spec'
 import type { RequirementSheet } from '../requirements/requirement'
 import { keptDelay } from './figures'
-import { judge, type Verdict } from './judge'
+import { judge, LEVEL_KINDS, type Verdict } from './judge'
 import type { Outline } from './outline'
 import type { CandidateRequest } from './request'
-import { passRoom, quickMiss, screenOf, stopRoom, type Levels, type Miss, type Screen } from './screen'
+import { isNearer, passRoom, quickMiss, screenOf, stopRoom, type Levels, type Miss, type Screen } from './screen'
 import { slideOf, type Slide } from './slide'
 
 /*
@@ -239,18 +239,27 @@ function* spent(task: Task, order: number, places: readonly Place[]): Generator<
 
 const hasFormula = (family: Family): boolean => family !== 'bessel' && family !== 'critically-damped'
 
-/** Least order at which the quick look finds an original (or its bilinear version) with room; for the families without a formula. */
-function leastByLooking(task: Task): number {
-  const plain: Task = task.how.method === 'bilinear' ? task : { ...task, how: { method: 'fitted', upToHz: 1 } }
-  const [shape] = shapesOf(task.family, true, false)
-  if (shape === undefined) return 1
-  let [short, enough] = [0, MOST_ORDER]
-  while (enough - short > 1) {
-    const middle = (short + enough) >> 1
-    if (spanOf(plain, middle, shape).isEmpty) short = middle
-    else enough = middle
+const LEVEL_ROUNDS = 44
+
+/** Ω at which a monotone prototype has lost so many dB, its edge at 1. */
+function whereLost(family: Family, order: number, db: number): number {
+  const prototype = designAnalog({ family, response: 'lowpass', order, edgesHz: [1] })
+  let [low, high] = [1e-4, 1e4]
+  for (let round = 0; round < LEVEL_ROUNDS; round++) {
+    const middle = Math.sqrt(low * high)
+    if (-magnitudeDb(prototype, [middle])[0]! < db) low = middle
+    else high = middle
   }
-  return enough
+  return high
+}
+
+/** Least order of a family without a formula that falls from one loss to the other fast enough: not always a higher one does. */
+function leastByTrying(family: Family, rippleDb: number, attenuationDb: number, room: number): number {
+  for (let order = 1; order <= MOST_ORDER; order++) {
+    const ratio = whereLost(family, order, attenuationDb) / whereLost(family, order, rippleDb)
+    if (ratio <= room * (1 + 1e-9)) return order
+  }
+  return MOST_ORDER
 }
 
 /** A lower bound of the order, by the published formulas from the mildest lines; methods that don't keep to them may do with less. */
@@ -262,10 +271,12 @@ function startOrder(task: Task): number {
   const attenuationDb = Math.min(...lost.map(({ mildestDb }) => mildestDb))
   const isExact = how.method === 'bilinear'
   const spare = isExact ? 0 : 2
-  if (!hasFormula(family)) return Math.max(1, leastByLooking(task) - spare)
   const [low, high] = slide.edgesAt(1)
   const [stopLow, stopHigh] = slide.edgesAt(slide.wide)
   if (attenuationDb <= rippleDb || low === undefined || stopLow === undefined || slide.narrow !== 1) return 1
+  if (!hasFormula(family)) {
+    return Math.max(1, leastByTrying(family, rippleDb, attenuationDb, slide.wide) - spare)
+  }
   const isBand = high !== undefined && stopHigh !== undefined
   try {
     const least = minimumOrder(family, {
@@ -294,7 +305,7 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
         for (const omega of [span.low, Math.sqrt(task.slide.narrow * task.slide.wide), task.slide.narrow]) {
           const levels = quick(task, analogAt(task, order, omega, shape))
           const miss = quickMiss(task.screen, levels, task.request.sheet)
-          if (miss !== null && (nearest === null || miss.parts < nearest.parts)) nearest = miss
+          if (miss !== null && (nearest === null || isNearer(miss, nearest))) nearest = miss
         }
         continue
       }
@@ -304,7 +315,7 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
         places.push(place)
         yield null
         if ('miss' in place.verdict) {
-          if (nearest === null || place.verdict.miss.parts < nearest.parts) nearest = place.verdict.miss
+          if (nearest === null || isNearer(place.verdict.miss, nearest)) nearest = place.verdict.miss
         } else if (task.request.spend !== 'less-delay') break
       }
       if (places.some(isMet)) return places
@@ -317,8 +328,7 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
   throw refused ?? new RangeError('an order was neither judged nor refused')
 }
 
-const OTHER_KINDS = new Set(['pass', 'stop', 'keep-tone', 'lose-tone'])
-const asksMore = (sheet: RequirementSheet): boolean => sheet.some(({ kind }) => !OTHER_KINDS.has(kind))
+const asksMore = (sheet: RequirementSheet): boolean => sheet.some(({ kind }) => !LEVEL_KINDS.has(kind))
 
 /**
  * The least order of a family by a method that meets every line, its room spent; a generator that comes up for air between steps.
@@ -342,7 +352,7 @@ export function* searchRecursive(request: CandidateRequest, outline: Outline, fa
         const { spec, design } = yield* spent(task, order, found)
         return { spec, design, size: order }
       }
-      if (nearest === null || found.parts < nearest.miss.parts * (1 - 1e-9)) nearest = { order, miss: found }
+      if (nearest === null || isNearer(found, nearest.miss)) nearest = { order, miss: found }
       else if (order - nearest.order >= PATIENCE) break
     } catch (error) {
       if (!(error instanceof DesignError)) throw error

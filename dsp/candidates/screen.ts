@@ -68,7 +68,12 @@ export interface Miss {
   readonly parts: number
   /** “misses line 3 (…) by 2.1 dB” */
   readonly words: string
+  /** Missed by a design that holds pass and stop lines; such a miss says more than one of those lines itself. */
+  readonly isLate: boolean
 }
+
+export const isNearer = (miss: Miss, than: Miss): boolean =>
+  miss.isLate === than.isLate ? miss.parts < than.parts * (1 - 1e-9) : miss.isLate
 
 /** The line missed furthest at the points of the quick look; null when it sees none missed. */
 export function quickMiss({ pass, stop }: Screen, levels: Levels, sheet: RequirementSheet): Miss | null {
@@ -86,5 +91,10 @@ export function quickMiss({ pass, stop }: Screen, levels: Levels, sheet: Require
   const { index, parts, db } = worst as { index: number; parts: number; db: number }
   const line = sheet[index]
   if (line === undefined) return null
-  return { index, parts, words: `misses ${lineName(index, line)} by ${show(Number(db.toPrecision(3)))} dB` }
+  return {
+    index,
+    parts,
+    words: `misses ${lineName(index, line)} by ${show(Number(db.toPrecision(3)))} dB`,
+    isLate: false,
+  }
 }

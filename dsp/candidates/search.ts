@@ -1,24 +1,35 @@
 import { contradictions } from '../requirements/contradictions'
 import { checkSheet } from '../requirements/evaluate'
-import { familySchema, type Family, type MethodName } from '../spec'
+import type { Design } from '../design'
+import { familySchema, firKindSchema, type DesignSpec, type Family, type MethodName } from '../spec'
 import { figuresOf, sketchOf } from './figures'
+import { FINITE_KINDS, searchFinite } from './finite'
 import { outlineOf, type Outline } from './outline'
 import { methodOf, searchRecursive } from './recursive'
-import type { CandidateOutcome, CandidateRequest, CandidateRow } from './request'
-import { isOffered } from './request'
+import {
+  isOffered,
+  type CandidateOutcome,
+  type CandidateParts,
+  type CandidateRequest,
+  type CandidateRow,
+} from './request'
 
 const FAMILIES: readonly Family[] = familySchema.options
 const METHODS: readonly MethodName[] = ['bilinear', 'matched-z', 'impulse-invariant', 'step-invariant', 'fitted']
 
-function* recursiveRow(
+/** What a search of one kind comes to: a design, or the line that stops it. */
+type Outcome =
+  | { readonly spec: DesignSpec; readonly design: Design; readonly size: number }
+  | { readonly miss: number | null; readonly reason: string }
+
+/** What a search came to, as a row. */
+function rowOf(
   request: CandidateRequest,
   outline: Outline,
-  family: Family,
-  method: MethodName,
-): Generator<null, CandidateRow> {
-  const parts = { family, method }
-  const id = `${family}:${method}`
-  const found = yield* searchRecursive(request, outline, family, methodOf(method, outline, request))
+  id: string,
+  parts: CandidateParts,
+  found: Outcome,
+): CandidateRow {
   if ('reason' in found) return { id, parts, refused: { requirementIndex: found.miss, reason: found.reason } }
   const { spec, design, size } = found
   const results = checkSheet(design, request.sheet)
@@ -30,6 +41,25 @@ function* recursiveRow(
     results,
     figures: figuresOf(design, outline, results, request.budget.removeDelay),
     sketch: sketchOf(design.digital, request.sheet),
+  }
+}
+
+/** One search after another, each a row. */
+function* searches(request: CandidateRequest, outline: Outline): Generator<CandidateRow | null> {
+  for (const method of request.methods ?? METHODS) {
+    for (const family of request.families ?? FAMILIES) {
+      const found = yield* searchRecursive(request, outline, family, methodOf(method, outline, request))
+      yield rowOf(request, outline, `${family}:${method}`, { family, method }, found)
+    }
+  }
+  const kinds = request.firKinds ?? firKindSchema.options
+  for (const what of FINITE_KINDS) {
+    if (!kinds.includes(what.kind)) continue
+    const found = yield* searchFinite(request, outline, what)
+    const { kind, window } = what
+    const isNamed = kind === 'windowed' && window !== undefined
+    const parts = { firKind: kind, ...(isNamed ? { window } : {}) }
+    yield rowOf(request, outline, isNamed ? `${kind}:${window}` : kind, parts, found)
   }
 }
 
@@ -46,13 +76,10 @@ export function* candidateSteps(request: CandidateRequest): Generator<CandidateR
   if (typeof outline === 'string') return { ...nothing, unclear: outline }
   let offered = 0
   let refused = 0
-  for (const method of request.methods ?? METHODS) {
-    for (const family of request.families ?? FAMILIES) {
-      const row = yield* recursiveRow(request, outline, family, method)
-      if (isOffered(row)) offered += 1
-      else refused += 1
-      yield row
-    }
+  for (const row of searches(request, outline)) {
+    if (row !== null && isOffered(row)) offered += 1
+    else if (row !== null) refused += 1
+    yield row
   }
   return { ...nothing, offered, refused }
 }
