@@ -3,8 +3,8 @@ import { lineName } from '../requirements/line-words'
 import type { RequirementSheet } from '../requirements/requirement'
 
 /*
- * A quick look at pass and stop lines: the ends of each band and a few points between. It never refuses what would pass in earnest, so
- * that it may narrow a search, and what it lets through is judged in full afterwards.
+ * A quick look at pass and stop lines: the ends of each band and a few points between. On the filter itself it never refuses what would
+ * pass in earnest, so that it may narrow a search; what it lets through is judged in full afterwards.
  */
 
 /** Levels in dB at frequencies in Hz. */

@@ -18,6 +18,7 @@ import {
   type Method,
   type Section,
 } from '@/dsp'
+import { benchCandidates } from './candidates'
 import { format, least, median, times } from './measure'
 import { timePython } from './python'
 
@@ -115,3 +116,8 @@ edits('5 traces (analog, bilinear and matched-z twice)', [
 const ratesHz = Array.from({ length: 120 }, (_, n) => 300 * 400 ** (n / 119))
 const sweep = times(9, 3, () => void rateSweep({ analog: spec, methods, ratesHz, upToHz: 120, removeDelay: true }))
 say(`rate sweep, 4 methods × 120 rates, order 8: median ${format(median(sweep))} (asked: under 100 ms)`)
+
+for (const { spend, offered, refused, firstSeconds, seconds } of benchCandidates()) {
+  const figures = `${seconds.toFixed(2)} s, ratio to 2 s ${(seconds / 2).toFixed(2)} (the first time ${firstSeconds.toFixed(2)} s)`
+  say(`candidates for a usual sheet, ${spend}: ${figures}; ${offered} offered, ${refused} refused (asked: under 2 s)`)
+}
