@@ -1,5 +1,6 @@
 import { designHalf } from '../design-analog'
 import { expand, toHalf, type HalfForm } from '../forms/zeros-poles-gain'
+import { magnitudeDb } from '../response/frequency'
 import { useBandOf } from '../response/use-band'
 import { warp, warpedWidth } from './bilinear'
 import type { Filter } from '../forms/filter'
@@ -66,9 +67,27 @@ export function originalOfFamily(spec: AnalogSpec): Original {
   }
 }
 
+const PEAK_NET = 240
+const PEAK_ROUNDS = 60
+
+/** Where an analog filter is strongest between two frequencies: on a net first, then by thirds. */
+function strongestHz(filter: Filter<'s'>, fromHz: number, toHz: number): number {
+  const level = (hertz: number) => magnitudeDb(filter, [hertz])[0]!
+  const net = Array.from({ length: PEAK_NET + 1 }, (_, k) => fromHz * (toHz / fromHz) ** (k / PEAK_NET))
+  const levels = magnitudeDb(filter, net)
+  const at = levels.indexOf(Math.max(...levels))
+  let [low, high] = [net[Math.max(at - 1, 0)]!, net[Math.min(at + 1, PEAK_NET)]!]
+  for (let round = 0; round < PEAK_ROUNDS; round++) {
+    const [left, right] = [low + (high - low) / 3, high - (high - low) / 3]
+    if (level(left) < level(right)) low = left
+    else high = right
+  }
+  return (low + high) / 2
+}
+
 /**
  * The original given by its roots. It has no edges. Its gain is matched at 0 Hz where it passes there within 20 dB of its peak, else at
- * half the rate where it passes at the highest frequencies, else at the low end of its use.
+ * half the rate where it passes at the highest frequencies, else where it is strongest.
  *
  * @param filter roots in rad/s
  */
@@ -76,7 +95,7 @@ export function originalOfRoots(filter: Filter<'s'>): Original {
   const half = toHalf(filter)
   const excess = expand(half.poles).length - expand(half.zeros).length
   const { fromHz, toHz } = useBandOf(filter)
-  const atHz = fromHz === 0 ? 0 : toHz === Infinity ? ('half the rate' as const) : Math.sqrt(fromHz * toHz)
+  const atHz = fromHz === 0 ? 0 : toHz === Infinity ? ('half the rate' as const) : strongestHz(filter, fromHz, toHz)
   return {
     scaled: (unit) => {
       const perRadian = unit / (2 * Math.PI)
