@@ -55,7 +55,7 @@ export function OriginalPanel({
         {way === 'polynomials' ? <PolynomialsForm {...form} given={own?.given === 'polynomials' ? own : null} /> : null}
         {way === 'measured' ? <MeasuredForm {...form} given={own?.given === 'measured' ? own : null} /> : null}
       </section>
-      {settled ? <FitReport store={store} settled={settled} readOnly={readOnly} /> : null}
+      {settled ? <FitReport settled={settled} /> : null}
     </div>
   )
 }

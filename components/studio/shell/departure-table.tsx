@@ -12,6 +12,7 @@ import { methodAsShown, type Trust, type Versions } from '../derive'
 import { orRefusal } from '../or-refusal'
 import type { StudioStore } from '../store'
 import { trustText } from './figures-line'
+import { FitAdvantage } from '../original/fit-advantage'
 import { InlineQuantity } from './inline-quantity'
 import { TraceSample } from '../stack/trace-sample'
 
@@ -189,6 +190,7 @@ export function DepartureTable({
           </tbody>
         </table>
       </div>
+      <FitAdvantage spec={spec} />
     </section>
   )
 }

@@ -42,8 +42,9 @@ export function ChooseFile({
   onFile,
   kind = 'plain',
   small = false,
+  label = 'Recording',
   children,
-}: FileTaker & { kind?: 'primary' | 'plain'; small?: boolean; children: ReactNode }) {
+}: FileTaker & { kind?: 'primary' | 'plain'; small?: boolean; label?: string; children: ReactNode }) {
   const input = useRef<HTMLInputElement>(null)
   return (
     <>
@@ -53,7 +54,7 @@ export function ChooseFile({
       <input
         ref={input}
         type="file"
-        aria-label="Recording"
+        aria-label={label}
         tabIndex={-1}
         className="sr-only"
         onChange={(event) => {
