@@ -35,9 +35,14 @@ export function hatchPattern(
   pen.beginPath()
   // The line and its neighbours, whose edges reach into this tile's corners.
   for (const shift of [-size, 0, size]) {
-    const [from, to] = ruling === 'rising' ? [2 * size, -size] : [-size, 2 * size]
-    pen.moveTo(shift - size, from)
-    pen.lineTo(shift + 2 * size, to)
+    if (ruling !== 'falling') {
+      pen.moveTo(shift - size, 2 * size)
+      pen.lineTo(shift + 2 * size, -size)
+    }
+    if (ruling !== 'rising') {
+      pen.moveTo(shift - size, -size)
+      pen.lineTo(shift + 2 * size, 2 * size)
+    }
   }
   pen.stroke()
   const pattern = brush.createPattern(tile, 'repeat')

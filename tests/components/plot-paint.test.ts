@@ -61,6 +61,7 @@ function recordingBrush(): { brush: Brush; calls: string[] } {
     fillText: note('fillText'),
     strokeText: note('strokeText'),
     setLineDash: note('setLineDash'),
+    createPattern: () => null,
     strokeStyle: '',
     fillStyle: '',
     lineWidth: 1,
