@@ -24,7 +24,10 @@ import { slideOf, type Slide } from './slide'
 export const MOST_ORDER = 24
 /** Orders that may pass without coming nearer to the sheet before a search gives up. */
 const PATIENCE = 4
-const PLACES = 5
+/** A fit takes long. */
+const PATIENCE_WITH_FITS = 2
+/** The wanted end, the other one, and between. */
+const PLACES = [0, 1, 0.5, 0.25, 0.75]
 const NARROWINGS = 10
 const LAST_NARROWINGS = 22
 /** Missed by less than this part of its limit, a bound is sought more closely. */
@@ -180,8 +183,8 @@ const isMet = ({ verdict }: Place): boolean => 'results' in verdict
 /** Places between the two ends, the ones that the room is to be spent towards first. */
 function placesOf({ low, high }: Span, spend: CandidateRequest['spend']): number[] {
   if (high <= low * (1 + 1e-9)) return [low]
-  const parts = Array.from({ length: PLACES }, (_, k) => k / (PLACES - 1))
-  return (spend === 'narrower' ? parts : parts.reverse()).map((part) => low * (high / low) ** part)
+  const parts = spend === 'narrower' ? PLACES : PLACES.map((part) => 1 - part)
+  return parts.map((part) => low * (high / low) ** part)
 }
 
 /** Halves the way from a place that meets the sheet to one that doesn't, and gives the last that does. */
@@ -232,8 +235,12 @@ function* spent(task: Task, order: number, places: readonly Place[]): Generator<
     const delays = met.map((place) => keptDelay(place.design.digital, task.outline).most)
     return met[delays.indexOf(Math.min(...delays))] ?? first
   }
-  const before = places[places.indexOf(first) - 1]
-  const best = before === undefined ? first : yield* outermost(task, order, first, before.omega)
+  // The room ends somewhere between this place and the nearest one towards the wanted end that misses a line.
+  const isWanted = (omega: number): boolean =>
+    task.request.spend === 'narrower' ? omega < first.omega : omega > first.omega
+  const beyond = places.filter((place) => !isMet(place) && isWanted(place.omega)).map(({ omega }) => omega)
+  const bad = task.request.spend === 'narrower' ? Math.max(...beyond) : Math.min(...beyond)
+  const best = beyond.length === 0 ? first : yield* outermost(task, order, first, bad)
   return task.request.spend === 'flatter' ? yield* flattest(task, order, best) : best
 }
 
@@ -259,7 +266,7 @@ function leastByTrying(family: Family, rippleDb: number, attenuationDb: number, 
     const ratio = whereLost(family, order, attenuationDb) / whereLost(family, order, rippleDb)
     if (ratio <= room * (1 + 1e-9)) return order
   }
-  return MOST_ORDER
+  return Number.POSITIVE_INFINITY
 }
 
 /** A lower bound of the order, by the published formulas from the mildest lines; methods that don't keep to them may do with less. */
@@ -275,7 +282,8 @@ function startOrder(task: Task): number {
   const [stopLow, stopHigh] = slide.edgesAt(slide.wide)
   if (attenuationDb <= rippleDb || low === undefined || stopLow === undefined || slide.narrow !== 1) return 1
   if (!hasFormula(family)) {
-    return Math.max(1, leastByTrying(family, rippleDb, attenuationDb, slide.wide) - spare)
+    const least = leastByTrying(family, rippleDb, attenuationDb, slide.wide)
+    return Math.min(Math.max(1, least - spare), MOST_ORDER)
   }
   const isBand = high !== undefined && stopHigh !== undefined
   try {
@@ -292,6 +300,12 @@ function startOrder(task: Task): number {
     throw error
   }
 }
+
+/** Places looked at before the others are given up, when all of these miss by more than FAR_PARTS of a limit. */
+const FIRST_PLACES = 2
+const FAR_PARTS = 0.5
+
+const isFar = ({ verdict }: Place): boolean => 'miss' in verdict && verdict.miss.parts > FAR_PARTS
 
 /** Tries one order; the places it looked at, in order of preference, or the nearest miss. */
 function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, readonly Place[] | Miss> {
@@ -311,6 +325,7 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
       }
       const places: Place[] = []
       for (const omega of placesOf(span, task.request.spend)) {
+        if (places.length === FIRST_PLACES && places.every(isFar)) break
         const place = placeAt(task, order, omega, shape)
         places.push(place)
         yield null
@@ -353,7 +368,7 @@ export function* searchRecursive(request: CandidateRequest, outline: Outline, fa
         return { spec, design, size: order }
       }
       if (nearest === null || isNearer(found, nearest.miss)) nearest = { order, miss: found }
-      else if (order - nearest.order >= PATIENCE) break
+      else if (order - nearest.order >= (how.method === 'fitted' ? PATIENCE_WITH_FITS : PATIENCE)) break
     } catch (error) {
       if (!(error instanceof DesignError)) throw error
       refused ??= error
