@@ -55,12 +55,10 @@ function referenceAngle({ gainAtHz }: Original, sampleRateHz: number): number {
   return gainAtHz === 'half the rate' ? Math.PI : Math.min(gainAtHz * perSample(sampleRateHz), Math.PI)
 }
 
-/** The pass band in rad per sample; of a band-stop filter, the lower one. */
+/** The pass band in rad per sample, up to half the rate; of a band-stop filter, the lower one. */
 function passBand({ passHz: [low, high] }: Original, sampleRateHz: number): readonly [number, number] {
   const unit = perSample(sampleRateHz)
-  return high === Infinity || low * unit >= Math.PI
-    ? [Math.min(low * unit, Math.PI / 2), Math.PI]
-    : [low * unit, high * unit]
+  return [Math.min(low * unit, Math.PI), Math.min(high * unit, Math.PI)]
 }
 
 function byImpulseInvariant(original: Original, sampleRateHz: number, how: ImpulseInvariant): Outcome {

@@ -44,6 +44,12 @@ function pinnedOf(filter: Filter<'s'>, upTo: number, order: number): PinnedZeros
   return { atZero, angles }
 }
 
+/** A fitted pole may ring this many times as long as the slowest of the original. */
+const LONGER = 20
+
+const leastMarginOf = ({ poles }: Filter<'s'>): number =>
+  poles.reduce((least, { re }) => Math.min(least, -Math.expm1(2 * re) / LONGER), 1)
+
 /**
  * What a fit is to come to: the analog response on points spread evenly over the band, and around each analog root as closely as it is
  * sharp; each point counts alike but for its weight.
@@ -64,5 +70,6 @@ export function targetOf(filter: Filter<'s'>, upTo: number, freeDelay: boolean, 
     upTo,
     pinned: pinnedOf(filter, upTo, order),
     freeDelay,
+    leastMargin: leastMarginOf(filter),
   }
 }

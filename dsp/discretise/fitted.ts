@@ -1,6 +1,7 @@
 import { fromHalf, fullCount, valueAt, type HalfForm } from '../forms/zeros-poles-gain'
 import { levenbergMarquardt, type Stop } from '../numeric/levenberg-marquardt'
-import { fitProblem, productOf, rootsOf, type FitTarget, type Product } from './fitted-product'
+import { bestGain, fitProblem } from './fitted-problem'
+import { productOf, rootsOf, type FitTarget, type Product } from './fitted-product'
 import { fitWeights, targetOf } from './fitted-target'
 import { magnitudeMatched } from './magnitude-matched'
 import { vectorFit } from './vector-fit'
@@ -74,14 +75,16 @@ const formOf = (product: Product, target: FitTarget): FittedForm =>
  * @param good root mean square of the weighted error at which a fit is ended
  * @returns null when no start has the order
  */
-export function fitFrom(starts: readonly HalfForm[], order: number, target: FitTarget, good = GOOD): FittedForm | null {
+function fitFrom(starts: readonly HalfForm[], order: number, target: FitTarget, good = GOOD): FittedForm | null {
   const problem = fitProblem(target)
   const size = 2 * order + 1 + (target.freeDelay ? 1 : 0)
   let left = Math.max(2, Math.floor(WORK / (target.omega.length * size * size)))
   const enough = good * good * target.omega.length
   const poor = Math.max(enough, POOR * POOR * target.omega.length)
   const stop = (steps: number): Stop => ({ steps: Math.min(steps, left), tolerance: TOLERANCE, cost: enough })
-  const usable = starts.filter((form) => fullCount(form.poles) === order).map((form) => productOf(form, order, target))
+  const usable = starts
+    .filter((form) => fullCount(form.poles) === order)
+    .map((form) => bestGain(productOf(form, order, target), target))
   const ranked = usable
     .map((state) => ({ state, cost: problem.cost(state) }))
     .sort((a, b) => a.cost - b.cost)
@@ -96,7 +99,11 @@ export function fitFrom(starts: readonly HalfForm[], order: number, target: FitT
   let best: { state: Product; cost: number } | undefined
   for (const start of ranked.slice(0, 2)) {
     if (best !== undefined && (best.cost <= poor || left < 2)) break
-    const fit = levenbergMarquardt(problem, start.state, stop(best === undefined ? Math.min(MOST_STEPS, Math.ceil(left * 0.75)) : MOST_STEPS)) // prettier-ignore
+    const fit = levenbergMarquardt(
+      problem,
+      start.state,
+      stop(best === undefined ? Math.min(MOST_STEPS, Math.ceil(left * 0.75)) : MOST_STEPS),
+    )
     left -= fit.steps
     if (best === undefined || fit.cost < best.cost) best = fit
   }
@@ -154,13 +161,16 @@ export function fittedVersion(form: HalfForm, rivals: readonly HalfForm[], optio
   const starts = sameOrder ? [...rivals, magnitudeMatched(form)] : vectorFit(target, order)
   const fit = fitFrom(starts, order, target, good)
   if (fit === null) return named[0]!
-  if (!sameOrder || named.every((rival) => fit.cost <= rival.cost && fit.worst <= rival.worst)) return { ...fit, kept: 'fit' } // prettier-ignore
+  if (!sameOrder || named.every((rival) => fit.cost <= rival.cost && fit.worst <= rival.worst))
+    return { ...fit, kept: 'fit' }
   const [best] = named.sort((a, b) => a.worst - b.worst)
   return best!
 }
 
 /** A fit of measured values that agrees to this, in root mean square, is ended. */
 const GOOD_ON_VALUES = 1e-10
+/** Least 1 − |z|² of a pole when nothing is known of an original: it then rings for a million samples or so. */
+const LEAST_MARGIN = 1e-6
 
 /**
  * The digital filter nearest to values of a response, from starts found by vector fitting.
@@ -173,7 +183,7 @@ export function fitValues(
   order: number,
 ): FittedVersion {
   const weight = fitWeights(values.re.map((re, k) => Math.hypot(re, values.im[k]!)))
-  const target: FitTarget = { ...values, weight, pinned: { atZero: 0, angles: [] } }
+  const target: FitTarget = { ...values, weight, pinned: { atZero: 0, angles: [] }, leastMargin: LEAST_MARGIN }
   const fit = fitFrom(vectorFit(target, order), order, target, GOOD_ON_VALUES)
   return { ...fit!, kept: 'fit' }
 }

@@ -66,7 +66,15 @@ function matchedSection(section: AnalogSection): { zeros: Complex[]; poles: Comp
   const [sum, product] =
     second === undefined ? [2 * first.re, first.re ** 2 + first.im ** 2] : [first.re + second.re, first.re * second.re]
   const below = [(1 - sum + product) ** 2, (1 + sum + product) ** 2, -4 * product] as const
-  const centre = Math.min(Math.sqrt(section.poles.reduce((size, pole) => size * modulus(pole), section.poles.length === 1 ? modulus(section.poles[0]!) : 1)), 2) // prettier-ignore
+  const centre = Math.min(
+    Math.sqrt(
+      section.poles.reduce(
+        (size, pole) => size * modulus(pole),
+        section.poles.length === 1 ? modulus(section.poles[0]!) : 1,
+      ),
+    ),
+    2,
+  )
   const s = Math.sin(centre / 2) ** 2
   const at = power(section, centre) * (below[0] * (1 - s) + below[1] * s + below[2] * 4 * s * (1 - s))
   const b0 = power(section, 0) * below[0]

@@ -63,7 +63,12 @@ function checkBand(field: string, fromHz: number, toHz: number, sampleRateHz: nu
   const fold = sampleRateHz / 2
   if (fromHz >= 0 && fromHz < toHz && toHz <= fold) return
   const message = `A band lies between 0 and ${fold} Hz (half the rate), its lower end first.`
-  throw new DesignError('range', field, message, fromHz >= 0 && fromHz < fold ? Math.min(Math.max(toHz, fromHz), fold) : fold) // prettier-ignore
+  throw new DesignError(
+    'range',
+    field,
+    message,
+    fromHz >= 0 && fromHz < fold ? Math.min(Math.max(toHz, fromHz), fold) : fold,
+  )
 }
 
 /**

@@ -26,16 +26,31 @@ const DEGREES = 180 / Math.PI
  */
 export function measuredTable({ rows }: Pick<MeasuredTarget, 'rows'>): MeasuredTable {
   if (rows.length < LEAST_ROWS) {
-    throw new DesignError('too-few-rows', 'own.rows', `A measured response takes at least ${LEAST_ROWS} rows; ${rows.length} were given.`, LEAST_ROWS) // prettier-ignore
+    throw new DesignError(
+      'too-few-rows',
+      'own.rows',
+      `A measured response takes at least ${LEAST_ROWS} rows; ${rows.length} were given.`,
+      LEAST_ROWS,
+    )
   }
   if (rows.length > MOST_MEASURED_ROWS) {
-    throw new DesignError('too-many-rows', 'own.rows', `A measured response has at most ${MOST_MEASURED_ROWS} rows; ${rows.length} were given.`, MOST_MEASURED_ROWS) // prettier-ignore
+    throw new DesignError(
+      'too-many-rows',
+      'own.rows',
+      `A measured response has at most ${MOST_MEASURED_ROWS} rows; ${rows.length} were given.`,
+      MOST_MEASURED_ROWS,
+    )
   }
   let before = -1
   rows.forEach((row, index) => {
     row.forEach((value, column) => {
       if (Number.isFinite(value)) return
-      throw new DesignError('not-finite', `own.rows.${index}.${column}`, `Row ${index + 1} holds a value that is not a finite number.`, 0) // prettier-ignore
+      throw new DesignError(
+        'not-finite',
+        `own.rows.${index}.${column}`,
+        `Row ${index + 1} holds a value that is not a finite number.`,
+        0,
+      )
     })
     const [hertz, db] = row
     if (hertz < 0 || hertz <= before) {
@@ -50,7 +65,10 @@ export function measuredTable({ rows }: Pick<MeasuredTarget, 'rows'>): MeasuredT
       throw new DesignError(
         'level-out-of-range',
         `own.rows.${index}.1`,
-        `A level between ${LEVEL_RANGE_DB[0]} and ${LEVEL_RANGE_DB[1]} dB can be used; row ${index + 1} has ${show(db)} dB.`.replaceAll('-', '−'), // prettier-ignore
+        `A level between ${LEVEL_RANGE_DB[0]} and ${LEVEL_RANGE_DB[1]} dB can be used; row ${index + 1} has ${show(db)} dB.`.replaceAll(
+          '-',
+          '−',
+        ),
         db < 0 ? LEVEL_RANGE_DB[0] : LEVEL_RANGE_DB[1],
       )
     }

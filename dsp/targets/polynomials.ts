@@ -107,10 +107,20 @@ export function filterOfPolynomials(own: Pick<PolynomialTarget, 'numerator' | 'd
   const denominator = trimmed(own.denominator, 'own.denominator')
   const degree = denominator.length - 1
   if (degree < 1) {
-    throw new DesignError('no-poles', 'own.denominator', 'The denominator must hold a power of s: a filter takes at least one pole.', 1) // prettier-ignore
+    throw new DesignError(
+      'no-poles',
+      'own.denominator',
+      'The denominator must hold a power of s: a filter takes at least one pole.',
+      1,
+    )
   }
   if (degree > MOST_DEGREE) {
-    throw new DesignError('order-out-of-range', 'own.denominator', `The order is at most ${MOST_DEGREE}; ${degree} was given.`, MOST_DEGREE) // prettier-ignore
+    throw new DesignError(
+      'order-out-of-range',
+      'own.denominator',
+      `The order is at most ${MOST_DEGREE}; ${degree} was given.`,
+      MOST_DEGREE,
+    )
   }
   if (numerator.length === 0) {
     throw new DesignError('no-numerator', 'own.numerator', 'A numerator of zeros alone passes nothing.', 1)

@@ -15,13 +15,13 @@ const LEAST_DAMPING = 1e-6
 type RootsTarget = Extract<OwnTarget, { given: 'roots' }>
 
 /** A root as a sentence shows it. */
-export function showRoot({ re, im }: Complex): string {
+function showRoot({ re, im }: Complex): string {
   if (im === 0) return show(re).replace('-', '−')
   return `${show(re).replace('-', '−')} ${im < 0 ? '−' : '+'} ${show(Math.abs(im))}j`
 }
 
 /** The half list of roots that come in conjugate pairs but for rounding. */
-export function pairedRoots(roots: readonly Complex[], field: 'own.zeros' | 'own.poles'): HalfRoots {
+function pairedRoots(roots: readonly Complex[], field: 'own.zeros' | 'own.poles'): HalfRoots {
   roots.forEach(({ re, im }, index) => {
     if (Number.isFinite(re) && Number.isFinite(im)) return
     throw new DesignError('not-finite', `${field}.${index}`, 'This root is not a finite number.', 'another value')

@@ -147,6 +147,20 @@ describe('whatever is fitted', () => {
     )
   })
 
+  it('keeps off the circle even where a notch just above the band draws a pole towards it', () => {
+    const notch: AnalogSpec = {
+      family: 'butterworth',
+      response: 'bandstop',
+      order: 2,
+      edgesHz: [232.94824536790804, 256.24306990469887],
+    } // found by chance
+    const how: Fitted = { method: 'fitted', upToHz: 229.73749607172967 }
+    const slowest = Math.max(...designAnalog(notch).poles.map(({ re }) => Math.exp((2 * re) / RATE)))
+    for (const pole of discretize(notch, RATE, how).poles) {
+      expect(1 - (pole.re ** 2 + pole.im ** 2)).toBeGreaterThan((1 - slowest) / 21)
+    }
+  })
+
   it('is the same each time', () => {
     const how: Fitted = { method: 'fitted', upToHz: 350, freeDelay: true }
     expect(discretize(LOWPASS, RATE, how)).toEqual(discretize(LOWPASS, RATE, how))

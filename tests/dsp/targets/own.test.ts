@@ -312,7 +312,13 @@ describe('measured responses', () => {
   })
 
   it('has no rivals', () => {
-    const spec = { format: 1 as const, own: table, sampleRateHz: RATE, how: FIT, budget: { magnitudeDb: 1, phaseDegrees: 1, removeDelay: false } } // prettier-ignore
+    const spec = {
+      format: 1 as const,
+      own: table,
+      sampleRateHz: RATE,
+      how: FIT,
+      budget: { magnitudeDb: 1, phaseDegrees: 1, removeDelay: false },
+    }
     expect(refusal(() => fittedAdvantage(spec)).code).toBe('no-rivals')
   })
 })
