@@ -100,6 +100,14 @@ export { toSections, type SectionOptions, type SectionOrder } from './forms/sect
 export type { SectionScale } from './forms/section-scaling'
 export { toTransferFunction, type TransferFunction } from './forms/transfer-function'
 
+// FIR filters
+export { designFir } from './fir/design-fir'
+export { firMeets, leastTaps, type FirRequirement } from './fir/least-taps'
+export { firBandMagnitudes, type BandMagnitude } from './fir/band-magnitudes'
+export { firWindow, kaiserBeta, kaiserOrder } from './fir/windows'
+export { firZeros, MOST_TAPS_FOR_ZEROS } from './fir/zeros'
+export { createTapsRunner, runTaps, type RunTapsOptions } from './fir/run-taps'
+
 // Responses
 export type { AnyFilter } from './response/factors'
 export {

@@ -27,7 +27,7 @@ import { delayReadAtHz, edgesHzOf, highestEdgeHz, passBandOf } from '@/lib/desig
 import { methodNames, versionLabels, type VersionId } from '@/lib/designs/words'
 import { orRefusal } from './or-refusal'
 import { statedDesign } from './stated-design'
-import type { StackView, Trace } from './view'
+import type { StackView, Trace, TraceId } from './view'
 
 /** What a design is held against and every digital version of it that can be had. */
 export interface Versions {
@@ -128,6 +128,22 @@ export function deriveTraces(
       image: beyond ? { frequenciesHz: beyond, magnitudeDb: magnitudeDb(filter, beyond) } : null,
     }))
   return [ink, ...digital]
+}
+
+/** A version that has its place in the legend and no curve yet. */
+export function waitingTrace(id: TraceId): Trace {
+  const nothing = new Float64Array(0)
+  return {
+    id,
+    label: id === 'analog' || id === 'candidate' ? id : versionLabels[id],
+    frequenciesHz: nothing,
+    magnitudeDb: nothing,
+    phaseRadians: nothing,
+    groupDelaySeconds: nothing,
+    departure: null,
+    stated: false,
+    image: null,
+  }
 }
 
 /** Another design's curve to hold beside this one. */

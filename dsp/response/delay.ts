@@ -1,6 +1,7 @@
-import type { DigitalFilter, Filter } from '../forms/filter'
+import { isFir, type DigitalFilter, type Filter } from '../forms/filter'
 import { cosHalfTurns, foldedTurns, refuseFrequency, sinHalfTurns } from './axis'
-import type { AnyFilter, RootFactors } from './factors'
+import type { AnyFilter, RootFactors, RootFilter } from './factors'
+import { firDelayInto, firPhaseInto } from './fir'
 import { circleDistance, factorsOf, PAIR_STRIDE, REAL_STRIDE, splitRoots } from './factors'
 
 /** Angles of one list of factors at one frequency; each is 0 at DC and continuous, with a step of π at a zero on the axis or circle. */
@@ -43,6 +44,10 @@ function turnAngle(list: RootFactors['zeros']): number {
  * @see phaseResponse
  */
 export function phaseResponseInto(filter: AnyFilter, frequenciesHz: ArrayLike<number>, out: Float64Array): void {
+  if (isFir(filter)) {
+    firPhaseInto(filter, frequenciesHz, out)
+    return
+  }
   const factors = factorsOf(filter)
   const { zeros, poles, qPower, pPower, halfTurns, scale } = factors
   const digital = factors.domain === 'z'
@@ -105,7 +110,7 @@ interface DelayTable {
 
 const DELAY_STRIDE = 3
 
-function delayTable(filter: AnyFilter): DelayTable {
+function delayTable(filter: RootFilter): DelayTable {
   const pairs: number[] = []
   const reals: number[] = []
   for (const [roots, field, sign] of [
@@ -130,9 +135,9 @@ function delayTable(filter: AnyFilter): DelayTable {
   }
 }
 
-const delayTables = new WeakMap<AnyFilter, DelayTable>()
+const delayTables = new WeakMap<RootFilter, DelayTable>()
 
-function delayTableOf(filter: AnyFilter): DelayTable {
+function delayTableOf(filter: RootFilter): DelayTable {
   const known = delayTables.get(filter)
   if (known !== undefined) return known
   const fresh = delayTable(filter)
@@ -195,7 +200,8 @@ function digitalDelayInto(filter: DigitalFilter, frequenciesHz: ArrayLike<number
  * @see groupDelay
  */
 export function groupDelayInto(filter: AnyFilter, frequenciesHz: ArrayLike<number>, out: Float64Array): void {
-  if (filter.domain === 's') analogDelayInto(filter, frequenciesHz, out)
+  if (isFir(filter)) firDelayInto(filter, frequenciesHz, out)
+  else if (filter.domain === 's') analogDelayInto(filter, frequenciesHz, out)
   else digitalDelayInto(filter, frequenciesHz, out)
 }
 

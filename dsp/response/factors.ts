@@ -1,8 +1,11 @@
 import { DesignError } from '../errors'
-import type { Complex, DigitalFilter, Filter } from '../forms/filter'
+import type { Complex, DigitalFilter, Filter, FirFilter } from '../forms/filter'
 
 /** What a response can be asked of: an analog filter, or a digital one that knows its sampling rate. */
-export type AnyFilter = Filter<'s'> | DigitalFilter
+export type AnyFilter = Filter<'s'> | DigitalFilter | FirFilter
+
+/** Those known by their roots. */
+export type RootFilter = Filter<'s'> | DigitalFilter
 
 /*
  * A filter's roots, compiled once into factors that are cheap and accurate to evaluate on the frequency axis.
@@ -210,7 +213,7 @@ function analogScale(filter: Filter<'s'>): number {
   return count === 0 ? 1 : 2 ** Math.round(sum / count)
 }
 
-function compile(filter: AnyFilter): RootFactors {
+function compile(filter: RootFilter): RootFactors {
   if (!Number.isFinite(filter.gain)) {
     throw new DesignError('not-finite', 'gain', 'The gain of the filter is not a finite number.')
   }
@@ -239,10 +242,10 @@ function compile(filter: AnyFilter): RootFactors {
   }
 }
 
-const compiled = new WeakMap<AnyFilter, RootFactors>()
+const compiled = new WeakMap<RootFilter, RootFactors>()
 
 /** The factors of a filter, compiled on first use. A filter is never changed once made, so they stay valid. */
-export function factorsOf(filter: AnyFilter): RootFactors {
+export function factorsOf(filter: RootFilter): RootFactors {
   const known = compiled.get(filter)
   if (known !== undefined) return known
   const fresh = compile(filter)

@@ -1,5 +1,7 @@
 import { DesignError } from '../errors'
+import { isFir } from '../forms/filter'
 import { cosHalfTurns, foldedTurns, refuseFrequency, sinHalfTurns } from './axis'
+import { firMagnitudeDbInto, firResponseInto } from './fir'
 import type { AnyFilter, RootFactors } from './factors'
 import { factorsOf, PAIR_STRIDE, REAL_STRIDE, scaleByPowerOfTwo } from './factors'
 import { evaluateScaled } from './scaled-evaluation'
@@ -152,7 +154,8 @@ export function frequencyResponseInto(
 ): void {
   checkRoom('re', re.length, frequenciesHz.length)
   checkRoom('im', im.length, frequenciesHz.length)
-  rootsInto(factorsOf(filter), frequenciesHz, re, im)
+  if (isFir(filter)) firResponseInto(filter, frequenciesHz, re, im)
+  else rootsInto(factorsOf(filter), frequenciesHz, re, im)
 }
 
 /**
@@ -185,6 +188,10 @@ const DECIBELS_PER_OCTAVE = 20 * Math.log10(2)
 export function magnitudeDbInto(filter: AnyFilter, frequenciesHz: ArrayLike<number>, out: Float64Array): void {
   const count = frequenciesHz.length
   checkRoom('out', out.length, count)
+  if (isFir(filter)) {
+    firMagnitudeDbInto(filter, frequenciesHz, out)
+    return
+  }
   const factors = factorsOf(filter)
   const imaginary = new Float64Array(count)
   rootsInto(factors, frequenciesHz, out, imaginary)

@@ -1,7 +1,7 @@
 import { DesignError } from '../errors'
-import type { DigitalFilter, Filter } from '../forms/filter'
+import { isFir, type DigitalFilter, type Filter, type FirFilter } from '../forms/filter'
 import { createRunner } from '../signal/run'
-import type { AnyFilter } from './factors'
+import type { AnyFilter, RootFilter } from './factors'
 import { frequencyResponse } from './frequency'
 import { stepResponse } from './time'
 
@@ -23,7 +23,7 @@ const BLOCK = 8192
 const BANDS = [0.01, 0.02, 0.05] as const
 
 /** Slowest decay of a filter: 1/s, or per sample. */
-function slowestDecay(filter: AnyFilter): number {
+function slowestDecay(filter: RootFilter): number {
   const rates = filter.poles.map(({ re, im }) => (filter.domain === 's' ? -re : -Math.log(Math.hypot(re, im))))
   const slowest = Math.min(...rates)
   if (!(slowest > 0)) {
@@ -33,7 +33,7 @@ function slowestDecay(filter: AnyFilter): number {
 }
 
 /** A response goes on for a few time constants of its slowest pole, and longer for each pole that repeats it. */
-const horizonOf = (filter: AnyFilter, decay: number): number => (16 + 2 * filter.poles.length) / decay
+const horizonOf = (filter: RootFilter, decay: number): number => (16 + 2 * filter.poles.length) / decay
 
 interface Scan {
   readonly largest: number
@@ -137,6 +137,16 @@ function digitalFigures(filter: DigitalFilter): StepFigures {
   return figures(end, seen, [within[0]!, within[1]!, within[2]!])
 }
 
+/** After as many samples as there are taps the response stands still. */
+function finiteFigures(filter: FirFilter): StepFigures {
+  const { values } = stepResponse(filter, { count: filter.taps.length + 1 })
+  const end = values.at(-1)!
+  const first = scan(values, end, Math.abs(end), 0, nothing)
+  const seen = scan(values, end, referenceOf(end, first.largest), 0, nothing)
+  const within = seen.last.map((last) => (last + 1) / filter.sampleRateHz)
+  return figures(end, seen, [within[0]!, within[1]!, within[2]!])
+}
+
 /**
  * Figures of the step response: final value, overshoot, and the times after which it stays within 1, 2 and 5 % for good.
  *
@@ -146,6 +156,7 @@ function digitalFigures(filter: DigitalFilter): StepFigures {
  * @throws DesignError `unstable` for a pole on or beyond the axis or circle, `improper`
  */
 export function stepFigures(filter: AnyFilter): StepFigures {
+  if (isFir(filter)) return finiteFigures(filter)
   return filter.domain === 's' ? analogFigures(filter) : digitalFigures(filter)
 }
 

@@ -1,5 +1,6 @@
 import { DesignError } from '../errors'
-import type { DigitalFilter, Filter } from '../forms/filter'
+import { isFir, type AnyDigital, type Filter } from '../forms/filter'
+import { createTapsRunner } from '../fir/run-taps'
 import { matrixExponential } from '../numeric/matrix-exponential'
 import { createRunner } from '../signal/run'
 import type { AnyFilter } from './factors'
@@ -109,13 +110,14 @@ function analogResponse(filter: Filter<'s'>, grid: TimeGrid, kind: 'impulse' | '
   return { timesSeconds, values, unit, impulseArea }
 }
 
-function digitalResponse(filter: DigitalFilter, grid: TimeGrid, kind: 'impulse' | 'step'): TimeResponse {
+function digitalResponse(filter: AnyDigital, grid: TimeGrid, kind: 'impulse' | 'step'): TimeResponse {
   checkGrid({ count: grid.count, sampleRateHz: filter.sampleRateHz })
   const input = new Float64Array(grid.count)
   if (kind === 'impulse') input[0] = 1
   else input.fill(1)
   const values = new Float64Array(grid.count)
-  createRunner(filter.sections).process(input, values)
+  const runner = isFir(filter) ? createTapsRunner(filter.taps) : createRunner(filter.sections)
+  runner.process(input, values)
   const timesSeconds = Float64Array.from({ length: grid.count }, (_, n) => n / filter.sampleRateHz)
   return { timesSeconds, values, unit: '1', impulseArea: 0 }
 }

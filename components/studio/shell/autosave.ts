@@ -33,6 +33,7 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
   let parent = parentNumber
   let saved: DesignSpec = store.getState().spec
   let timer: ReturnType<typeof setTimeout> | undefined
+  let underWay = false
 
   const sender = new MutationObserver(new QueryClient(), {
     // A browser that believes itself offline must hear of the failure too, and not wait in silence.
@@ -49,8 +50,11 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
     clearTimeout(timer)
     const { spec, gestureMark } = store.getState()
     if (gestureMark !== null || sameSpec(spec, saved)) return
-    state.setState({ kind: 'saving' }, true)
     keepDraft(designId, spec)
+    // Two at once would come from the same revision, and the second be taken for another window's: the answer to the first sends it.
+    if (underWay) return
+    state.setState({ kind: 'saving' }, true)
+    underWay = true
     try {
       const outcome = await sender.mutate(spec)
       if (outcome.outcome === 'stale') {
@@ -59,13 +63,15 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
       }
       revision = outcome.revision
       saved = spec
-      forgetKeptDraft(designId)
+      if (sameSpec(store.getState().spec, spec)) forgetKeptDraft(designId)
       onSaved({ spec, parentNumber: parent, revision, updatedAt: outcome.updatedAt })
       state.setState({ kind: 'idle', savedAt: outcome.updatedAt }, true)
       if (!sameSpec(store.getState().spec, spec)) later(QUIET_MS)
     } catch (error) {
       state.setState({ kind: 'failed', reason: reasonOf(error) }, true)
       later(RETRY_MS)
+    } finally {
+      underWay = false
     }
   }
 

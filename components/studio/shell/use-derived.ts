@@ -7,11 +7,14 @@ import {
   deriveTraces,
   deriveTrust,
   deriveVersions,
+  statedId,
+  waitingTrace,
   type Versions,
 } from '../derive'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
-import type { DesignSpec } from '@/dsp'
+import { isFirDesign, type DesignSpec } from '@/dsp'
+import type { TraceId } from '../view'
 import { usePacedSpec } from './use-paced-spec'
 
 /*
@@ -33,17 +36,24 @@ function versionsDrawn(spec: DesignSpec, hidden: readonly string[]): Versions | 
   return versions
 }
 
-/** At the pace of the hand: the spec as it stands in this frame, and its versions. */
+/** A fit takes longer than a frame leaves room for: unless it is the stated version it waits for the hand to rest. */
+const tooSlowInMotion = (spec: DesignSpec): readonly TraceId[] => (statedId(spec) === 'fitted' ? [] : ['fitted'])
+
+/** At the pace of the hand: the spec as it stands in this frame, and its versions; `waiting` are those that come when the hand rests. */
 export function useDrawnVersions(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
   const hidden = useStudio(store, (state) => state.view.hidden)
-  const versions = useMemo(() => versionsDrawn(spec, hidden), [spec, hidden])
-  return { spec, hidden, versions }
+  const inMotion = useStudio(store, (state) => state.gestureMark !== null)
+  const { versions, waiting } = useMemo(() => {
+    const left = inMotion ? tooSlowInMotion(spec).filter((id) => !hidden.includes(id)) : []
+    return { versions: versionsDrawn(spec, [...hidden, ...left]), waiting: isFirDesign(spec) ? [] : left }
+  }, [spec, hidden, inMotion])
+  return { spec, hidden, versions, waiting }
 }
 
 /** At the pace of the hand: the curves. */
 export function useDrawnTraces(store: StudioStore) {
-  const { spec, versions } = useDrawnVersions(store)
+  const { spec, versions, waiting } = useDrawnVersions(store)
   const inMotion = useStudio(store, (state) => state.gestureMark !== null)
   const looked = useStudio(store, (state) => state.view)
   const held = useStudio(store, (state) => state.held)
@@ -63,7 +73,10 @@ export function useDrawnTraces(store: StudioStore) {
     () => (held ? deriveCandidateTrace(held, curveView, points) : null),
     [held, curveView, points],
   )
-  const traces = useMemo(() => (candidate ? [...own, candidate] : own), [own, candidate])
+  const traces = useMemo(
+    () => [...own, ...waiting.map(waitingTrace), ...(candidate ? [candidate] : [])],
+    [own, waiting, candidate],
+  )
   return { spec, view, traces }
 }
 
