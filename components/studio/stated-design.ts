@@ -1,4 +1,5 @@
 import { DesignError, designFromSpec, type Design, type DesignSpec } from '@/dsp'
+import { coreOf } from './core-spec'
 import { orRefusal } from './or-refusal'
 
 /** Specs are never altered, so that a design can be kept beside its spec for as long as anybody holds it. */
@@ -8,7 +9,11 @@ const kept = new WeakMap<DesignSpec, Design | DesignError>()
 export function statedDesign(spec: DesignSpec): Design | DesignError {
   const known = kept.get(spec)
   if (known) return known
-  const design = orRefusal(() => designFromSpec(spec))
+  const core = coreOf(spec)
+  const design = core === spec ? orRefusal(() => designFromSpec(spec)) : ofSpec(statedDesign(core), spec)
   kept.set(spec, design)
   return design
 }
+
+const ofSpec = (design: Design | DesignError, spec: DesignSpec): Design | DesignError =>
+  design instanceof DesignError ? design : { ...design, spec }

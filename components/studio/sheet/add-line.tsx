@@ -10,15 +10,17 @@ const kinds = Object.entries(requirementKindWords) as [RequirementKind, string][
 export function AddLine({
   primary,
   full,
+  onOpen,
   onAdd,
 }: {
   primary: boolean
   full: boolean
+  onOpen(): void
   onAdd(kind: RequirementKind): void
 }) {
   const added = useRef(false)
   return (
-    <DropdownMenu.Root modal={false}>
+    <DropdownMenu.Root modal={false} onOpenChange={(open) => open && onOpen()}>
       <DropdownMenu.Trigger
         className={buttonClass(primary ? 'primary' : 'plain', true)}
         disabled={full}

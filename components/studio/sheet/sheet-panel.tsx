@@ -39,7 +39,10 @@ export function SheetView({
   const awaited = useRef<number | null>(null)
   useEffect(() => {
     if (awaited.current === null || sheet.length <= awaited.current) return
-    section.current?.querySelector<HTMLElement>(`[data-line="${awaited.current}"] input`)?.focus()
+    // Whoever has gone on to something else meanwhile isn't called back.
+    const at = document.activeElement
+    if (at === null || at === document.body || at.closest('[role="menu"], [data-tool="add"]') !== null)
+      section.current?.querySelector<HTMLElement>(`[data-line="${awaited.current}"] input`)?.focus()
     awaited.current = null
   }, [sheet])
 
@@ -92,6 +95,9 @@ export function SheetView({
           <AddLine
             primary={sheet.length === 0}
             full={!hasRoomForLine(sheet)}
+            onOpen={() => {
+              awaited.current = null
+            }}
             onAdd={(kind) => {
               awaited.current = sheet.length
               desk.add(kind)

@@ -11,6 +11,7 @@ import {
   waitingTrace,
   type Versions,
 } from '../derive'
+import { coreOf } from '../core-spec'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { isFirDesign, type DesignSpec } from '@/dsp'
@@ -44,16 +45,17 @@ export function useDrawnVersions(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
   const hidden = useStudio(store, (state) => state.view.hidden)
   const inMotion = useStudio(store, (state) => state.gestureMark !== null)
+  const core = coreOf(spec)
   const { versions, waiting } = useMemo(() => {
-    const left = inMotion ? tooSlowInMotion(spec).filter((id) => !hidden.includes(id)) : []
-    return { versions: versionsDrawn(spec, [...hidden, ...left]), waiting: isFirDesign(spec) ? [] : left }
-  }, [spec, hidden, inMotion])
-  return { spec, hidden, versions, waiting }
+    const left = inMotion ? tooSlowInMotion(core).filter((id) => !hidden.includes(id)) : []
+    return { versions: versionsDrawn(core, [...hidden, ...left]), waiting: isFirDesign(core) ? [] : left }
+  }, [core, hidden, inMotion])
+  return { spec, core, hidden, versions, waiting }
 }
 
 /** At the pace of the hand: the curves. */
 export function useDrawnTraces(store: StudioStore) {
-  const { spec, versions, waiting } = useDrawnVersions(store)
+  const { spec, core, versions, waiting } = useDrawnVersions(store)
   const inMotion = useStudio(store, (state) => state.gestureMark !== null)
   const looked = useStudio(store, (state) => state.view)
   const held = useStudio(store, (state) => state.held)
@@ -66,8 +68,8 @@ export function useDrawnTraces(store: StudioStore) {
   )
   const points = inMotion ? curvePoints.inMotion : curvePoints.atRest
   const own = useMemo(
-    () => (versions ? deriveTraces(spec, versions, curveView, points) : []),
-    [spec, versions, curveView, points],
+    () => (versions ? deriveTraces(core, versions, curveView, points) : []),
+    [core, versions, curveView, points],
   )
   const candidate = useMemo(
     () => (held ? deriveCandidateTrace(held, curveView, points) : null),
@@ -83,10 +85,12 @@ export function useDrawnTraces(store: StudioStore) {
 /** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design. */
 export function useSettled(store: StudioStore) {
   const spec = usePacedSpec(store, TELL_EVERY_MS)
-  const made = useMemo(() => {
-    const versions = deriveVersions(spec)
-    return versions && { spec, versions, trust: deriveTrust(spec, versions), figures: deriveFigures(spec, versions) }
-  }, [spec])
+  const core = coreOf(spec)
+  const derived = useMemo(() => {
+    const versions = deriveVersions(core)
+    return versions && { versions, trust: deriveTrust(core, versions), figures: deriveFigures(core, versions) }
+  }, [core])
+  const made = useMemo(() => derived && { spec, ...derived }, [spec, derived])
   return { spec, made }
 }
 
