@@ -12,7 +12,7 @@ import type { Miss } from './screen'
  * into the room between them: those of what is lost for a narrower filter, those of what is kept for a flatter one.
  */
 
-export const MOST_CANDIDATE_TAPS = 400
+const MOST_CANDIDATE_TAPS = 400
 const FEWEST_TAPS = 3
 /** Lengths tried beyond the first that holds pass and stop lines, for the sake of the other lines. */
 const LONGER = 4
@@ -24,7 +24,7 @@ const INTO_ROOM = 0.9
 const TONE_WIDTH = 0.02
 const MOST_WEIGHT = 1e6
 
-export interface FiniteKind {
+interface FiniteKind {
   readonly kind: FirKind
   readonly window?: FirWindow
 }
@@ -93,7 +93,8 @@ function estimateOf({ kind, window }: FiniteKind, errors: readonly number[], tra
   }
   // Kaiser's estimate for equal ripples.
   const product = errors.reduce((sum, error) => sum + Math.log10(error), 0) / errors.length
-  return (-20 * product - 13) / (14.6 * transition) + 1
+  const taps = (-20 * product - 13) / (14.6 * transition) + 1
+  return kind === 'minimum-phase' ? taps / 2 : taps
 }
 
 const quarterWords = (hz: number) => `${Number(hz.toPrecision(6))} Hz`
@@ -203,37 +204,73 @@ function trial(plan: Plan, taps: number, isWhole: boolean, part = 0): Trial {
 const lengthOf = ({ first, step }: Plan, taps: number): number =>
   first + step * Math.max(0, Math.ceil((taps - first) / step))
 
+/** Pass and stop lines held against so many taps; the refusal where that number can't be designed. */
+function levelTrial(plan: Plan, taps: number): Trial | DesignError {
+  try {
+    return trial(plan, taps, false)
+  } catch (error) {
+    if (error instanceof DesignError) return error
+    throw error
+  }
+}
+
+/** What is known of the numbers of taps: `bad` miss, `good` hold; `beyond` can't be designed, being too many. */
+interface Bounds {
+  bad: number
+  good: Trial | null
+  beyond: number
+  nearest: Trial | null
+  refusal: DesignError | null
+}
+
+function note(bounds: Bounds, taps: number, found: Trial | DesignError): void {
+  if (found instanceof DesignError) {
+    bounds.beyond = Math.min(bounds.beyond, taps)
+    bounds.refusal = found
+  } else if (found.miss === null) bounds.good = found
+  else {
+    bounds.bad = Math.max(bounds.bad, taps)
+    if (bounds.nearest?.miss == null || found.miss.parts < bounds.nearest.miss.parts) bounds.nearest = found
+  }
+}
+
 /** Fewest taps with which pass and stop lines hold; the nearest miss when none do. */
-function* fewest(plan: Plan): Generator<null, Trial> {
+function* fewest(plan: Plan): Generator<null, Trial | DesignError> {
   const most = lengthOf(plan, MOST_CANDIDATE_TAPS + 1) - plan.step
+  const bounds: Bounds = {
+    bad: plan.first - plan.step,
+    good: null,
+    beyond: most + plan.step,
+    nearest: null,
+    refusal: null,
+  }
   let taps = Math.min(lengthOf(plan, Math.max(FEWEST_TAPS, 0.95 * plan.estimate)), most)
-  let good: Trial | null = null
-  let bad = plan.first - plan.step
-  let nearest = trial(plan, taps, false)
-  if (nearest.miss === null) good = nearest
-  while (good === null && taps < most) {
+  note(bounds, taps, levelTrial(plan, taps))
+  // Up, until they hold or can't be designed.
+  while (bounds.good === null && bounds.beyond > most && taps < most) {
     yield null
-    bad = taps
     taps = Math.min(lengthOf(plan, taps * STEP), most)
-    const next = trial(plan, taps, false)
-    if (next.miss === null) good = next
-    else if (nearest.miss === null || next.miss.parts < nearest.miss.parts) nearest = next
+    note(bounds, taps, levelTrial(plan, taps))
   }
-  if (good === null) return nearest
-  while (bad < plan.first && good.size > plan.first) {
+  // Down from what holds, in strides.
+  while (bounds.good !== null && bounds.bad < plan.first && bounds.good.size > plan.first) {
     yield null
-    const lower = trial(plan, Math.min(lengthOf(plan, good.size / STEP), good.size - plan.step), false)
-    if (lower.miss === null) good = lower
-    else bad = lower.size
+    taps = Math.min(lengthOf(plan, bounds.good.size / STEP), bounds.good.size - plan.step)
+    note(bounds, taps, levelTrial(plan, taps))
+    if (bounds.beyond <= taps) break
   }
-  while (good.size - bad > plan.step) {
+  // Between what misses and what holds, or can't be designed.
+  for (;;) {
+    const above = bounds.good?.size ?? bounds.beyond
+    if (above - bounds.bad <= plan.step || (bounds.good === null && above > most)) break
     yield null
-    const middle: number = lengthOf(plan, (good.size + bad) / 2)
-    const between: Trial = trial(plan, middle >= good.size ? good.size - plan.step : middle, false)
-    if (between.miss === null) good = between
-    else bad = between.size
+    const middle = lengthOf(plan, (above + bounds.bad) / 2)
+    taps = middle >= above ? above - plan.step : middle
+    const found = levelTrial(plan, taps)
+    if (found instanceof DesignError && bounds.good !== null) break
+    note(bounds, taps, found)
   }
-  return good
+  return bounds.good ?? bounds.nearest ?? bounds.refusal ?? trial(plan, taps, false)
 }
 
 /** Moves edges into the room beside them as far as all lines hold. */
@@ -267,12 +304,13 @@ export function* searchFinite(request: CandidateRequest, outline: Outline, what:
   if (typeof plan === 'string') return { miss: null, reason: plan }
   try {
     const start = yield* fewest(plan)
+    if (start instanceof DesignError) return { miss: null, reason: start.message }
     if (start.miss !== null) {
       const { index, words } = start.miss
       const isMost = start.size + plan.step > MOST_CANDIDATE_TAPS
       const reason = isMost
         ? `It ${words} even with ${start.size} taps.`
-        : `It ${words} with ${start.size} taps, its nearest; up to ${MOST_CANDIDATE_TAPS} come no nearer.`
+        : `It ${words} with ${start.size} taps, the nearest of those that can be designed.`
       return { miss: index, reason }
     }
     let nearest: Trial | null = null

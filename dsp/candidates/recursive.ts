@@ -3,6 +3,7 @@ import { designAnalog } from '../design-analog'
 import { discretize } from '../discretise/discretize'
 import { DesignError } from '../errors'
 import { checkDiscretization } from '../check'
+import { groupDelay } from '../response/delay'
 import { magnitudeDb } from '../response/frequency'
 import { sampledResponse, sampledSystem } from '../response/sampled'
 import { minimumOrder } from '../prototypes/order'
@@ -307,25 +308,52 @@ const FAR_PARTS = 0.5
 
 const isFar = ({ verdict }: Place): boolean => 'miss' in verdict && verdict.miss.parts > FAR_PARTS
 
-/** Tries one order; the places it looked at, in order of preference, or the nearest miss. */
-function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, readonly Place[] | Miss> {
-  let nearest: Miss | null = null
+const ORIGINAL_POINTS = 33
+
+/**
+ * Whether the original already has so much more delay, or spread of it, than a line allows that its digital version, which takes long to
+ * make, can't be nearer than what is known.
+ */
+function isHopeless({ how, request }: Task, analog: AnalogSpec, known: Miss | null): boolean {
+  if (known === null || !known.isLate || how.method === 'bilinear' || how.method === 'matched-z') return false
+  const enough = 1 + Math.max(FAR_PARTS, 1.5 * known.parts)
+  return request.sheet.some((line) => {
+    if (line.kind !== 'delay' && line.kind !== 'delay-spread') return false
+    const { fromHz, toHz } = line
+    const at = Array.from({ length: ORIGINAL_POINTS }, (_, n) => fromHz + ((toHz - fromHz) * n) / (ORIGINAL_POINTS - 1))
+    const delays = groupDelay(designAnalog(analog), at)
+    const value = Math.max(...delays) - (line.kind === 'delay' ? 0 : Math.min(...delays))
+    return value > enough * line.atMostSeconds
+  })
+}
+
+/** Tries one order; the places it looked at, in order of preference, or the nearest miss so far. */
+function* atOrder(
+  task: Task,
+  order: number,
+  hasMore: boolean,
+  known: Miss | null,
+): Generator<null, readonly Place[] | Miss | null> {
+  let nearest = known
   let refused: DesignError | null = null
   for (const shape of shapesOf(task.family, task.how.method === 'bilinear', hasMore)) {
     try {
-      const span = spanOf(task, order, shape)
+      let span = spanOf(task, order, shape)
       yield null
       if (span.isEmpty) {
         for (const omega of [span.low, Math.sqrt(task.slide.narrow * task.slide.wide), task.slide.narrow]) {
           const levels = quick(task, analogAt(task, order, omega, shape))
           const miss = quickMiss(task.screen, levels, task.request.sheet)
-          if (miss !== null && (nearest === null || isNearer(miss, nearest))) nearest = miss
+          // Where levels don't change with Ω one way only, there may be a place after all.
+          if (miss === null) span = { low: omega, high: omega, isEmpty: false }
+          else if (nearest === null || isNearer(miss, nearest)) nearest = miss
         }
-        continue
       }
+      if (span.isEmpty) continue
       const places: Place[] = []
       for (const omega of placesOf(span, task.request.spend)) {
         if (places.length === FIRST_PLACES && places.every(isFar)) break
+        if (isHopeless(task, analogAt(task, order, omega, shape), nearest)) continue
         const place = placeAt(task, order, omega, shape)
         places.push(place)
         yield null
@@ -339,9 +367,16 @@ function* atOrder(task: Task, order: number, hasMore: boolean): Generator<null, 
       refused = error
     }
   }
-  if (nearest !== null) return nearest
-  throw refused ?? new RangeError('an order was neither judged nor refused')
+  if (nearest === null && refused !== null) throw refused
+  return nearest
 }
+
+interface Nearest {
+  readonly order: number
+  readonly miss: Miss
+}
+
+const missIn = (nearest: Nearest | null): Miss | null => nearest?.miss ?? null
 
 const asksMore = (sheet: RequirementSheet): boolean => sheet.some(({ kind }) => !LEVEL_KINDS.has(kind))
 
@@ -356,19 +391,19 @@ export function* searchRecursive(request: CandidateRequest, outline: Outline, fa
   const task: Task = { request, outline, family, how, slide, screen: screenOf(request.sheet, request.sampleRateHz) }
   const hasMore = asksMore(request.sheet)
   const start = startOrder(task)
-  let nearest: { readonly order: number; readonly miss: Miss } | null = null
+  let nearest: Nearest | null = null
   let refused: DesignError | null = null
   let tried = start
   for (let order = start; order <= MOST_ORDER; order++) {
     tried = order
     try {
-      const found = yield* atOrder(task, order, hasMore)
-      if (!('parts' in found)) {
+      const found: readonly Place[] | Miss | null = yield* atOrder(task, order, hasMore, missIn(nearest))
+      if (found !== null && !('parts' in found)) {
         const { spec, design } = yield* spent(task, order, found)
         return { spec, design, size: order }
       }
-      if (nearest === null || isNearer(found, nearest.miss)) nearest = { order, miss: found }
-      else if (order - nearest.order >= (how.method === 'fitted' ? PATIENCE_WITH_FITS : PATIENCE)) break
+      if (found !== null && found !== missIn(nearest)) nearest = { order, miss: found }
+      else if (order - (nearest?.order ?? start) >= (how.method === 'fitted' ? PATIENCE_WITH_FITS : PATIENCE)) break
     } catch (error) {
       if (!(error instanceof DesignError)) throw error
       refused ??= error

@@ -31,7 +31,7 @@ const FEWEST_BITS = 4
 const MOST_BITS = 32
 
 /** Ratio of a full-scale sine to the quantisation noise of an ideal converter: 20·N·lg 2 + 10·lg 1.5, or 6.02·N + 1.76 dB. */
-export function quantisationRatioDb(bits: number): number {
+function quantisationRatioDb(bits: number): number {
   if (!(Number.isInteger(bits) && bits >= FEWEST_BITS && bits <= MOST_BITS)) {
     const nearest = bits > MOST_BITS ? MOST_BITS : FEWEST_BITS
     throw new DesignError('bits', 'bits', `A converter has ${FEWEST_BITS} to ${MOST_BITS} bits here.`, nearest)

@@ -4,6 +4,7 @@ import {
   checkRequirement,
   checkSheet,
   designAnalog,
+  designFromSpec,
   discretize,
   frequencyResponse,
   groupDelay,
@@ -256,6 +257,56 @@ describe('lines of departure', () => {
     const plain = checkRequirement(design, { ...line, removeDelay: false })
     const freed = checkRequirement(design, { ...line, removeDelay: true })
     expect(freed.value).toBeLessThan(plain.value / 2)
+  })
+})
+
+describe('FIR filters', () => {
+  const design = designFromSpec({
+    format: 1,
+    sampleRateHz: RATE,
+    budget: { magnitudeDb: 0.1, phaseDegrees: 1, removeDelay: true },
+    fir: {
+      kind: 'windowed',
+      window: 'hamming',
+      response: 'lowpass',
+      taps: 41,
+      bands: [
+        { fromHz: 0, toHz: 100, gain: 1 },
+        { fromHz: 200, toHz: 500, gain: 0 },
+      ],
+    },
+  })
+
+  it('have a constant delay of 20 samples, no departure in phase from their ideal, and half the multiplies', () => {
+    expect(checkRequirement(design, { kind: 'delay', fromHz: 0, toHz: 90, atMostSeconds: 0.1 }).value).toBeCloseTo(
+      0.02,
+      12,
+    )
+    expect(checkRequirement(design, { kind: 'delay-spread', fromHz: 0, toHz: 90, atMostSeconds: 1 }).value).toBeCloseTo(
+      0,
+      12,
+    )
+    const phase = checkRequirement(design, {
+      kind: 'phase-departure',
+      upToHz: 90,
+      withinDegrees: 1,
+      removeDelay: false,
+    })
+    expect(phase.value).toBeCloseTo(0, 6)
+    expect(phase.reason).toMatch(/ideal/)
+    expect(checkRequirement(design, { kind: 'cost', atMostMultiplies: 21 })).toMatchObject({ met: true })
+  })
+
+  it('depart from their ideal in level as far as they ripple', () => {
+    const pass = checkRequirement(design, { kind: 'pass', fromHz: 0, toHz: 90, withinDb: 1 })
+    const level = checkRequirement(design, { kind: 'magnitude-departure', upToHz: 90, withinDb: 1 })
+    expect(level.value).toBeCloseTo(pass.value, 9)
+  })
+
+  it('have settled for good after their last tap', () => {
+    const found = checkRequirement(design, { kind: 'settling', atMostSeconds: 1, withinPercent: 0.001 })
+    expect(found.value).toBeLessThanOrEqual(0.041)
+    expect(found.value).toBeGreaterThan(0.02)
   })
 })
 
