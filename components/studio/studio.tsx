@@ -3,7 +3,7 @@
 import { useSearchParams } from 'next/navigation'
 import { useEffect, useMemo, useState } from 'react'
 import { useStore } from 'zustand'
-import type { DesignSpec } from '@/dsp'
+import { isFirDesign, type DesignSpec } from '@/dsp'
 import { Header } from '@/components/frame/header'
 import { Button, buttonClass } from '@/components/ui/button'
 import { Fence } from '@/components/ui/fence'
@@ -202,19 +202,25 @@ export function Studio({
 
         {onPage && made ? (
           <div className="mt-2 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,25.5rem)]">
-            <Fence what="The plots" retryOn={spec}>
-              <LivePlots store={store} trusted={made.trust} readOnly={!viewer.mayEdit} />
-            </Fence>
-            <aside aria-label="Planes, departure, requirements and title block" className="flex min-w-0 flex-col gap-5">
-              <Fence what="The planes and the departure table" retryOn={spec}>
+            <div className="flex min-w-0 flex-col gap-5">
+              <Fence what="The plots" retryOn={spec}>
+                <LivePlots store={store} trusted={made.trust} readOnly={!viewer.mayEdit} />
+              </Fence>
+              {isFirDesign(made.spec) ? null : (
+                <Fence what="The departure table" retryOn={spec}>
+                  <DepartureTable
+                    store={store}
+                    spec={made.spec}
+                    versions={made.versions}
+                    trust={made.trust}
+                    readOnly={!viewer.mayEdit}
+                  />
+                </Fence>
+              )}
+            </div>
+            <aside aria-label="Planes, requirements and title block" className="flex min-w-0 flex-col gap-5">
+              <Fence what="The planes" retryOn={spec}>
                 <LivePlanes store={store} />
-                <DepartureTable
-                  store={store}
-                  spec={made.spec}
-                  versions={made.versions}
-                  trust={made.trust}
-                  readOnly={!viewer.mayEdit}
-                />
               </Fence>
               <Fence what="The requirement sheet" retryOn={spec}>
                 <SheetPanel store={store} spec={spec} readOnly={!viewer.mayEdit} />

@@ -39,14 +39,8 @@ export const firSpec = (fir: FirSpec, sampleRateHz: number, sheet: RequirementSh
   sheet,
 })
 
-/** A pendulum-type velocity sensor by its roots: two zeros at rest, a damped pair at its own frequency. */
-export const pendulum = (
-  name: string,
-  ownHz: number,
-  damping: number,
-  sampleRateHz: number,
-  how: Method,
-): OwnDesign => {
+/** A sensor on its mount by its roots: flat, up to a damped resonance of its own. */
+export const mounted = (name: string, ownHz: number, damping: number, sampleRateHz: number, how: Method): OwnDesign => {
   const omega = 2 * Math.PI * ownHz
   const im = omega * Math.sqrt(1 - damping ** 2)
   return {
@@ -54,15 +48,12 @@ export const pendulum = (
     own: {
       given: 'roots',
       name,
-      zeros: [
-        { re: 0, im: 0 },
-        { re: 0, im: 0 },
-      ],
+      zeros: [],
       poles: [
         { re: -damping * omega, im },
         { re: -damping * omega, im: -im },
       ],
-      gain: 1,
+      gain: omega ** 2,
     },
     sampleRateHz,
     how,

@@ -72,7 +72,7 @@ export function DepartureTable({
   return (
     <section aria-labelledby="departure-heading">
       <h2 id="departure-heading" className="font-text text-[13px] font-semibold text-pencil">
-        Departure from analog
+        Departure from {versions.analog ? 'the analog original' : 'what was measured'}
       </h2>
       <div className="mt-1 flex flex-wrap items-baseline gap-x-1.5 gap-y-1 border-t border-graph-strong pt-1.5 text-[14px]">
         <span>Within</span>

@@ -34,7 +34,11 @@ export function ReadOutRow({
   onToggle(id: TraceId): void
 }) {
   const hz = view.crosshairHz
-  const known = traceIds.filter((id) => traces.some((trace) => trace.id === id) || view.hidden.includes(id))
+  // Versions of an analog original that are hidden can be brought back; an FIR filter has none.
+  const isFir = traces.some(({ id }) => id === 'fir')
+  const known = traceIds.filter(
+    (id) => traces.some((trace) => trace.id === id) || (view.hidden.includes(id) && (!isFir || id === 'analog')),
+  )
   return (
     <div role="group" aria-label="Traces" className="flex flex-wrap items-center gap-x-2.5 text-[12px] leading-[24px]">
       <span className="min-w-[19ch] font-mono whitespace-nowrap tabular-nums">
