@@ -38,11 +38,19 @@ const USUAL_ROOM = 1.5
 export function withFir(spec: DesignSpec, choice: FirChoice): FirDesign {
   const { kind, window } = choice
   if (isFirDesign(spec)) {
-    const { attenuationDb: before, window: _, ...rest } = spec.fir
-    const response = kindAllows(kind, rest.response) ? rest.response : 'lowpass'
-    const bands =
-      kind === 'half-band' ? halfBands(spec) : kindAllows(kind, rest.response) ? rest.bands : lowpassBands(spec)
-    return { ...spec, fir: { ...rest, response, bands: weighted(bands, kind), kind, ...windowParts(window, before) } }
+    const { fir } = spec
+    const isAllowed = kindAllows(kind, fir.response)
+    const bands = kind === 'half-band' ? halfBands(spec) : isAllowed ? fir.bands : lowpassBands(spec)
+    return {
+      ...spec,
+      fir: {
+        kind,
+        response: isAllowed ? fir.response : 'lowpass',
+        taps: fir.taps,
+        bands: weighted(bands, kind),
+        ...windowParts(window, fir.attenuationDb),
+      },
+    }
   }
   const bands = kind === 'half-band' ? halfBands(spec) : bandsLike(spec)
   return {
@@ -71,7 +79,8 @@ function windowParts(window: FirWindow | undefined, attenuationDb: number | unde
 
 /** Weights belong to the kinds that weigh errors. */
 function weighted(bands: readonly FirBand[], kind: FirKind): readonly FirBand[] {
-  if (kind === 'windowed' || kind === 'half-band') return bands.map(({ weight: _, ...band }) => band)
+  if (kind === 'windowed' || kind === 'half-band')
+    return bands.map(({ fromHz, toHz, gain }) => ({ fromHz, toHz, gain }))
   return bands.map((band) => ({ ...band, weight: band.weight ?? 1 }))
 }
 

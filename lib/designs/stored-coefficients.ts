@@ -1,6 +1,14 @@
-import { isFir, type AnyDigital, type Complex, type Design,
+import {
+  isFir,
+  type AnyDigital,
+  type Complex,
+  type Design,
   type DesignOfFamily,
-  type DigitalFilter, type Filter, type FirFilter, type Section } from '@/dsp'
+  type DigitalFilter,
+  type Filter,
+  type FirFilter,
+  type Section,
+} from '@/dsp'
 
 /*
  * The numbers of a design as they are kept, signed and compared. One text for the same numbers, always: keys in this order, no spaces,

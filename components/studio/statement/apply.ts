@@ -144,7 +144,8 @@ function methodOptions(key: WordKey, spec: Exclude<DesignSpec, { fir: unknown }>
   }
 
   function fittedOptions(fitted: Extract<Analog['how'], { method: 'fitted' }>): Options {
-    const { freeDelay: _, ...plain } = fitted
+    const { method, upToHz, order } = fitted
+    const plain = { method, upToHz, ...(order === undefined ? {} : { order }) }
     const variants: readonly (typeof fitted)[] = [plain, { ...plain, freeDelay: true }]
     return {
       current: fittedWords(fitted),
