@@ -1,20 +1,17 @@
-import { designFromSpec, type Design } from '../design'
 import { designAnalog } from '../design-analog'
-import { discretize } from '../discretise/discretize'
+import type { Design } from '../design'
 import { DesignError } from '../errors'
-import { checkDiscretization } from '../check'
-import { groupDelay } from '../response/delay'
-import { magnitudeDb } from '../response/frequency'
-import { sampledResponse, sampledSystem } from '../response/sampled'
-import { minimumOrder } from '../prototypes/order'
-import type { AnalogSpec, Family, FamilyDesign, Method, MethodName } from '../spec'
 import type { RequirementSheet } from '../requirements/requirement'
+import { groupDelay } from '../response/delay'
+import type { AnalogSpec, Family, FamilyDesign, Method, MethodName } from '../spec'
 import { keptDelay } from './figures'
-import { judge, LEVEL_KINDS, type Verdict } from './judge'
+import { LEVEL_KINDS } from './judge'
 import type { Outline } from './outline'
+import { analogAt, isMet, placeAt, placesOf, quick, shapesOf, spanOf, type Place, type Task } from './places'
 import type { CandidateRequest } from './request'
-import { isNearer, passRoom, quickMiss, screenOf, stopRoom, type Levels, type Miss, type Screen } from './screen'
-import { slideOf, type Slide } from './slide'
+import { isNearer, quickMiss, screenOf, type Miss } from './screen'
+import { slideOf } from './slide'
+import { MOST_ORDER, startOrder } from './start-order'
 
 /*
  * The least order of a family that meets a sheet by a method. At each order the edges slide between where the pass lines and where the
@@ -22,171 +19,22 @@ import { slideOf, type Slide } from './slide'
  * taken, and its room is spent as asked.
  */
 
-export const MOST_ORDER = 24
 /** Orders that may pass without coming nearer to the sheet before a search gives up. */
 const PATIENCE = 4
 /** A fit takes long. */
 const PATIENCE_WITH_FITS = 2
-/** The wanted end, the other one, and between. */
-const PLACES = [0, 1, 0.5, 0.25, 0.75]
-const NARROWINGS = 10
-const LAST_NARROWINGS = 22
-/** Missed by less than this part of its limit, a bound is sought more closely. */
-const CLOSE = 0.02
 const REFINEMENTS = 5
 /** Ripple is lessened by up to this factor, in so many halvings of its logarithm. */
 const LEAST_RIPPLE = 1 / 64
 const FLATTENINGS = 4
 
-export interface Found {
+interface Found {
   readonly spec: FamilyDesign
   readonly design: Design
   readonly size: number
 }
 
-export type Search = Generator<null, Found | { readonly miss: number | null; readonly reason: string }>
-
-/** Ripple and attenuation to design with, as parts of and beyond what the sheet asks. */
-interface Shape {
-  readonly ripple: number
-  readonly extraDb: number
-}
-
-/** A hair inside, so that a ripple isn't missed by rounding. */
-const HAIR = 1e-6
-
-function shapesOf(family: Family, isExact: boolean, hasMore: boolean): readonly Shape[] {
-  const exact = { ripple: 1 - HAIR, extraDb: HAIR }
-  if (family === 'chebyshev1' || family === 'elliptic') {
-    // Other methods than the bilinear don't keep ripples; and less ripple has less of a delay to spread.
-    const tighter = [
-      { ripple: 0.5, extraDb: 3 },
-      { ripple: 0.1, extraDb: 6 },
-    ]
-    if (isExact) return hasMore ? [exact, ...tighter] : [exact]
-    return [{ ripple: 0.9, extraDb: 0.5 }, ...tighter]
-  }
-  if (family === 'chebyshev2' && !isExact) return [exact, { ripple: 1, extraDb: 3 }]
-  return [exact]
-}
-
-interface Task {
-  readonly request: CandidateRequest
-  readonly outline: Outline
-  readonly family: Family
-  readonly how: Method
-  readonly slide: Slide
-  readonly screen: Screen
-}
-
-function analogAt(task: Task, order: number, omega: number, shape: Shape): AnalogSpec {
-  const { family, outline, slide } = task
-  const kept = outline.stretches.filter(({ isKept }) => isKept)
-  const lost = outline.stretches.filter(({ isKept }) => !isKept)
-  const rippleDb = Math.min(...kept.map(({ strictestDb }) => strictestDb)) * shape.ripple
-  const attenuationDb = Math.max(...lost.map(({ strictestDb }) => strictestDb)) + shape.extraDb
-  return {
-    family,
-    response: slide.response,
-    order,
-    edgesHz: slide.edgesAt(omega),
-    ...(family === 'chebyshev1' || family === 'elliptic' ? { rippleDb } : {}),
-    ...(family === 'chebyshev2' || family === 'elliptic' ? { attenuationDb } : {}),
-  }
-}
-
-const specAt = ({ request, how }: Task, analog: AnalogSpec): FamilyDesign => ({
-  format: 1,
-  sampleRateHz: request.sampleRateHz,
-  budget: request.budget,
-  sheet: request.sheet,
-  analog,
-  how,
-})
-
-/**
- * Levels for the quick look: of the digital filter, or of what gives nearly the same sooner. An impulse- or step-invariant filter takes
- * long to find its zeros, and is looked at through its state space; a fitted one is looked at by its original.
- */
-function quick({ how, request }: Task, analog: AnalogSpec): Levels {
-  if (how.method === 'fitted') {
-    const filter = designAnalog(analog)
-    return (at) => magnitudeDb(filter, at)
-  }
-  if (how.method === 'impulse-invariant' || how.method === 'step-invariant') {
-    checkDiscretization(analog, request.sampleRateHz, how)
-    const kind = how.method === 'step-invariant' ? 'step' : 'impulse'
-    const system = sampledSystem(designAnalog(analog), request.sampleRateHz, kind)
-    return (at) => {
-      const { re, im } = sampledResponse(system, at)
-      return re.map((x, n) => 20 * Math.log10(Math.hypot(x, im[n]!)))
-    }
-  }
-  const filter = discretize(analog, request.sampleRateHz, how)
-  return (at) => magnitudeDb(filter, at)
-}
-
-interface Span {
-  readonly low: number
-  readonly high: number
-  readonly isEmpty: boolean
-}
-
-/** Where Ω may lie for pass and stop lines to hold at the quick look; where none does, the place that holds the pass lines. */
-function spanOf(task: Task, order: number, shape: Shape): Span {
-  const { slide, screen } = task
-  const at = (omega: number) => quick(task, analogAt(task, order, omega, shape))
-  let [low, high] = [slide.narrow, slide.wide]
-  if (passRoom(screen, at(low)) < 0) {
-    if (passRoom(screen, at(high)) < 0) return { low: high, high, isEmpty: true }
-    let [bad, good] = [low, high]
-    for (let round = 0; round < LAST_NARROWINGS; round++) {
-      const middle = Math.sqrt(bad * good)
-      const filter = at(middle)
-      if (passRoom(screen, filter) < 0) bad = middle
-      else good = middle
-      if (round < NARROWINGS - 1) continue
-      // Once the bound is known well, it matters only whether the stop lines are near it.
-      const short = -stopRoom(screen, at(good))
-      if (short < 0 || short > CLOSE * Math.max(1, screen.stop.limitsDb[0] ?? 1)) break
-    }
-    low = good
-  }
-  if (stopRoom(screen, at(low)) < 0) return { low, high: low, isEmpty: true }
-  if (stopRoom(screen, at(high)) < 0) {
-    let [good, bad] = [low, high]
-    for (let round = 0; round < NARROWINGS; round++) {
-      const middle = Math.sqrt(good * bad)
-      if (stopRoom(screen, at(middle)) < 0) bad = middle
-      else good = middle
-    }
-    high = good
-  }
-  return { low, high, isEmpty: false }
-}
-
-interface Place {
-  readonly omega: number
-  readonly shape: Shape
-  readonly spec: FamilyDesign
-  readonly design: Design
-  readonly verdict: Verdict
-}
-
-function placeAt(task: Task, order: number, omega: number, shape: Shape): Place {
-  const spec = specAt(task, analogAt(task, order, omega, shape))
-  const design = designFromSpec(spec)
-  return { omega, shape, spec, design, verdict: judge(design, task.request.sheet) }
-}
-
-const isMet = ({ verdict }: Place): boolean => 'results' in verdict
-
-/** Places between the two ends, the ones that the room is to be spent towards first. */
-function placesOf({ low, high }: Span, spend: CandidateRequest['spend']): number[] {
-  if (high <= low * (1 + 1e-9)) return [low]
-  const parts = spend === 'narrower' ? PLACES : PLACES.map((part) => 1 - part)
-  return parts.map((part) => low * (high / low) ** part)
-}
+type Search = Generator<null, Found | { readonly miss: number | null; readonly reason: string }>
 
 /** Halves the way from a place that meets the sheet to one that doesn't, and gives the last that does. */
 function* outermost(task: Task, order: number, good: Place, bad: number): Generator<null, Place> {
@@ -243,63 +91,6 @@ function* spent(task: Task, order: number, places: readonly Place[]): Generator<
   const bad = task.request.spend === 'narrower' ? Math.max(...beyond) : Math.min(...beyond)
   const best = beyond.length === 0 ? first : yield* outermost(task, order, first, bad)
   return task.request.spend === 'flatter' ? yield* flattest(task, order, best) : best
-}
-
-const hasFormula = (family: Family): boolean => family !== 'bessel' && family !== 'critically-damped'
-
-const LEVEL_ROUNDS = 44
-
-/** Ω at which a monotone prototype has lost so many dB, its edge at 1. */
-function whereLost(family: Family, order: number, db: number): number {
-  const prototype = designAnalog({ family, response: 'lowpass', order, edgesHz: [1] })
-  let [low, high] = [1e-4, 1e4]
-  for (let round = 0; round < LEVEL_ROUNDS; round++) {
-    const middle = Math.sqrt(low * high)
-    if (-magnitudeDb(prototype, [middle])[0]! < db) low = middle
-    else high = middle
-  }
-  return high
-}
-
-/** Least order of a family without a formula that falls from one loss to the other fast enough: not always a higher one does. */
-function leastByTrying(family: Family, rippleDb: number, attenuationDb: number, room: number): number {
-  for (let order = 1; order <= MOST_ORDER; order++) {
-    const ratio = whereLost(family, order, attenuationDb) / whereLost(family, order, rippleDb)
-    if (ratio <= room * (1 + 1e-9)) return order
-  }
-  return Number.POSITIVE_INFINITY
-}
-
-/** A lower bound of the order, by the published formulas from the mildest lines; methods that don't keep to them may do with less. */
-function startOrder(task: Task): number {
-  const { outline, slide, family, how, request } = task
-  const kept = outline.stretches.filter(({ isKept }) => isKept)
-  const lost = outline.stretches.filter(({ isKept }) => !isKept)
-  const rippleDb = Math.max(...kept.map(({ mildestDb }) => mildestDb))
-  const attenuationDb = Math.min(...lost.map(({ mildestDb }) => mildestDb))
-  const isExact = how.method === 'bilinear'
-  const spare = isExact ? 0 : 2
-  const [low, high] = slide.edgesAt(1)
-  const [stopLow, stopHigh] = slide.edgesAt(slide.wide)
-  if (attenuationDb <= rippleDb || low === undefined || stopLow === undefined || slide.narrow !== 1) return 1
-  if (!hasFormula(family)) {
-    const least = leastByTrying(family, rippleDb, attenuationDb, slide.wide)
-    return Math.min(Math.max(1, least - spare), MOST_ORDER)
-  }
-  const isBand = high !== undefined && stopHigh !== undefined
-  try {
-    const least = minimumOrder(family, {
-      passHz: isBand ? [low, high] : low,
-      stopHz: isBand ? [stopLow, stopHigh] : stopLow,
-      rippleDb,
-      attenuationDb,
-      ...(isExact ? { sampleRateHz: request.sampleRateHz } : {}),
-    })
-    return Math.max(1, least.order - spare)
-  } catch (error) {
-    if (error instanceof DesignError) return error.code === 'order-too-high' ? MOST_ORDER : 1
-    throw error
-  }
 }
 
 /** Places looked at before the others are given up, when all of these miss by more than FAR_PARTS of a limit. */
