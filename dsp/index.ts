@@ -102,7 +102,8 @@ export { toTransferFunction, type TransferFunction } from './forms/transfer-func
 
 // FIR filters
 export { designFir } from './fir/design-fir'
-export { firMeets, leastTaps, type FirRequirement } from './fir/least-taps'
+export { equiripple, type Equiripple } from './fir/equiripple'
+export { bandsWeightedFor, firMeets, leastTaps, type FirRequirement } from './fir/least-taps'
 export { firBandMagnitudes, type BandMagnitude } from './fir/band-magnitudes'
 export { firWindow, kaiserBeta, kaiserOrder } from './fir/windows'
 export { firZeros, MOST_TAPS_FOR_ZEROS } from './fir/zeros'
