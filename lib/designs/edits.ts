@@ -121,13 +121,17 @@ export function usualHoldHz(spec: DesignSpec): number {
   return Math.sqrt(first * (edges.at(-1) ?? first))
 }
 
-const FIT_OCTAVES = 2
+/** A fit that reaches half as far again as the band costs the band nothing; one that reaches for the fold line does. */
+const FIT_REACH = 1.5
+/** Of a high-pass, which is in use above its edge alone. */
+const HIGHPASS_FIT_REACH = 4
 const MOST_OF_FOLD = 0.8
 
-/** Up to where a version is fitted at first: two octaves above the highest edge, but not into the last fifth below the fold line. */
+/** Up to where a version is fitted at first: somewhat above the highest edge, but not into the last fifth below the fold line. */
 export function usualFitHz(spec: DesignSpec): number {
   const fold = spec.sampleRateHz / 2
   const measuredTo = isOwnDesign(spec) && spec.own.given === 'measured' ? (spec.own.rows.at(-1)?.[0] ?? fold) : fold
-  const wanted = isOwnDesign(spec) ? highestEdgeHz(spec) : highestEdgeHz(spec) * 2 ** FIT_OCTAVES
+  const reach = responseOf(spec) === 'highpass' ? HIGHPASS_FIT_REACH : FIT_REACH
+  const wanted = isOwnDesign(spec) && spec.own.given === 'measured' ? highestEdgeHz(spec) : highestEdgeHz(spec) * reach
   return Number(Math.min(wanted, MOST_OF_FOLD * fold, measuredTo).toPrecision(4))
 }

@@ -75,7 +75,8 @@ export function ScrollRegion({
       tabIndex={0}
       {...(label ? { 'aria-label': label } : {})}
       {...(labelledBy ? { 'aria-labelledby': labelledBy } : {})}
-      className={`min-w-0 overflow-auto -outline-offset-2 ${className}`}
+      // Positioned, so that words for readers alone scroll along instead of widening the page.
+      className={`relative min-w-0 overflow-auto -outline-offset-2 ${className}`}
     >
       {children}
     </div>
