@@ -260,7 +260,7 @@ const pumpHall: SeedProject = {
             {
               kind: 'equiripple',
               response: 'lowpass',
-              taps: 85,
+              taps: 67,
               bands: [
                 { fromHz: 0, toHz: 2000, gain: 1, weight: 1 },
                 { fromHz: 3120, toHz: 10_240, gain: 0, weight: 50 },
