@@ -2,7 +2,7 @@ import type { Page } from 'playwright-core'
 import { describe, expect, it } from 'vitest'
 import { signedIn } from './accounts'
 import { expectAccessible, expectFits, picture, withPage } from './browser'
-import { draftSaved, newDesign, openDesign, studioReady } from './studio'
+import { draftSaved, newDesign, studioReady } from './studio'
 
 const sheetOf = (page: Page) => page.getByRole('region', { name: 'Requirement sheet' })
 const number = (page: Page, name: string) => sheetOf(page).getByRole('textbox', { name, exact: true })
@@ -189,8 +189,15 @@ describe('the requirement sheet by keyboard alone', () => {
 describe('the requirement sheet for those who may not edit', () => {
   it('is read, not edited', async () => {
     await withPage({ state: await signedIn('reviewer') }, async ({ page }) => {
-      await openDesign(page, /Deck accelerometer/)
-      await sheetOf(page).waitFor()
+      await page.goto('/projects')
+      await page
+        .getByRole('link', { name: /Deck accelerometer/ })
+        .first()
+        .click()
+      await lines(page)
+        .first()
+        .getByText(/met|missed/)
+        .waitFor()
       expect(await sheetOf(page).getByRole('textbox').count()).toBe(0)
       expect(
         await sheetOf(page)
