@@ -1,7 +1,7 @@
 import { DesignError } from '../errors'
 import { fftOf, powerOfTwoFrom } from '../numeric/fft'
 import type { FirBand, FirSpec } from '../spec'
-import { equiripple, type Equiripple } from './equiripple'
+import { equiripple, type Equiripple, type EquirippleSpec } from './equiripple'
 
 /** What the amplitude is lifted by beyond its deepest ripple, in parts of that: double zeros leave the circle a little, so that log|H| is smooth. */
 const LIFT = 4e-3
@@ -20,6 +20,25 @@ interface Lifted {
   readonly deepest: number
 }
 
+/** Of the taps that |H|² could have with equal errors: its stop error is the square of that of |H|, and sooner lost in rounding. */
+const SENSIBLE_PART = 0.6
+
+/** The equiripple design of |H|²; what it refuses is said of the N taps that were asked for. */
+function squaredEquiripple(spec: EquirippleSpec, sampleRateHz: number): Equiripple {
+  try {
+    return equiripple(spec, sampleRateHz)
+  } catch (error) {
+    if (!(error instanceof DesignError && error.code === 'not-converged')) throw error
+    const count = (spec.taps + 1) / 2
+    throw new DesignError(
+      error.code,
+      error.field,
+      `A minimum-phase filter of ${count} taps is lost in rounding. Fewer taps, less room between the bands or weights closer together help.`,
+      Math.max(3, Math.floor((SENSIBLE_PART * (Number(error.nearest) + 1)) / 2)),
+    )
+  }
+}
+
 /**
  * The linear-phase filter of 2N − 1 taps whose amplitude is to become |H|². Pass errors of |H| are half of those of |H|², stop errors the
  * root of theirs; the product of the two errors of |H|² hardly depends on their weights, from which the weights follow in a few rounds.
@@ -35,7 +54,7 @@ function squaredDesign(fir: FirSpec, sampleRateHz: number): Lifted {
       const own = (band.weight ?? 1) / weightOf(band.gain !== 0)
       return { ...band, gain: band.gain ** 2, weight: band.gain !== 0 ? own : own ** 2 * stopWeight }
     })
-    const design = equiripple({ response: fir.response, taps: 2 * fir.taps - 1, bands }, sampleRateHz)
+    const design = squaredEquiripple({ response: fir.response, taps: 2 * fir.taps - 1, bands }, sampleRateHz)
     const passError = design.ripple
     const stopError = design.ripple / stopWeight
     found = { design, passError, deepest: stopErrorOf(fir, stopError) }
