@@ -1,6 +1,6 @@
 import { stateWords } from '@/lib/designs/words'
 import { caution, deviationWords, type CoefficientSet } from './coefficient-set'
-import { signWords } from './equation'
+import { noFeedbackWords, signWords } from './equation'
 import { decimalText } from './numbers'
 import { judgedRangeDb } from './rounding'
 import { testVectorWords } from './test-vector'
@@ -31,18 +31,15 @@ export function aboutLines(set: CoefficientSet): readonly AboutLine[] {
     { key: 'structure', text: structureWords(set) },
     { key: 'number type', text: numberWords[set.options.number] },
     { key: 'difference equation', text: set.equation },
-    { key: 'sign convention', text: signWords[set.options.feedback] },
+    { key: 'sign convention', text: signConvention(set) },
     { key: 'gain', text: set.gainPlacement },
     { key: 'rounding', text: roundingWords(set) },
-    {
-      key: 'steady state',
-      text: 'initial state that makes an input of constant 1 start settled; multiply it by the level',
-    },
-    { key: 'test vector', text: `${testVectorWords}; the output is that of this file's own arithmetic` },
+    { key: 'steady state', text: steadyWords(set) },
+    { key: 'test vector', text: `${testVectorWords(set.testVector.input.length)}; ${arithmeticWords(set)}` },
     { key: 'SHA-256', text: version.checksum },
     {
       key: 'checksum covers',
-      text: "the version's kept roots and sections in double precision, so it is the same in every file of it; the JSON file carries them",
+      text: `the version's kept ${keptWords(set)} in double precision, so it is the same in every file of it; the JSON file carries them`,
     },
     { key: 'engine', text: version.engineVersion },
     { key: 'caution', text: caution },
@@ -54,7 +51,34 @@ const numberWords = {
   float: 'single precision (IEEE 754 binary32)',
 } as const
 
+function signConvention({ numbers, options }: CoefficientSet): string {
+  return numbers.structure === 'taps' ? noFeedbackWords : signWords[options.feedback]
+}
+
+const steadyWords = ({ numbers }: CoefficientSet): string =>
+  numbers.structure === 'taps'
+    ? 'the state is the inputs before; filled with the level of a constant input, it starts settled'
+    : 'initial state that makes an input of constant 1 start settled; multiply it by the level'
+
+const arithmeticWords = ({ numbers }: CoefficientSet): string =>
+  numbers.structure === 'taps'
+    ? "the output is that of this file's own arithmetic, products added one by one from the oldest sample's to the newest's"
+    : "the output is that of this file's own arithmetic"
+
+const keptWords = ({ numbers }: CoefficientSet): string =>
+  numbers.structure === 'taps' ? 'taps' : 'roots and sections'
+
+const symmetryWords = {
+  even: ', the same from either end',
+  odd: ', from the other end the same with the other sign',
+  none: '',
+} as const
+
 export function structureWords({ numbers }: CoefficientSet): string {
+  if (numbers.structure === 'taps') {
+    const { taps, symmetry } = numbers
+    return `direct form of ${taps.length} taps${symmetryWords[symmetry]}`
+  }
   if (numbers.structure === 'ratio') return `ratio b/a of order ${numbers.a.length}, direct form II transposed`
   const count = numbers.sections.length
   return `cascade of ${count} second-order ${count === 1 ? 'section' : 'sections'}, direct form II transposed`

@@ -1,4 +1,6 @@
 import { aboutLines } from './about'
+import { array, literalOf, zeroOf } from './c-parts'
+import { tapsCode } from './c-taps'
 import type { CoefficientSet } from './coefficient-set'
 import { cComment, cString } from './escape'
 import { cLiteral } from './numbers'
@@ -24,17 +26,12 @@ export function cHeaderFile(set: CoefficientSet): string {
     `#define ${upper}_VERSION ${version.number}`,
     `#define ${upper}_SHA256 ${cString(version.checksum)}`,
     `#define ${upper}_SAMPLING_RATE_HZ ${cLiteral(set.sampleRateHz, 'double', 'decimal')}`,
-    ...(set.numbers.structure === 'sections' ? cascade(set) : ratio(set)),
+    ...(set.numbers.structure === 'taps' ? tapsCode(set) : [...cascade(set), ...ratio(set)]),
     ...selfTest(set),
     `#endif /* ${upper}_H */`,
     '',
   ].join('\n')
 }
-
-const literalOf =
-  ({ options }: CoefficientSet) =>
-  (value: number) =>
-    cLiteral(value, options.number, options.literals)
 
 function cascade(set: CoefficientSet): string[] {
   const { name, numbers, options } = set
@@ -44,7 +41,7 @@ function cascade(set: CoefficientSet): string[] {
   const upper = name.toUpperCase()
   const count = `${upper}_SECTIONS`
   const sign = options.feedback === 'subtract' ? '-' : '+'
-  const zero = type === 'float' ? '0.0f' : '0.0'
+  const zero = zeroOf(type)
   const rows = numbers.sections.map(({ b0, b1, b2, a1, a2 }) => `  {${[b0, b1, b2, a1, a2].map(literal).join(', ')}}`)
   const steady = numbers.steadyState.map((state) => `  {${state.map(literal).join(', ')}}`)
   return [
@@ -130,7 +127,7 @@ function ratio(set: CoefficientSet): string[] {
     `static inline void ${name}_reset(${name}_state *state)`,
     '{',
     '  size_t k;',
-    `  for (k = 0; k < ${order}; k++) state->s[k] = ${type === 'float' ? '0.0f' : '0.0'};`,
+    `  for (k = 0; k < ${order}; k++) state->s[k] = ${zeroOf(type)};`,
     '}',
     '',
     '/* Starts settled on a constant input of that level. */',
@@ -181,7 +178,7 @@ function selfTest(set: CoefficientSet): string[] {
     '{',
     `  ${name}_state state;`,
     `  ${type} output[${count}];`,
-    `  ${type} worst = ${type === 'float' ? '0.0f' : '0.0'};`,
+    `  ${type} worst = ${zeroOf(type)};`,
     '  size_t i;',
     `  ${name}_reset(&state);`,
     `  ${name}_process(&state, ${name}_test_input, output, ${count});`,
@@ -196,12 +193,6 @@ function selfTest(set: CoefficientSet): string[] {
     `#endif /* ${upper}_SELF_TEST */`,
     '',
   ]
-}
-
-function array(declaration: string, literals: readonly string[]): string[] {
-  const lines: string[] = []
-  for (let k = 0; k < literals.length; k += 4) lines.push(`  ${literals.slice(k, k + 4).join(', ')}`)
-  return [`${declaration} = {`, lines.join(',\n'), '};']
 }
 
 const width = 112

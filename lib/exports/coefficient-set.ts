@@ -2,8 +2,12 @@ import {
   DesignError,
   steadyState,
   toTransferFunction,
+  isFamilyDesign,
+  isFir,
+  isFirDesign,
   type DesignSpec,
   type DigitalFilter,
+  type FirFilter,
   type Section,
   type TransferFunction,
 } from '@/dsp'
@@ -14,9 +18,10 @@ import { differenceEquation } from './equation'
 import { defaultIdentifier } from './names'
 import { decimalText, negated, roundTo, type NumberType } from './numbers'
 import type { ExportOptions } from './options'
-import { runCascade, runRatio, steadyRatioState } from './reference-run'
-import { effectOfRatio, effectOfSections, type RoundingEffect } from './rounding'
-import { testInput } from './test-vector'
+import { runCascade, runDirectForm, runRatio, steadyRatioState } from './reference-run'
+import { effectOfRatio, effectOfSections, effectOfTaps, type RoundingEffect } from './rounding'
+import { checkStructure } from './structures'
+import { tapsTestLength, testInput } from './test-vector'
 
 /** What a file is made from: a version and the numbers that were kept with it. */
 export interface ExportSource {
@@ -38,6 +43,11 @@ export type Numbers =
       readonly b: readonly number[]
       readonly a: readonly number[]
       readonly steadyState: readonly number[]
+    }
+  | {
+      readonly structure: 'taps'
+      readonly taps: readonly number[]
+      readonly symmetry: FirFilter['symmetry']
     }
 
 /** Everything a file states, ready to be written in any format. */
@@ -65,19 +75,21 @@ export const caution =
 export const ratioLimitDb = 0.01
 
 /**
- * @throws DesignError field `structure`: the ratio b/a is badly conditioned, nearest `sections`; field `number`: single precision
+ * @throws DesignError field `structure`: the version hasn't that structure, nearest the usual one, or the ratio b/a is badly conditioned, nearest `sections`; field `number`: single precision
  *   can't hold the filter, nearest `double`
  */
 export function coefficientSet(source: ExportSource, options: ExportOptions): CoefficientSet {
   const { version, design, kept } = source
+  checkStructure(kept, options.structure)
   const { digital } = filtersOf(kept)
-  const run =
-    options.structure === 'sections' ? cascadeNumbers(digital, options.number) : ratioNumbers(digital, options.number)
-  const input = testInput()
-  const output =
-    run.numbers.structure === 'sections'
-      ? runCascade(run.numbers.sections, input, options.number)
-      : runRatio(run.numbers.b, run.numbers.a, input, options.number)
+  const run = isFir(digital)
+    ? tapsNumbers(digital, options.number)
+    : options.structure === 'ratio'
+      ? ratioNumbers(digital, options.number)
+      : cascadeNumbers(digital, options.number)
+  const input = run.numbers.structure === 'taps' ? testInput(tapsTestLength(run.numbers.taps.length)) : testInput()
+  const output = referenceRun(run.numbers, input, options.number)
+  refuseEndlessOutput(output, options.number)
   return {
     source,
     options,
@@ -93,6 +105,17 @@ export function coefficientSet(source: ExportSource, options: ExportOptions): Co
   }
 }
 
+function referenceRun(numbers: Numbers, input: Float64Array, type: NumberType): Float64Array {
+  switch (numbers.structure) {
+    case 'sections':
+      return runCascade(numbers.sections, input, type)
+    case 'ratio':
+      return runRatio(numbers.b, numbers.a, input, type)
+    case 'taps':
+      return runDirectForm(numbers.taps, input, type)
+  }
+}
+
 interface Run {
   readonly numbers: Numbers
   readonly effect: RoundingEffect
@@ -100,6 +123,7 @@ interface Run {
 
 function cascadeNumbers(digital: DigitalFilter, type: NumberType): Run {
   const sections = digital.sections.map((section) => roundedSection(section, type))
+  refuseOverflow(sections.flatMap(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]))
   const effect = effectOfSections(digital, sections)
   if (!effect.stable)
     throw new DesignError(
@@ -122,6 +146,42 @@ function cascadeNumbers(digital: DigitalFilter, type: NumberType): Run {
   const state = steadyState(sections)
   const steady = sections.map((_, k) => [roundTo(type, state[2 * k] ?? 0), roundTo(type, state[2 * k + 1] ?? 0)])
   return { numbers: { structure: 'sections', sections, steadyState: steady }, effect }
+}
+
+/** Taps that are too small for singles do no harm beside larger ones; that the largest is lost, does. */
+function tapsNumbers(digital: FirFilter, type: NumberType): Run {
+  const taps = Array.from(digital.taps, (tap) => roundTo(type, tap))
+  refuseOverflow(taps)
+  const largest = digital.taps.reduce((most, tap) => Math.max(most, Math.abs(tap)), 0)
+  if (isLost(largest, roundTo(type, largest)))
+    throw new DesignError(
+      'single-underflow',
+      'number',
+      'The taps of this filter are smaller than single precision holds with all its digits (1.18e-38); hand it over in double precision.',
+      'double',
+    )
+  return { numbers: { structure: 'taps', taps, symmetry: digital.symmetry }, effect: effectOfTaps(digital, taps) }
+}
+
+function refuseOverflow(rounded: readonly number[]): void {
+  if (rounded.every(Number.isFinite)) return
+  throw new DesignError(
+    'single-overflow',
+    'number',
+    'A coefficient of this filter is larger than single precision holds (3.4e38); hand it over in double precision.',
+    'double',
+  )
+}
+
+function refuseEndlessOutput(output: Float64Array, type: NumberType): void {
+  if (output.every(Number.isFinite)) return
+  const precision = type === 'float' ? 'single' : 'double'
+  throw new DesignError(
+    'test-vector-overflow',
+    'number',
+    `Run on its test vector, this filter gives more than ${precision} precision holds.`,
+    ...(type === 'float' ? (['double'] as const) : []),
+  )
 }
 
 const smallestSingle = 2 ** -126
@@ -197,21 +257,34 @@ export function deviationWords(decibels: number): string {
   return `${decimalText(Number(decibels.toPrecision(2)), 'double')} dB`
 }
 
-const orderOf = (numbers: Numbers) => (numbers.structure === 'sections' ? 2 : numbers.a.length)
+function orderOf(numbers: Numbers): number {
+  if (numbers.structure === 'taps') return numbers.taps.length - 1
+  return numbers.structure === 'sections' ? 2 : numbers.a.length
+}
 
 function withAddedFeedback(numbers: Numbers): Numbers {
+  if (numbers.structure === 'taps') return numbers
   if (numbers.structure === 'ratio') return { ...numbers, a: numbers.a.map(negated) }
   return { ...numbers, sections: numbers.sections.map((row) => ({ ...row, a1: negated(row.a1), a2: negated(row.a2) })) }
 }
 
-function held({ how, analog }: DesignSpec): { heldHz: readonly number[]; heldWords: string } {
-  if (how.method !== 'bilinear') return { heldHz: [], heldWords: 'none: this method holds no single frequency' }
-  if (how.hold === 'none') return { heldHz: [], heldWords: 'none: the bilinear transform was not held' }
-  const heldHz = how.hold === 'edges' ? analog.edgesHz : [how.hold]
-  return { heldHz, heldWords: `${heldHz.map((hertz) => `${decimalText(hertz, 'double')} Hz`).join(' and ')}` }
+function held(spec: DesignSpec): { heldHz: readonly number[]; heldWords: string } {
+  const none = (reason: string) => ({ heldHz: [], heldWords: `none: ${reason}` })
+  const written = (hertz: number) => `${decimalText(hertz, 'double')} Hz`
+  if (isFirDesign(spec)) return none('an FIR filter stated by its bands has no analog original')
+  const { how } = spec
+  if (how.method === 'fitted') {
+    const isMeasured = !isFamilyDesign(spec) && spec.own.given === 'measured'
+    return none(`fitted up to ${written(how.upToHz)}${isMeasured ? ' to a response given as measured' : ''}`)
+  }
+  if (how.method !== 'bilinear') return none('this method holds no single frequency')
+  if (how.hold === 'none') return none('the bilinear transform was not held')
+  const heldHz = how.hold !== 'edges' ? [how.hold] : isFamilyDesign(spec) ? spec.analog.edgesHz : []
+  return { heldHz, heldWords: heldHz.map(written).join(' and ') }
 }
 
 function gainWords(numbers: Numbers): string {
+  if (numbers.structure === 'taps') return 'in the taps'
   if (numbers.structure === 'ratio') return 'in the numerator b'
   const leads = numbers.sections.map(({ b0, b1, b2 }) => [b0, b1, b2].find((value) => value !== 0) ?? 0)
   const carriers = leads.flatMap((lead, k) => (lead === 1 ? [] : [k + 1]))

@@ -5,7 +5,7 @@ import { decimalText } from './numbers'
 
 /*
  * One table of four columns (RFC 4180): what a row belongs to, its index, the name of the value, the value. Index 1 is the first
- * section; samples and the delays of a ratio count as their formulas do. Numbers are written bare, text is guarded.
+ * section; samples, taps and the delays of a ratio count as their formulas do. Numbers are written bare, text is guarded.
  */
 export function csvFile(set: CoefficientSet): string {
   const number = (value: number) => decimalText(value, set.options.number)
@@ -25,6 +25,8 @@ export function csvFile(set: CoefficientSet): string {
     numbers.steadyState.forEach((state, k) =>
       state.forEach((value, at) => put('steady state', k + 1, `s${at + 1}`, number(value))),
     )
+  } else if (numbers.structure === 'taps') {
+    numbers.taps.forEach((value, k) => put('tap', k, 'h', number(value)))
   } else {
     numbers.b.forEach((value, k) => put('ratio', k, 'b', number(value)))
     numbers.a.forEach((value, k) => put('ratio', k + 1, 'a', number(value)))

@@ -5,8 +5,9 @@ import type { FeedbackSign, Structure } from './options'
  * or subtracted, and that the coefficient of y[n] is 1 and is not listed.
  */
 
-/** Difference equation of one section, or of a ratio of that order, in ASCII as files carry it. */
+/** Difference equation of one section, or of a ratio or taps of that order, in ASCII as files carry it. */
 export function differenceEquation(structure: Structure, feedback: FeedbackSign, order: number): string {
+  if (structure === 'taps') return `y[n] = ${series('h', 'x', 0, order).join(' + ')}`
   const highest = structure === 'sections' ? 2 : order
   const sign = feedback === 'subtract' ? '-' : '+'
   const forward = series('b', 'x', 0, highest).join(' + ')
@@ -24,7 +25,7 @@ function series(letter: string, signal: string, first: number, last: number): st
 /** The same with subscripts and signs as a screen shows it. */
 export function typesetEquation(structure: Structure, feedback: FeedbackSign, order: number): string {
   return differenceEquation(structure, feedback, order)
-    .replace(/([ab])(\d+)/g, (_, letter: string, digits: string) => letter + subscript(digits))
+    .replace(/([abh])(\d+)/g, (_, letter: string, digits: string) => letter + subscript(digits))
     .replace(/\*/g, '·')
     .replace(/ - /g, ' − ')
     .replace(/\[n-/g, '[n−')
@@ -37,3 +38,6 @@ export const signWords: Readonly<Record<FeedbackSign, string>> = {
   subtract: 'feedback coefficients are subtracted, as they stand in the denominator',
   add: 'feedback coefficients are added: the denominator’s, negated',
 }
+
+/** What a file of taps says in place of a sign. */
+export const noFeedbackWords = 'none: taps have no feedback'

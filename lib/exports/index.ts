@@ -6,6 +6,7 @@ import type { ExportFormat, ExportOptions } from './options'
 import { numpyFile, octaveFile } from './scripts'
 
 export { coefficientSet, ratioRefusal, caution, type CoefficientSet, type ExportSource } from './coefficient-set'
+export { structuresOf, usualStructure } from './structures'
 export { exportOptionsFrom, exportQuery, type ExportOptions } from './options'
 
 const writers = {
@@ -37,7 +38,6 @@ export function writtenFile(set: CoefficientSet): ExportFile {
 
 /** What tells a file from its neighbours in a folder; the usual choices go without saying. */
 function variantOf({ structure, number, feedback }: ExportOptions): string {
-  return [structure === 'ratio' && '_ba', number === 'float' && '_float', feedback === 'add' && '_added']
-    .filter(Boolean)
-    .join('')
+  const isAdded = feedback === 'add' && structure !== 'taps'
+  return [structure === 'ratio' && '_ba', number === 'float' && '_float', isAdded && '_added'].filter(Boolean).join('')
 }

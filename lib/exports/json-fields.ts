@@ -40,7 +40,11 @@ const node: z.ZodType<Node> = z.lazy(() =>
 
 /** Every field of the JSON file, read from the schema that is served, so that the page can't say anything else. */
 export function coefficientSetFields(): readonly FieldRow[] {
-  return fieldsOf(node.parse(coefficientSetJsonSchema()), '')
+  const rows = fieldsOf(node.parse(coefficientSetJsonSchema()), '')
+  // What several branches have alike is listed once.
+  return rows.filter(
+    ({ path, kind }, index) => rows.findIndex((other) => other.path === path && other.kind === kind) === index,
+  )
 }
 
 function fieldsOf(parent: Node, path: string): FieldRow[] {

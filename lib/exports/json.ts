@@ -2,7 +2,7 @@ import * as z from 'zod'
 import { canonicalText } from '@/lib/designs/stored-coefficients'
 import { stateWords } from '@/lib/designs/words'
 import { structureWords } from './about'
-import { caution, type CoefficientSet } from './coefficient-set'
+import { caution, type CoefficientSet, type Numbers } from './coefficient-set'
 import { asciiJson } from './escape'
 import { feedbackSigns, numberTypes } from './options'
 
@@ -17,20 +17,34 @@ const section = z
 const root = z.strictObject({ re: z.number(), im: z.number() })
 const roots = { gain: z.number(), zeros: z.array(root), poles: z.array(root) }
 
-const kept = z
-  .strictObject({
-    format: z.literal(1),
-    sampleRateHz: z.number(),
-    ...roots,
-    sections: z.array(section),
-    parallel: z.strictObject({ direct: z.number(), terms: z.array(section) }).nullable(),
-    analog: z.strictObject(roots).meta({ description: 'The analog prototype; roots in rad/s.' }),
-  })
-  .meta({
-    description:
-      'The numbers kept with the version, in double precision and with subtracted feedback. Written without spaces, keys in this ' +
-      'order, as ECMAScript’s JSON.stringify writes it, their SHA-256 is the checksum.',
-  })
+const symmetry = z.enum(['even', 'odd', 'none']).meta({
+  description: 'even: tap k equals tap N−1−k of N. odd: it is its negative. none: neither.',
+})
+
+const keptRecursive = z.strictObject({
+  format: z.literal(1),
+  sampleRateHz: z.number(),
+  ...roots,
+  sections: z.array(section),
+  parallel: z.strictObject({ direct: z.number(), terms: z.array(section) }).nullable(),
+  analog: z
+    .strictObject(roots)
+    .nullable()
+    .meta({ description: 'The analog original; roots in rad/s. null where it was given as measured.' }),
+})
+
+const keptTaps = z.strictObject({
+  format: z.literal(1),
+  sampleRateHz: z.number(),
+  taps: z.array(z.number()),
+  symmetry,
+})
+
+const kept = z.union([keptRecursive, keptTaps]).meta({
+  description:
+    'The numbers kept with the version, in double precision and with subtracted feedback. Written without spaces, keys in this ' +
+    'order, as ECMAScript’s JSON.stringify writes it, their SHA-256 is the checksum.',
+})
 
 export const coefficientSetSchema = z
   .strictObject({
@@ -56,9 +70,10 @@ export const coefficientSetSchema = z
       .string()
       .meta({ description: 'The structure in words; `coefficients.structure` names it for programs.' }),
     numberType: z.enum(numberTypes).meta({ description: 'double: IEEE 754 binary64. float: binary32.' }),
-    feedback: z
-      .enum(feedbackSigns)
-      .meta({ description: 'subtract: y = b·x − a·y. add: y = b·x + a·y, the coefficients a being negated.' }),
+    feedback: z.enum(feedbackSigns).nullable().meta({
+      description:
+        'subtract: y = b·x − a·y. add: y = b·x + a·y, the coefficients a being negated. null: taps have no feedback.',
+    }),
     differenceEquation: z.string().meta({ description: 'What the firmware computes, with the signs as listed here.' }),
     coefficients: z.discriminatedUnion('structure', [
       z.strictObject({ structure: z.literal('sections'), sections: z.array(section) }).meta({
@@ -66,6 +81,9 @@ export const coefficientSetSchema = z
       }),
       z.strictObject({ structure: z.literal('ratio'), b: z.array(z.number()), a: z.array(z.number()) }).meta({
         description: 'b0 … bN and a1 … aN; the coefficient of y[n] is 1 and is not listed.',
+      }),
+      z.strictObject({ structure: z.literal('taps'), taps: z.array(z.number()), symmetry }).meta({
+        description: 'h0 … hN of an FIR filter.',
       }),
     ]),
     gainPlacement: z.string(),
@@ -75,13 +93,19 @@ export const coefficientSetSchema = z
           'How far rounding the coefficients to the number type moves the response, in dB, within 80 dB of its peak.',
       }),
     }),
-    steadyState: z.union([z.array(z.tuple([z.number(), z.number()])), z.array(z.number())]).meta({
-      description:
-        'Initial state of direct form II transposed that makes an input of constant 1 start settled: a pair for each section, or one ' +
-        'number for each delay of the ratio. Multiply by the level of the input.',
-    }),
+    steadyState: z
+      .union([z.array(z.tuple([z.number(), z.number()])), z.array(z.number())])
+      .nullable()
+      .meta({
+        description:
+          'Initial state of direct form II transposed that makes an input of constant 1 start settled: a pair for each section, or one ' +
+          'number for each delay of the ratio. Multiply by the level of the input. null for taps, whose state is the inputs before: fill ' +
+          'it with the level.',
+      }),
     testVector: z.strictObject({ input: z.array(z.number()), output: z.array(z.number()) }).meta({
-      description: 'Started from zero state; the output is that of direct form II transposed in the number type.',
+      description:
+        'Started from zero state; the output is that of direct form II transposed in the number type, for taps that of the direct ' +
+        'form, products added from the oldest sample’s to the newest’s.',
     }),
     checksum: z.strictObject({
       algorithm: z.literal('SHA-256'),
@@ -119,22 +143,33 @@ export function jsonFile(set: CoefficientSet): string {
     held: { frequenciesHz: [...set.heldHz], words: set.heldWords },
     structure: structureWords(set),
     numberType: options.number,
-    feedback: options.feedback,
+    feedback: numbers.structure === 'taps' ? null : options.feedback,
     differenceEquation: set.equation,
-    coefficients:
-      numbers.structure === 'sections'
-        ? { structure: 'sections', sections: [...numbers.sections] }
-        : { structure: 'ratio', b: [...numbers.b], a: [...numbers.a] },
+    coefficients: writtenNumbers(numbers),
     gainPlacement: set.gainPlacement,
     rounding: { worstDeviationDb: set.rounding.worstDeviationDb },
-    steadyState:
-      numbers.structure === 'sections'
-        ? numbers.steadyState.map(([first = 0, second = 0]): [number, number] => [first, second])
-        : [...numbers.steadyState],
+    steadyState: writtenState(numbers),
     testVector: { input: [...set.testVector.input], output: [...set.testVector.output] },
     checksum: { algorithm: 'SHA-256', of: 'kept', hex: version.checksum },
     kept: kept.parse(JSON.parse(canonicalText(source.kept))),
     caution,
   }
   return `${asciiJson(file)}\n`
+}
+
+function writtenNumbers(numbers: Numbers): CoefficientSetFile['coefficients'] {
+  switch (numbers.structure) {
+    case 'sections':
+      return { structure: 'sections', sections: [...numbers.sections] }
+    case 'ratio':
+      return { structure: 'ratio', b: [...numbers.b], a: [...numbers.a] }
+    case 'taps':
+      return { structure: 'taps', taps: [...numbers.taps], symmetry: numbers.symmetry }
+  }
+}
+
+function writtenState(numbers: Numbers): CoefficientSetFile['steadyState'] {
+  if (numbers.structure === 'taps') return null
+  if (numbers.structure === 'ratio') return [...numbers.steadyState]
+  return numbers.steadyState.map(([first = 0, second = 0]): [number, number] => [first, second])
 }

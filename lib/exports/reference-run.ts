@@ -69,6 +69,21 @@ export function runRatio(
 }
 
 /**
+ * Runs taps by the direct form (Oppenheim & Schafer, section 6.5.1): products are added one by one, from that of the oldest sample to that of
+ * the newest. In doubles these are the bits of dsp's run; a port that adds samples of like taps first gets other last bits.
+ * @param taps already of the number type
+ */
+export function runDirectForm(taps: readonly number[], input: Float64Array, type: NumberType): Float64Array {
+  const r = rounding(type)
+  const samples = Float64Array.from(input, r)
+  return samples.map((_, n) => {
+    let sum = 0
+    for (let k = Math.min(taps.length - 1, n); k >= 0; k--) sum = r(sum + r((taps[k] ?? 0) * (samples[n - k] ?? 0)))
+    return sum
+  })
+}
+
+/**
  * State of a ratio after an endless unit step, from the last delay backwards: sN = bN − aN·y, s(k) = b(k) − a(k)·y + s(k+1),
  * with y = Σb / (1 + Σa).
  */

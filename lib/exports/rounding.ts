@@ -1,4 +1,4 @@
-import { magnitudeDb, type DigitalFilter, type Section } from '@/dsp'
+import { magnitudeDb, type AnyDigital, type DigitalFilter, type FirFilter, type Section } from '@/dsp'
 
 /*
  * What rounding coefficients to a number type does to the filter: how far the response moves, and whether it stays stable. The
@@ -32,8 +32,12 @@ function judgedAngles(filter: DigitalFilter): Float64Array {
   return Float64Array.from(angles.filter((angle) => angle >= 0 && angle <= Math.PI)).sort()
 }
 
-function effect(filter: DigitalFilter, levelDb: (radians: number) => number, stable: boolean): RoundingEffect {
-  const angles = judgedAngles(filter)
+function effect(
+  filter: AnyDigital,
+  angles: Float64Array,
+  levelDb: (radians: number, index: number) => number,
+  stable: boolean,
+): RoundingEffect {
   const truth = magnitudeDb(
     filter,
     angles.map((angle) => (angle / (2 * Math.PI)) * filter.sampleRateHz),
@@ -42,7 +46,7 @@ function effect(filter: DigitalFilter, levelDb: (radians: number) => number, sta
   let worst = 0
   truth.forEach((level, k) => {
     if (level < peak - judgedRangeDb) return
-    const deviation = Math.abs(levelDb(angles[k] ?? 0) - level)
+    const deviation = Math.abs(levelDb(angles[k] ?? 0, k) - level)
     // NaN (an infinite level on both sides) is as bad as can be.
     worst = Number.isNaN(deviation) ? Number.POSITIVE_INFINITY : Math.max(worst, deviation)
   })
@@ -68,7 +72,7 @@ export function effectOfSections(filter: DigitalFilter, sections: readonly Secti
       level += 20 * Math.log10(quadraticSize(b0, b1, b2, radians) / quadraticSize(1, a1, a2, radians))
     return level
   }
-  return effect(filter, levelDb, stable)
+  return effect(filter, judgedAngles(filter), levelDb, stable)
 }
 
 /** Effect of running this (rounded) ratio instead of the filter; `a` without its leading 1. */
@@ -76,7 +80,23 @@ export function effectOfRatio(filter: DigitalFilter, b: readonly number[], a: re
   const denominator = [1, ...a]
   const levelDb = (radians: number) =>
     20 * Math.log10(polynomialSize(b, radians) / polynomialSize(denominator, radians))
-  return effect(filter, levelDb, isStable(denominator))
+  return effect(filter, judgedAngles(filter), levelDb, isStable(denominator))
+}
+
+/** Places between two zeros of a response of N taps, whose ripples are 1/N of the rate apart. */
+const PLACES_PER_TAP = 4
+const LEAST_PLACES = 512
+
+/** Effect of running these (rounded) taps instead of the filter; they are stable whatever they are. */
+export function effectOfTaps(filter: FirFilter, taps: readonly number[]): RoundingEffect {
+  const count = Math.max(LEAST_PLACES, PLACES_PER_TAP * taps.length)
+  const angles = Float64Array.from({ length: count + 1 }, (_, k) => (Math.PI * k) / count)
+  const rounded: FirFilter = { ...filter, taps: Float64Array.from(taps) }
+  const levels = magnitudeDb(
+    rounded,
+    angles.map((angle) => (angle / (2 * Math.PI)) * filter.sampleRateHz),
+  )
+  return effect(filter, angles, (_, k) => levels[k] ?? Number.NaN, true)
 }
 
 function polynomialSize(coefficients: readonly number[], radians: number): number {

@@ -57,18 +57,20 @@ function script(set: CoefficientSet, notation: Notation): string {
     )
   const note = (text: string) => `${notation.comment} ${text}`
   const body =
-    numbers.structure === 'ratio'
-      ? [
-          note('b0 ... bN and a1 ... aN; the coefficient of y[n] is 1 and is not listed'),
-          put('b', vector(numbers.b)),
-          put('a', vector(numbers.a)),
-          put('steady_state', vector(numbers.steadyState)),
-        ]
-      : [
-          note('a row for each section: b0, b1, b2, a1, a2; the coefficient of y[n] is 1 and is not listed'),
-          put('sections', matrix(numbers.sections.map(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]))),
-          put('steady_state', matrix(numbers.steadyState)),
-        ]
+    numbers.structure === 'taps'
+      ? [note('h0 ... hN, the taps; run from rest'), put('taps', vector(numbers.taps))]
+      : numbers.structure === 'ratio'
+        ? [
+            note('b0 ... bN and a1 ... aN; the coefficient of y[n] is 1 and is not listed'),
+            put('b', vector(numbers.b)),
+            put('a', vector(numbers.a)),
+            put('steady_state', vector(numbers.steadyState)),
+          ]
+        : [
+            note('a row for each section: b0, b1, b2, a1, a2; the coefficient of y[n] is 1 and is not listed'),
+            put('sections', matrix(numbers.sections.map(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]))),
+            put('steady_state', matrix(numbers.steadyState)),
+          ]
   return [
     note('Polewright coefficient set'),
     ...aboutLines(set).map(({ key, text }) => note(`${key}: ${scriptComment(text)}`)),

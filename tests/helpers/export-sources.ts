@@ -1,15 +1,31 @@
 import fc from 'fast-check'
-import { DesignError, designFromSpec, ENGINE_VERSION, type AnalogSpec, type Method, type DesignSpec } from '@/dsp'
-import { checksumOf, coefficientsOf } from '@/lib/designs/coefficients'
+import {
+  DesignError,
+  designFromSpec,
+  ENGINE_VERSION,
+  type AnalogSpec,
+  type DesignSpec,
+  type FamilyDesign,
+  type FirDesign,
+  type FirSpec,
+  type Method,
+  type OwnDesign,
+} from '@/dsp'
+import { checksumOf, coefficientsOf, type StoredFamily } from '@/lib/designs/coefficients'
 import type { ExportSource } from '@/lib/exports'
 
 const budget = { magnitudeDb: 0.1, phaseDegrees: 1, removeDelay: false }
 
+interface Texts {
+  readonly title?: string
+  readonly note?: string
+  readonly drawingNumber?: string
+}
+
 /** A saved version of that spec as the server would export it. */
-export function sourceOf(
-  spec: DesignSpec,
-  text: { title?: string; note?: string; drawingNumber?: string } = {},
-): ExportSource {
+export function sourceOf(spec: FamilyDesign, text?: Texts): ExportSource & { readonly kept: StoredFamily }
+export function sourceOf(spec: DesignSpec, text?: Texts): ExportSource
+export function sourceOf(spec: DesignSpec, text: Texts = {}): ExportSource {
   const design = designFromSpec(spec)
   return {
     design: {
@@ -32,7 +48,7 @@ export function sourceOf(
   }
 }
 
-export const lowPass = (change: Partial<AnalogSpec> = {}, sampleRateHz = 1200): DesignSpec => ({
+export const lowPass = (change: Partial<AnalogSpec> = {}, sampleRateHz = 1200): FamilyDesign => ({
   format: 1,
   analog: { family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [120], ...change },
   sampleRateHz,
@@ -64,8 +80,8 @@ const methods: readonly Method[] = [
 ]
 
 /** Every family × response × method × a few orders, without those that dsp refuses. */
-export function everyKind(orders: readonly number[]): readonly DesignSpec[] {
-  const specs: DesignSpec[] = []
+export function everyKind(orders: readonly number[]): readonly FamilyDesign[] {
+  const specs: FamilyDesign[] = []
   for (const family of families)
     for (const response of responses)
       for (const how of methods)
@@ -73,7 +89,7 @@ export function everyKind(orders: readonly number[]): readonly DesignSpec[] {
   return specs.filter(makesFilter)
 }
 
-export function makesFilter(spec: DesignSpec): boolean {
+export function makesFilter(spec: FamilyDesign): boolean {
   try {
     designFromSpec(spec)
     return true
@@ -84,7 +100,7 @@ export function makesFilter(spec: DesignSpec): boolean {
 }
 
 /** Specs of every kind with random numbers; most of them make a filter. */
-export const anySpec: fc.Arbitrary<DesignSpec> = fc
+export const anySpec: fc.Arbitrary<FamilyDesign> = fc
   .record({
     family: fc.constantFrom(...families),
     response: fc.constantFrom('lowpass', 'highpass', 'bandpass', 'bandstop'),
@@ -100,3 +116,85 @@ export const anySpec: fc.Arbitrary<DesignSpec> = fc
       response === 'lowpass' || response === 'highpass' ? [low] : [low, Math.min(low * width, sampleRateHz * 0.45)]
     return { ...lowPass({ ...family, response, order, edgesHz }, sampleRateHz), how }
   })
+
+export const firDesign = (change: Partial<FirSpec> = {}, sampleRateHz = 1200): FirDesign => ({
+  format: 1,
+  fir: {
+    kind: 'equiripple',
+    response: 'lowpass',
+    taps: 41,
+    bands: [
+      { fromHz: 0, toHz: 120, gain: 1 },
+      { fromHz: 200, toHz: sampleRateHz / 2, gain: 0 },
+    ],
+    ...change,
+  },
+  sampleRateHz,
+  budget,
+})
+
+/** Symmetric of odd and of even number, antisymmetric, without symmetry; few taps and many. */
+export const firKinds: readonly FirDesign[] = [
+  firDesign(),
+  firDesign({ taps: 40 }),
+  firDesign({ kind: 'windowed', window: 'kaiser', attenuationDb: 70, taps: 151 }),
+  firDesign({ kind: 'windowed', window: 'hann', taps: 7 }),
+  firDesign({ kind: 'minimum-phase', taps: 31 }),
+  firDesign({ response: 'differentiator', taps: 31, bands: [{ fromHz: 0, toHz: 450, gain: 1 }] }),
+  firDesign({
+    kind: 'half-band',
+    window: 'kaiser',
+    attenuationDb: 60,
+    taps: 31,
+    bands: [
+      { fromHz: 0, toHz: 200, gain: 1 },
+      { fromHz: 400, toHz: 600, gain: 0 },
+    ],
+  }),
+]
+
+/** A sensor of 90 Hz on a soft mount, in each of the ways that an original can be given. */
+const natural = 2 * Math.PI * 90
+const damping = 0.35
+const responseAt = (hertz: number): readonly [number, number, number] => {
+  const part = hertz / 90
+  const [re, im] = [1 - part * part, 2 * damping * part]
+  return [hertz, -10 * Math.log10(re * re + im * im), (-180 / Math.PI) * Math.atan2(im, re)]
+}
+const half = natural * Math.sqrt(1 - damping * damping)
+const own = (target: OwnDesign['own'], how: Method): OwnDesign => ({
+  format: 1,
+  own: target,
+  sampleRateHz: 1200,
+  how,
+  budget,
+})
+export const ownRoots = own(
+  {
+    given: 'roots',
+    name: 'sensor on its mount',
+    zeros: [],
+    poles: [
+      { re: -damping * natural, im: half },
+      { re: -damping * natural, im: -half },
+    ],
+    gain: natural * natural,
+  },
+  { method: 'bilinear', hold: 90 },
+)
+export const ownPolynomials = own(
+  {
+    given: 'polynomials',
+    name: 'sensor on its mount',
+    numerator: [natural * natural],
+    denominator: [1, 2 * damping * natural, natural * natural],
+  },
+  { method: 'matched-z' },
+)
+export const ownMeasured = own(
+  { given: 'measured', name: 'sensor on the table', rows: Array.from({ length: 60 }, (_, k) => responseAt(1 + 6 * k)) },
+  { method: 'fitted', upToHz: 300, order: 2 },
+)
+export const ownKinds: readonly OwnDesign[] = [ownRoots, ownPolynomials, ownMeasured]
+
+export const fittedLowPass: FamilyDesign = { ...lowPass(), how: { method: 'fitted', upToHz: 400 } }

@@ -1,17 +1,28 @@
 import fc from 'fast-check'
 import { beforeAll, describe, expect, it, vi } from 'vitest'
-import { DesignError, frequencyResponse, runFilter } from '@/dsp'
+import { DesignError, designFromSpec, frequencyResponse, isFir, runFilter, runTaps } from '@/dsp'
 import { filtersOf } from '@/lib/designs/coefficients'
 import {
   coefficientSet,
   exportFile,
+  usualStructure,
   writtenFile,
   type CoefficientSet,
   type ExportOptions,
   type ExportSource,
 } from '@/lib/exports'
+import { runDirectForm } from '@/lib/exports/reference-run'
 import { compileAndRun, doubleFromBits } from '../helpers/c-program'
-import { anySpec, everyKind, lowPass, makesFilter, sourceOf } from '../helpers/export-sources'
+import {
+  anySpec,
+  everyKind,
+  firKinds,
+  fittedLowPass,
+  lowPass,
+  makesFilter,
+  ownKinds,
+  sourceOf,
+} from '../helpers/export-sources'
 
 // Hundreds of designs; on a busy machine that takes longer than a test usually may.
 vi.setConfig({ testTimeout: 120_000 })
@@ -60,6 +71,15 @@ function casesOf(sources: readonly ExportSource[]): { cases: Case[]; refused: nu
   })
   return { cases, refused }
 }
+
+/** A case of what must not be refused, once it is given its name. */
+const caseOf =
+  (source: ExportSource, combination: Omit<ExportOptions, 'name' | 'format'>) =>
+  (name: string): Case => {
+    const options: ExportOptions = { format: 'c', name, ...combination }
+    const set = coefficientSet(source, options)
+    return { name, source, options, set, header: writtenFile(set).text }
+  }
 
 /** Prints for each header: the largest difference, then the bits of every output sample of the three runs. */
 function mainFor(cases: readonly Case[]): string {
@@ -114,7 +134,8 @@ function runAll(cases: readonly Case[], optimise: '-O0' | '-O1'): Ran[] {
   const headers = new Map(cases.map(({ name, header }) => [`${name}.h`, header]))
   return compileAndRun(headers, mainFor(cases), optimise).map((line) => {
     const numbers = line.trim().split(' ').map(doubleFromBits)
-    return { worst: numbers[0] ?? Number.NaN, output: numbers.slice(1, 65), settled: numbers.slice(65) }
+    const end = 1 + (numbers.length - 1) / 2
+    return { worst: numbers[0] ?? Number.NaN, output: numbers.slice(1, end), settled: numbers.slice(end) }
   })
 }
 
@@ -169,7 +190,71 @@ describe('C headers of random designs', () => {
   })
 })
 
+describe('C headers of FIR filters, fitted versions and originals of one’s own', () => {
+  const types = (['double', 'float'] as const).flatMap((number) =>
+    (['decimal', 'hexadecimal'] as const).map((literals) => ({ number, literals })),
+  )
+  const sources = [...firKinds, ...ownKinds, fittedLowPass].map((spec) => sourceOf(spec, { title: nasty, note: nasty }))
+  const cases = sources
+    .flatMap((source) =>
+      types.map(({ number, literals }) => {
+        const structure = usualStructure(source.kept)
+        return caseOf(source, { structure, number, literals, feedback: 'subtract' })
+      }),
+    )
+    .map((make, k) => make(`g${k}_x`))
+  const ran = new Map<string, readonly Ran[]>()
+  beforeAll(() => {
+    for (const optimise of ['-O0', '-O1'] as const) ran.set(optimise, runAll(cases, optimise))
+  }, 120_000)
+
+  it('agree with their test vectors to the last bit, in one block, in two, and settled', () => {
+    for (const runs of ran.values()) {
+      expect(runs).toHaveLength(cases.length)
+      runs.forEach(({ worst, output, settled }, k) => {
+        const { set, source, options } = cases[k] ?? fail()
+        const about = `${set.statement} ${JSON.stringify(options)}`
+        expect(worst, about).toBe(0)
+        expect(output.map(plain), about).toEqual(set.testVector.output)
+        const { re } = frequencyResponse(filtersOf(source.kept).digital, [0])
+        for (const value of settled)
+          expect(Math.abs(value - (re[0] ?? Number.NaN)), about).toBeLessThan(options.number === 'float' ? 2e-4 : 1e-10)
+      })
+    }
+    expect(ran.size).toBe(2)
+  })
+
+  it('give every tap something to do', () => {
+    for (const { set } of cases) {
+      if (set.numbers.structure !== 'taps') continue
+      const { taps } = set.numbers
+      expect(set.testVector.input.length).toBeGreaterThanOrEqual(taps.length + 32)
+      const input = Float64Array.from(set.testVector.input)
+      for (const left of [0, Math.floor(taps.length / 2), taps.length - 1]) {
+        // The middle tap of a differentiator is none.
+        if (taps[left] === 0) continue
+        const without = taps.map((tap, k) => (k === left ? 0 : tap))
+        expect([...runDirectForm(without, input, set.options.number)]).not.toEqual(set.testVector.output)
+      }
+    }
+  })
+})
+
 describe('the stated output', () => {
+  it('is that of runTaps, bit for bit, for taps in double precision', () => {
+    for (const spec of firKinds) {
+      const { digital } = designFromSpec(spec)
+      if (!isFir(digital)) return fail()
+      const { testVector } = coefficientSet(sourceOf(spec), {
+        ...(combinations[0] ?? fail()),
+        format: 'c',
+        structure: 'taps',
+      })
+      const output = runTaps(digital.taps, Float64Array.from(testVector.input), { mode: 'causal' })
+      expect(Array.from(output, plain)).toEqual(testVector.output.map(plain))
+    }
+  })
+
   it('is that of runFilter, bit for bit, for sections in double precision', () => {
     for (const spec of everyKind([1, 6])) {
       const source = sourceOf(spec)

@@ -1,19 +1,31 @@
 import Papa from 'papaparse'
 import { describe, expect, it, vi } from 'vitest'
 import { z } from 'zod'
-import { DesignError, type DesignSpec, type Section } from '@/dsp'
-import { canonicalText, checksumOfStored } from '@/lib/designs/coefficients'
+import { DesignError, type DesignSpec, type FamilyDesign, type Section } from '@/dsp'
+import { canonicalText, checksumOfStored, isStoredTaps } from '@/lib/designs/coefficients'
 import {
   coefficientSet,
   exportFile,
   ratioRefusal,
+  structuresOf,
+  usualStructure,
   writtenFile,
   type CoefficientSet,
   type ExportOptions,
 } from '@/lib/exports'
 import { coefficientSetJsonSchema, coefficientSetSchema } from '@/lib/exports/json'
 import { filtersOf } from '@/lib/designs/coefficients'
-import { everyKind, lowPass, sourceOf } from '../helpers/export-sources'
+import {
+  everyKind,
+  firDesign,
+  firKinds,
+  fittedLowPass,
+  lowPass,
+  ownKinds,
+  ownMeasured,
+  ownRoots,
+  sourceOf,
+} from '../helpers/export-sources'
 
 // Hundreds of designs; on a busy machine that takes longer than a test usually may.
 vi.setConfig({ testTimeout: 120_000 })
@@ -35,7 +47,9 @@ interface ReadBack {
   readonly sections?: readonly (readonly number[])[]
   readonly b?: readonly number[]
   readonly a?: readonly number[]
-  readonly steadyState: readonly unknown[]
+  readonly taps?: readonly number[]
+  /** Taps have none. */
+  readonly steadyState?: readonly unknown[]
   readonly input: readonly number[]
   readonly output: readonly number[]
 }
@@ -43,8 +57,14 @@ interface ReadBack {
 const row = ({ b0, b1, b2, a1, a2 }: Section) => [b0, b1, b2, a1, a2]
 
 const expected = ({ numbers, testVector }: CoefficientSet): ReadBack => ({
-  ...(numbers.structure === 'sections' ? { sections: numbers.sections.map(row) } : { b: numbers.b, a: numbers.a }),
-  steadyState: numbers.steadyState,
+  ...(numbers.structure === 'taps'
+    ? { taps: numbers.taps }
+    : {
+        ...(numbers.structure === 'sections'
+          ? { sections: numbers.sections.map(row) }
+          : { b: numbers.b, a: numbers.a }),
+        steadyState: numbers.steadyState,
+      }),
   input: testVector.input,
   output: testVector.output,
 })
@@ -53,10 +73,12 @@ function readJson(text: string): ReadBack {
   const file = coefficientSetSchema.parse(JSON.parse(text))
   const { coefficients } = file
   return {
-    ...(coefficients.structure === 'sections'
-      ? { sections: coefficients.sections.map(row) }
-      : { b: coefficients.b, a: coefficients.a }),
-    steadyState: file.steadyState,
+    ...(coefficients.structure === 'taps'
+      ? { taps: coefficients.taps }
+      : coefficients.structure === 'sections'
+        ? { sections: coefficients.sections.map(row) }
+        : { b: coefficients.b, a: coefficients.a }),
+    ...(file.steadyState && { steadyState: file.steadyState }),
     input: file.testVector.input,
     output: file.testVector.output,
   }
@@ -74,6 +96,8 @@ function readCsv(text: string): ReadBack {
     Array.from({ length: values.length / 5 }, (_, k) => values.slice(5 * k, 5 * k + 5))
   const steady = of('steady state')
   const isRatio = of('ratio').length > 0
+  const taps = of('tap', 'h')
+  if (taps.length > 0) return { taps, input: of('test input'), output: of('test output') }
   return {
     ...(isRatio ? { b: of('ratio', 'b'), a: of('ratio', 'a') } : { sections: byFives(of('section')) }),
     steadyState: isRatio ? steady : Array.from({ length: steady.length / 2 }, (_, k) => steady.slice(2 * k, 2 * k + 2)),
@@ -107,13 +131,14 @@ function readNumpy(text: string, number: ExportOptions['number']): ReadBack {
   const dtype = number === 'float' ? 'float32' : 'float64'
   const array = (suffix: string) => numpyArray(text, suffix, dtype)
   const isRatio = array('b') !== undefined
+  const run = { input: numberList.parse(array('test_input')), output: numberList.parse(array('test_output')) }
+  if (array('taps') !== undefined) return { taps: numberList.parse(array('taps')), ...run }
   return {
     ...(isRatio
       ? { b: numberList.parse(array('b')), a: numberList.parse(array('a')) }
       : { sections: numberRows.parse(array('sections')) }),
     steadyState: z.array(z.unknown()).parse(array('steady_state')),
-    input: numberList.parse(array('test_input')),
-    output: numberList.parse(array('test_output')),
+    ...run,
   }
 }
 
@@ -125,6 +150,7 @@ function readOctave(text: string, number: ExportOptions['number']): ReadBack {
     return rows[0] ?? []
   }
   const sections = matrix('sections')
+  if (matrix('taps')) return { taps: vector('taps'), input: vector('test_input'), output: vector('test_output') }
   return {
     ...(sections ? { sections } : { b: vector('b'), a: vector('a') }),
     steadyState: sections ? (matrix('steady_state') ?? []) : vector('steady_state'),
@@ -148,6 +174,8 @@ function readC(text: string, { number, literals }: ExportOptions): ReadBack {
   const matrix = (suffix: string) =>
     [...(array(suffix) ?? '').matchAll(/\{([^}]*)\}/g)].map(([, cells = '']) => cells.split(', ').map(value))
   const isRatio = array('b') !== undefined
+  if (array('taps') !== undefined)
+    return { taps: vector('taps'), input: vector('test_input'), output: vector('test_output') }
   return {
     ...(isRatio ? { b: vector('b'), a: vector('a') } : { sections: matrix('sections') }),
     steadyState: isRatio ? vector('steady_state') : matrix('steady_state'),
@@ -215,6 +243,46 @@ describe('every format', () => {
       }
     })
     expect(count).toBeGreaterThan(700)
+  })
+
+  it('reads back for FIR filters, fitted versions and originals of one’s own', () => {
+    const all: readonly DesignSpec[] = [...firKinds, ...ownKinds, fittedLowPass]
+    all.forEach((spec, k) => {
+      const source = sourceOf(spec, { title: nasty, note: nasty })
+      const structure = usualStructure(source.kept)
+      const literals = k % 2 ? ('decimal' as const) : ('hexadecimal' as const)
+      for (const number of ['double', 'float'] as const) {
+        const set = coefficientSet(source, { ...base, structure, number, literals })
+        for (const format of ['json', 'csv', 'c', 'numpy', 'octave'] as const) {
+          const options: ExportOptions = { ...base, format, structure, number, literals }
+          const read = readBack(writtenFile({ ...set, options }).text, options)
+          const found = Object.fromEntries(Object.entries(read).map(([key, value]) => [key, asType(value, number)]))
+          expect(found, `${format} of ${set.statement}`).toEqual(expected(set))
+        }
+      }
+    })
+  })
+
+  it('states of taps that there is no feedback, whatever sign is chosen, and takes no other name for it', () => {
+    const source = sourceOf(firDesign())
+    for (const format of ['json', 'csv', 'c', 'numpy', 'octave'] as const) {
+      const options: ExportOptions = { ...base, format, structure: 'taps' }
+      const { text, fileName } = exportFile(source, options)
+      expect(exportFile(source, { ...options, feedback: 'add' })).toEqual({ ...exportFile(source, options), fileName })
+      const plain = text.replace(/\n \*\s+/g, ' ')
+      for (const stated of [
+        'y[n] = h0*x[n] + h1*x[n-1] + ... + h40*x[n-40]',
+        'direct form of 41 taps, the same from either end',
+        source.version.checksum,
+      ])
+        expect(plain, format).toContain(stated)
+      if (format === 'json') expect(JSON.parse(text)).toMatchObject({ feedback: null, steadyState: null })
+      else {
+        expect(plain).toContain('none: taps have no feedback')
+        expect(plain).toContain('kept taps in double precision')
+      }
+      expect(plain).not.toMatch(/direct form II|denominator/)
+    }
   })
 
   it('holds the kept sections themselves in double precision and with subtracted feedback', () => {
@@ -289,6 +357,11 @@ describe('JSON', () => {
     expect(coefficientSetSchema.safeParse({ ...z.record(z.string(), z.unknown()).parse(file), more: 1 }).success).toBe(
       false,
     )
+    for (const spec of [firDesign(), ownMeasured]) {
+      const source = sourceOf(spec)
+      const other: unknown = JSON.parse(exportFile(source, { ...base, structure: usualStructure(source.kept) }).text)
+      expect(coefficientSetSchema.parse(other)).toEqual(other)
+    }
     expect(coefficientSetSchema.parse(file).design.title).toBe(nasty)
     expect(text).toMatch(/^[\x20-\x7e\n]*$/)
   })
@@ -300,6 +373,13 @@ describe('JSON', () => {
       expect(JSON.stringify(file.kept)).toBe(canonicalText(source.kept))
       expect(checksumOfStored(file.kept)).toBe(file.checksum.hex)
       expect(file.checksum.hex).toBe(source.version.checksum)
+    }
+    for (const spec of [...firKinds, ...ownKinds]) {
+      const other = sourceOf(spec)
+      const options = { ...base, number: 'float', structure: usualStructure(other.kept) } as const
+      const file = coefficientSetSchema.parse(JSON.parse(exportFile(other, options).text))
+      expect(JSON.stringify(file.kept)).toBe(canonicalText(other.kept))
+      expect(checksumOfStored(file.kept)).toBe(other.version.checksum)
     }
   })
 
@@ -324,7 +404,7 @@ describe('CSV', () => {
 })
 
 describe('held frequencies', () => {
-  const heldOf = (change: Partial<DesignSpec>) => {
+  const heldOf = (change: Partial<FamilyDesign>) => {
     const { heldHz, heldWords } = coefficientSet(sourceOf({ ...lowPass(), ...change }), base)
     return [heldHz, heldWords]
   }
@@ -333,6 +413,14 @@ describe('held frequencies', () => {
     expect(heldOf({ how: { method: 'bilinear', hold: 100.5 } })).toEqual([[100.5], '100.5 Hz'])
     expect(heldOf({ how: { method: 'bilinear', hold: 'none' } })[0]).toEqual([])
     expect(heldOf({ how: { method: 'matched-z' } })).toEqual([[], 'none: this method holds no single frequency'])
+    expect(heldOf({ how: { method: 'fitted', upToHz: 400 } })).toEqual([[], 'none: fitted up to 400 Hz'])
+    const ofOther = (spec: DesignSpec, structure: ExportOptions['structure'] = 'sections') => {
+      const { heldHz, heldWords } = coefficientSet(sourceOf(spec), { ...base, structure })
+      return [heldHz, heldWords]
+    }
+    expect(ofOther(ownRoots)).toEqual([[90], '90 Hz'])
+    expect(ofOther(ownMeasured)).toEqual([[], 'none: fitted up to 300 Hz to a response given as measured'])
+    expect(ofOther(firDesign(), 'taps')).toEqual([[], 'none: an FIR filter stated by its bands has no analog original'])
     expect(heldOf({ analog: lowPass({ response: 'bandpass', edgesHz: [60, 180] }).analog })).toEqual([
       [60, 180],
       '60 Hz and 180 Hz',
@@ -361,6 +449,35 @@ describe('refusals', () => {
     expect(ratioRefusal(filtersOf(sourceOf(lowPass()).kept).digital, 'double')).toBeNull()
   })
 
+  it('know one structure of taps, and no taps of what has feedback', () => {
+    const fir = sourceOf(firDesign())
+    expect(structuresOf(fir.kept)).toEqual(['taps'])
+    expect(structuresOf(sourceOf(ownRoots).kept)).toEqual(['sections', 'ratio'])
+    for (const structure of ['sections', 'ratio'] as const)
+      expect(refusalOf(firDesign(), { structure })).toMatchObject({
+        code: 'structure-not-there',
+        field: 'structure',
+        nearest: 'taps',
+      })
+    for (const spec of [lowPass(), ownMeasured])
+      expect(refusalOf(spec, { structure: 'taps' })).toMatchObject({
+        code: 'structure-not-there',
+        field: 'structure',
+        nearest: 'sections',
+      })
+  })
+
+  it('refuse single precision that would lose the taps', () => {
+    const fir = sourceOf(firDesign())
+    if (!isStoredTaps(fir.kept)) throw new Error('Taps were stated.')
+    const { kept } = fir
+    const scaled = (factor: number) => ({ ...fir, kept: { ...kept, taps: kept.taps.map((tap) => tap * factor) } })
+    const options = { ...base, structure: 'taps', number: 'float' } as const
+    expect(() => coefficientSet(scaled(1e-39), options)).toThrow(/double precision/)
+    expect(() => coefficientSet(scaled(1e40), options)).toThrow(/double precision/)
+    expect(coefficientSet(scaled(1e-39), { ...options, number: 'double' }).rounding.worstDeviationDb).toBe(0)
+  })
+
   it('judge b/a in the number type that is asked for', () => {
     const low = lowPass({ edgesHz: [12] })
     expect(refusalOf(low, { structure: 'ratio', number: 'double' })).toBeNull()
@@ -381,6 +498,7 @@ describe('refusals', () => {
   it('never state a number that isn’t one', () => {
     for (const spec of everyKind([8])) {
       const { numbers, testVector } = coefficientSet(sourceOf(spec), base)
+      if (numbers.structure === 'taps') throw new Error('A family has no taps.')
       for (const value of [...testVector.input, ...testVector.output, ...numbers.steadyState.flat()])
         expect(value).toBeTypeOf('number')
       expect([...testVector.output, ...numbers.steadyState.flat()].every(Number.isFinite)).toBe(true)

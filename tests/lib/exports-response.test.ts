@@ -3,13 +3,13 @@ import fc from 'fast-check'
 import { freqz } from 'mathjs'
 import { describe, expect, it, vi } from 'vitest'
 import { z } from 'zod'
-import { frequencyResponse, type DigitalFilter } from '@/dsp'
+import { designFromSpec, frequencyResponse, isFir, type AnyDigital, type DigitalFilter, type FirDesign } from '@/dsp'
 import { filtersOf } from '@/lib/designs/coefficients'
 import { coefficientSet, type ExportOptions } from '@/lib/exports'
-import { runCascade, runRatio, steadyRatioState } from '@/lib/exports/reference-run'
-import { effectOfRatio, effectOfSections, isStable } from '@/lib/exports/rounding'
+import { runCascade, runDirectForm, runRatio, steadyRatioState } from '@/lib/exports/reference-run'
+import { effectOfRatio, effectOfSections, effectOfTaps, isStable } from '@/lib/exports/rounding'
 import { testInput, testVectorLength } from '@/lib/exports/test-vector'
-import { everyKind, lowPass, sourceOf } from '../helpers/export-sources'
+import { everyKind, firDesign, firKinds, lowPass, sourceOf } from '../helpers/export-sources'
 
 // Hundreds of designs; on a busy machine that takes longer than a test usually may.
 vi.setConfig({ testTimeout: 120_000 })
@@ -30,6 +30,11 @@ const ratioOf = (source: Parameters<typeof coefficientSet>[0]) => {
   const { numbers } = coefficientSet(source, { ...base, structure: 'ratio' })
   if (numbers.structure !== 'ratio') throw new Error('A ratio was asked for.')
   return numbers
+}
+function firOf(spec: FirDesign) {
+  const { digital } = designFromSpec(spec)
+  if (!isFir(digital)) throw new Error('Taps were stated.')
+  return digital
 }
 const complexList = z.object({ h: z.array(z.object({ re: z.number(), im: z.number() })) })
 
@@ -69,7 +74,7 @@ describe('the exported arithmetic', () => {
     return impulse
   }
 
-  function worstError(digital: DigitalFilter, output: Float64Array): number {
+  function worstError(digital: AnyDigital, output: Float64Array): number {
     const fft = new FFT(output.length)
     const spectrum = fft.createComplexArray()
     fft.realTransform(spectrum, Array.from(output))
@@ -99,10 +104,23 @@ describe('the exported arithmetic', () => {
     }
   })
 
+  it('has the response of the taps, from its impulse response by fft.js', () => {
+    for (const spec of firKinds) {
+      const { numbers } = coefficientSet(sourceOf(spec), { ...base, structure: 'taps' })
+      if (numbers.structure !== 'taps') throw new Error('Taps were asked for.')
+      const impulse = new Float64Array(512)
+      impulse[0] = 1
+      const size = numbers.taps.reduce((sum, tap) => sum + Math.abs(tap), 0)
+      const error = worstError(firOf(spec), runDirectForm(numbers.taps, impulse, 'double'))
+      expect(error, JSON.stringify(spec)).toBeLessThan(1e-13 * Math.max(1, size))
+    }
+  })
+
   it('rounds every operation to a single, so that its output is of singles', () => {
     const source = sourceOf(lowPass({ order: 6 }))
     for (const structure of ['sections', 'ratio'] as const) {
       const { testVector, numbers } = coefficientSet(source, { ...base, structure, number: 'float' })
+      if (numbers.structure === 'taps') throw new Error('A family has no taps.')
       const values = [...testVector.output, ...numbers.steadyState.flat()]
       expect(values.map(Math.fround)).toEqual(values)
     }
@@ -161,6 +179,24 @@ describe('what rounding does', () => {
         a,
       ).worstDeviationDb,
     ).toBeCloseTo(0.25, 6)
+  })
+
+  it('is measured of taps at every ripple', () => {
+    const fir = firOf(firDesign())
+    const factor = 10 ** (0.25 / 20)
+    expect(effectOfTaps(fir, [...fir.taps]).worstDeviationDb).toBe(0)
+    expect(
+      effectOfTaps(
+        fir,
+        Array.from(fir.taps, (tap) => tap * factor),
+      ).worstDeviationDb,
+    ).toBeCloseTo(0.25, 9)
+    for (const spec of firKinds) {
+      const { rounding } = coefficientSet(sourceOf(spec), { ...base, structure: 'taps', number: 'float' })
+      // A tap is off by 2^-25 of itself at most, and 80 dB down the response is 1e-4 of its peak.
+      expect(rounding.worstDeviationDb).toBeGreaterThan(0)
+      expect(rounding.worstDeviationDb).toBeLessThan(0.05)
+    }
   })
 
   it('sees a pole outside the circle, in either form', () => {

@@ -221,6 +221,19 @@ describe('options in the address', () => {
         expect(exportOptionsFrom(new URLSearchParams(exportQuery(chosen)))).toEqual(chosen)
       }),
     )
+    const taps: ExportOptions = {
+      format: 'csv',
+      structure: 'taps',
+      number: 'float',
+      feedback: 'subtract',
+      literals: 'decimal',
+    }
+    expect(exportQuery(taps)).not.toContain('feedback')
+    expect(exportOptionsFrom(new URLSearchParams(exportQuery(taps)))).toEqual(taps)
+    // A query that names no structure asks for the usual one of the version.
+    expect(exportOptionsFrom(new URLSearchParams('format=c'))).toMatchObject({ structure: 'sections' })
+    expect(exportOptionsFrom(new URLSearchParams('format=c'), 'taps')).toMatchObject({ structure: 'taps' })
+    expect(exportOptionsFrom(new URLSearchParams('format=c&structure=ratio'), 'taps').structure).toBe('ratio')
     const named: ExportOptions = {
       format: 'c',
       structure: 'ratio',
@@ -239,6 +252,7 @@ describe('options in the address', () => {
     expect(refused('format=c&sign=add')).toMatchObject({ code: 'option-unknown', field: 'sign' })
     expect(refused('format=c&__proto__=1')).toMatchObject({ code: 'option-unknown' })
     expect(refused('format=c&format=json')).toMatchObject({ code: 'option-twice', field: 'format' })
+    expect(refused('format=c&structure=taps&feedback=add')).toMatchObject({ code: 'no-feedback', field: 'feedback' })
     expect(refused('format=c&number=q15')).toMatchObject({ code: 'option-out-of-list', field: 'number' })
     expect(refused('format=c&name=9')).toMatchObject({ code: 'name-not-an-identifier', nearest: 'filter_9' })
   })
@@ -253,6 +267,8 @@ describe('difference equations', () => {
     expect(differenceEquation('ratio', 'subtract', 8)).toBe(
       'y[n] = b0*x[n] + b1*x[n-1] + ... + b8*x[n-8] - a1*y[n-1] - a2*y[n-2] - ... - a8*y[n-8]',
     )
+    expect(differenceEquation('taps', 'subtract', 40)).toBe('y[n] = h0*x[n] + h1*x[n-1] + ... + h40*x[n-40]')
+    expect(typesetEquation('taps', 'add', 2)).toBe('y[n] = h₀·x[n] + h₁·x[n−1] + h₂·x[n−2]')
     expect(typesetEquation('sections', 'add', 4)).toBe('y[n] = b₀·x[n] + b₁·x[n−1] + b₂·x[n−2] + a₁·y[n−1] + a₂·y[n−2]')
     expect(typesetEquation('ratio', 'subtract', 12)).toContain('… − a₁₂·y[n−12]')
   })

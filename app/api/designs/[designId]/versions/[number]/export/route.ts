@@ -1,7 +1,7 @@
 import { findDesign } from '@/db/queries/designs'
 import { findVersion } from '@/db/queries/versions'
 import { noBody, teamRoute } from '@/lib/actions/route'
-import { exportFile, exportOptionsFrom } from '@/lib/exports'
+import { exportFile, exportOptionsFrom, usualStructure } from '@/lib/exports'
 import { versionParamsSchema } from '@/lib/exports/params'
 
 /** A version's coefficients as a file, made from the numbers that were kept with it. The same question gets the same bytes. */
@@ -15,7 +15,7 @@ export const GET = teamRoute('version.export', {
     return design && version ? { design, version } : null
   },
   run: async ({ request, found: { design, version }, trail }) => {
-    const options = exportOptionsFrom(new URL(request.url).searchParams)
+    const options = exportOptionsFrom(new URL(request.url).searchParams, usualStructure(version.coefficients))
     const file = exportFile({ design, version, kept: version.coefficients }, options)
     // Whose firmware holds which numbers is what a trail is asked years later.
     const { number, checksum } = version
