@@ -205,7 +205,7 @@ describe('the history', () => {
         versions,
         current,
         onRestore: () => undefined,
-        compareHref: (a, b) => `/compare?a=${a}&b=${b}`,
+        compareHref: (sides) => `/compare?sides=${sides.join(',')}`,
         handOverHref: (number) => `/versions/${number}`,
         ...change,
       }),
@@ -218,7 +218,7 @@ describe('the history', () => {
     expect(html).toMatch(/<ins[^>]*>600\u2009Hz<\/ins>/)
     expect(html).toContain('Changed since version 2: sampling rate')
     expect(html).toContain('Same design as version 1')
-    for (const href of ['/compare?a=3&amp;b=draft', '/compare?a=2&amp;b=3', '/versions/1'])
+    for (const href of ['/compare?sides=3,draft', '/compare?sides=2,3', '/versions/1'])
       expect(html).toContain(`href="${href}"`)
     expect(html.match(/Bring back into the draft/g)).toHaveLength(3)
   })

@@ -1,7 +1,8 @@
-import { groupDelay, magnitudeDb, phaseResponse, type DigitalFilter } from '@/dsp'
+import { groupDelay, magnitudeDb, phaseResponse, type AnyDigital } from '@/dsp'
+import { edgesHzOf } from '@/lib/designs/outline'
 import type { Side } from './figures'
 
-/* The two responses and their difference on one frequency axis. */
+/* The responses of all sides, and what the others differ from the base, on one frequency axis. */
 
 export interface Curve {
   readonly frequenciesHz: Float64Array
@@ -10,38 +11,53 @@ export interface Curve {
   readonly delaySeconds: Float64Array
 }
 
+/** A trace belongs to a side by the side's place. */
+export interface PlacedCurve extends Curve {
+  readonly place: number
+}
+
 export interface Curves {
   readonly fromHz: number
   readonly toHz: number
-  readonly left: Curve
-  readonly right: Curve
-  /** Right minus left, up to the lower of the two fold lines. */
-  readonly difference: Curve
+  /** Each up to its own fold line. */
+  readonly sides: readonly PlacedCurve[]
+  /** Each other side minus the base, up to the lower of their two fold lines. */
+  readonly differences: readonly PlacedCurve[]
 }
 
 const points = 900
 const degree = 180 / Math.PI
 
-export function curvesOf(left: Side, right: Side): Curves {
-  const edges = [...left.spec.analog.edgesHz, ...right.spec.analog.edgesHz]
-  const folds = [left.spec.sampleRateHz / 2, right.spec.sampleRateHz / 2]
-  const toHz = Math.max(...folds)
+const foldOf = ({ spec }: Side): number => spec.sampleRateHz / 2
+const edgesOf = (sides: readonly Side[]): number[] => sides.flatMap(({ spec }) => [...edgesHzOf(spec)])
+
+/** @param sides one or more, the base first */
+export function curvesOf(sides: readonly Side[]): Curves {
+  const edges = edgesOf(sides)
+  const toHz = Math.max(...sides.map(foldOf))
   const fromHz = Math.min(Math.min(...edges) / 15, toHz / 40)
-  const shared = gridUpTo(fromHz, Math.min(...folds), edges)
-  const one = curveOn(left.design.digital, shared)
-  const other = curveOn(right.design.digital, shared)
+  const [base, ...others] = sides
   return {
     fromHz,
     toHz,
-    left: curveOn(left.design.digital, gridUpTo(fromHz, left.spec.sampleRateHz / 2, edges)),
-    right: curveOn(right.design.digital, gridUpTo(fromHz, right.spec.sampleRateHz / 2, edges)),
-    difference: {
-      frequenciesHz: shared,
-      // Where both are −∞ there is no difference to speak of: NaN, a gap in the trace.
-      magnitudeDb: minus(other.magnitudeDb, one.magnitudeDb),
-      phaseDegrees: minus(other.phaseDegrees, one.phaseDegrees),
-      delaySeconds: minus(other.delaySeconds, one.delaySeconds),
-    },
+    sides: sides.map((side) => ({
+      place: side.place,
+      ...curveOn(side.design.digital, gridUpTo(fromHz, foldOf(side), edges)),
+    })),
+    differences: base ? others.map((other) => differenceOf(base, other, fromHz, edges)) : [],
+  }
+}
+
+function differenceOf(base: Side, other: Side, fromHz: number, edges: readonly number[]): PlacedCurve {
+  const shared = gridUpTo(fromHz, Math.min(foldOf(base), foldOf(other)), edges)
+  const [one, two] = [curveOn(base.design.digital, shared), curveOn(other.design.digital, shared)]
+  return {
+    place: other.place,
+    frequenciesHz: shared,
+    // Where both are −∞ there is no difference to speak of: NaN, a gap in the trace.
+    magnitudeDb: minus(two.magnitudeDb, one.magnitudeDb),
+    phaseDegrees: minus(two.phaseDegrees, one.phaseDegrees),
+    delaySeconds: minus(two.delaySeconds, one.delaySeconds),
   }
 }
 
@@ -49,10 +65,10 @@ function gridUpTo(fromHz: number, toHz: number, edgesHz: readonly number[]): Flo
   const start = Math.min(fromHz, toHz / 2)
   const grid = Array.from({ length: points }, (_, k) => start * (toHz / start) ** (k / (points - 1)))
   grid[points - 1] = toHz
-  return Float64Array.from([...grid, ...edgesHz.filter((edge) => edge > start && edge < toHz)]).sort()
+  return Float64Array.from(new Set([...grid, ...edgesHz.filter((edge) => edge > start && edge < toHz)])).sort()
 }
 
-function curveOn(filter: DigitalFilter, frequenciesHz: Float64Array): Curve {
+function curveOn(filter: AnyDigital, frequenciesHz: Float64Array): Curve {
   return {
     frequenciesHz,
     magnitudeDb: magnitudeDb(filter, frequenciesHz),
@@ -64,26 +80,39 @@ function curveOn(filter: DigitalFilter, frequenciesHz: Float64Array): Curve {
 const minus = (other: Float64Array, one: Float64Array): Float64Array =>
   other.map((value, k) => value - (one[k] ?? Number.NaN))
 
-/** One row of the table of values. */
-export interface ValueRow {
-  readonly hertz: number
-  readonly left: readonly [db: number, degrees: number, seconds: number]
-  readonly right: readonly [db: number, degrees: number, seconds: number]
+export interface Values {
+  readonly db: number
+  readonly degrees: number
+  readonly seconds: number
 }
 
-/** The values at about twenty frequencies of the shared band, the edges among them. */
-export function valueRows(left: Side, right: Side): readonly ValueRow[] {
-  const { difference } = curvesOf(left, right)
-  const every = Math.floor(difference.frequenciesHz.length / 18)
-  const edges = new Set([...left.spec.analog.edgesHz, ...right.spec.analog.edgesHz])
-  const chosen = difference.frequenciesHz.filter((hertz, k) => k % every === 0 || edges.has(hertz))
-  const one = curveOn(left.design.digital, chosen)
-  const other = curveOn(right.design.digital, chosen)
-  const at = (curve: Curve, k: number) =>
-    [
-      curve.magnitudeDb[k] ?? Number.NaN,
-      curve.phaseDegrees[k] ?? Number.NaN,
-      curve.delaySeconds[k] ?? Number.NaN,
-    ] as const
-  return Array.from(chosen, (hertz, k) => ({ hertz, left: at(one, k), right: at(other, k) }))
+/** One row of the table of values: a side's values by its position among the sides; null above its fold line. */
+export interface ValueRow {
+  readonly hertz: number
+  readonly values: readonly (Values | null)[]
+}
+
+/** The values at about twenty frequencies up to the highest fold line, every edge and every fold line among them. */
+export function valueRows(sides: readonly Side[]): readonly ValueRow[] {
+  const edges = edgesOf(sides)
+  const folds = sides.map(foldOf)
+  const toHz = Math.max(...folds)
+  const fromHz = Math.min(Math.min(...edges) / 15, toHz / 40)
+  const grid = gridUpTo(fromHz, toHz, [...edges, ...folds])
+  const every = Math.floor(grid.length / 18)
+  const exactly = new Set([...edges, ...folds])
+  const chosen = grid.filter((hertz, k) => k % every === 0 || exactly.has(hertz))
+  const columns = sides.map((side) =>
+    curveOn(
+      side.design.digital,
+      chosen.filter((hertz) => hertz <= foldOf(side)),
+    ),
+  )
+  return Array.from(chosen, (hertz, k) => ({
+    hertz,
+    values: columns.map((curve) => {
+      const [db, degrees, seconds] = [curve.magnitudeDb[k], curve.phaseDegrees[k], curve.delaySeconds[k]]
+      return db === undefined || degrees === undefined || seconds === undefined ? null : { db, degrees, seconds }
+    }),
+  }))
 }

@@ -1,88 +1,133 @@
-import { designFromSpec, magnitudeDb, type Design, type DesignSpec, type DigitalFilter } from '@/dsp'
+import { DesignError, isFir, magnitudeDb, type AnyDigital, type Design, type DesignSpec } from '@/dsp'
 import { multipliesPerSample } from '@/lib/designs/cost'
+import { edgesHzOf } from '@/lib/designs/outline'
 import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
-import { deriveFigures, deriveTrust } from '../derive'
+import { deriveFigures, deriveTrust, statedId } from '../derive'
 import { trustText } from '../shell/figures-line'
+import { statedDesign } from '../stated-design'
 
-/** One of the two that are compared, computed. */
-export interface Side {
+export interface ComparedSpec {
+  /** "Version 3"; short, and no two the same. */
   readonly label: string
+  /** More about it, where the label doesn't say it. */
+  readonly detail?: string
   readonly spec: DesignSpec
+}
+
+/** One of those that are compared, computed. Its place gives it its trace. */
+export interface Side extends ComparedSpec {
+  readonly place: number
   readonly design: Design
 }
 
 /** @throws DesignError when the spec makes no filter */
-export const sideOf = ({ label, spec }: { label: string; spec: DesignSpec }): Side => ({
-  label,
-  spec,
-  design: designFromSpec(spec),
-})
+export function sideOf(compared: ComparedSpec, place: number): Side {
+  const design = statedDesign(compared.spec)
+  if (design instanceof DesignError) throw design
+  return { ...compared, place, design }
+}
+
+export interface FigureCell {
+  readonly text: string
+  readonly differs: boolean
+  /** This side minus the base where that is a number with a meaning, otherwise empty. */
+  readonly change: string
+}
 
 export interface FigureRow {
   readonly name: string
-  readonly left: string
-  readonly right: string
-  /** Right minus left where that is a number with a meaning, otherwise empty. */
-  readonly change: string
-  readonly differs: boolean
+  /** In the order of the sides; the base first. */
+  readonly cells: readonly FigureCell[]
 }
 
-/** The figures of two designs beside each other. */
-export function figureRows(left: Side, right: Side): readonly FigureRow[] {
-  const [one, other] = [figuresOf(left), figuresOf(right)]
-  const row = (name: string, of: (figures: Figures) => string, change: string): FigureRow => ({
+/** The figures of all sides beside each other. */
+export function figureRows(sides: readonly Side[]): readonly FigureRow[] {
+  const figures = sides.map(figuresOf)
+  const [base] = figures
+  if (!base) return []
+  const row = (name: string, text: (of: Figures) => string, change?: (base: Figures, other: Figures) => string) => ({
     name,
-    left: of(one),
-    right: of(other),
-    change: of(one) === of(other) ? '' : change,
-    differs: of(one) !== of(other),
+    cells: figures.map((of) => {
+      const differs = text(of) !== text(base)
+      return { text: text(of), differs, change: differs && change ? change(base, of) : '' }
+    }),
   })
-  const points = Math.max(one.halfPowerHz.length, other.halfPowerHz.length)
-  const delayName = one.delayAtHz === 0 && other.delayAtHz === 0 ? 'Delay at DC' : 'Delay in the pass band'
+  const hertz = (of: (figures: Figures) => number) => (one: Figures, other: Figures) => hertzChange(of(one), of(other))
+  const count = (of: (figures: Figures) => number) => (one: Figures, other: Figures) =>
+    plus(of(other) - of(one), formatNumber)
+  const points = Math.max(...figures.map(({ halfPowerHz }) => halfPowerHz.length))
+  const isAtDc = figures.every(({ delayAtHz }) => delayAtHz === 0)
   return [
-    row('Sampling rate', (f) => formatHz(f.sampleRateHz, 6), hertzChange(one.sampleRateHz, other.sampleRateHz)),
-    row('Trusted band', (f) => f.trusted, hertzChange(one.trustedHz, other.trustedHz)),
     row(
-      delayName,
-      (f) =>
-        f.delayAtHz === 0
-          ? formatSeconds(f.delaySeconds)
-          : `${formatSeconds(f.delaySeconds)} at ${formatHz(f.delayAtHz)}`,
-      one.delayAtHz === other.delayAtHz ? plus(other.delaySeconds - one.delaySeconds, formatSeconds) : '',
+      'Sampling rate',
+      (f) => formatHz(f.sampleRateHz, 6),
+      hertz((f) => f.sampleRateHz),
+    ),
+    row(
+      'Trusted band',
+      (f) => f.trusted,
+      hertz((f) => f.trustedHz),
+    ),
+    row(
+      isAtDc ? 'Delay at DC' : 'Delay in the pass band',
+      (f) => (isAtDc ? formatSeconds(f.delaySeconds) : `${formatSeconds(f.delaySeconds)} at ${placeText(f.delayAtHz)}`),
+      (one, other) =>
+        one.delayAtHz === other.delayAtHz ? plus(other.delaySeconds - one.delaySeconds, formatSeconds) : '',
     ),
     ...Array.from({ length: points }, (_, k) =>
       row(
         points === 1 ? '−3 dB point' : `−3 dB point ${k + 1}`,
         (f) => (f.halfPowerHz[k] === undefined ? 'none' : formatHz(f.halfPowerHz[k], 5)),
-        hertzChange(one.halfPowerHz[k] ?? Number.NaN, other.halfPowerHz[k] ?? Number.NaN),
+        hertz((f) => f.halfPowerHz[k] ?? Number.NaN),
       ),
     ),
     row(
       'Cost, multiplies a sample',
-      (f) => formatNumber(f.multiplies),
-      plus(other.multiplies - one.multiplies, formatNumber),
+      (f) => formatNumber(f.multiplies, 7),
+      count((f) => f.multiplies),
     ),
-    row('Sections', (f) => formatNumber(f.sections), plus(other.sections - one.sections, formatNumber)),
-    row('Departure budget', (f) => f.budget, ''),
+    row(
+      'Sections',
+      (f) => countText(f.sections),
+      count((f) => f.sections),
+    ),
+    ...(figures.some(({ taps }) => Number.isFinite(taps))
+      ? [
+          row(
+            'Taps',
+            (f) => countText(f.taps),
+            count((f) => f.taps),
+          ),
+        ]
+      : []),
+    row('Departure budget', (f) => f.budget),
   ]
 }
+
+const placeText = (hertz: number): string => (hertz === 0 ? 'DC' : formatHz(hertz))
+const countText = (count: number): string => (Number.isFinite(count) ? formatNumber(count) : 'none')
 
 interface Figures {
   readonly sampleRateHz: number
   readonly trusted: string
+  /** Not finite where there is nothing to trust it against. */
   readonly trustedHz: number
   readonly delayAtHz: number
   readonly delaySeconds: number
   readonly halfPowerHz: readonly number[]
   readonly multiplies: number
+  /** Not finite for an FIR filter, as its taps aren't for the others. */
   readonly sections: number
+  readonly taps: number
   readonly budget: string
 }
 
 function figuresOf({ spec, design }: Side): Figures {
+  const { reference, analog, digital } = design
   const versions = {
-    analog: design.analog,
-    digital: [{ id: spec.how.method, filter: design.digital, stated: true }],
+    reference,
+    analog,
+    digital: [{ id: statedId(spec), filter: digital, stated: true }],
     refused: [],
   }
   const { delayAtHz, delaySeconds } = deriveFigures(spec, versions)
@@ -90,13 +135,14 @@ function figuresOf({ spec, design }: Side): Figures {
   const { magnitudeDb: decibels, phaseDegrees, removeDelay } = spec.budget
   return {
     sampleRateHz: spec.sampleRateHz,
-    trusted: trust ? trustText(trust) : 'nowhere',
-    trustedHz: trust ? trust.upToHz : 0,
+    trusted: trust ? trustText(trust) : analog ? 'nowhere' : 'no analog original',
+    trustedHz: trust ? trust.upToHz : analog ? 0 : Number.NaN,
     delayAtHz,
     delaySeconds,
-    halfPowerHz: halfPowerPoints(design.digital, spec.analog.edgesHz),
-    multiplies: multipliesPerSample(design.digital),
-    sections: design.digital.sections.length,
+    halfPowerHz: halfPowerPoints(digital, edgesHzOf(spec)),
+    multiplies: multipliesPerSample(digital),
+    sections: isFir(digital) ? Number.NaN : digital.sections.length,
+    taps: isFir(digital) ? digital.taps.length : Number.NaN,
     budget: `${formatNumber(decibels)}\u2009dB, ${formatNumber(phaseDegrees)}°${removeDelay ? ', best delay removed' : ''}`,
   }
 }
@@ -114,7 +160,7 @@ const halfPowerDb = 10 * Math.log10(2)
  * Frequencies in Hz at which the level crosses −3.01 dB below its peak, rising; at most four. Crossings are bracketed on a grid that is
  * dense around the edges, then bisected to the last bits.
  */
-export function halfPowerPoints(filter: DigitalFilter, edgesHz: readonly number[]): number[] {
+export function halfPowerPoints(filter: AnyDigital, edgesHz: readonly number[]): number[] {
   const fold = filter.sampleRateHz / 2
   const grid = searchGrid(edgesHz, fold)
   const levels = magnitudeDb(filter, grid)
@@ -142,5 +188,9 @@ function searchGrid(edgesHz: readonly number[], fold: number): Float64Array {
   for (let k = 0; k <= 600; k++) grid.push(Math.exp(from + ((Math.log(fold) - from) * k) / 600))
   const width = second > first ? second - first : first
   for (let k = -200; k <= 400; k++) grid.push(first + (width * k) / 200)
+  // Designs of many bands, and FIR filters of many taps, turn between any two edges.
+  const stops = [0, ...edgesHz, fold].sort((one, other) => one - other)
+  for (const [at, from] of stops.entries())
+    for (let k = 1; k < 100; k++) grid.push(from + (((stops[at + 1] ?? from) - from) * k) / 100)
   return Float64Array.from(grid.filter((hertz) => hertz >= 0 && hertz <= fold)).sort()
 }

@@ -4,18 +4,12 @@ import { tracePath, type Box } from '@/components/plot/path'
 import { linearScale, logScale, pixelsOf, type Scale, type Span } from '@/components/plot/scale'
 import { crisp, line, type Mark, type Scene, type Stroke } from '@/components/plot/scene'
 import { frequencyTicks, valueTicks, type Quantity } from '@/components/plot/ticks'
-import type { MarkerShape } from '@/components/plot/trace-style'
-import type { Curve, Curves } from './curves'
+import type { Curve, Curves, PlacedCurve } from './curves'
+import { sideStyle } from './side-styles'
+import { inSentence } from './sides'
 
 export type DifferenceUnit = 'db' | 'degrees' | 'microseconds'
 
-/** The earlier one is thin, dashed and square; the later one full and round. */
-const sideStyles = {
-  left: { stroke: { ink: 'slate', widthPixels: 1.6, dash: [7, 4] }, marker: 'square' },
-  right: { stroke: { ink: 'spruce', widthPixels: 1.9 }, marker: 'circle' },
-} as const satisfies Record<'left' | 'right', { stroke: Stroke; marker: MarkerShape }>
-
-const differenceStroke: Stroke = { ink: 'ink', widthPixels: 1.6 }
 const foldStroke: Stroke = { ink: 'vermilion', widthPixels: 1.2, dash: [5, 4] }
 
 const gutter = { left: 54, right: 8, top: 6, between: 10, below: 22 } as const
@@ -26,22 +20,20 @@ interface PlotPlan {
   readonly quantity: Quantity
   /** What the axis counts in, in the unit of the values: 0.001 for milliseconds. */
   readonly perUnit: number
-  readonly traces: readonly {
-    readonly of: 'left' | 'right' | 'difference'
-    readonly curve: Curve
-    readonly values: Float64Array
-  }[]
+  readonly traces: readonly { readonly curve: PlacedCurve; readonly values: Float64Array }[]
   readonly domain: Span
 }
 
-/** The overlaid responses as a picture of that width; heights are fixed. */
-export function overlayScene(
-  curves: Curves,
-  foldsHz: { readonly left: number; readonly right: number },
-  unit: DifferenceUnit,
-  widthPixels: number,
-): Scene {
-  const plans = plansOf(curves, unit)
+export interface OverlayWords {
+  readonly unit: DifferenceUnit
+  /** Label of the side that differences are taken from. */
+  readonly base: string
+}
+
+/** The overlaid responses, and under them the differences from the base, as a picture of that width; heights are fixed. */
+export function overlayScene(curves: Curves, words: OverlayWords, widthPixels: number): Scene {
+  const plans = plansOf(curves, words)
+  const foldsHz = curves.sides.map(({ frequenciesHz }) => frequenciesHz.at(-1) ?? curves.toHz)
   const right = widthPixels - gutter.right
   const scale = logScale([curves.fromHz, curves.toHz], [gutter.left, right])
   const ticks = frequencyTicks({ scale, normalised: false })
@@ -62,18 +54,18 @@ function plotMarks(
   box: Box,
   xScale: Scale,
   xTicks: ReturnType<typeof frequencyTicks>,
-  foldsHz: { readonly left: number; readonly right: number },
+  foldsHz: readonly number[],
 ): Mark[] {
   const yScale = linearScale(plan.domain, [box.bottom, box.top])
   const yTicks = valueTicks(plan.quantity, yScale, 26, plan.perUnit)
-  const lowerFold = Math.min(foldsHz.left, foldsHz.right)
-  const traces = plan.traces.flatMap(({ of, curve, values }) => {
+  const lowerFold = Math.min(...foldsHz)
+  const traces = plan.traces.flatMap(({ curve, values }): Mark[] => {
     const xs = pixelsOf(xScale, curve.frequenciesHz)
-    const stroke = of === 'difference' ? differenceStroke : sideStyles[of].stroke
+    const { stroke } = sideStyle(curve.place)
     const path: Mark = { kind: 'path', points: tracePath(xs, values, yScale, box), stroke }
-    return of === 'difference' ? [path] : [path, ...markers(of, xs, values, yScale, box)]
+    return [path, ...markers(curve.place, xs, values, yScale, box)]
   })
-  const folds = [...new Set([foldsHz.left, foldsHz.right])].map((hertz) => {
+  const folds = [...new Set(foldsHz)].map((hertz) => {
     const x = Math.min(crisp(xScale.toPixel(hertz)), box.right - 0.5)
     return line(x, box.top, x, box.bottom, foldStroke)
   })
@@ -111,14 +103,14 @@ function plotMarks(
   ]
 }
 
-/** Six markers along a trace, set off from the other's so that both are seen where the traces coincide. */
-function markers(of: 'left' | 'right', xs: Float64Array, values: Float64Array, yScale: Scale, box: Box): Mark[] {
-  const { stroke, marker } = sideStyles[of]
+/** Six markers along a trace, set off from the others' so that all are seen where traces coincide. */
+function markers(place: number, xs: Float64Array, values: Float64Array, yScale: Scale, box: Box): Mark[] {
+  const { stroke, marker } = sideStyle(place)
   const first = xs[0] ?? 0
   const reach = (xs.at(-1) ?? 0) - first
   const marks: Mark[] = []
   for (let k = 0; k < 6; k++) {
-    const wanted = first + (reach * (k + (of === 'left' ? 0.3 : 0.7))) / 6
+    const wanted = first + (reach * (k + 0.14 + 0.24 * place)) / 6
     const at = xs.findIndex((x) => x >= wanted)
     const y = yScale.toPixel(values[at] ?? Number.NaN)
     if (!(y > box.top && y < box.bottom)) continue
@@ -135,18 +127,13 @@ function markers(of: 'left' | 'right', xs: Float64Array, values: Float64Array, y
   return marks
 }
 
-function plansOf({ left, right, difference }: Curves, unit: DifferenceUnit): readonly PlotPlan[] {
-  const both = (values: (curve: Curve) => Float64Array) =>
-    [
-      { of: 'left', curve: left, values: values(left) },
-      { of: 'right', curve: right, values: values(right) },
-    ] as const
-  const magnitudes = both((curve) => curve.magnitudeDb)
-  const phases = both((curve) => curve.phaseDegrees)
-  const delays = both((curve) => curve.delaySeconds)
+function plansOf({ sides, differences }: Curves, { unit, base }: OverlayWords): readonly PlotPlan[] {
+  const all = (values: (curve: Curve) => Float64Array) => sides.map((curve) => ({ curve, values: values(curve) }))
+  const magnitudes = all((curve) => curve.magnitudeDb)
+  const phases = all((curve) => curve.phaseDegrees)
+  const delays = all((curve) => curve.delaySeconds)
   const delayUnit = delayScale(delays)
-  const differences = [{ of: 'difference', curve: difference, values: differenceValues(difference, unit) }] as const
-  return [
+  const plans: PlotPlan[] = [
     {
       title: 'Magnitude, dB',
       heightPixels: 190,
@@ -171,22 +158,28 @@ function plansOf({ left, right, difference }: Curves, unit: DifferenceUnit): rea
       traces: delays,
       domain: spanOf(delays, delayUnit.perUnit / 1000),
     },
+  ]
+  if (differences.length === 0) return plans
+  const traces = differences.map((curve) => ({ curve, values: differenceValues(curve, unit) }))
+  return [
+    ...plans,
     {
-      title: differenceTitles[unit],
-      heightPixels: 120,
+      title: `${differenceTitles[unit]} from ${inSentence(base)}, ${unitSymbols[unit]}`,
+      heightPixels: 150,
       quantity: unit === 'db' ? 'decibels' : unit === 'degrees' ? 'degrees' : 'plain',
       perUnit: 1,
-      traces: differences,
-      domain: unit === 'db' ? differenceSpan(differences) : spanOf(differences, 0.01),
+      traces,
+      domain: unit === 'db' ? differenceSpan(traces) : spanOf(traces, 0.01),
     },
   ]
 }
 
 const differenceTitles: Readonly<Record<DifferenceUnit, string>> = {
-  db: 'Difference of magnitude, dB',
-  degrees: 'Difference of phase, °',
-  microseconds: 'Difference of group delay, µs',
+  db: 'Difference of magnitude',
+  degrees: 'Difference of phase',
+  microseconds: 'Difference of group delay',
 }
+export const unitSymbols: Readonly<Record<DifferenceUnit, string>> = { db: 'dB', degrees: '°', microseconds: 'µs' }
 
 export function differenceValues(difference: Curve, unit: DifferenceUnit): Float64Array {
   if (unit === 'db') return difference.magnitudeDb

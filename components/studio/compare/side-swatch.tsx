@@ -1,21 +1,33 @@
-/** A short piece of either trace with its dash and marker. */
-export function SideSwatch({ side }: { side: 'left' | 'right' }) {
-  const isLeft = side === 'left'
+import { markerOutline } from '@/components/plot/trace-style'
+import { sideStyle } from './side-styles'
+
+/** A short piece of a side's trace with its dash and marker. */
+export function SideSwatch({ place }: { place: number }) {
+  const { stroke, marker } = sideStyle(place)
+  const look = { fill: 'var(--sheet)', strokeWidth: 1.4 }
   return (
     <svg
-      width="30"
+      width="34"
       height="12"
-      viewBox="0 0 30 12"
+      viewBox="0 0 34 12"
       fill="none"
+      stroke={`var(--${stroke.ink})`}
       aria-hidden
-      className={isLeft ? 'stroke-slate' : 'stroke-spruce'}
+      className="shrink-0"
     >
-      <path d="M0 6h30" strokeWidth={isLeft ? 1.6 : 1.9} strokeDasharray={isLeft ? '7 4' : undefined} />
-      {isLeft ? (
-        <path d="M12 3h6v6h-6z" strokeWidth="1.4" className="fill-sheet" />
-      ) : (
-        <circle cx="15" cy="6" r="3.2" strokeWidth="1.4" className="fill-sheet" />
-      )}
+      <path d="M0 6h34" strokeWidth={stroke.widthPixels} strokeDasharray={stroke.dash.join(' ') || undefined} />
+      <g transform="translate(17 6)">
+        {marker === 'circle' ? (
+          <circle r="3.4" {...look} />
+        ) : (
+          <polygon
+            points={markerOutline(marker, 3.4)
+              .map((point) => point.join(','))
+              .join(' ')}
+            {...look}
+          />
+        )}
+      </g>
     </svg>
   )
 }

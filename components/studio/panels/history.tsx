@@ -1,6 +1,7 @@
 'use client'
 
 import Link from 'next/link'
+import { useState, type ReactNode } from 'react'
 import type { DesignSpec } from '@/dsp'
 import { Button, buttonClass } from '@/components/ui/button'
 import { changedParts } from '@/lib/designs/statement-changes'
@@ -8,6 +9,7 @@ import type { VersionSummary } from '@/lib/designs/types'
 import { stateWords } from '@/lib/designs/words'
 import { formatInstant } from '@/lib/format/quantity'
 import { MarkedStatement } from '../compare/marked-statement'
+import { inSentence, MOST_SIDES, sideLabel, type SideId } from '../compare/sides'
 
 /** The versions of a design, newest first, each with the words that changed since the version it was made from. */
 export function History({
@@ -21,11 +23,12 @@ export function History({
   versions: readonly VersionSummary[]
   current: DesignSpec
   onRestore(spec: DesignSpec, fromNumber: number): void
-  compareHref(a: number, b: number | 'draft'): string
+  compareHref(sides: readonly SideId[]): string
   handOverHref(number: number): string
   /** Without it versions can be looked at and compared, but not brought back. */
   mayEdit?: boolean
 }) {
+  const [ticked, setTicked] = useState<readonly SideId[]>([])
   if (versions.length === 0)
     return (
       <p className="max-w-prose py-4 text-[14px] text-pencil">
@@ -33,26 +36,80 @@ export function History({
         and can be compared, brought back and handed over.
       </p>
     )
+  const tick = (id: SideId) => ({
+    id,
+    isTicked: ticked.includes(id),
+    isFull: ticked.length >= MOST_SIDES,
+    onTick: () => setTicked((ids) => (ids.includes(id) ? ids.filter((one) => one !== id) : [...ids, id])),
+  })
+  // From old to new, so that differences are what came since; the draft is the newest.
+  const order = (id: SideId) => (typeof id === 'number' ? id : Number.POSITIVE_INFINITY)
+  const sides = [...ticked].sort((one, other) => order(one) - order(other))
   return (
-    <ol reversed aria-label="Versions, newest first" className="border-t border-graph-strong">
-      {versions.map((version) => (
-        <Entry
-          key={version.number}
-          version={version}
-          parent={versions.find(({ number }) => number === version.parentNumber) ?? null}
-          isDraft={changedParts(version.spec, current).length === 0}
-          mayEdit={mayEdit}
-          onRestore={onRestore}
-          compareHref={compareHref}
-          handOverHref={handOverHref}
-        />
-      ))}
-    </ol>
+    <>
+      <div className="flex min-h-10 flex-wrap items-center gap-x-5 gap-y-1 pb-2 text-[13px]">
+        <Tick {...tick('draft')}>Draft</Tick>
+        {sides.length > 1 ? (
+          <Link className={buttonClass('primary', true)} href={compareHref(sides)}>
+            Compare {sides.length}
+          </Link>
+        ) : null}
+        <p role="status" className="text-pencil">
+          {sides.length === 0
+            ? `Tick up to ${MOST_SIDES} to compare.`
+            : sides.length === 1
+              ? 'Tick another to compare it with.'
+              : sides.length === MOST_SIDES
+                ? 'Four are the most.'
+                : ''}
+        </p>
+      </div>
+      <ol reversed aria-label="Versions, newest first" className="border-t border-graph-strong">
+        {versions.map((version) => (
+          <Entry
+            key={version.number}
+            version={version}
+            tick={tick(version.number)}
+            parent={versions.find(({ number }) => number === version.parentNumber) ?? null}
+            isDraft={changedParts(version.spec, current).length === 0}
+            mayEdit={mayEdit}
+            onRestore={onRestore}
+            compareHref={compareHref}
+            handOverHref={handOverHref}
+          />
+        ))}
+      </ol>
+    </>
+  )
+}
+
+interface TickProps {
+  readonly id: SideId
+  readonly isTicked: boolean
+  readonly isFull: boolean
+  onTick(): void
+}
+
+/** A box that takes a side into the comparison. */
+function Tick({ id, isTicked, isFull, onTick, children }: TickProps & { children: ReactNode }) {
+  return (
+    <label className="inline-flex min-h-6 min-w-6 items-center gap-1.5">
+      <input
+        type="checkbox"
+        className="size-4 accent-spruce"
+        aria-label={`Compare ${inSentence(sideLabel(id))}`}
+        checked={isTicked}
+        disabled={isFull && !isTicked}
+        onChange={onTick}
+      />
+      {children}
+    </label>
   )
 }
 
 function Entry({
   version,
+  tick,
   parent,
   isDraft,
   mayEdit,
@@ -61,11 +118,12 @@ function Entry({
   handOverHref,
 }: {
   version: VersionSummary
+  tick: TickProps
   parent: VersionSummary | null
   isDraft: boolean
   mayEdit: boolean
   onRestore(spec: DesignSpec, fromNumber: number): void
-  compareHref(a: number, b: number | 'draft'): string
+  compareHref(sides: readonly SideId[]): string
   handOverHref(number: number): string
 }) {
   const { number, note, savedAt, savedBy, state, checksum, spec } = version
@@ -77,9 +135,12 @@ function Entry({
       className="grid gap-x-6 gap-y-1 border-b border-graph py-3 lg:grid-cols-[minmax(0,1fr)_auto]"
     >
       <div className="min-w-0">
-        <h3 id={heading} className="font-text text-[14px] font-semibold wrap-anywhere">
-          <span className="numeric">{number}</span> · {note}
-        </h3>
+        <div className="flex items-baseline gap-2">
+          <Tick {...tick}>{null}</Tick>
+          <h3 id={heading} className="min-w-0 font-text text-[14px] font-semibold wrap-anywhere">
+            <span className="numeric">{number}</span> · {note}
+          </h3>
+        </div>
         <p className="mt-0.5 font-heading text-[16px] leading-snug">
           <MarkedStatement before={parent?.spec ?? null} after={spec} />
         </p>
@@ -104,7 +165,7 @@ function Entry({
           <span className="self-center text-[13px] text-moss">The draft equals it</span>
         ) : (
           <>
-            <Link className={buttonClass('plain', true)} href={compareHref(number, 'draft')}>
+            <Link className={buttonClass('plain', true)} href={compareHref([number, 'draft'])}>
               Compare with draft<span className="sr-only">: version {number}</span>
             </Link>
             {mayEdit ? (
@@ -115,7 +176,7 @@ function Entry({
           </>
         )}
         {parent ? (
-          <Link className={buttonClass('quiet', true)} href={compareHref(parent.number, number)}>
+          <Link className={buttonClass('quiet', true)} href={compareHref([parent.number, number])}>
             Compare with {parent.number}
             <span className="sr-only">: version {number}</span>
           </Link>

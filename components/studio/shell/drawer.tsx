@@ -7,6 +7,7 @@ import { Fence } from '@/components/ui/fence'
 import { Tabs } from '@/components/ui/tabs'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { drawerNames } from '../commands'
+import { compareAddress } from '../compare/sides'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { drawerTabs } from '../view'
@@ -77,7 +78,7 @@ export function Drawer({
               versions={saved}
               current={spec}
               mayEdit={mayEdit}
-              compareHref={(a, b) => `/designs/${design.id}/compare?a=${a}&b=${b}`}
+              compareHref={(sides) => compareAddress(design.id, sides)}
               handOverHref={(number) => `/designs/${design.id}/versions/${number}`}
               onRestore={(older) => propose(older)}
             />

@@ -2,7 +2,8 @@ import type { Metadata } from 'next'
 import Link from 'next/link'
 import { notFound } from 'next/navigation'
 import { Header } from '@/components/frame/header'
-import { CompareView, type Choice } from '@/components/studio/compare/compare-view'
+import { CompareView } from '@/components/studio/compare/compare-view'
+import { chosenSides } from '@/components/studio/compare/sides'
 import { buttonClass } from '@/components/ui/button'
 import { findDesign } from '@/db/queries/designs'
 import { findDraft } from '@/db/queries/drafts'
@@ -18,7 +19,7 @@ interface PageProps {
   readonly searchParams: Promise<Readonly<Record<string, string | readonly string[] | undefined>>>
 }
 
-/** `?a=3&b=draft`: two versions, or a version and the viewer's own draft. What isn't named, or isn't there, is the nearest that is. */
+/** `?sides=3,2,draft,candidate-1`: up to four, the first of them the base. Links of old, `?a=3&b=draft`, name two. */
 export default async function ComparePage({ params, searchParams }: PageProps) {
   const parsed = designParamsSchema.safeParse(await params)
   if (!parsed.success) notFound()
@@ -28,15 +29,12 @@ export default async function ComparePage({ params, searchParams }: PageProps) {
   )
   const design = designRecord(found)
   const [versions, draft] = await Promise.all([listVersions(access, designId), findDraft(access, designId)])
-  const { a, b } = await searchParams
   const draftSpec = draft?.spec ?? (versions.length === 0 ? found.startingSpec : null)
-  const last: Choice = draftSpec ? 'draft' : (versions[0]?.number ?? 'draft')
-  const choose = (asked: string | readonly string[] | undefined, otherwise: Choice): Choice => {
-    if (asked === 'draft' && draftSpec) return 'draft'
-    return versions.find(({ number }) => String(number) === asked)?.number ?? otherwise
-  }
-  const right = choose(b, last)
-  const before = versions.find(({ number }) => number !== right)?.number
+  const chosen = chosenSides(
+    await searchParams,
+    versions.map(({ number }) => number),
+    draftSpec !== null,
+  )
   return (
     <>
       <Header
@@ -50,7 +48,7 @@ export default async function ComparePage({ params, searchParams }: PageProps) {
           Open in studio
         </Link>
       </Header>
-      <CompareView design={design} versions={versions} draft={draftSpec} a={choose(a, before ?? right)} b={right} />
+      <CompareView design={design} versions={versions} draft={draftSpec} {...chosen} />
     </>
   )
 }
