@@ -26,6 +26,7 @@ import { DesignTitleBlock } from './shell/design-title-block'
 import { LivePlanes } from './shell/live-planes'
 import { LivePlots } from './shell/live-plots'
 import { useSettled } from './shell/use-derived'
+import { SheetFigure } from './sheet/sheet-figure'
 import { SheetPanel } from './sheet/sheet-panel'
 import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
@@ -189,14 +190,17 @@ export function Studio({
           ) : null}
           <Statement store={store} readOnly={!viewer.mayEdit} />
           {onPage && made ? (
-            <FiguresLine
-              versions={made.versions}
-              trust={made.trust}
-              figures={made.figures}
-              budgetText={`${formatNumber(spec.budget.magnitudeDb)}\u2009dB and ${formatNumber(spec.budget.phaseDegrees)}°${
-                spec.budget.removeDelay ? ', best delay removed' : ''
-              }`}
-            />
+            <div className="flex flex-wrap items-baseline gap-x-7">
+              <FiguresLine
+                versions={made.versions}
+                trust={made.trust}
+                figures={made.figures}
+                budgetText={`${formatNumber(spec.budget.magnitudeDb)}\u2009dB and ${formatNumber(spec.budget.phaseDegrees)}°${
+                  spec.budget.removeDelay ? ', best delay removed' : ''
+                }`}
+              />
+              <SheetFigure spec={spec} />
+            </div>
           ) : null}
         </div>
 

@@ -9,8 +9,18 @@ export type Judgements = ReadonlyMap<Requirement, RequirementResult>
 
 const none: Judgements = new Map()
 
-/** The judgement of every line of the spec's sheet; of none where the spec makes no design. */
+const kept = new WeakMap<DesignSpec, Judgements>()
+
+/** The judgement of every line of the spec's sheet, worked out once, however many ask; of none where the spec makes no design. */
 export function judgementsOf(spec: DesignSpec): Judgements {
+  const known = kept.get(spec)
+  if (known) return known
+  const judgements = workedOut(spec)
+  kept.set(spec, judgements)
+  return judgements
+}
+
+function workedOut(spec: DesignSpec): Judgements {
   const sheet = sheetOf(spec)
   const design = statedDesign(spec)
   if (sheet.length === 0 || design instanceof DesignError) return none

@@ -9,6 +9,7 @@ import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { drawerNames } from '../commands'
 import { compareAddress } from '../compare/sides'
 import type { StudioStore } from '../store'
+import { coreOf } from '../core-spec'
 import { useStudio } from '../use-studio'
 import { drawerTabs } from '../view'
 import type { Settled } from './use-derived'
@@ -92,7 +93,7 @@ export function Drawer({
           ) : null}
           {settled && tab === 'rates' ? (
             <RatesPanel
-              spec={settled.spec}
+              spec={coreOf(settled.spec)}
               mayEdit={mayEdit}
               onRate={runAt}
               {...(mayEdit && { onBudget: (budget: DepartureBudget) => propose({ ...store.getState().spec, budget }) })}

@@ -34,7 +34,7 @@ export function FiguresLine({
         ) : null}
       </dl>
       {cautions.length > 0 ? (
-        <ul aria-label="Cautions" className="border-l-2 border-ochre pl-3 text-[13px] text-ink">
+        <ul aria-label="Cautions" className="order-last basis-full border-l-2 border-ochre pl-3 text-[13px] text-ink">
           {cautions.map((caution) => (
             <li key={caution.code}>{caution.message}</li>
           ))}
