@@ -7,11 +7,12 @@ import { timeScene, type TimeSceneInput } from '@/components/studio/trial/time-s
 import { createTrial } from '@/components/studio/trial/trial'
 import { parseChannels, unevenWords, writeChannels } from '@/components/studio/trial/words'
 import type { Mark } from '@/components/plot/scene'
-import type { DesignSpec } from '@/dsp'
+import type { FamilyDesign } from '@/dsp'
 import { statedTiming } from '@/lib/recordings/table/timing'
+import { firDesign } from '../helpers/export-sources'
 import { makeTable, makeWav } from '../helpers/recordings'
 
-const spec: DesignSpec = {
+const spec: FamilyDesign = {
   format: 1,
   analog: { family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [60] },
   sampleRateHz: 600,
@@ -45,7 +46,9 @@ describe('from a file to a run', () => {
       expect([windows.before, windows.after, spectrum?.after, delay]).not.toContain(null)
     })
     trial.follow({ ...spec, analog: { ...spec.analog, edgesHz: [90] } })
-    await vi.waitFor(() => expect(trial.store.getState().run?.request.spec.analog.edgesHz).toEqual([90]))
+    await vi.waitFor(() =>
+      expect(trial.store.getState().run?.request.spec).toMatchObject({ analog: { edgesHz: [90] } }),
+    )
     trial.set({ mode: 'zero-phase' })
     await vi.waitFor(() => expect(trial.store.getState().run?.request.mode).toBe('zero-phase'))
   })
@@ -140,6 +143,8 @@ describe('rates and segments', () => {
     expect(specForRun(spec, 600 * (1 + 1e-12), false)).toBe(spec)
     expect(specForRun(spec, 601, false)).toBeNull()
     expect(specForRun(spec, 601, true)).toEqual({ ...spec, sampleRateHz: 601 })
+    // Of an FIR filter, bands that reach up to half the rate go on doing so.
+    expect(specForRun(firDesign(), 2400, true)).toMatchObject({ fir: { bands: [{ toHz: 120 }, { toHz: 1200 }] } })
   })
 
   it('segment lengths fit the record', () => {

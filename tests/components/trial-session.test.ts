@@ -2,19 +2,31 @@ import { describe, expect, it } from 'vitest'
 import type { TrialApi } from '@/components/studio/trial/api'
 import { fillGaps } from '@/components/studio/trial/fill-gaps'
 import { Overview } from '@/components/studio/trial/overview'
-import { extensionOf, runOver } from '@/components/studio/trial/run'
+import { runOver } from '@/components/studio/trial/run'
 import { createSession } from '@/components/studio/trial/session'
 import type { Answer, RecordingSummary, RunRequest } from '@/components/studio/trial/shapes'
 import { densityOf } from '@/components/studio/trial/spectrum'
-import { designFromSpec, magnitudeDb, runFilter, seededNoise, welch, type DesignSpec } from '@/dsp'
+import { extensionOf, offeredWay, zeroPhaseWay } from '@/components/studio/trial/zero-phase'
+import {
+  designFromSpec,
+  isFir,
+  magnitudeDb,
+  runFilter,
+  runTaps,
+  seededNoise,
+  welch,
+  type FamilyDesign,
+  type FirDesign,
+} from '@/dsp'
 import { RecordingError } from '@/lib/recordings/errors'
 import { openWav } from '@/lib/recordings/open'
 import { arraysAsSource, MemoryBudget } from '@/lib/recordings/sample-store'
 import { writeWav } from '@/lib/recordings/wav/write'
 import { QUIET } from '@/lib/recordings/types'
+import { firDesign, firKinds, fittedLowPass, ownMeasured, ownRoots } from '../helpers/export-sources'
 import { channelOf, firstDifference, makeTable, samplesOf } from '../helpers/recordings'
 
-const spec: DesignSpec = {
+const spec: FamilyDesign = {
   format: 1,
   analog: { family: 'butterworth', response: 'lowpass', order: 4, edgesHz: [60] },
   sampleRateHz: 600,
@@ -66,7 +78,7 @@ describe('running by blocks', () => {
     const where = memory > 0 ? 'in memory' : 'with every chunk paged out'
     for (const start of ['zero', 'steady'] as const) {
       it(`causally from ${start}, ${where}: the same bits as over the whole array`, async () => {
-        const plan = { sections: digital.sections, channels: [1, 0], mode: 'causal', start } as const
+        const plan = { filter: digital, channels: [1, 0], mode: 'causal', start } as const
         const { source: out, overviews } = await runOver(source, plan, new MemoryBudget(memory), QUIET)
         const whole = runFilter(digital.sections, samples, { mode: 'causal', start })
         expect(firstDifference(await samplesOf(out, 1), whole)).toBe(-1)
@@ -80,7 +92,7 @@ describe('running by blocks', () => {
       })
     }
     it(`forward and backward, ${where}: the same bits as over the whole array`, async () => {
-      const plan = { sections: digital.sections, channels: [0, 1], mode: 'zero-phase', start: 'zero' } as const
+      const plan = { filter: digital, channels: [0, 1], mode: 'zero-phase', start: 'zero' } as const
       const { source: out, overviews } = await runOver(source, plan, new MemoryBudget(memory), QUIET)
       const whole = runFilter(digital.sections, samples, { mode: 'zero-phase' })
       expect(firstDifference(await samplesOf(out, 0), whole)).toBe(-1)
@@ -97,11 +109,11 @@ describe('running by blocks', () => {
   }
 
   it('the least length of a forward–backward run is exact', async () => {
-    const least = extensionOf(digital.sections) + 1
+    const least = extensionOf(digital) + 1
     const run = (frames: number) =>
       runOver(
         arraysAsSource([noise(frames)]),
-        { sections: digital.sections, channels: [0], mode: 'zero-phase', start: 'zero' },
+        { filter: digital, channels: [0], mode: 'zero-phase', start: 'zero' },
         new MemoryBudget(1e9),
         QUIET,
       )
@@ -114,12 +126,85 @@ describe('running by blocks', () => {
 
   it('a cancelled run gives its memory back', async () => {
     const budget = new MemoryBudget(8e8)
-    const plan = { sections: digital.sections, channels: [0, 1], mode: 'causal', start: 'zero' } as const
+    const plan = { filter: digital, channels: [0, 1], mode: 'causal', start: 'zero' } as const
     const long = arraysAsSource([new Float64Array(9_000_000).fill(1), new Float64Array(9_000_000)])
     await expect(runOver(long, plan, budget, { progress: quiet, cancelled: () => true })).rejects.toBeInstanceOf(
       RecordingError,
     )
     expect(budget.take(8e8)).toBe(true)
+  })
+})
+
+const fir = (change: Partial<FirDesign['fir']> = {}): FirDesign => firDesign({ ...firBands, ...change }, 600)
+const firBands = {
+  bands: [
+    { fromHz: 0, toHz: 60, gain: 1 },
+    { fromHz: 100, toHz: 300, gain: 0 },
+  ],
+} as const
+const differentiator = fir({ response: 'differentiator', taps: 31, bands: [{ fromHz: 0, toHz: 200, gain: 1 }] })
+
+function tapsOf(design: FirDesign) {
+  const made = designFromSpec(design).digital
+  if (!isFir(made)) throw new Error('Taps were stated.')
+  return made
+}
+
+describe('running taps by blocks', () => {
+  const samples = noise(200_001)
+  const source = arraysAsSource([samples, samples.map((x) => -x)])
+  const kinds = [fir(), fir({ taps: 40 }), fir({ kind: 'minimum-phase', taps: 31 }), differentiator]
+  const run = (design: FirDesign, mode: 'causal' | 'zero-phase', start: 'zero' | 'steady' = 'zero', from = source) =>
+    runOver(from, { filter: tapsOf(design), channels: [0, 1], mode, start }, new MemoryBudget(1e9), QUIET)
+
+  it('causally: the same bits as over the whole array', async () => {
+    for (const design of kinds) {
+      const { source: out, overviews } = await run(design, 'causal')
+      const whole = runTaps(tapsOf(design).taps, samples, { mode: 'causal' })
+      expect(firstDifference(await samplesOf(out, 0), whole)).toBe(-1)
+      expect(overviews[0]?.max).toBe(greatest(whole))
+    }
+  })
+
+  it('steadily: as if the first sample had been there before', async () => {
+    for (const design of kinds) {
+      const { taps } = tapsOf(design)
+      const { source: out } = await run(design, 'causal', 'steady')
+      const longer = new Float64Array(taps.length - 1 + samples.length).fill(samples[0] ?? 0)
+      longer.set(samples, taps.length - 1)
+      const whole = runTaps(taps, longer, { mode: 'causal' }).slice(taps.length - 1)
+      expect(firstDifference(await samplesOf(out, 0), whole)).toBe(-1)
+    }
+  })
+
+  it('with the delay taken off: the same bits as over the whole array, to either end', async () => {
+    for (const design of [fir(), differentiator, fir({ taps: 3, kind: 'windowed', window: 'hann' })]) {
+      const { source: out, overviews } = await run(design, 'zero-phase')
+      const whole = runTaps(tapsOf(design).taps, samples, { mode: 'zero-phase' })
+      expect(firstDifference(await samplesOf(out, 0), whole)).toBe(-1)
+      expect(out.frames).toBe(samples.length)
+      expect([overviews[0]?.frames, overviews[0]?.max]).toEqual([samples.length, greatest(whole)])
+    }
+  })
+
+  it('needs one sample more than the delay, exactly', async () => {
+    const least = 21
+    const short = (frames: number) => arraysAsSource([noise(frames), noise(frames, 2)])
+    expect((await run(fir(), 'zero-phase', 'zero', short(least))).source.frames).toBe(least)
+    await expect(run(fir(), 'zero-phase', 'zero', short(least - 1))).rejects.toMatchObject({
+      code: 'too-short',
+      message: expect.stringContaining(`at least ${least} samples`),
+    })
+  })
+
+  it('takes no delay off that isn’t a whole number of samples, and offers none', async () => {
+    for (const design of [fir({ taps: 40 }), fir({ kind: 'minimum-phase', taps: 31 })]) {
+      expect([zeroPhaseWay(tapsOf(design)), offeredWay(design)]).toEqual([null, null])
+      await expect(run(design, 'zero-phase')).rejects.toMatchObject({ code: 'design-refused' })
+    }
+    for (const design of [fir(), differentiator, ...firKinds])
+      expect(offeredWay(design)).toBe(zeroPhaseWay(tapsOf(design)))
+    expect([zeroPhaseWay(digital), offeredWay(spec)]).toEqual(['forward-backward', 'forward-backward'])
   })
 })
 
@@ -237,8 +322,54 @@ describe('a trial', () => {
     await opened(session, await wavOf([noise(5000)]))
     const run = valueOf(await session.run(request({ mode: 'zero-phase' }), quiet))
     expect(run.edges[0]?.onceDb).toBeCloseTo(-3.0103, 3)
-    expect(run.edges[0]?.twiceDb).toBeCloseTo(-6.0206, 3)
+    expect(run.edges[0]?.zeroPhaseDb).toBeCloseTo(-6.0206, 3)
     expect(run.leastFrames).toBe(run.extensionFrames + 1)
+  })
+
+  it('measures the delay that it predicts of taps, and takes it off', async () => {
+    for (const design of [fir(), fir({ taps: 40 }), fir({ kind: 'minimum-phase', taps: 31 }), differentiator]) {
+      const session = createSession()
+      await opened(session, await wavOf([noise(60_000)]))
+      const causal = valueOf(await session.run(request({ spec: design }), quiet))
+      expect([causal.zeroPhase, causal.settlingFrames <= design.fir.taps]).toEqual([null, true])
+      const late = valueOf(await session.delay(0))
+      expect(Math.abs((late.measuredSeconds ?? 0) - (late.predictedSeconds ?? 1))).toBeLessThan(1e-4)
+      if (offeredWay(design) === null) {
+        const refused = await problemOf(session.run(request({ spec: design, mode: 'zero-phase' }), quiet))
+        expect(refused).toMatchObject({ code: 'design-refused', message: expect.stringContaining('symmetric') })
+        continue
+      }
+      const moved = valueOf(await session.run(request({ spec: design, mode: 'zero-phase' }), quiet))
+      const delay = (design.fir.taps - 1) / 2
+      expect(moved).toMatchObject({ zeroPhase: 'delay-removed', extensionFrames: delay, leastFrames: delay + 1 })
+      for (const { onceDb, zeroPhaseDb } of moved.edges) expect(zeroPhaseDb).toBe(onceDb)
+      const still = valueOf(await session.delay(0))
+      expect(Math.abs((still.measuredSeconds ?? 0) - (still.predictedSeconds ?? 1))).toBeLessThan(1e-4)
+      // A differentiator's quarter turn moves the peak to either side of no delay; symmetric taps leave it there.
+      if (design !== differentiator) expect(Math.abs(still.predictedSeconds ?? 1)).toBeLessThan(1e-9)
+    }
+  })
+
+  it('runs originals of one’s own, measured ones as well', async () => {
+    for (const design of [ownRoots, ownMeasured, fittedLowPass]) {
+      const session = createSession()
+      const samples = noise(30_000)
+      await opened(session, await wavOf([samples], 1200))
+      const run = valueOf(await session.run(request({ spec: design }), quiet))
+      for (const { hz, onceDb } of run.edges) {
+        expect(hz).toBeLessThanOrEqual(600)
+        expect(Number.isFinite(onceDb)).toBe(true)
+      }
+      const { digital: made } = designFromSpec(design)
+      if (isFir(made)) throw new Error('This has feedback.')
+      const out = valueOf(
+        await session.window({ series: 'after', channel: 0, from: 0, to: 200, columns: 500, shift: 0 }),
+      )
+      const whole = runFilter(made.sections, samples, { mode: 'causal' })
+      expect(out).toEqual({ kind: 'samples', from: 0, values: whole.slice(0, 200) })
+      const delay = valueOf(await session.delay(0))
+      expect(Math.abs((delay.measuredSeconds ?? 0) - (delay.predictedSeconds ?? 1))).toBeLessThan(1e-4)
+    }
   })
 
   it('spectra taken block by block are those of the whole record', async () => {

@@ -230,9 +230,10 @@ describe('C headers of FIR filters, fitted versions and originals of one’s own
       const { taps } = set.numbers
       expect(set.testVector.input.length).toBeGreaterThanOrEqual(taps.length + 32)
       const input = Float64Array.from(set.testVector.input)
+      const largest = Math.max(...taps.map(Math.abs))
       for (const left of [0, Math.floor(taps.length / 2), taps.length - 1]) {
-        // The middle tap of a differentiator is none.
-        if (taps[left] === 0) continue
+        // The middle tap of a differentiator is none, nor are the ends of a Hann window.
+        if (Math.abs(taps[left] ?? 0) < 1e-6 * largest) continue
         const without = taps.map((tap, k) => (k === left ? 0 : tap))
         expect([...runDirectForm(without, input, set.options.number)]).not.toEqual(set.testVector.output)
       }

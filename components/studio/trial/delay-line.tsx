@@ -1,12 +1,14 @@
+import { isFirDesign } from '@/dsp'
 import { formatDb, formatHz } from '@/lib/format/quantity'
 import type { EdgeLevel, RunSummary } from './shapes'
 import type { TrialView } from './store'
 import { formatCount, formatDelay } from './words'
+import type { ZeroPhaseWay } from './zero-phase'
 
 const PREDICTED = 'Where the cross-correlation should peak: the spectrum of what went in, times the design’s response.'
 const MEASURED = 'Where the cross-correlation of before and after peaks.'
 
-/** Measured against predicted delay, and what running forward and backward means. */
+/** Measured against predicted delay, and what a run without delay means. */
 export function DelayLine({ state }: { state: TrialView }) {
   const { delay, run, settings } = state
   if (!run) return null
@@ -36,27 +38,43 @@ export function DelayLine({ state }: { state: TrialView }) {
       {isRun && delay && delay.measuredSeconds !== null ? (
         <p className="text-[12px] text-pencil">
           Measured: the peak of the cross-correlation over {formatCount(delay.frames, 'sample', 'samples')}. Predicted:
-          the peak that the input’s spectrum times the
-          {run.request.mode === 'causal' ? ' design’s response' : ' squared magnitude'} should give
-          {run.request.mode === 'causal' ? '' : ', which is 0'}.
+          {predictedWords[run.zeroPhase ?? 'causal']}
         </p>
       ) : null}
-      {run.request.mode === 'zero-phase' ? <ZeroPhaseNote run={run} /> : null}
+      {run.zeroPhase ? <ZeroPhaseNote run={run} way={run.zeroPhase} /> : null}
     </div>
   )
 }
 
-function ZeroPhaseNote({ run }: { run: RunSummary }) {
+const predictedWords = {
+  causal: 'the peak that the input’s spectrum times the design’s response should give.',
+  'forward-backward': 'the peak that the input’s spectrum times the squared magnitude should give, which is 0.',
+  'delay-removed':
+    'the peak that the input’s spectrum times the design’s response should give, less the delay that was taken off.',
+} as const satisfies Record<ZeroPhaseWay | 'causal', string>
+
+function ZeroPhaseNote({ run, way }: { run: RunSummary; way: ZeroPhaseWay }) {
   return (
     <p className="border-l-2 border-ochre pl-3 text-[13px]">
-      Offline only. The magnitude acts twice, the phase not at all: {run.edges.map(edgeWords).join(', ')}. Needs at
-      least {run.leastFrames} samples; the {run.extensionFrames} at either end (hatched) rest on the extension.
+      Offline only. {way === 'forward-backward' ? twiceWords(run) : onceWords(run)} Needs at least {run.leastFrames}{' '}
+      samples; the {run.extensionFrames} at either end (hatched) rest on the extension.
     </p>
   )
 }
 
+const twiceWords = ({ edges }: RunSummary): string =>
+  `The magnitude acts twice, the phase not at all${edges.length > 0 ? `: ${edges.map(edgeWords).join(', ')}` : ''}.`
+
+function onceWords({ request: { spec }, extensionFrames }: RunSummary): string {
+  const turns = isFirDesign(spec) && spec.fir.response === 'differentiator'
+  const delay = `${formatCount(extensionFrames, 'sample', 'samples')} (${formatDelay(extensionFrames / spec.sampleRateHz)})`
+  return `The delay of ${delay} is taken off; the magnitude acts once, as in real time.${
+    turns ? ' The quarter turn of a differentiator stays: it is its work.' : ''
+  }`
+}
+
 const edgeWords = (edge: EdgeLevel): string =>
-  `${formatDb(edge.twiceDb)} at ${formatHz(edge.hz)} instead of ${formatDb(edge.onceDb)}`
+  `${formatDb(edge.zeroPhaseDb)} at ${formatHz(edge.hz)} instead of ${formatDb(edge.onceDb)}`
 
 function Figure({ label, value, title }: { label: string; value: string; title?: string }) {
   return (

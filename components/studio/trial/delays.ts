@@ -4,12 +4,13 @@ import {
   measureDelay,
   predictDelay,
   welch,
-  type DigitalFilter,
+  type AnyDigital,
   type Spectrum,
 } from '@/dsp'
 import type { FrameSource } from '@/lib/recordings/types'
 import type { RunMode } from './run'
 import type { DelayReading } from './shapes'
+import { extensionOf, zeroPhaseWay } from './zero-phase'
 
 /** Samples that are correlated at most, from the end of the start-up on. */
 const MOST_FRAMES = 262_144
@@ -17,14 +18,15 @@ const LEAST_FRAMES = 64
 
 /**
  * The delay of what came out against what went in, as measured (the peak of their cross-correlation) and as predicted (the peak that
- * the spectrum of what went in and the design's response should give). Run forward and backward the prediction is 0.
+ * the spectrum of what went in and the design's response should give). Run forward and backward the prediction is 0; where a delay was taken off, it is taken off the prediction:
+ * a differentiator's quarter turn and a band of negative gain still move the peak.
  */
 export async function readDelay(
   before: FrameSource,
   channel: number,
   after: FrameSource,
   afterChannel: number,
-  run: { readonly filter: DigitalFilter; readonly mode: RunMode; readonly settlingFrames: number },
+  run: { readonly filter: AnyDigital; readonly mode: RunMode; readonly settlingFrames: number },
 ): Promise<DelayReading> {
   const { sampleRateHz } = run.filter
   const usable = before.frames - run.settlingFrames
@@ -38,11 +40,13 @@ export async function readDelay(
   await after.read(from, [afterChannel], [y])
   try {
     const measured = measureDelay(x, y, { sampleRateHz })
-    if (run.mode === 'zero-phase') return { ...nothing, measuredSeconds: measured.delaySeconds, predictedSeconds: 0 }
+    const way = run.mode === 'zero-phase' ? zeroPhaseWay(run.filter) : null
+    if (way === 'forward-backward') return { ...nothing, measuredSeconds: measured.delaySeconds, predictedSeconds: 0 }
+    const removed = way === 'delay-removed' ? extensionOf(run.filter) / sampleRateHz : 0
     return {
       ...nothing,
       measuredSeconds: measured.delaySeconds,
-      predictedSeconds: predictDelay(run.filter, spectrumOf(x, run.filter)),
+      predictedSeconds: predictDelay(run.filter, spectrumOf(x, run.filter)) - removed,
     }
   } catch (cause) {
     if (cause instanceof DesignError && cause.code === 'silent') return nothing
@@ -57,7 +61,7 @@ const FINEST = 14
 const SILENT = 1e-8
 
 /** Spectrum of what went in, as finely resolved as it may be, up to the last line that gets through the design. */
-function spectrumOf(samples: Float64Array, filter: DigitalFilter): Pick<Spectrum, 'frequenciesHz' | 'density'> {
+function spectrumOf(samples: Float64Array, filter: AnyDigital): Pick<Spectrum, 'frequenciesHz' | 'density'> {
   const mean = samples.reduce((sum, value) => sum + value, 0) / samples.length
   const about = samples.map((value) => value - mean)
   for (let power = Math.min(FINEST, Math.floor(Math.log2(samples.length))); ; power -= 1) {

@@ -1,4 +1,5 @@
 import type { DesignSpec } from '@/dsp'
+import { withRate } from '@/lib/designs/edits'
 
 /** Relative difference of two rates that counts as none: rounding of a stated rate, not another clock. */
 const SAME_RATE = 1e-9
@@ -11,7 +12,7 @@ export const sameRate = (aHz: number, bHz: number): boolean => Math.abs(aHz - bH
  */
 export function specForRun(spec: DesignSpec, recordingRateHz: number, atRecordingRate: boolean): DesignSpec | null {
   if (sameRate(spec.sampleRateHz, recordingRateHz)) return spec
-  return atRecordingRate ? { ...spec, sampleRateHz: recordingRateHz } : null
+  return atRecordingRate ? withRate(spec, recordingRateHz) : null
 }
 
 /** Segment lengths that are offered for a spectrum of that many samples. */

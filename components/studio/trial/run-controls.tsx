@@ -2,23 +2,35 @@
 
 import { useState } from 'react'
 import { SelectField, TextField } from '@/components/ui/field'
+import type { DesignSpec } from '@/dsp'
+import { classNames } from '@/lib/format/class-names'
 import type { RecordingSummary } from './shapes'
 import type { TrialSettings } from './store'
 import { parseChannels, writeChannels } from './words'
+import { offeredWay } from './zero-phase'
 
 /** Beyond this many channels a text says which are run. */
 const MOST_BOXES = 12
 
+const offlineWords = {
+  'forward-backward': 'forward and backward (zero phase, offline only)',
+  'delay-removed': 'once, its delay taken off (offline only)',
+  none: 'without delay: not with these taps, an odd number of symmetric ones',
+} as const
+
 /** How the design is run, over which channels, and which of them is shown. */
 export function RunControls({
+  spec,
   recording,
   settings,
   onChange,
 }: {
+  spec: DesignSpec
   recording: RecordingSummary
   settings: TrialSettings
   onChange(change: Partial<TrialSettings>): void
 }) {
+  const way = offeredWay(spec)
   return (
     <div className="flex flex-wrap items-start gap-x-8 gap-y-3">
       <Radios
@@ -27,7 +39,7 @@ export function RunControls({
         value={settings.mode}
         options={[
           { value: 'causal', word: 'causally, as in real time' },
-          { value: 'zero-phase', word: 'forward and backward (zero phase, offline only)' },
+          { value: 'zero-phase', word: offlineWords[way ?? 'none'], disabled: way === null },
         ]}
         onChange={(mode) => onChange({ mode })}
       />
@@ -60,16 +72,23 @@ function Radios<Value extends string>({
   legend: string
   name: string
   value: Value
-  options: readonly { readonly value: Value; readonly word: string }[]
+  options: readonly { readonly value: Value; readonly word: string; readonly disabled?: boolean }[]
   onChange(value: Value): void
 }) {
   return (
     <fieldset className="flex flex-col text-[14px]">
       <legend className="text-[13px] font-medium">{legend}</legend>
       {options.map((option) => (
-        <label key={option.value} className="inline-flex min-h-[24px] cursor-pointer items-center gap-2">
+        <label
+          key={option.value}
+          className={classNames(
+            'inline-flex min-h-[24px] items-center gap-2',
+            option.disabled ? 'text-pencil' : 'cursor-pointer',
+          )}
+        >
           <input
             type="radio"
+            disabled={option.disabled}
             name={name}
             className="size-4 accent-spruce"
             checked={option.value === value}

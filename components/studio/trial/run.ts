@@ -1,9 +1,18 @@
-import { createRunner, minimumSamplesForZeroPhase, type Section } from '@/dsp'
+import {
+  createRunner,
+  createTapsRunner,
+  isFir,
+  type AnyDigital,
+  type DigitalFilter,
+  type FirFilter,
+  type Runner,
+} from '@/dsp'
 import { createBreath } from '@/lib/recordings/breathe'
 import { RecordingError } from '@/lib/recordings/errors'
 import { SampleStore, storesAsSource, type MemoryBudget } from '@/lib/recordings/sample-store'
 import type { FrameSource, TaskControl } from '@/lib/recordings/types'
 import { Overview } from './overview'
+import { extensionOf, NO_WHOLE_DELAY, zeroPhaseWay } from './zero-phase'
 
 /*
  * Running a design over a recording of any length: block by block, with the state carried on. Both ways give the samples that running
@@ -23,15 +32,15 @@ export interface RunOutput {
   release(): void
 }
 
-export interface RunPlan {
-  readonly sections: readonly Section[]
+export interface RunPlan<Filter extends AnyDigital = AnyDigital> {
+  readonly filter: Filter
   readonly channels: readonly number[]
   readonly mode: RunMode
   readonly start: RunStart
 }
 
 /**
- * @throws RecordingError 'too-short' when forward–backward running needs more samples, 'cancelled'
+ * @throws RecordingError 'too-short' when a zero-phase run needs more samples, 'design-refused' when the filter has none, 'cancelled'
  * @throws DesignError from dsp when the sections overflow
  */
 export async function runOver(
@@ -47,17 +56,49 @@ export async function runOver(
     return next
   }
   try {
-    return await (plan.mode === 'causal'
-      ? causal(source, plan, store, control)
-      : forwardBackward(source, plan, store, control))
+    if (plan.mode === 'causal') return await causal(source, plan, store, control)
+    const { filter } = plan
+    return await (isFir(filter)
+      ? delayRemoved(source, { ...plan, filter }, store, control)
+      : forwardBackward(source, { ...plan, filter }, store, control))
   } catch (cause) {
     for (const each of made) each.clear()
     throw cause
   }
 }
 
-/** Samples by which the record is extended at each end before it is run forward and backward. */
-export const extensionOf = (sections: readonly Section[]): number => minimumSamplesForZeroPhase(sections) - 1
+function runnerOf(filter: AnyDigital, start: RunStart): Runner {
+  if (!isFir(filter)) return createRunner(filter.sections, { start })
+  const runner = createTapsRunner(filter.taps)
+  return start === 'steady' ? begunSteadily(runner, filter.taps.length - 1) : runner
+}
+
+/** As if the first sample had been there for as long as the taps remember. */
+function begunSteadily(runner: Runner, memory: number): Runner {
+  let begun = false
+  return {
+    process(input, output) {
+      if (!begun && input.length > 0) {
+        const before = new Float64Array(memory).fill(input[0]!)
+        runner.process(before, before)
+        begun = true
+      }
+      runner.process(input, output)
+    },
+    reset() {
+      runner.reset()
+      begun = false
+    },
+  }
+}
+
+function refuseTooShort(frames: number, least: number, how: string): void {
+  if (frames >= least) return
+  throw new RecordingError(
+    'too-short',
+    `${how} needs at least ${least} samples with this design; the recording has ${frames}.`,
+  )
+}
 
 async function causal(
   source: FrameSource,
@@ -65,7 +106,7 @@ async function causal(
   store: () => SampleStore,
   control: TaskControl,
 ): Promise<RunOutput> {
-  const runners = plan.channels.map(() => createRunner(plan.sections, { start: plan.start }))
+  const runners = plan.channels.map(() => runnerOf(plan.filter, plan.start))
   const stores = plan.channels.map(store)
   const overviews = plan.channels.map(() => new Overview())
   const breath = createBreath(control)
@@ -81,24 +122,54 @@ async function causal(
 }
 
 /**
+ * Taps once over the record with an odd extension at each end, their delay of whole samples taken off; as runTaps does in one array.
+ */
+async function delayRemoved(
+  source: FrameSource,
+  { channels, filter }: RunPlan<FirFilter>,
+  store: () => SampleStore,
+  control: TaskControl,
+): Promise<RunOutput> {
+  if (zeroPhaseWay(filter) === null) throw new RecordingError('design-refused', NO_WHOLE_DELAY)
+  const delay = extensionOf(filter)
+  refuseTooShort(source.frames, delay + 1, 'Taking the delay off')
+  const runners = channels.map(() => createTapsRunner(filter.taps))
+  const stores = channels.map(store)
+  const overviews = channels.map(() => new Overview())
+  const left = channels.map(() => delay)
+  const run = (k: number, block: Float64Array) => {
+    runners[k]!.process(block, block)
+    // the first `delay` samples that come out belong to what stands before the record
+    const early = Math.min(left[k]!, block.length)
+    left[k]! -= early
+    stores[k]!.append(block.subarray(early))
+    overviews[k]!.take(block.subarray(early))
+  }
+  const ends = await readEnds(source, channels, delay)
+  ends.before.forEach((before, k) => runners[k]!.process(before, before))
+  const breath = createBreath(control)
+  await eachBlock(source, channels, async (blocks, start) => {
+    blocks.forEach((block, k) => run(k, block))
+    await breath(start + blocks[0]!.length, source.frames)
+  })
+  ends.after.forEach((after, k) => run(k, after))
+  return { source: storesAsSource(stores), overviews, release: () => stores.forEach((each) => each.clear()) }
+}
+
+/**
  * Forward over the record with an odd extension at each end, then backward over what came out, each pass started in the steady state
  * of its first sample; as runFilter does in one array.
  */
 async function forwardBackward(
   source: FrameSource,
-  plan: RunPlan,
+  { channels, filter }: RunPlan<DigitalFilter>,
   store: () => SampleStore,
   control: TaskControl,
 ): Promise<RunOutput> {
-  const { channels, sections } = plan
+  const { sections } = filter
   const { frames } = source
-  const pad = extensionOf(sections)
-  if (frames < pad + 1) {
-    throw new RecordingError(
-      'too-short',
-      `Running forward and backward needs at least ${pad + 1} samples with this design; the recording has ${frames}.`,
-    )
-  }
+  const pad = extensionOf(filter)
+  refuseTooShort(frames, pad + 1, 'Running forward and backward')
   const breath = createBreath(control)
   const total = 3 * frames
   const forward = channels.map(store)

@@ -1,11 +1,5 @@
-import {
-  designFromSpec,
-  footbridgeDemo,
-  magnitudeDb,
-  settlingTime,
-  zeroPhaseMagnitudeDb,
-  type DigitalFilter,
-} from '@/dsp'
+import { designFromSpec, footbridgeDemo, magnitudeDb, settlingTime, zeroPhaseMagnitudeDb, type AnyDigital } from '@/dsp'
+import { edgesHzOf } from '@/lib/designs/outline'
 import { createBreath } from '@/lib/recordings/breathe'
 import { RecordingError } from '@/lib/recordings/errors'
 import { identify, openWav } from '@/lib/recordings/open'
@@ -20,7 +14,7 @@ import { readDelay } from './delays'
 import { fillGaps } from './fill-gaps'
 import { CELL, envelopeOf, Overview } from './overview'
 import { sameRate } from './rates'
-import { eachBlock, extensionOf, runOver, type RunOutput } from './run'
+import { eachBlock, runOver, type RunOutput } from './run'
 import { saveResult } from './save'
 import type {
   Answer,
@@ -35,6 +29,7 @@ import type {
 import { densityOf, spectrumSpan } from './spectrum'
 import { refuseGaps, refuseHopelessGaps, summaryOf } from './summary'
 import { TableDesk } from './table-desk'
+import { extensionOf, zeroPhaseWay } from './zero-phase'
 
 /** Samples that all stores together keep in memory; what is more the browser may page to disk. */
 const MEMORY_BYTES = 512e6
@@ -48,7 +43,7 @@ interface Held {
 
 interface Ran {
   readonly summary: RunSummary
-  readonly filter: DigitalFilter
+  readonly filter: AnyDigital
   /** What went in: the recording, its gaps filled where that was asked for. */
   readonly input: FrameSource
   readonly output: RunOutput
@@ -137,9 +132,9 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
     const input = request.fillGaps
       ? fillGaps(recording.source, (channel) => overviews[channel]?.gaps ?? [])
       : recording.source
-    const output = await runOver(input, { ...request, sections: filter.sections }, budget, control)
+    const output = await runOver(input, { ...request, filter }, budget, control)
     forgetRun()
-    const extension = extensionOf(filter.sections)
+    const extension = extensionOf(filter)
     const summary: RunSummary = {
       serial,
       request,
@@ -150,7 +145,8 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
       settlingFrames: Math.min(recording.source.frames, Math.round(settlingTime(filter) * filter.sampleRateHz)),
       extensionFrames: extension,
       leastFrames: extension + 1,
-      edges: edgeLevels(filter, request.spec.analog.edgesHz),
+      zeroPhase: request.mode === 'zero-phase' ? zeroPhaseWay(filter) : null,
+      edges: edgeLevels(filter, edgesHzOf(request.spec)),
     }
     ran = { summary, filter, input, output }
     return summary
@@ -290,10 +286,12 @@ export function createSession(memoryBytes = MEMORY_BYTES): TrialApi {
   }
 }
 
-function edgeLevels(filter: DigitalFilter, edgesHz: readonly number[]): EdgeLevel[] {
-  const once = magnitudeDb(filter, edgesHz)
-  const twice = zeroPhaseMagnitudeDb(filter, edgesHz)
-  return edgesHz.map((hz, k) => ({ hz, onceDb: once[k]!, twiceDb: twice[k]! }))
+/** An original of the user's own may say something of frequencies that no sample can hold. */
+function edgeLevels(filter: AnyDigital, edgesHz: readonly number[]): EdgeLevel[] {
+  const inside = edgesHz.filter((hz) => hz <= filter.sampleRateHz / 2)
+  const once = magnitudeDb(filter, inside)
+  const offline = zeroPhaseWay(filter) === 'forward-backward' ? zeroPhaseMagnitudeDb(filter, inside) : once
+  return inside.map((hz, k) => ({ hz, onceDb: once[k]!, zeroPhaseDb: offline[k]! }))
 }
 
 const demoRecording = (demo: ReturnType<typeof footbridgeDemo>): Recording => ({

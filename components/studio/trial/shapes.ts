@@ -5,6 +5,7 @@ import type { TablePlan } from '@/lib/recordings/table/plan'
 import type { ChannelInfo, Flaw, Timing } from '@/lib/recordings/types'
 import type { WavSampleFormat } from '@/lib/recordings/wav/write'
 import type { RunMode, RunStart } from './run'
+import type { ZeroPhaseWay } from './zero-phase'
 
 /*
  * What passes between the page and the worker: plain data, so that it can be cloned. Refusals are answers, not exceptions: an error
@@ -85,8 +86,10 @@ export interface DelayReading {
 
 export interface EdgeLevel {
   readonly hz: number
+  /** As in real time. */
   readonly onceDb: number
-  readonly twiceDb: number
+  /** Run without delay: twice that forward and backward, the same where a delay is taken off. */
+  readonly zeroPhaseDb: number
 }
 
 export interface RunSummary {
@@ -100,10 +103,12 @@ export interface RunSummary {
   }[]
   /** Causal: samples until the response to a step has settled to 1 %, at most the whole record. */
   readonly settlingFrames: number
-  /** Forward–backward: samples of the extension at each end, and the least record length. */
+  /** How the delay was avoided; null in a causal run. */
+  readonly zeroPhase: ZeroPhaseWay | null
+  /** Without delay: samples of the extension at each end, and the least record length. */
   readonly extensionFrames: number
   readonly leastFrames: number
-  /** What running twice does at the edges of the statement. */
+  /** What a run without delay does at the edges of the statement. */
   readonly edges: readonly EdgeLevel[]
 }
 

@@ -114,7 +114,7 @@ function Tried({
           onTrialOnly={(atRecordingRate) => trial.set({ atRecordingRate })}
         />
       )}
-      <RunControls recording={recording} settings={settings} onChange={(change) => trial.set(change)} />
+      <RunControls spec={spec} recording={recording} settings={settings} onChange={(change) => trial.set(change)} />
       {runProblem ? (
         <Notice kind="caution">
           {runProblem.message}{' '}

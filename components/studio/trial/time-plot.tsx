@@ -12,6 +12,7 @@ import { timeTable, valueIn } from './reading'
 import { shiftFrames, type TrialView } from './store'
 import { plotLeft, timeScene } from './time-scene'
 import type { Trial } from './trial'
+import { wayWords } from './words'
 
 /** Before and after in time, with what helps to look closer. */
 export function TimePlot({
@@ -36,7 +37,7 @@ export function TimePlot({
   const picture = useMemo(() => {
     if (!recording) return null
     const causal = run?.request.mode === 'causal'
-    const how = run ? (causal ? 'After, causal' : 'After, forward and backward') : 'After'
+    const how = run ? `After, ${wayWords(run.zeroPhase)}` : 'After'
     const moved =
       shift === 0 ? '' : `, moved ${formatSeconds(Math.abs(shift) / rate)} ${shift > 0 ? 'earlier' : 'later'}`
     return timeScene({

@@ -2,6 +2,7 @@ import type { DesignSpec } from '@/dsp'
 import type { RecordingProblem } from '@/lib/recordings/errors'
 import type { TrialApi } from './api'
 import { specForRun, usualSegmentLength } from './rates'
+import { offeredWay } from './zero-phase'
 import type { Answer, Opened, PlanChange, RecordingSummary, SaveRequest, TablePreview, WindowReading } from './shapes'
 import {
   createTrialStore,
@@ -124,7 +125,8 @@ export function createTrial(api: TrialApi): Trial {
       void readSpectrum()
       return
     }
-    const words = settings.mode === 'causal' ? 'Running' : 'Running forward and backward'
+    const isTwice = settings.mode === 'zero-phase' && offeredWay(due) === 'forward-backward'
+    const words = isTwice ? 'Running forward and backward' : 'Running'
     set({
       running: { words, unit: 'samples', done: 0, total: recording.frames },
       runProblem: null,

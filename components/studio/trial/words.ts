@@ -1,6 +1,13 @@
 import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
 import type { Timing } from '@/lib/recordings/types'
 import type { RecordingSummary } from './shapes'
+import type { ZeroPhaseWay } from './zero-phase'
+
+/** How a run went, as a plot's label says it. */
+export function wayWords(way: ZeroPhaseWay | null): string {
+  if (way === null) return 'causal'
+  return way === 'forward-backward' ? 'forward and backward' : 'delay taken off'
+}
 
 /** Jitter above this deserves a word: the filter takes the samples as even. */
 const JITTER_CAUTION_PERCENT = 1
