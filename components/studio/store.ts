@@ -1,6 +1,7 @@
 import { createStore } from 'zustand/vanilla'
 import { DesignError, type DesignSpec } from '@/dsp'
 import { edgesHzOf } from '@/lib/designs/outline'
+import { sameValue } from '@/lib/designs/same-value'
 import { statedDesign } from './stated-design'
 import { type DrawerTab, type Refusal, type StackView, usualView } from './view'
 
@@ -148,5 +149,5 @@ export function refusalOf(spec: DesignSpec, field?: string): Refusal | null {
 }
 
 export function sameSpec(left: DesignSpec, right: DesignSpec): boolean {
-  return left === right || JSON.stringify(left) === JSON.stringify(right)
+  return sameValue(left, right)
 }

@@ -1,4 +1,5 @@
 import { isOwnDesign, type DesignSpec } from '@/dsp'
+import { sameValue } from './same-value'
 import { statementParts, type StatementPart, type WordKey } from './statement'
 
 /** A piece of two statements laid over each other: what both say, what only the earlier one said, what only the later one says. */
@@ -100,13 +101,12 @@ export function changedParts(before: DesignSpec, after: DesignSpec): readonly st
     const [one, other] = [older.get(key), newer.get(key)]
     if (!one || !other || !isSame(one, other) || exactly(one) !== exactly(other)) names.add(nameOf(key))
   }
-  if (JSON.stringify(budgetOf(before)) !== JSON.stringify(budgetOf(after))) names.add('departure budget')
-  if (JSON.stringify(before.sheet ?? []) !== JSON.stringify(after.sheet ?? [])) names.add('requirement sheet')
-  if (JSON.stringify(ownOf(before)) !== JSON.stringify(ownOf(after))) names.add('response of its own')
+  if (!sameValue(before.budget, after.budget)) names.add('departure budget')
+  if (!sameValue(before.sheet ?? [], after.sheet ?? [])) names.add('requirement sheet')
+  if (!sameValue(ownOf(before), ownOf(after))) names.add('response of its own')
   return [...names]
 }
 
 /** Two values that are written alike may still differ further down. */
 const exactly = (part: StatementPart) => (part.kind === 'quantity' ? part.value : part.text)
 const ownOf = (spec: DesignSpec) => (isOwnDesign(spec) ? spec.own : null)
-const budgetOf = ({ budget }: DesignSpec) => [budget.magnitudeDb, budget.phaseDegrees, budget.removeDelay]
