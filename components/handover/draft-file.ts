@@ -1,6 +1,6 @@
 import * as z from 'zod'
-import { DesignError } from '@/dsp'
-import { filtersOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import { DesignError, isFir } from '@/dsp'
+import { filtersOf, isStoredTaps, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, Problem, VersionSummary } from '@/lib/designs/types'
 import { coefficientSet, ratioRefusal, writtenFile, type ExportFile, type ExportOptions } from '@/lib/exports'
 import { roundingWords } from '@/lib/exports/about'
@@ -38,15 +38,17 @@ export function previewOf(
   })
 }
 
-/** Why b/a can't be had in that number type, or null. */
+/** Why b/a can't be had in that number type; null where it can, or where there is no such choice. */
 export function ratioProblem(numbers: StoredCoefficients, type: ExportOptions['number']): Problem | null {
-  const error = ratioRefusal(filtersOf(numbers).digital, type)
+  const { digital } = filtersOf(numbers)
+  if (isFir(digital)) return null
+  const error = ratioRefusal(digital, type)
   return error === null ? null : problemFrom(error)
 }
 
 /** The difference equation of the choice: as a screen sets it, and as the file prints it. */
 export function equationOf(numbers: StoredCoefficients, { structure, feedback }: ExportOptions) {
-  const order = numbers.poles.length
+  const order = isStoredTaps(numbers) ? numbers.taps.length - 1 : numbers.poles.length
   return {
     typeset: typesetEquation(structure, feedback, order),
     plain: differenceEquation(structure, feedback, order),

@@ -21,13 +21,15 @@ export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
       <Part id="signs" title="Signs">
         <p>
           Ask for the sign your code uses. Each file prints its equation; the coefficient of y[n] is 1 and is never
-          listed.
+          listed. An FIR filter has no feedback and no sign to choose.
         </p>
         <dl className="mt-2 grid gap-x-4 gap-y-1 sm:grid-cols-[max-content_minmax(0,1fr)]">
           <dt className="text-pencil">Subtracted</dt>
           <dd className="numeric text-[13px] leading-6">{typesetEquation('sections', 'subtract', 2)}</dd>
           <dt className="text-pencil">Added</dt>
           <dd className="numeric text-[13px] leading-6">{typesetEquation('sections', 'add', 2)}</dd>
+          <dt className="text-pencil">No feedback</dt>
+          <dd className="numeric text-[13px] leading-6">{typesetEquation('taps', 'subtract', 62)}</dd>
         </dl>
       </Part>
 
@@ -39,6 +41,11 @@ export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
           down to {judgedRangeDb} dB below its peak, stands in the file.
         </p>
         <p className="mt-2">
+          An FIR filter is handed over as its taps, and as nothing else; a filter with feedback never is. The held
+          frequency of a filter is stated where there is one: an FIR filter, a fitted version and a transform that was
+          not held say so in its place.
+        </p>
+        <p className="mt-2">
           Doubles are written in the fewest decimal digits that read back to the same bits, singles in the fewest that
           name the same single; a C header can have hexadecimal constants instead.
         </p>
@@ -46,12 +53,17 @@ export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
 
       <Part id="proof" title="Proving a port">
         <p>
-          The test vector is {testVectorWords}. Its output is that of direct form II transposed, each operation rounded
-          to the number type, in this order for every section, with subtracted feedback:
+          The test vector is {testVectorWords()}. For an FIR filter of many taps it goes on until every tap has met the
+          noise. Its output is that of direct form II transposed, each operation rounded to the number type, in this
+          order for every section, with subtracted feedback:
         </p>
         <pre className="numeric mt-2 overflow-x-auto border border-graph-strong bg-sheet p-3 text-[13px]" tabIndex={0}>
           {'y  = b0*x + s1\ns1 = b1*x + s2 - a1*y\ns2 = b2*x - a2*y'}
         </pre>
+        <p className="mt-2">
+          and of taps the sum of their products, added one by one from the oldest sample’s to the newest’s. A port that
+          adds the samples of equal taps first saves multiplications and differs in the last bits.
+        </p>
         <p className="mt-2">
           Arithmetic that fuses a multiplication with an addition, keeps wider intermediates or flushes tiny numbers to
           zero differs in the last bits. The C header holds this very code, and behind a macro a function that returns
@@ -72,7 +84,7 @@ export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
           CSV is one table of four columns: part, index, name, value; text that a spreadsheet would take for a formula
           is marked with an apostrophe, numbers never are. The C header is C99 with static data and inline functions, a
           state that the caller owns, and nothing else. NumPy and Octave files assign array literals: a row for each
-          section, b0, b1, b2, a1, a2.
+          section, b0, b1, b2, a1, a2, or one of the taps.
         </p>
       </Part>
 

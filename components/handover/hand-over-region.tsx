@@ -19,5 +19,5 @@ export function HandOverRegion({
   exportPath: string
 }) {
   const exportHref = useCallback((options: ExportOptions) => `${exportPath}?${exportQuery(options)}`, [exportPath])
-  return <HandOver design={design} version={version} kept={kept} exportHref={exportHref} />
+  return <HandOver key={version.checksum} design={design} version={version} kept={kept} exportHref={exportHref} />
 }

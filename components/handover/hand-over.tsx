@@ -1,12 +1,12 @@
 'use client'
 
 import Link from 'next/link'
-import { useEffect, useMemo, useRef, useState, type KeyboardEvent } from 'react'
+import { useEffect, useMemo, useRef, useState, type KeyboardEvent, type ReactNode } from 'react'
 import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
-import type { StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import { isStoredTaps, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
-import { caution, type ExportOptions } from '@/lib/exports'
+import { caution, structuresOf, usualStructure, type ExportOptions } from '@/lib/exports'
 import { defaultIdentifier } from '@/lib/exports/names'
 import { Checksum } from './checksum'
 import { ChoiceGroup } from './choice-group'
@@ -20,10 +20,7 @@ const formats = [
   { value: 'numpy', label: 'NumPy' },
   { value: 'octave', label: 'Octave' },
 ] as const
-const structures = [
-  { value: 'sections', label: 'Sections' },
-  { value: 'ratio', label: 'b/a' },
-] as const
+const structureLabels = { sections: 'Sections', ratio: 'b/a', taps: 'Taps' } as const
 const numberTypes = [
   { value: 'double', label: 'Double' },
   { value: 'float', label: 'Single (float)' },
@@ -57,7 +54,7 @@ export function HandOver({
 }) {
   const [options, setOptions] = useState<ExportOptions>({
     format: 'c',
-    structure: 'sections',
+    structure: usualStructure(numbers),
     number: 'double',
     feedback: 'subtract',
     literals: 'decimal',
@@ -70,6 +67,7 @@ export function HandOver({
   const preview = useMemo(() => previewOf(design, version, numbers, asked), [design, version, numbers, asked])
   const refusedRatio = useMemo(() => ratioProblem(numbers, options.number), [numbers, options.number])
   const problem = 'problem' in preview ? preview.problem : null
+  const structures = structuresOf(numbers)
 
   useEffect(() => {
     // A panel that was opened takes the focus; one that belongs to its page leaves it where it is.
@@ -107,25 +105,32 @@ export function HandOver({
             value={options.format}
             onChange={(format) => choose({ format })}
           />
-          <ChoiceGroup
-            legend="Structure"
-            choices={structures}
-            value={options.structure}
-            onChange={(structure) => choose({ structure })}
-          >
-            {refusedRatio ? (
-              <p className={options.structure === 'ratio' ? 'text-vermilion' : 'text-pencil'}>
-                {refusedRatio.message}{' '}
-                {options.structure === 'ratio' ? (
-                  <Button small onClick={() => choose({ structure: 'sections' })}>
-                    Hand over the sections
-                  </Button>
-                ) : null}
-              </p>
-            ) : (
-              <p>Sections are the safe choice; b/a holds this filter too.</p>
-            )}
-          </ChoiceGroup>
+          {structures.length === 1 ? (
+            <Fixed legend="Structure">
+              <p>{onlyTaps(numbers)}</p>
+              <Equation {...equationOf(numbers, options)} />
+            </Fixed>
+          ) : (
+            <ChoiceGroup
+              legend="Structure"
+              choices={structures.map((value) => ({ value, label: structureLabels[value] }))}
+              value={options.structure}
+              onChange={(structure) => choose({ structure })}
+            >
+              {refusedRatio ? (
+                <p className={options.structure === 'ratio' ? 'text-vermilion' : 'text-pencil'}>
+                  {refusedRatio.message}{' '}
+                  {options.structure === 'ratio' ? (
+                    <Button small onClick={() => choose({ structure: 'sections' })}>
+                      Hand over the sections
+                    </Button>
+                  ) : null}
+                </p>
+              ) : (
+                <p>Sections are the safe choice; b/a holds this filter too.</p>
+              )}
+            </ChoiceGroup>
+          )}
           <ChoiceGroup
             legend="Numbers"
             choices={numberTypes}
@@ -143,14 +148,16 @@ export function HandOver({
               <p>{capitalised(preview.rounding)}</p>
             ) : null}
           </ChoiceGroup>
-          <ChoiceGroup
-            legend="Feedback terms"
-            choices={signs}
-            value={options.feedback}
-            onChange={(feedback) => choose({ feedback })}
-          >
-            {numbers ? <Equation {...equationOf(numbers, options)} /> : null}
-          </ChoiceGroup>
+          {options.structure === 'taps' ? null : (
+            <ChoiceGroup
+              legend="Feedback terms"
+              choices={signs}
+              value={options.feedback}
+              onChange={(feedback) => choose({ feedback })}
+            >
+              <Equation {...equationOf(numbers, options)} />
+            </ChoiceGroup>
+          )}
           {options.format === 'c' ? (
             <ChoiceGroup
               legend="Numbers in the header"
@@ -192,6 +199,21 @@ export function HandOver({
       </div>
     </section>
   )
+}
+
+/** What stands where a choice would, when there is but one. */
+function Fixed({ legend, children }: { legend: string; children: ReactNode }) {
+  return (
+    <div className="min-w-0 text-[13px]">
+      <p className="mb-1 font-medium text-ink">{legend}</p>
+      <div className="text-pencil">{children}</div>
+    </div>
+  )
+}
+
+function onlyTaps(numbers: StoredCoefficients): string {
+  const count = isStoredTaps(numbers) ? numbers.taps.length : 0
+  return `${count} taps, the one structure of an FIR filter. There is no feedback, so no sign to choose.`
 }
 
 function Equation({ typeset, plain }: { typeset: string; plain: string }) {

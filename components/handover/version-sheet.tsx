@@ -1,9 +1,10 @@
 import Link from 'next/link'
 import { TitleBlock } from '@/components/ui/title-block'
 import { statementText } from '@/lib/designs/statement'
-import type { StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import { isStoredTaps, type StoredCoefficients, type StoredTaps } from '@/lib/designs/stored-coefficients'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
 import { stateWords } from '@/lib/designs/words'
+import { typesetEquation } from '@/lib/exports/equation'
 import { formatHz, formatInstant } from '@/lib/format/quantity'
 import { CoefficientsTable } from './coefficients-table'
 import { HandOverRegion } from './hand-over-region'
@@ -56,8 +57,7 @@ export function VersionSheet({
           Coefficients as they were kept
         </h2>
         <p className="mt-0.5 mb-2 text-[13px] text-pencil">
-          Sections in the order they run, in double precision; feedback terms are subtracted: y[n] = b₀·x[n] + b₁·x[n−1]
-          + b₂·x[n−2] − a₁·y[n−1] − a₂·y[n−2]. Run at {formatHz(kept.sampleRateHz, 6)}.
+          {isStoredTaps(kept) ? tapsWords(kept) : sectionsWords} Run at {formatHz(kept.sampleRateHz, 6)}.
         </p>
         <CoefficientsTable kept={kept} />
       </section>
@@ -102,3 +102,14 @@ export function VersionSheet({
     </main>
   )
 }
+
+const sectionsWords = `Sections in the order they run, in double precision; feedback terms are subtracted: ${typesetEquation('sections', 'subtract', 2)}.`
+
+const symmetryWords = {
+  even: 'the same from either end',
+  odd: 'from the other end the same with the other sign',
+  none: 'not symmetric',
+} as const
+
+const tapsWords = ({ taps, symmetry }: StoredTaps): string =>
+  `${taps.length} taps in double precision, ${symmetryWords[symmetry]}; there is no feedback: ${typesetEquation('taps', 'subtract', taps.length - 1)}.`

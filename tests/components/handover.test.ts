@@ -8,11 +8,11 @@ import { HandOver } from '@/components/handover/hand-over'
 import { VersionSheet } from '@/components/handover/version-sheet'
 import { History } from '@/components/studio/panels/history'
 import { coefficientsOf } from '@/lib/designs/coefficients'
-import { designFromSpec } from '@/dsp'
+import { designFromSpec, isFir } from '@/dsp'
 import type { DesignRecord, VersionSummary } from '@/lib/designs/types'
-import { exportFile, exportQuery, type ExportOptions } from '@/lib/exports'
+import { exportFile, exportQuery, usualStructure, type ExportOptions } from '@/lib/exports'
 import { coefficientSetFields } from '@/lib/exports/json-fields'
-import { lowPass, sourceOf } from '../helpers/export-sources'
+import { firDesign, firKinds, fittedLowPass, lowPass, ownKinds, ownMeasured, sourceOf } from '../helpers/export-sources'
 
 const design: DesignRecord = {
   id: '7d4b6f3e-0000-4000-8000-000000000001',
@@ -34,6 +34,7 @@ const versionOf = (spec: DesignSpec, change: Partial<VersionSummary> = {}): Vers
 })
 const steep = lowPass({ order: 12, edgesHz: [12] })
 const numbersOf = (spec: DesignSpec) => coefficientsOf(designFromSpec(spec))
+const fir = firDesign()
 
 describe('the preview', () => {
   it('is of the very file that is downloaded', () => {
@@ -56,6 +57,22 @@ describe('the preview', () => {
     expect(problem({ name: '3rd' })).toMatchObject({ field: 'name', nearest: 'filter_3rd' })
     expect(ratioProblem(numbersOf(steep), 'double')).toMatchObject({ field: 'structure' })
     expect(ratioProblem(numbersOf(lowPass()), 'double')).toBeNull()
+  })
+
+  it('is of the taps of an FIR filter, and of what an original of one’s own became', () => {
+    for (const spec of [...firKinds, ...ownKinds, fittedLowPass]) {
+      const [version, kept] = [versionOf(spec), numbersOf(spec)]
+      const chosen = { ...options, structure: usualStructure(kept) }
+      const preview = previewOf(design, version, kept, chosen)
+      if (!('file' in preview)) throw new Error(preview.problem.message)
+      expect(preview.file).toEqual(exportFile({ design, version, kept }, chosen))
+      expect(preview.rounding).toContain('less than 1e-9 dB')
+    }
+    expect(previewOf(design, versionOf(fir), numbersOf(fir), options)).toMatchObject({
+      problem: { field: 'structure', nearest: 'taps' },
+    })
+    expect(ratioProblem(numbersOf(fir), 'float')).toBeNull()
+    expect(equationOf(numbersOf(fir), { ...options, structure: 'taps' }).typeset).toContain('… + h₄₀·x[n−40]')
   })
 
   it('shows the equation of the chosen structure and sign', () => {
@@ -104,6 +121,24 @@ describe('the panel', () => {
     expect(html).toContain('y[n] = b₀·x[n]')
   })
 
+  it('offers of an FIR filter what there is: no other structure, no sign', () => {
+    const html = panel(fir)
+    expect(html.match(/type="radio"/g)?.length).toBe(9)
+    expect(html).toContain('41 taps, the one structure of an FIR filter')
+    expect(html).toContain('y[n] = h₀·x[n]')
+    for (const word of ['Sections', 'b/a', 'Feedback terms', 'Subtracted', 'Added'])
+      expect(html).not.toContain(`>${word}<`)
+    expect(html).toContain('href="/x?format=c&amp;structure=taps&amp;number=double&amp;literals=decimal"')
+    expect(html).toContain('download="hmf_lp_012_v3.h"')
+    expect(html).toContain(versionOf(fir).checksum)
+  })
+
+  it('offers of a measured original all that its fit has', () => {
+    const html = panel(ownMeasured)
+    expect(html.match(/type="radio"/g)?.length).toBe(13)
+    expect(html).toContain('fitted up to 300 Hz to a response given as measured')
+  })
+
   it('says beside the structure that b/a is refused, before it is asked for', () => {
     expect(panel(steep)).toContain('As b/a in double precision')
     expect(panel(lowPass())).not.toContain('As b/a in double precision')
@@ -141,10 +176,27 @@ describe('the sheet of a version', () => {
 
   it('shows every kept digit and the checksum', () => {
     const html = sheet(true)
-    for (const section of numbersOf(lowPass()).sections)
+    for (const section of coefficientsOf(designFromSpec(lowPass())).sections)
       for (const value of Object.values(section)) expect(html).toContain(String(value).replaceAll('-', '−'))
     expect(html).toContain('Hand over version 3')
     expect(html).toContain('01 Dec 2026 09:42 UTC')
+  })
+
+  it('shows every tap of an FIR filter, and speaks of no feedback terms', () => {
+    const html = renderToStaticMarkup(
+      createElement(VersionSheet, {
+        design,
+        version: versionOf(fir),
+        kept: numbersOf(fir),
+        numbers: [3],
+        mayExport: true,
+      }),
+    )
+    const { digital } = designFromSpec(fir)
+    if (!isFir(digital)) throw new Error('Taps were stated.')
+    for (const tap of digital.taps) expect(html).toContain(`>${String(tap).replaceAll('-', '−')}<`)
+    expect(html).toContain('41 taps in double precision, the same from either end; there is no feedback')
+    expect(html).not.toContain('subtracted')
   })
 
   it('gives an observer the checksum and no file', () => {
@@ -163,6 +215,8 @@ describe('the page about the files', () => {
       'differenceEquation',
       'coefficients.sections[].b0',
       'coefficients.a',
+      'coefficients.taps',
+      'kept.taps',
       'kept.analog.poles[].re',
       'checksum.hex',
     ])
@@ -186,6 +240,7 @@ describe('the page about the files', () => {
       const spec: DesignSpec = { ...lowPass(), how: { method: 'impulse-invariant' } }
       walk(JSON.parse(exportFile(sourceOf(spec), { ...options, format: 'json', structure }).text), '')
     }
+    walk(JSON.parse(exportFile(sourceOf(fir), { ...options, format: 'json', structure: 'taps' }).text), '')
     // A low-pass sampled by its impulse response has no analog zeros to show.
     const never = ['kept.analog.zeros[].re', 'kept.analog.zeros[].im']
     expect([...found].filter((path) => !listed.has(path))).toEqual([])
