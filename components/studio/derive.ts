@@ -88,7 +88,7 @@ function frequencyGrid(view: CurveView, points: number, upToHz: number, exactly:
   return extra.length === 0 ? grid : Float64Array.from([...grid, ...extra]).sort()
 }
 
-export const referenceLabels: Record<Reference['kind'], string> = {
+const referenceLabels: Record<Reference['kind'], string> = {
   analog: 'analog',
   measured: 'measured',
   ideal: 'ideal',

@@ -66,7 +66,7 @@ export function firMeets(
  *
  * Source: J. F. Kaiser, Proc. IEEE ISCAS, 1974, for both; of minimum phase, half of the taps for |H|², O. Herrmann & W. Schuessler, 1970.
  */
-export function estimateTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requirement: FirRequirement): number {
+function estimateTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requirement: FirRequirement): number {
   const { pass, stop } = errorsOf(requirement)
   const { bands, kind } = fir
   const rooms = bands.slice(1).map((band, index) => band.fromHz - bands[index]!.toHz)

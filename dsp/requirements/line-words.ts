@@ -17,7 +17,7 @@ function band(fromHz: number, toHz: number | undefined): string {
 }
 
 /** What a line asks for, in a few words. */
-export function asked(line: Requirement): string {
+function asked(line: Requirement): string {
   switch (line.kind) {
     case 'pass':
       return `pass ${band(line.fromHz, line.toHz)} within ±${decibels(line.withinDb)}`

@@ -50,7 +50,7 @@ export const requirementKindWords: Readonly<Record<RequirementKind, string>> = {
   'word-length': 'Word length',
 }
 
-export const choiceWords = {
+const choiceWords = {
   reach: { above: 'and above', to: 'to' },
   span: { at: 'at', band: 'from' },
   removeDelay: { yes: 'best delay removed', no: 'delay kept in' },
@@ -238,7 +238,7 @@ export function worstWords(worstHz: number | null, sampleRateHz: number): string
 }
 
 /** Room as a part of the limit, by which lines of different units are ranked. */
-export const relativeMargin = ({ margin, limit }: Pick<RequirementResult, 'margin' | 'limit'>): number =>
+const relativeMargin = ({ margin, limit }: Pick<RequirementResult, 'margin' | 'limit'>): number =>
   Number.isFinite(margin) ? margin / (limit === 0 ? 1 : limit) : margin
 
 /** "5 of 6 met; worst: line 3, missed by 2.1°". */

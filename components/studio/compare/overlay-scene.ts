@@ -179,7 +179,7 @@ const differenceTitles: Readonly<Record<DifferenceUnit, string>> = {
   degrees: 'Difference of phase',
   microseconds: 'Difference of group delay',
 }
-export const unitSymbols: Readonly<Record<DifferenceUnit, string>> = { db: 'dB', degrees: '°', microseconds: 'µs' }
+const unitSymbols: Readonly<Record<DifferenceUnit, string>> = { db: 'dB', degrees: '°', microseconds: 'µs' }
 
 export function differenceValues(difference: Curve, unit: DifferenceUnit): Float64Array {
   if (unit === 'db') return difference.magnitudeDb

@@ -208,7 +208,7 @@ export function withQuantity(spec: DesignSpec, key: WordKey, value: number): Des
   }
 }
 
-export const isCount = (unit: QuantityUnit): boolean => unit === 'order' || unit === 'taps' || unit === 'poles'
+const isCount = (unit: QuantityUnit): boolean => unit === 'order' || unit === 'taps' || unit === 'poles'
 
 export function parseQuantity(unit: QuantityUnit, text: string, nyquistHz: number | null): Promise<Parsed> {
   switch (unit) {
