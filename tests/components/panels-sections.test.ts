@@ -1,10 +1,36 @@
+import { createElement } from 'react'
+import { renderToStaticMarkup } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import { cascadeCost, directFormCost, parallelCost } from '@/components/studio/panels/sections/cost'
 import { poleFigures, sectionFacts } from '@/components/studio/panels/sections/section-facts'
 import { polynomialRoots, rootsBySection } from '@/components/studio/panels/sections/section-roots'
 import { costsOf, ratioOf, structuresOf, usualStructure } from '@/components/studio/panels/sections/structures'
 import { fullDigits, ratioAsText, sectionsAsText, zeroText } from '@/components/studio/panels/sections/written'
-import { discretize, magnitudeDb, toSections, type AnalogSpec, type Section } from '@/dsp'
+import {
+  delayWords,
+  mirrorOf,
+  tapsAsText,
+  tapsCosts,
+  tapsSums,
+  zeroRows,
+} from '@/components/studio/panels/sections/taps-facts'
+import { TapsPanel } from '@/components/studio/panels/sections/taps-panel'
+import { tapsFrame, tapsScene } from '@/components/studio/panels/sections/taps-picture'
+import { tapAfterKey, tapText } from '@/components/studio/panels/sections/taps-plot'
+import type { Mark } from '@/components/plot/scene'
+import {
+  designFromSpec,
+  discretize,
+  frequencyResponse,
+  isFir,
+  magnitudeDb,
+  toSections,
+  type AnalogSpec,
+  type FirDesign,
+  type FirFilter,
+  type Section,
+} from '@/dsp'
+import { firDesign, firKinds, fittedLowPass, ownKinds } from '../helpers/export-sources'
 
 const lowpass = (order: number, edgeHz = 120): AnalogSpec => ({
   family: 'butterworth',
@@ -185,5 +211,161 @@ describe('coefficients as text', () => {
 
   it('writes one line for each power of the ratio', () => {
     expect(ratioAsText([1, 2], [1, -0.5, 0.25])).toBe('delay\tb\ta\n0\t1\t1\n1\t2\t-0.5\n2\t0\t0.25\n')
+  })
+})
+
+const firOf = (spec: FirDesign) => {
+  const { digital } = designFromSpec(spec)
+  if (!isFir(digital)) throw new Error('Taps were stated.')
+  return digital
+}
+const plainFir = (taps: readonly number[], symmetry: FirFilter['symmetry']): FirFilter => ({
+  domain: 'z',
+  taps: Float64Array.from(taps),
+  sampleRateHz: 1000,
+  symmetry,
+  diagnostics: [],
+})
+const halfBand = firKinds.find(({ fir }) => fir.kind === 'half-band')!
+
+describe('cost of taps', () => {
+  it('halves the multiplications of symmetric taps, and no addition', () => {
+    expect(tapsCosts(plainFir([0.25, 0.5, 0.25], 'even'))).toEqual([
+      { name: 'direct', cost: { multiplies: 3, adds: 2, stateWords: 2 } },
+      { name: 'folded by symmetry', cost: { multiplies: 2, adds: 2, stateWords: 2 } },
+    ])
+    expect(tapsCosts(plainFir([0.5, 0, -0.5], 'odd'))[1]?.cost).toEqual({ multiplies: 1, adds: 1, stateWords: 2 })
+    expect(tapsCosts(plainFir([0.5, 0.2, 0.1], 'none'))).toHaveLength(1)
+  })
+
+  it('counts no zeros of a half-band filter: of N = 4m + 3 taps m + 1 pairs and the middle are left', () => {
+    const filter = firOf(halfBand)
+    const m = (filter.taps.length - 3) / 4
+    const exactZeros = filter.taps.filter((tap) => tap === 0).length
+    expect(exactZeros).toBe(2 * m)
+    const [direct, folded] = tapsCosts(filter)
+    expect(direct?.cost.multiplies).toBe(filter.taps.length - exactZeros)
+    expect(folded?.cost.multiplies).toBe(m + 2)
+  })
+})
+
+describe('facts of taps', () => {
+  it('say the delay, the mirror image and the sums', () => {
+    expect(delayWords(plainFir([1, 2, 1], 'even'))).toBe('delays every frequency by 1 sample, 1\u2009ms')
+    expect(delayWords(plainFir([1, 1], 'even'))).toBe('delays every frequency by 0.5 samples, 500\u2009µs')
+    expect(delayWords(plainFir([1, 2], 'none'))).toMatch(/changes with frequency/)
+    expect([0, 1, 2].map((k) => mirrorOf(plainFir([1, 2, 1], 'even'), k))).toEqual([2, null, 0])
+    expect(mirrorOf(plainFir([1, 2], 'none'), 0)).toBeNull()
+    expect(tapsSums(plainFir([0.5, -0.25, 0.5], 'even'))).toEqual({ plain: 0.75, ofMagnitudes: 1.25 })
+    expect(tapText(plainFir([0.5, 0, -0.5], 'odd'), 0)).toBe('h0 = 0.5, its negative at h2')
+    const filter = firOf(firDesign())
+    expect(tapsSums(filter).plain).toBeCloseTo(frequencyResponse(filter, [0]).re[0] ?? 0, 12)
+  })
+
+  it('say where the zeros are: z⁻¹ + 1 stops half the rate, 1 + z⁻² a quarter of it', () => {
+    expect(zeroRows(plainFir([1, 1], 'even'))).toEqual([{ where: '500\u2009Hz', radius: 'on the circle', times: 1 }])
+    expect(zeroRows(plainFir([1, 0, 1], 'even'))).toEqual([{ where: '250\u2009Hz', radius: 'on the circle', times: 1 }])
+    expect(zeroRows(plainFir([1, -0.5], 'none'))).toEqual([{ where: '0\u2009Hz', radius: '0.5', times: 1 }])
+    expect(zeroRows(plainFir([1], 'even'))).toMatch(/no zeros/)
+    expect(zeroRows(firOf(firKinds.find(({ fir }) => fir.taps === 151)!))).toMatch(/more than 128 taps/)
+    const rows = zeroRows(firOf(firDesign()))
+    if (typeof rows === 'string') throw new Error(rows)
+    // All that stops lies in the stop band, from 200 Hz on; the zeros about the pass band are off the circle.
+    for (const { where, radius } of rows) if (radius === 'on the circle') expect(parseFloat(where)).toBeGreaterThan(200)
+    const count = rows.reduce((sum, { where, times }) => sum + (/^(0|600)\u2009/.test(where) ? times : 2 * times), 0)
+    expect(count).toBe(40)
+  })
+
+  it('bring every tap back as itself', () => {
+    const filter = firOf(firDesign())
+    const [head, ...lines] = tapsAsText(filter.taps).trimEnd().split('\n')
+    expect(head).toBe('k\th')
+    expect(lines.map((line) => line.split('\t').map(Number))).toEqual(Array.from(filter.taps, (tap, k) => [k, tap]))
+  })
+})
+
+describe('the picture of taps', () => {
+  const flat = (marks: readonly Mark[]): Mark[] =>
+    marks.flatMap((mark) => (mark.kind === 'clip' ? flat(mark.marks) : [mark]))
+
+  it('has a stem from the ground to each tap, its head and the axis of symmetry', () => {
+    const filter = firOf(firDesign())
+    const frame = tapsFrame(800, filter.taps)
+    const marks = flat(tapsScene(filter, frame).marks)
+    const stems = marks.find((mark) => mark.kind === 'path' && mark.stroke.widthPixels === 1.3)
+    if (stems?.kind !== 'path') throw new Error('There are no stems.')
+    expect(stems.points).toHaveLength(6 * 41)
+    filter.taps.forEach((tap, k) => {
+      expect([...stems.points.slice(6 * k, 6 * k + 1)]).toEqual([frame.x.toPixel(k)])
+      expect(stems.points[6 * k + 3]).toBe(frame.y.toPixel(tap))
+      expect(frame.y.toPixel(tap)).toBeGreaterThanOrEqual(frame.box.top)
+      expect(frame.y.toPixel(tap)).toBeLessThanOrEqual(frame.box.bottom)
+    })
+    expect(marks.filter(({ kind }) => kind === 'marker')).toHaveLength(41)
+    const dashed = (of: FirFilter) =>
+      flat(tapsScene(of, tapsFrame(800, of.taps)).marks).filter(
+        (mark) => mark.kind === 'path' && (mark.stroke.dash?.length ?? 0) > 0,
+      ).length
+    expect(dashed(filter)).toBe(1)
+    expect(dashed(plainFir([1, 0.5, 0.2], 'none'))).toBe(0)
+  })
+
+  it('draws many taps as one curve, and numbers none but whole taps', () => {
+    const many = plainFir(
+      Array.from({ length: 1024 }, (_, k) => Math.sin(k / 9)),
+      'none',
+    )
+    const marks = flat(tapsScene(many, tapsFrame(900, many.taps)).marks)
+    expect(marks.filter(({ kind }) => kind === 'marker')).toHaveLength(0)
+    const few = plainFir([1, 2, 1], 'even')
+    const frame = tapsFrame(900, few.taps)
+    const labels = tapsScene(few, frame).marks.flatMap((mark) =>
+      mark.kind === 'text' && mark.anchor === 'middle' ? [mark.text] : [],
+    )
+    expect(labels).toEqual(['0', '1', '2'])
+  })
+
+  it('is read by keys within its taps', () => {
+    expect(tapAfterKey('ArrowRight', 1, null, 9)).toBe(0)
+    expect(tapAfterKey('ArrowRight', 10, 4, 9)).toBe(9)
+    expect(tapAfterKey('ArrowLeft', 1, 0, 9)).toBe(0)
+    expect(tapAfterKey('End', 1, 3, 9)).toBe(9)
+    expect(tapAfterKey('Escape', 1, 3, 9)).toBeNull()
+    expect(tapAfterKey('Escape', 1, null, 9)).toBeUndefined()
+    expect(tapAfterKey('x', 1, 3, 9)).toBeUndefined()
+  })
+
+  it('stands in the drawer with costs, zeros and what should be known', () => {
+    const filter = firOf(firDesign())
+    const known = { code: 'c', severity: 'caution', message: 'Mind the gap.' } as const
+    const html = renderToStaticMarkup(createElement(TapsPanel, { filter: { ...filter, diagnostics: [known] } }))
+    for (const words of [
+      '41 taps at 1.2\u2009kHz, symmetric: linear phase',
+      'delays every frequency by 20 samples',
+      'folded by symmetry',
+      'Zeros by frequency',
+      'Mind the gap.',
+      'Copy taps',
+      'role="slider"',
+    ])
+      expect(html).toContain(words)
+  })
+})
+
+describe('the cascade of originals of one’s own', () => {
+  it('is as whole as that of a family', () => {
+    for (const spec of [...ownKinds, fittedLowPass]) {
+      const { digital } = designFromSpec(spec)
+      if (isFir(digital)) throw new Error('This has feedback.')
+      const { sections, facts, start } = structuresOf(digital, usualStructure)
+      expect(sections).toBe(digital.sections)
+      expect(facts.flatMap(({ zeros }) => zeros).every(({ radius }) => Number.isFinite(radius))).toBe(true)
+      for (const { nodePeakDb, radius } of facts) {
+        expect(Number.isFinite(nodePeakDb)).toBe(true)
+        expect(radius).toBeLessThan(1)
+      }
+      expect(start).toHaveLength(2 * sections.length)
+      expect(costsOf(digital, sections, ratioOf(digital)).map(({ name }) => name)).toContain('cascade')
+    }
   })
 })

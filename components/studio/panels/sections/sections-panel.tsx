@@ -1,6 +1,6 @@
 'use client'
 
-import { useMemo, useState, type ReactNode } from 'react'
+import { useMemo, useState } from 'react'
 import { DesignError, isFir, type DesignSpec, type DigitalFilter } from '@/dsp'
 import { Notice } from '@/components/ui/notice'
 import { versionLabels } from '@/lib/designs/words'
@@ -15,6 +15,7 @@ import { CopyButton } from './copy-button'
 import { CostTable } from './cost-table'
 import { DirectForm } from './direct-form'
 import { ParallelTable } from './parallel-table'
+import { Part, ToKnow } from './part'
 import { StartState } from './start-state'
 import { TapsPanel } from './taps-panel'
 import { costsOf, ratioOf, structuresOf, usualStructure, type StructureChoice } from './structures'
@@ -49,7 +50,7 @@ function StatedStructures({ spec, versions: latest }: { spec: DesignSpec; versio
   if (!stated || !filter || !made || !ratio) {
     const reason = versions.refused.find(({ id }) => id === statedId(spec))?.message
     return (
-      <Notice kind="caution">{reason ?? 'The statement makes no digital version, so there are no sections.'}</Notice>
+      <Notice kind="caution">{reason ?? 'The statement makes no digital version, so there is nothing to run.'}</Notice>
     )
   }
   const { structures, refusal } = made
@@ -105,35 +106,10 @@ function StatedStructures({ spec, versions: latest }: { spec: DesignSpec; versio
           <Part title="Steady start">
             <StartState start={start} />
           </Part>
-          {filter.diagnostics.length > 0 ? (
-            <Part title="To know about this design">
-              <ul className="flex flex-col gap-1.5 text-[14px]">
-                {filter.diagnostics.map(({ code, severity, message }) => (
-                  <li key={`${code} ${message}`}>
-                    <span className={severity === 'caution' ? 'text-vermilion' : 'text-pencil'}>
-                      {severity === 'caution' ? 'Caution: ' : 'Note: '}
-                    </span>
-                    {message}
-                  </li>
-                ))}
-              </ul>
-            </Part>
-          ) : null}
+          <ToKnow diagnostics={filter.diagnostics} />
         </div>
       </div>
     </div>
-  )
-}
-
-function Part({ title, controls, children }: { title: string; controls?: ReactNode; children: ReactNode }) {
-  return (
-    <section aria-label={title} className="flex min-w-0 flex-col gap-2">
-      <div className="flex flex-wrap items-center gap-x-5 gap-y-1">
-        <h3 className="font-text text-[14px] font-semibold">{title}</h3>
-        {controls}
-      </div>
-      {children}
-    </section>
   )
 }
 
