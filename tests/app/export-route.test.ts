@@ -1,16 +1,18 @@
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
+import * as z from 'zod'
 import { GET } from '@/app/api/designs/[designId]/versions/[number]/export/route'
 import { closeConnections } from '@/db/client'
 import { lockDesign } from '@/db/queries/designs'
 import { inTransaction } from '@/db/queries/transaction'
 import { findVersion, insertVersion } from '@/db/queries/versions'
 import { designFromSpec, type DesignSpec } from '@/dsp'
-import { checksumOfStored, coefficientsOf } from '@/lib/designs/coefficients'
+import { checksumOfStored, coefficientsOf, isStoredTaps } from '@/lib/designs/coefficients'
 import { defaultSpec } from '@/lib/designs/edits'
 import { saveVersion } from '@/lib/designs/save-version'
 import type { Role } from '@/lib/designs/types'
 import { exportFile } from '@/lib/exports'
 import { coefficientSetSchema } from '@/lib/exports/json'
+import { firDesign } from '../helpers/export-sources'
 import { beginRequest, headers } from '../helpers/next-request'
 import { makeTeam, type TestTeam } from '../helpers/people'
 
@@ -127,6 +129,29 @@ describe('GET /api/designs/[designId]/versions/[number]/export', () => {
       nearest: 'sections',
     })
     expect((await get('format=json&structure=sections', { number: '2' })).status).toBe(200)
+  })
+
+  it('hands the taps of an FIR filter over unasked, and nothing that they are not', async () => {
+    await save(firDesign(), 3)
+    const got = await get('format=json', { number: '4' })
+    expect(got.status).toBe(200)
+    const file = coefficientSetSchema.parse(JSON.parse(got.text))
+    const kept = coefficientsOf(designFromSpec(firDesign()))
+    if (!isStoredTaps(kept)) throw new Error('Taps were stated.')
+    expect(file.coefficients).toMatchObject({ structure: 'taps', taps: kept.taps })
+    expect(checksumOfStored(file.kept)).toBe(file.checksum.hex)
+    for (const [query, field, nearest] of [
+      ['structure=sections', 'structure', 'taps'],
+      ['structure=ratio', 'structure', 'taps'],
+      ['feedback=add', 'feedback', undefined],
+    ] as const) {
+      const refused = await get(`format=json&${query}`, { number: '4' })
+      expect(refused.status).toBe(422)
+      const said = z.object({ field: z.string(), nearest: z.string().optional() }).parse(problem(refused.text))
+      expect([said.field, said.nearest]).toEqual([field, nearest])
+    }
+    const taps = await get('format=json&structure=taps')
+    expect([taps.status, problem(taps.text)]).toEqual([422, expect.objectContaining({ nearest: 'sections' })])
   })
 
   it.each([
