@@ -325,6 +325,19 @@ describe('the picture of taps', () => {
     expect(labels).toEqual(['0', '1', '2'])
   })
 
+  it('keeps the numbers of its axis short, whatever size the taps are', () => {
+    for (const size of [1e-9, 1, 300, 4e8]) {
+      const filter = plainFir([0.3 * size, -size, 0.3 * size], 'even')
+      const texts = tapsScene(filter, tapsFrame(900, filter.taps)).marks.flatMap((mark) =>
+        mark.kind === 'text' ? [mark] : [],
+      )
+      const labels = texts.filter(({ anchor }) => anchor === 'end')
+      expect(labels.length).toBeGreaterThan(2)
+      for (const { text } of labels) expect(text.length).toBeLessThan(6)
+      expect(texts.some(({ text }) => text.startsWith('in units of'))).toBe(size < 1e-3 || size > 1e4)
+    }
+  })
+
   it('is read by keys within its taps', () => {
     expect(tapAfterKey('ArrowRight', 1, null, 9)).toBe(0)
     expect(tapAfterKey('ArrowRight', 10, 4, 9)).toBe(9)

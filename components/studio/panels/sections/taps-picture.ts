@@ -5,6 +5,7 @@ import { crisp, line, type Mark, type Scene } from '@/components/plot/scene'
 import { valueTicks } from '@/components/plot/ticks'
 import { traceStyles } from '@/components/plot/trace-style'
 import type { FirFilter } from '@/dsp'
+import { formatNumber } from '@/lib/format/quantity'
 
 /* The taps as stems over their numbers: what the impulse response is, sample by sample. */
 
@@ -37,13 +38,20 @@ export function tapsFrame(width: number, taps: Float64Array): TapsFrame {
   }
 }
 
+/** What the axis counts in: 1, or a power of ten where its numbers would be long. */
+function axisUnit(y: Scale): number {
+  const exponent = Math.floor(Math.log10(Math.max(...y.domain.map(Math.abs))))
+  return exponent < -3 || exponent > 4 ? 10 ** exponent : 1
+}
+
 export function tapsScene({ taps, symmetry }: FirFilter, frame: TapsFrame): Scene {
   const { box, x, y, width, height } = frame
   // Half a tap is none.
   const xTicks = valueTicks('plain', x, 46).flatMap(({ value, strong }) =>
     Number.isInteger(value) && value >= 0 ? [{ value, label: String(value), strong }] : [],
   )
-  const yTicks = valueTicks('plain', y, 28)
+  const unit = axisUnit(y)
+  const yTicks = valueTicks('plain', y, 28, unit)
   return {
     width,
     height,
@@ -60,10 +68,24 @@ export function tapsScene({ taps, symmetry }: FirFilter, frame: TapsFrame): Scen
       },
       frameMark(box),
       ...valueLabels(box, y, yTicks),
+      ...(unit === 1 ? [] : [unitLabel(unit, box)]),
       ...frequencyLabels(height - 6, width, x, xTicks),
     ],
   }
 }
+
+const unitLabel = (unit: number, box: Box): Mark => ({
+  kind: 'text',
+  x: box.left + 8,
+  y: box.top + 16,
+  text: `in units of ${formatNumber(unit, 1)}`,
+  face: 'text',
+  sizePixels: 12,
+  weight: 400,
+  ink: 'pencil',
+  anchor: 'start',
+  halo: 'sheet',
+})
 
 function axisOfSymmetry(count: number, { x, box }: TapsFrame): Mark {
   const at = x.toPixel((count - 1) / 2)
