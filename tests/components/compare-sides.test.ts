@@ -25,8 +25,18 @@ describe('the sides of an address', () => {
   })
 
   it('leave out what isn’t there, and say so', () => {
-    expect(chosen({ sides: '9,2,draft' }, false)).toMatchObject({ sides: [2], missing: [9, 'draft'] })
+    expect(chosen({ sides: '9,2,draft' })).toMatchObject({ sides: [2, 'draft'], missing: [9] })
     expect(chosen({ sides: '9' })).toMatchObject({ sides: [4, 'draft'], missing: [9] })
+  })
+
+  it('take the latest version for a draft that isn’t there: the studio opens on it', () => {
+    expect(chosen({ sides: 'draft,candidate-1' }, false)).toEqual({
+      sides: [4, 'candidate-1'],
+      missing: [],
+      leftOut: [],
+    })
+    expect(chosen({ sides: '4,draft,2' }, false).sides).toEqual([4, 2])
+    expect(chosenSides({ sides: 'draft' }, [], false)).toEqual({ sides: [], missing: ['draft'], leftOut: [] })
   })
 
   it.each(['-1', '0', '1e3', '2.5', 'candidate-0', 'candidate-10', 'candidate-x', '<b>', '99999999', ' '])(

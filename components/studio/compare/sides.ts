@@ -46,14 +46,16 @@ export function parseSide(text: string): SideId | null {
 
 /**
  * The sides that an address asks for and that are there. Links of old, `?a=3&b=draft`, name base and other; what they don't name, or what
- * isn't there, is the nearest that is. Candidates are known in the browser alone, so that any candidate passes here.
+ * isn't there, is the nearest that is. Without a draft of one's own the studio opens on the latest version, which then stands for it.
+ * Candidates are known in the browser alone, so that any candidate passes here.
  *
  * @param versions numbers of the saved versions, newest first
  */
 export function chosenSides(query: Query, versions: readonly number[], hasDraft: boolean): ChosenSides {
   const isThere = (id: SideId) => (id === 'draft' ? hasDraft : isCandidateId(id) || versions.includes(id))
   const named = [query.sides ?? []].flat().flatMap((text) => text.split(','))
-  const asked = [...new Set(named.map((text) => parseSide(text.trim())).filter((id) => id !== null))]
+  const drafted = (id: SideId | null) => (id === 'draft' && !hasDraft ? (versions[0] ?? id) : id)
+  const asked = [...new Set(named.map((text) => drafted(parseSide(text.trim()))).filter((id) => id !== null))]
   const there = asked.filter(isThere)
   const missing = asked.filter((id) => !isThere(id))
   if (there.length > 0) return { sides: there.slice(0, MOST_SIDES), missing, leftOut: there.slice(MOST_SIDES) }
