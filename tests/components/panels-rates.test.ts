@@ -47,7 +47,13 @@ describe('the sweep over rates', () => {
     for (const removeDelay of [false, true]) {
       const ratesHz = Float64Array.of(300, 600, 1200, 4800)
       const curves = askSweep({ ...subject, removeDelay, ratesHz })
-      expect(curves.map(({ id }) => id)).toEqual(['bilinear', 'impulse-invariant', 'matched-z', 'step-invariant'])
+      expect(curves.map(({ id }) => id)).toEqual([
+        'bilinear',
+        'impulse-invariant',
+        'matched-z',
+        'step-invariant',
+        'fitted',
+      ])
       for (const [index, how] of subject.methods.entries()) {
         ratesHz.forEach((rate, k) => {
           const worst = worstDeparture(analog, discretize(defaultSpec.analog, rate, how), 120, { removeDelay })
@@ -98,6 +104,8 @@ describe('the lowest rate', () => {
       const at = worst(sampleRateHz)
       expect(at.db).toBeLessThanOrEqual(budget.magnitudeDb * (1 + 1e-6))
       expect(at.degrees).toBeLessThanOrEqual(budget.phaseDegrees * (1 + 1e-6))
+      // A fit is made anew at each rate and may fall on either side of its budget just below.
+      if (id === 'fitted') continue
       const below = worst(sampleRateHz * 0.99)
       expect(below.db > budget.magnitudeDb || below.degrees > budget.phaseDegrees).toBe(true)
     }
@@ -290,6 +298,6 @@ describe('a spec with options', () => {
   it('keeps the stated method as it is stated', () => {
     const spec: DesignSpec = { ...defaultSpec, how: { method: 'bilinear', hold: 'none' } }
     expect(subjectOf(spec, 100).methods[0]).toEqual({ method: 'bilinear', hold: 'none' })
-    expect(subjectOf(defaultSpec, 100).methods).toHaveLength(4)
+    expect(subjectOf(defaultSpec, 100).methods).toHaveLength(5)
   })
 })

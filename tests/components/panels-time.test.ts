@@ -220,7 +220,7 @@ describe('curves over time', () => {
   it('reads every version at the same instant', () => {
     const curves = timeCurves(versions, ['matched-z'], 'step', [0, 0.02])
     const values = valuesAt(versions, curves, 'step', 7, 1200)
-    expect([...values.keys()]).toEqual(['analog', 'bilinear', 'impulse-invariant', 'step-invariant'])
+    expect([...values.keys()]).toEqual(['analog', 'bilinear', 'impulse-invariant', 'step-invariant', 'fitted'])
     expect(Math.abs((values.get('step-invariant') ?? 0) - (values.get('analog') ?? 1))).toBeLessThan(1e-10)
     const rows = timeRows(versions, curves, 'step', [-0.001, 0.01], 1200, 1)
     expect(rows[0]?.[0]).toBe('0')
@@ -230,7 +230,7 @@ describe('curves over time', () => {
 
   it('draws the stated version as stems or held steps while its samples stand apart, and as a curve when they don’t', () => {
     const plan = (kind: 'impulse' | 'step', to: number) => {
-      const curves = timeCurves(versions, ['bilinear', 'matched-z', 'step-invariant'], kind, [0, to])
+      const curves = timeCurves(versions, ['bilinear', 'matched-z', 'step-invariant', 'fitted'], kind, [0, to])
       const scene = timeScene(kind, curves, timeFrame(900, [0, to], curves))
       const inside = scene.marks.find((mark) => mark.kind === 'clip')
       const marks = inside?.kind === 'clip' ? inside.marks : []
