@@ -58,7 +58,7 @@ describe('the demo', () => {
     expect(rows).toEqual(
       expect.arrayContaining([
         { action: 'project.create', count: 3 },
-        { action: 'design.create', count: 10 },
+        { action: 'design.create', count: 11 },
       ]),
     )
   })
