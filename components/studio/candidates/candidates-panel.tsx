@@ -180,7 +180,7 @@ function progressWords({ state, rows, seconds }: SearchState): string {
 function RefusedList({ rows, sheetWords }: { rows: readonly RefusedRow[]; sheetWords: readonly string[] }) {
   return (
     <details className="text-[13px]">
-      <summary className="inline-flex min-h-6 cursor-pointer items-center text-pencil hover:text-ink">
+      <summary className="w-fit min-h-6 cursor-pointer leading-6 text-pencil hover:text-ink">
         {rows.length} can’t meet it, and why
       </summary>
       <dl className="mt-1 grid max-w-5xl grid-cols-1 gap-x-6 sm:grid-cols-[max-content_minmax(0,1fr)]">

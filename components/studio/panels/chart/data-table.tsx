@@ -17,7 +17,7 @@ export function DataTable({
   const id = useId()
   return (
     <details className="text-[13px]" onToggle={(event) => setOpen(event.currentTarget.open)}>
-      <summary id={id} className="inline-flex min-h-[24px] cursor-pointer items-center text-pencil hover:text-ink">
+      <summary id={id} className="w-fit min-h-[24px] cursor-pointer leading-[24px] text-pencil hover:text-ink">
         {summary}
       </summary>
       {open ? (
