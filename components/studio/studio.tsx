@@ -1,5 +1,6 @@
 'use client'
 
+import dynamic from 'next/dynamic'
 import { useSearchParams } from 'next/navigation'
 import { useEffect, useMemo, useState } from 'react'
 import { useStore } from 'zustand'
@@ -26,11 +27,15 @@ import { DesignTitleBlock } from './shell/design-title-block'
 import { LivePlanes } from './shell/live-planes'
 import { LivePlots } from './shell/live-plots'
 import { useSettled } from './shell/use-derived'
-import { SheetFigure } from './sheet/sheet-figure'
-import { SheetPanel } from './sheet/sheet-panel'
 import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
+
+/** The sheet and its judging come after what is drawn: the first page stays light. */
+const SheetPanel = dynamic(() => import('./sheet/sheet-panel').then((module) => module.SheetPanel), {
+  loading: () => <p className="text-[13px] text-pencil">Opening the requirement sheet…</p>,
+})
+const SheetFigure = dynamic(() => import('./sheet/sheet-figure').then((module) => module.SheetFigure))
 
 /** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
 export function Studio({
