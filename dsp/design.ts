@@ -1,6 +1,7 @@
 import { designAnalog } from './design-analog'
 import { discretize } from './discretise/discretize'
 import { designFir } from './fir/design-fir'
+import { DesignError } from './errors'
 import type { AnyDigital, Diagnostic, DigitalFilter, Filter } from './forms/filter'
 import type { Reference } from './response/reference'
 import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign, type FirDesign } from './spec'
@@ -31,6 +32,22 @@ export interface DesignOfFamily extends Design {
 export function designFromSpec(spec: FamilyDesign): DesignOfFamily
 export function designFromSpec(spec: DesignSpec): Design
 export function designFromSpec(spec: DesignSpec): Design {
+  try {
+    return computed(spec)
+  } catch (thrown) {
+    if (thrown instanceof RangeError || thrown instanceof TypeError) throw notComputable(spec, thrown)
+    throw thrown
+  }
+}
+
+/** What no check foresaw is still said as a refusal: a page or an action shows a sentence, and the cause is kept for the log. */
+function notComputable(spec: DesignSpec, cause: Error): DesignError {
+  const field = isFamilyDesign(spec) ? 'analog' : isFirDesign(spec) ? 'fir' : 'own'
+  const message = 'These numbers make no filter that double precision can hold; more moderate ones do.'
+  return Object.assign(new DesignError('not-computable', field, message), { cause })
+}
+
+function computed(spec: DesignSpec): Design {
   if (isFamilyDesign(spec)) return familyDesign(spec)
   if (isFirDesign(spec)) return firDesign(spec)
   const made = designOwn(spec.own, spec.sampleRateHz, spec.how)

@@ -14,15 +14,17 @@ export interface MeasuredTable {
 type MeasuredTarget = Extract<OwnTarget, { given: 'measured' }>
 
 const LEAST_ROWS = 4
-/** Levels that leave |H| and its square inside double precision. */
-const LEVEL_RANGE_DB = [-2000, 2000] as const
+/** Levels a fit can weigh against each other in double precision; no measurement reaches further. */
+const LEVEL_RANGE_DB = [-400, 400] as const
+/** Beyond this many degrees a phase has lost the digits that count. */
+const MOST_DEGREES = 1e6
 const DEGREES = 180 / Math.PI
 
 /**
  * The table of a measured response: rows checked, phase made continuous by taking each step between rows the short way round.
  *
  * @param rows [Hz, dB, degrees], frequencies rising
- * @throws DesignError `too-few-rows`, `too-many-rows`, `not-finite`, `level-out-of-range` or `not-rising` with the field of the row, counted from 0
+ * @throws DesignError `too-few-rows`, `too-many-rows`, `not-finite`, `level-out-of-range`, `phase-out-of-range` or `not-rising` with the field of the row, counted from 0
  */
 export function measuredTable({ rows }: Pick<MeasuredTarget, 'rows'>): MeasuredTable {
   if (rows.length < LEAST_ROWS) {
@@ -52,7 +54,7 @@ export function measuredTable({ rows }: Pick<MeasuredTarget, 'rows'>): MeasuredT
         0,
       )
     })
-    const [hertz, db] = row
+    const [hertz, db, degrees] = row
     if (hertz < 0 || hertz <= before) {
       throw new DesignError(
         'not-rising',
@@ -70,6 +72,14 @@ export function measuredTable({ rows }: Pick<MeasuredTarget, 'rows'>): MeasuredT
           '−',
         ),
         db < 0 ? LEVEL_RANGE_DB[0] : LEVEL_RANGE_DB[1],
+      )
+    }
+    if (Math.abs(degrees) > MOST_DEGREES) {
+      throw new DesignError(
+        'phase-out-of-range',
+        `own.rows.${index}.2`,
+        `A phase between −1000000° and 1000000° can be used; row ${index + 1} has ${show(degrees).replace('-', '−')}°.`,
+        Math.sign(degrees) * MOST_DEGREES,
       )
     }
     before = hertz

@@ -4,7 +4,7 @@ import { expand, fromHalf } from '../forms/zeros-poles-gain'
 import { complex, divide, modulus } from '../numeric/complex'
 import { FixedPoint, timesPowerOfTwo } from '../numeric/fixed-point'
 import { polynomialRoots } from '../numeric/polynomial-roots'
-import { checkPoles } from './roots'
+import { checkGain, checkPoles } from './roots'
 import type { Complex, Diagnostic, Filter } from '../forms/filter'
 import type { OwnTarget } from '../spec'
 
@@ -12,6 +12,8 @@ type PolynomialTarget = Extract<OwnTarget, { given: 'polynomials' }>
 
 const MOST_DEGREE = 24
 const BITS = 512
+/** Ratios of coefficients from here to its inverse keep their digits. */
+const LEAST_RATIO = 1e-300
 /** A change in the sixth digit of a coefficient then moves a pole by a thousandth of itself, or by a tenth. */
 const NOTED_CONDITION = 1e3
 const CAUTIONED_CONDITION = 1e5
@@ -34,12 +36,30 @@ function unitExponent(highestFirst: readonly number[]): number {
   return Math.round(Math.log2(Math.abs((highestFirst[last] ?? 1) / (highestFirst[0] ?? 1))) / last)
 }
 
+const ratioRefusal = (field: string): DesignError =>
+  new DesignError(
+    'coefficients-too-unlike',
+    field,
+    'The coefficients lie too far apart: the ratio of one to the first leaves the range of double precision. Another unit of time brings them together.',
+  )
+
+/** Every coefficient is used as a part of the first one. */
+function checkRatios(highestFirst: readonly number[], field: string): void {
+  for (const value of highestFirst) {
+    const ratio = Math.abs(value / (highestFirst[0] ?? 1))
+    if (value !== 0 && !(ratio >= LEAST_RATIO && ratio <= 1 / LEAST_RATIO)) throw ratioRefusal(field)
+  }
+}
+
 /** Roots in half form, sought in s/2^exponent on long numbers that hold the scaled coefficients exactly. */
-function rootsOf(highestFirst: readonly number[]): Complex[] {
+function rootsOf(highestFirst: readonly number[], field: string): Complex[] {
+  checkRatios(highestFirst, field)
   const exponent = unitExponent(highestFirst)
   const fx = new FixedPoint(BITS)
-  const lead = highestFirst[0] ?? 1
-  const scaled = highestFirst.map((value, k) => fx.fromNumber(timesPowerOfTwo(value / lead, -exponent * k)))
+  const scaled = rescaled(highestFirst, exponent).map((value) => {
+    if (Number.isFinite(value)) return fx.fromNumber(value)
+    throw ratioRefusal(field)
+  })
   const unit = 2 ** exponent
   return polynomialRoots(scaled).map(({ re, im }) => complex(re * unit, im * unit))
 }
@@ -97,7 +117,8 @@ function conditionDiagnostics(denominator: readonly number[], poles: readonly Co
  * digits given limit them, which a diagnostic tells where it matters.
  *
  * @param own coefficients from the highest power of s (in rad/s) down to the constant
- * @throws DesignError `no-poles`, `no-numerator`, `improper`, `order-out-of-range`, `not-finite`, `unstable-pole`, `pole-out-of-range`
+ * @throws DesignError `no-poles`, `no-numerator`, `improper`, `order-out-of-range`, `not-finite`, `unstable-pole`, `pole-out-of-range`,
+ * `coefficients-too-unlike`, `gain-out-of-range`
  */
 export function filterOfPolynomials(own: Pick<PolynomialTarget, 'numerator' | 'denominator'>): {
   readonly filter: Filter<'s'>
@@ -133,9 +154,10 @@ export function filterOfPolynomials(own: Pick<PolynomialTarget, 'numerator' | 'd
       degree,
     )
   }
-  const poles = rootsOf(denominator)
+  const poles = rootsOf(denominator, 'own.denominator')
   checkPoles(expand(poles), () => 'own.denominator')
-  const zeros = numerator.length > 1 ? rootsOf(numerator) : []
+  const zeros = numerator.length > 1 ? rootsOf(numerator, 'own.numerator') : []
   const gain = (numerator[0] ?? 1) / (denominator[0] ?? 1)
+  checkGain(gain, 'own.numerator')
   return { filter: fromHalf('s', { zeros, poles, gain }), diagnostics: conditionDiagnostics(denominator, poles) }
 }

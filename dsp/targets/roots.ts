@@ -11,6 +11,8 @@ const PAIR_TOLERANCE = 1e-9
 const POLE_RANGE = [1e-5, 1e10] as const
 /** Where a pole on the axis would have to go at least, as a part of its size. */
 const LEAST_DAMPING = 1e-6
+/** Sizes of a gain factor that keep all their digits once multiplied out. */
+const GAIN_RANGE = [1e-300, 1e300] as const
 
 type RootsTarget = Extract<OwnTarget, { given: 'roots' }>
 
@@ -77,11 +79,24 @@ export function checkPoles(poles: readonly Complex[], fieldOf: (index: number) =
   })
 }
 
+/** Refuses a gain factor that double precision can't hold with all its digits. */
+export function checkGain(gain: number, field: string): void {
+  const size = Math.abs(gain)
+  if (size >= GAIN_RANGE[0] && size <= GAIN_RANGE[1]) return
+  const nearest = Math.min(Math.max(size, GAIN_RANGE[0]), GAIN_RANGE[1])
+  throw new DesignError(
+    'gain-out-of-range',
+    field,
+    `${show(GAIN_RANGE[0])} ≤ size of the gain factor ≤ ${show(GAIN_RANGE[1])}; ${show(size)} was given.`,
+    gain < 0 ? -nearest : nearest,
+  )
+}
+
 /**
  * The analog filter given by its zeros, poles and gain factor. Conjugate pairs that agree to 1e-9 are made exact.
  *
  * @param own zeros and poles in rad/s; the gain is the factor before the products
- * @throws DesignError `unpaired-root`, `not-finite`, `unstable-pole`, `pole-out-of-range`, `improper`, `gain-zero` with fields under `own`
+ * @throws DesignError `unpaired-root`, `not-finite`, `unstable-pole`, `pole-out-of-range`, `improper`, `gain-out-of-range` with fields under `own`
  */
 export function filterOfRoots(own: Pick<RootsTarget, 'zeros' | 'poles' | 'gain'>): Filter<'s'> {
   if (own.poles.length === 0) {
@@ -101,5 +116,6 @@ export function filterOfRoots(own: Pick<RootsTarget, 'zeros' | 'poles' | 'gain'>
   if (own.gain === 0 || !Number.isFinite(own.gain)) {
     throw new DesignError('gain-out-of-range', 'own.gain', 'The gain factor must be a finite number other than 0.', 1)
   }
+  checkGain(own.gain, 'own.gain')
   return fromHalf('s', { zeros, poles, gain: own.gain })
 }
