@@ -85,25 +85,35 @@ export const firSpecSchema = z.strictObject({
 const plane = z.strictObject({ re: z.number(), im: z.number() })
 export const MOST_MEASURED_ROWS = 2000
 
+/** Stands in the sentence of a design and in exports: control characters and marks that turn the reading direction would spoil both. */
+const ownName = z
+  .string()
+  .max(80)
+  .regex(/\S/u, 'A name has at least one character that can be seen.')
+  .regex(
+    /^[^\p{Cc}\p{Cs}\p{Bidi_Control}]*$/u,
+    'A name has no control characters, no halves of characters and no marks that turn the reading direction.',
+  )
+
 /** An analog original of the user's own; s in rad/s. */
 export const ownTargetSchema = z.discriminatedUnion('given', [
   z.strictObject({
     given: z.literal('roots'),
-    name: z.string().min(1).max(80),
+    name: ownName,
     zeros: z.array(plane).max(24).readonly(),
     poles: z.array(plane).min(1).max(24).readonly(),
     gain: z.number(),
   }),
   z.strictObject({
     given: z.literal('polynomials'),
-    name: z.string().min(1).max(80),
+    name: ownName,
     /** Coefficients from the highest power of s down to the constant. */
     numerator: z.array(z.number()).min(1).max(25).readonly(),
     denominator: z.array(z.number()).min(2).max(25).readonly(),
   }),
   z.strictObject({
     given: z.literal('measured'),
-    name: z.string().min(1).max(80),
+    name: ownName,
     /** Frequency in Hz, rising; magnitude in dB; phase in degrees. */
     rows: z
       .array(z.tuple([z.number().nonnegative(), z.number(), z.number()]).readonly())
