@@ -37,7 +37,7 @@ export function DelayLine({ state }: { state: TrialView }) {
       </div>
       {isRun && delay && delay.measuredSeconds !== null ? (
         <p className="text-[12px] text-pencil">
-          Measured: the peak of the cross-correlation over {formatCount(delay.frames, 'sample', 'samples')}. Predicted:
+          Measured: the peak of the cross-correlation over {formatCount(delay.frames, 'sample', 'samples')}. Predicted:{' '}
           {predictedWords[run.zeroPhase ?? 'causal']}
         </p>
       ) : null}

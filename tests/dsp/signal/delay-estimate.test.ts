@@ -1,6 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import {
+  designFromSpec,
   discretize,
   footbridgeDemo,
   groupDelay,
@@ -81,6 +82,55 @@ describe('measureDelay', () => {
       const predicted = predictDelay(filter, spectrum)
       expect(Math.abs(measured.delaySeconds / predicted - 1)).toBeLessThan(0.02)
     }
+  })
+
+  describe('predicts for symmetric taps half of their number less one', () => {
+    const rate = 2000
+    const lowpass = (taps: number) => {
+      const bands = [
+        { fromHz: 0, toHz: 200, gain: 1, weight: 1 },
+        { fromHz: 400, toHz: 1000, gain: 0, weight: 36.2 },
+      ]
+      const budget = { magnitudeDb: 0.1, phaseDegrees: 5, removeDelay: true }
+      const fir = { kind: 'equiripple', response: 'lowpass', taps, bands } as const
+      return designFromSpec({ format: 1, sampleRateHz: rate, budget, fir }).digital
+    }
+
+    it('on the slow demonstration recording, whose correlation is broad but for a sharp tip', () => {
+      const { samples } = footbridgeDemo({ sampleRateHz: rate, durationSeconds: 60 })
+      const spectrum = welch(samples, {
+        sampleRateHz: rate,
+        segmentLength: 4096,
+        overlap: 0.5,
+        window: 'hann',
+        detrend: 'constant',
+      })
+      for (const taps of [30, 31, 32, 33, 35, 41]) {
+        const predicted = predictDelay(lowpass(taps), spectrum)
+        expect(Math.abs(predicted - (taps - 1) / 2 / rate), `${taps} taps`).toBeLessThan(1e-6)
+      }
+    })
+
+    it('whatever the shape of the spectrum over the pass band', () => {
+      const filters = [30, 31].map(lowpass)
+      const frequenciesHz = Float64Array.from({ length: 801 }, (_, k) => (k * rate) / 1600)
+      fc.assert(
+        fc.property(
+          fc.double({ min: 0, max: 4, noNaN: true }),
+          fc.double({ min: 0.5, max: 100, noNaN: true }),
+          fc.integer({ min: 1, max: 1e6 }),
+          (slope, kneeHz, seed) => {
+            const next = seededNoise(seed)
+            const density = frequenciesHz.map((hz) => (1 + (hz / kneeHz) ** 2) ** (-slope / 2) * (0.2 + next() ** 2))
+            for (const filter of filters) {
+              const samples = ('taps' in filter ? filter.taps.length - 1 : NaN) / 2
+              expect(Math.abs(predictDelay(filter, { frequenciesHz, density }) - samples / rate)).toBeLessThan(1e-6)
+            }
+          },
+        ),
+        { numRuns: 6 },
+      )
+    })
   })
 
   it('predicts for a tone the delay within its first period, as measured', () => {
