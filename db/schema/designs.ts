@@ -107,6 +107,6 @@ export const drafts = pgTable(
     }),
     check('drafts_revision_counts', sql`${table.revision} >= 1`),
     // The route refuses larger bodies; this stops whatever comes another way.
-    check('drafts_spec_size', sql`pg_column_size(${table.spec}) <= 65536`),
+    check('drafts_spec_size', sql`pg_column_size(${table.spec}) <= 262144`),
   ],
 )

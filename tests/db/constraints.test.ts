@@ -122,3 +122,18 @@ describe('what opens accounts', () => {
     )
   })
 })
+
+describe('drafts', () => {
+  const draft = (characters: number) =>
+    run(
+      `insert into drafts (design_id, account_id, spec, revision)
+       values ($1, $2, jsonb_build_object('a', repeat('x', $3::int)), 1)
+       on conflict (design_id, account_id) do update set spec = excluded.spec`,
+      [team.designId, team.members.owner.id, characters],
+    )
+
+  it('hold up to 256 kB, whichever way they come', async () => {
+    await draft(262_000)
+    await expect(draft(262_200)).rejects.toThrow(/drafts_spec_size/)
+  })
+})

@@ -11,7 +11,8 @@ import { designParamsSchema, draftSchema } from '@/lib/designs/schemas'
 export const PUT = teamRoute('draft.save', {
   params: designParamsSchema,
   body: draftSchema,
-  maxBytes: 65_536,
+  // Room for a measured table at its longest, in full precision.
+  maxBytes: 262_144,
   what: 'design',
   find: (access, { designId }, tx) => findDesign(access, designId, tx),
   run: async ({ params, input, access, tx }) => {
