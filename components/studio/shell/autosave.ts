@@ -7,11 +7,15 @@ import { forgetKeptDraft, keepDraft } from './kept-draft'
 
 const QUIET_MS = 700
 const RETRY_MS = 4000
+/** Browsers refuse more than 64 kB of what outlives its page, all together. */
+const MOST_KEEPALIVE_BYTES = 60_000
 
 export type AutosaveState =
   | { readonly kind: 'idle'; readonly savedAt: string | null }
   | { readonly kind: 'saving' }
   | { readonly kind: 'failed'; readonly reason: string }
+  /** The server won't have it as it is: sending it again would not help, the next edit may. */
+  | { readonly kind: 'refused'; readonly message: string }
   | { readonly kind: 'stale'; readonly current: DraftRecord }
 
 interface AutosaveOptions {
@@ -32,6 +36,7 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
   let revision = draft?.revision ?? 0
   let parent = parentNumber
   let saved: DesignSpec = store.getState().spec
+  let refused: DesignSpec | null = null
   let timer: ReturnType<typeof setTimeout> | undefined
   let underWay = false
 
@@ -49,7 +54,7 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
   async function save(): Promise<void> {
     clearTimeout(timer)
     const { spec, gestureMark } = store.getState()
-    if (gestureMark !== null || sameSpec(spec, saved)) return
+    if (gestureMark !== null || sameSpec(spec, saved) || spec === refused) return
     keepDraft(designId, spec)
     // Two at once would come from the same revision, and the second be taken for another window's: the answer to the first sends it.
     if (underWay) return
@@ -63,11 +68,18 @@ export function createAutosave({ designId, store, draft, parentNumber, onSaved }
       }
       revision = outcome.revision
       saved = spec
+      refused = null
       if (sameSpec(store.getState().spec, spec)) forgetKeptDraft(designId)
       onSaved({ spec, parentNumber: parent, revision, updatedAt: outcome.updatedAt })
       state.setState({ kind: 'idle', savedAt: outcome.updatedAt }, true)
       if (!sameSpec(store.getState().spec, spec)) later(QUIET_MS)
     } catch (error) {
+      if (error instanceof Refused) {
+        refused = spec
+        state.setState({ kind: 'refused', message: error.message }, true)
+        if (store.getState().spec !== spec) later(QUIET_MS)
+        return
+      }
       state.setState({ kind: 'failed', reason: reasonOf(error) }, true)
       later(RETRY_MS)
     } finally {
@@ -118,16 +130,26 @@ interface DraftBody {
   readonly revision: number
 }
 
-async function send(designId: string, body: DraftBody): Promise<AutosaveOutcome> {
+class Refused extends Error {}
+
+async function send(designId: string, draft: DraftBody): Promise<AutosaveOutcome> {
+  const body = JSON.stringify(draft)
   const response = await fetch(`/api/designs/${designId}/draft`, {
     method: 'PUT',
     headers: { 'content-type': 'application/json' },
-    body: JSON.stringify(body),
-    keepalive: true,
+    body,
+    keepalive: new Blob([body]).size <= MOST_KEEPALIVE_BYTES,
   })
   if (response.ok || response.status === 409) return (await response.json()) as AutosaveOutcome
+  if (response.status === 422 || response.status === 413) throw new Refused(await sentenceOf(response))
   if (response.status === 401) throw new Error('you were signed out; sign in again in another tab')
   throw new Error(`the server answered ${response.status}`)
+}
+
+/** What the server says of a refusal, in its own words (RFC 9457). */
+async function sentenceOf(response: Response): Promise<string> {
+  const problem = (await response.json().catch(() => null)) as { readonly detail?: unknown } | null
+  return typeof problem?.detail === 'string' ? problem.detail : `the server answered ${response.status}`
 }
 
 /** fetch throws a TypeError when no answer came at all. */

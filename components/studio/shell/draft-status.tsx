@@ -22,6 +22,12 @@ export function DraftStatus({
           Draft kept in this browser only: {state.reason}. Trying again.
         </p>
       )
+    case 'refused':
+      return (
+        <p role="alert" className="text-[13px] text-vermilion">
+          Draft not kept: {state.message}
+        </p>
+      )
     case 'stale':
       return (
         <div role="alert" className="flex flex-wrap items-center gap-2 text-[13px] text-vermilion">
