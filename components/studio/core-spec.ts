@@ -12,11 +12,17 @@ const partOf = (spec: DesignSpec): object =>
   isFamilyDesign(spec) ? spec.analog : isFirDesign(spec) ? spec.fir : spec.own
 const howOf = (spec: DesignSpec): unknown => (isFirDesign(spec) ? null : spec.how)
 
+/** Whether two specs differ in their sheets at most. */
+export const sharesCore = (one: DesignSpec, other: DesignSpec): boolean =>
+  partOf(one) === partOf(other) &&
+  howOf(one) === howOf(other) &&
+  one.budget === other.budget &&
+  one.sampleRateHz === other.sampleRateHz
+
 /** The spec without its sheet. */
 export function coreOf(spec: DesignSpec): DesignSpec {
   const known = cores.get(partOf(spec))
-  if (known && howOf(known) === howOf(spec) && known.budget === spec.budget && known.sampleRateHz === spec.sampleRateHz)
-    return known
+  if (known && sharesCore(known, spec)) return known
   const core = spec.sheet === undefined ? spec : bare(spec)
   cores.set(partOf(core), core)
   return core

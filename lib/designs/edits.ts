@@ -103,8 +103,13 @@ export function withAnalog(spec: FamilyDesign, change: Partial<AnalogSpec>): Fam
 /** A design of the user's own original; a measured one can only be fitted. */
 export function withOwn(spec: DesignSpec, own: OwnTarget): OwnDesign {
   const next: OwnDesign = { ...commonOf(spec), own, how: { method: 'bilinear', hold: 'none' } }
-  if (own.given !== 'measured')
-    return isOwnDesign(spec) && spec.how.method !== 'fitted' ? { ...next, how: spec.how } : next
+  if (own.given !== 'measured') {
+    if (isFirDesign(spec) || (spec.how.method === 'bilinear' && spec.how.hold === 'edges')) return next
+    if (spec.how.method !== 'fitted') return { ...next, how: spec.how }
+    // A fit stays one, with as many poles as the new original has.
+    const { method, upToHz, freeDelay } = spec.how
+    return { ...next, how: { method, upToHz, ...(freeDelay === undefined ? {} : { freeDelay }) } }
+  }
   const order = isOwnDesign(spec) && spec.how.method === 'fitted' ? (spec.how.order ?? 4) : 4
   return { ...next, how: { method: 'fitted', upToHz: usualFitHz(next), order } }
 }

@@ -46,7 +46,7 @@ export function withFir(spec: DesignSpec, choice: FirChoice): FirDesign {
       fir: {
         kind,
         response: isAllowed ? fir.response : 'lowpass',
-        taps: fir.taps,
+        taps: kind === 'half-band' ? halfBandTaps(fir.taps) : fir.taps,
         bands: weighted(bands, kind),
         ...windowParts(window, fir.attenuationDb),
       },
@@ -64,6 +64,9 @@ export function withFir(spec: DesignSpec, choice: FirChoice): FirDesign {
     },
   }
 }
+
+/** The nearest number that a half-band filter can have: 4k + 3. */
+const halfBandTaps = (taps: number): number => Math.max(7, 4 * Math.round((taps - 3) / 4) + 3)
 
 /** Half-band and minimum-phase filters come in the plain responses alone. */
 function kindAllows(kind: FirKind, response: FirResponse): boolean {

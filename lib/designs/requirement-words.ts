@@ -254,6 +254,6 @@ export function sheetSummary(results: readonly Judgement[]): string {
   const count = met === results.length ? `All ${met} met` : `${met} of ${results.length} met`
   if (results.length === 1) return `${met} of 1 ${words}`
   return met === results.length
-    ? `${count}; closest: line ${worst + 1}, ${words}`
-    : `${count}; worst: line ${worst + 1}, ${words}`
+    ? `${count}; closest to its limit: line ${worst + 1}, ${words}`
+    : `${count}; farthest past its limit: line ${worst + 1}, ${words}`
 }

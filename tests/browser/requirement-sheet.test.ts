@@ -44,7 +44,7 @@ for (const [width, scheme] of [
         await addLine(page, 'Band to lose')
         await addLine(page, 'Phase departure')
         await soon(() => lines(page).count()).toBe(3)
-        await soon(() => said(page)).toMatch(/\d of 3 met; worst: line \d, missed by/)
+        await soon(() => said(page)).toMatch(/\d of 3 met; farthest past its limit: line \d, missed by/)
 
         // Quantities as people type them; what can't be is refused with the nearest that works.
         await number(page, 'Line 2, from').fill('0.3k')

@@ -102,7 +102,7 @@ describe('the panel and the store', () => {
 describe('the panel as it reads', () => {
   it('says each line’s value, margin and worst frequency, and sums them up', () => {
     const said = wordsOf(markup(spec))
-    expect(said).toContain('2 of 3 met; worst: line 3, missed by')
+    expect(said).toContain('2 of 3 met; farthest past its limit: line 3, missed by')
     expect(said).toMatch(/met by 0\.\d+ dB/)
     expect(said).toMatch(/worst at 250 Hz/)
     expect(said).not.toMatch(/NaN|undefined|\[object/)

@@ -69,14 +69,16 @@ describe('edits of an FIR filter', () => {
 
 describe('originals of one’s own', () => {
   const rows = [1, 10, 100, 200, 300].map((hz) => [hz, -hz / 100, -hz / 2] as const)
-  it('are fitted where they are measured, and brought over without holding where they are given by roots', () => {
+  it('are fitted where they are measured, and keep a fit where they are given by roots', () => {
     const measured = withOwn(defaultSpec, { given: 'measured', name: 'Mount 3', rows })
     expect(measured.how).toEqual({ method: 'fitted', upToHz: 300, order: 4 })
     expect(plain(measured)).toBe(
       'The response “Mount 3”, given as measured, run at 1.2 kHz by the fitted method with 4 poles up to 300 Hz, delay kept.',
     )
     const roots = { given: 'roots', name: 'Geophone', zeros: [], poles: [{ re: -3, im: 0 }], gain: 3 } as const
-    expect(withOwn(measured, roots).how).toEqual({ method: 'bilinear', hold: 'none' })
+    // A fit stays one, with as many poles as the roots have; an edge to hold there is none any more.
+    expect(withOwn(measured, roots).how).toEqual({ method: 'fitted', upToHz: 300 })
+    expect(withOwn(defaultSpec, roots).how).toEqual({ method: 'bilinear', hold: 'none' })
   })
 
   it('count as changes', () => {

@@ -5,7 +5,6 @@ import { isOffered, type CandidateRequest, type DesignSpec, type OfferedRow, typ
 import { ChoiceGroup } from '@/components/handover/choice-group'
 import { Button, buttonClass } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
-import { requirementText } from '@/lib/designs/requirement-words'
 import { sheetOf } from '@/lib/designs/sheet-edits'
 import { formatFixed } from '@/lib/format/quantity'
 import { rememberCandidates } from '../compare/kept-candidates'
@@ -146,7 +145,7 @@ function Candidates({
           </a>
         </p>
       ) : null}
-      {refused.length > 0 ? <RefusedList rows={refused} sheetWords={sheet.map(requirementText)} /> : null}
+      {refused.length > 0 ? <RefusedList rows={refused} /> : null}
     </div>
   )
 }
@@ -177,7 +176,7 @@ function progressWords({ state, rows, seconds }: SearchState): string {
   }
 }
 
-function RefusedList({ rows, sheetWords }: { rows: readonly RefusedRow[]; sheetWords: readonly string[] }) {
+function RefusedList({ rows }: { rows: readonly RefusedRow[] }) {
   return (
     <details className="text-[13px]">
       <summary className="w-fit min-h-6 cursor-pointer leading-6 text-pencil hover:text-ink">
@@ -187,12 +186,7 @@ function RefusedList({ rows, sheetWords }: { rows: readonly RefusedRow[]; sheetW
         {rows.map(({ id, parts, refused }) => (
           <div key={id} className="contents">
             <dt className="border-t border-graph py-1">{nameOf(parts)}</dt>
-            <dd className="border-t border-graph py-1 text-pencil">
-              {refused.reason}
-              {refused.requirementIndex === null
-                ? null
-                : ` (line ${refused.requirementIndex + 1}: ${sheetWords[refused.requirementIndex] ?? ''})`}
-            </dd>
+            <dd className="border-t border-graph py-1 text-pencil">{refused.reason}</dd>
           </div>
         ))}
       </dl>

@@ -29,7 +29,7 @@ function advantageWords({ fromHz, upToHz, versions, isAdvantage, removeDelay }: 
   )
   const band = fromHz > 0 ? `From ${formatHz(fromHz, 3)} to ${formatHz(upToHz, 4)}` : `Up to ${formatHz(upToHz, 4)}`
   const verdict = isAdvantage
-    ? 'the fitted version is the closest of the three.'
-    : 'the fitted version has no advantage here.'
+    ? 'the fitted version is the closest of these three.'
+    : 'the fitted version has no advantage over these two here.'
   return `${band}${removeDelay ? ', best delay removed' : ''}, the worst departures are: ${figures.join('; ')} – ${verdict}`
 }

@@ -40,7 +40,7 @@ export function MeasuredForm({ given, onTake, readOnly }: GivenForm<Measured>) {
   }
 
   return (
-    <DropGround onFile={(file) => void takeFile(file)}>
+    <DropGround onFile={(file) => void (readOnly ? undefined : takeFile(file))}>
       <form
         className="flex flex-col gap-4"
         onSubmit={(event) => {

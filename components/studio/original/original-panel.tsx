@@ -1,8 +1,9 @@
 'use client'
 
 import { useState } from 'react'
-import { isOwnDesign, type DesignSpec, type OwnTarget } from '@/dsp'
+import { isOwnDesign, ownTargetSchema, type DesignSpec, type OwnTarget } from '@/dsp'
 import { ChoiceGroup } from '@/components/handover/choice-group'
+import { Notice } from '@/components/ui/notice'
 import { withOwn } from '@/lib/designs/edits'
 import { ownWords } from '@/lib/designs/words'
 import { useOnPage } from '../panels/chart/use-on-page'
@@ -35,11 +36,23 @@ export function OriginalPanel({
 }) {
   const own = isOwnDesign(spec) ? spec.own : null
   const [way, setWay] = useState<Given>(own?.given ?? 'roots')
+  const [problem, setProblem] = useState<string | null>(null)
   const onPage = useOnPage()
   if (!onPage) return null
   const take = (next: OwnTarget) => {
-    const now = store.getState().spec
-    store.getState().propose(withOwn(now, next))
+    const shape = ownTargetSchema.safeParse(next)
+    if (!shape.success) {
+      setProblem(shape.error.issues[0]?.message ?? 'This response can’t be kept.')
+      return
+    }
+    const { propose, dismissRefusal } = store.getState()
+    if (propose(withOwn(store.getState().spec, next))) {
+      setProblem(null)
+      return
+    }
+    // Said here, where it was given, and not a page further up.
+    setProblem(store.getState().refusal?.message ?? 'This response makes no filter.')
+    dismissRefusal()
   }
   const form = { readOnly, onTake: take }
   return (
@@ -50,7 +63,17 @@ export function OriginalPanel({
             ? `The design is held against “${own.name}”, ${ownWords[own.given]}.`
             : 'Besides the families, a design may be held against an analog response of your own.'}
         </p>
-        <ChoiceGroup legend="Given as" inline choices={ways} value={way} onChange={(next) => setWay(next)} />
+        <ChoiceGroup
+          legend="Given as"
+          inline
+          choices={ways}
+          value={way}
+          onChange={(next) => {
+            setWay(next)
+            setProblem(null)
+          }}
+        />
+        {problem ? <Notice kind="caution">{problem}</Notice> : null}
         {way === 'roots' ? <RootsForm {...form} given={own?.given === 'roots' ? own : null} /> : null}
         {way === 'polynomials' ? <PolynomialsForm {...form} given={own?.given === 'polynomials' ? own : null} /> : null}
         {way === 'measured' ? <MeasuredForm {...form} given={own?.given === 'measured' ? own : null} /> : null}

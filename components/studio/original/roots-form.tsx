@@ -3,6 +3,7 @@ import type { OwnTarget } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
 import { gainForUnityAtDc, readRoots, writtenRoots, type RootUnit } from '@/lib/targets/written-roots'
+import { parsePlainNumber } from '@/lib/units/parse'
 import { ChoiceGroup } from '@/components/handover/choice-group'
 import type { GivenForm } from './given-form'
 import { TextAreaField } from './text-area-field'
@@ -13,6 +14,8 @@ const units = [
   { value: 'rad/s', label: 'rad/s' },
   { value: 'Hz', label: 'Hz' },
 ] as const
+
+const MOST_ROOTS = 24
 
 /** An original given by its zeros, poles and gain. */
 export function RootsForm({ given, onTake, readOnly }: GivenForm<Roots>) {
@@ -27,14 +30,24 @@ export function RootsForm({ given, onTake, readOnly }: GivenForm<Roots>) {
     const [foundPoles, foundZeros] = [readRoots(poles, unit), readRoots(zeros, unit)]
     const told = (found: typeof foundPoles) =>
       found.ok ? [] : found.problems.map(({ line, reason }) => `Line ${line}: ${reason}`)
-    setProblems({ poles: told(foundPoles), zeros: told(foundZeros) })
+    const many = (found: typeof foundPoles) =>
+      found.ok && found.value.length > MOST_ROOTS
+        ? [`There are ${found.value.length}; at most ${MOST_ROOTS} can be kept.`]
+        : []
+    const [poleProblems, zeroProblems] = [
+      [...told(foundPoles), ...many(foundPoles)],
+      [...told(foundZeros), ...many(foundZeros)],
+    ]
+    setProblems({ poles: poleProblems, zeros: zeroProblems })
+    if (poleProblems.length + zeroProblems.length > 0) return null
     return foundPoles.ok && foundZeros.ok ? { poles: foundPoles.value, zeros: foundZeros.value } : null
   }
 
   function take() {
     const roots = read()
-    const value = Number(gain.trim().replace('−', '-').replace(',', '.'))
-    if (gain.trim() === '' || !Number.isFinite(value) || value === 0) {
+    const written = parsePlainNumber(gain)
+    const value = written.ok ? written.value : 0
+    if (value === 0) {
       setProblems((known) => ({ ...known, gain: ['The gain is a number other than 0.'] }))
       return
     }

@@ -45,7 +45,7 @@ export function viewFromSearch(search: URLSearchParams): { view: Partial<StackVi
   const unit = search.get('departure')
   if (unit === 'db' || unit === 'degrees' || unit === 'microseconds') view.departureUnit = unit
   const floor = Number(search.get('floor') ?? Number.NaN)
-  if (floor <= -20 && floor >= -400) view.magnitudeFloorDb = floor
+  if (floor <= -1 && floor >= -400) view.magnitudeFloorDb = floor
   const without = search.get('without')
   if (without !== null) view.hidden = traceIds.filter((id) => without.split('.').includes(id))
   const at = Number(search.get('at') ?? Number.NaN)

@@ -1,11 +1,11 @@
 'use client'
 
 import { useMemo, useState } from 'react'
-import { DesignError, isFir, isFirDesign, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
+import { DesignError, isFir, isFirDesign, residual, worstDeparture, type DepartureBudget, type DesignSpec } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { classNames } from '@/lib/format/class-names'
 import { formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
-import { versionLabels } from '@/lib/designs/words'
+import { versionLabels, type VersionId } from '@/lib/designs/words'
 import { parseDecibels, parseDegrees, parseFrequency } from '@/lib/units/parse'
 import { passBandOf } from '@/lib/designs/outline'
 import { methodAsShown, type Trust, type Versions } from '../derive'
@@ -41,21 +41,7 @@ export function DepartureTable({
   const { budget } = spec
 
   const rows = useMemo(
-    () =>
-      trust.flatMap((entry, rank) => {
-        const { analog } = versions
-        const version = versions.digital.find(({ id }) => id === entry.id)
-        if (!version || !analog || isFir(version.filter)) return []
-        const { filter } = version
-        const worst = orRefusal(() =>
-          worstDeparture(analog, filter, upToHz, {
-            ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}),
-            removeDelay: budget.removeDelay,
-          }),
-        )
-        if (worst instanceof DesignError) return []
-        return [{ ...entry, worst, closest: rank === 0, stated: version.stated }]
-      }),
+    () => rowsOf(versions, trust, [fromHz, upToHz], budget.removeDelay),
     [trust, versions, fromHz, upToHz, budget.removeDelay],
   )
 
@@ -91,7 +77,7 @@ export function DepartureTable({
           onValue={(phaseDegrees) => setBudget({ phaseDegrees })}
           disabled={readOnly}
         />
-        <label className="inline-flex min-h-6 items-center gap-1.5">
+        <label className="inline-flex min-h-6 items-baseline gap-1.5">
           <input
             type="checkbox"
             className="size-4 accent-spruce"
@@ -167,7 +153,7 @@ export function DepartureTable({
                   {row.worst.microseconds < 0.001 ? '<\u20090.001' : formatNumber(row.worst.microseconds, 3)}
                 </td>
                 <td className="numeric pl-2 text-right whitespace-nowrap">
-                  {trustText(row).replace(/^to /, '')}
+                  {row.trust ? trustText(row.trust).replace(/^to /, '') : '—'}
                   {row.closest ? (
                     <span className="block font-text text-[12px] leading-4 text-moss">farthest</span>
                   ) : null}
@@ -193,6 +179,42 @@ export function DepartureTable({
       <FitAdvantage spec={spec} />
     </section>
   )
+}
+
+interface Row {
+  readonly id: VersionId
+  readonly stated: boolean
+  readonly closest: boolean
+  readonly worst: { readonly db: number; readonly degrees: number; readonly microseconds: number }
+  /** Null where nothing can be said of how far it may be trusted. */
+  readonly trust: Trust | null
+}
+
+function rowsOf(
+  { analog, reference, digital }: Versions,
+  trust: readonly Trust[],
+  [fromHz, upToHz]: readonly [number, number],
+  removeDelay: boolean,
+): readonly Row[] {
+  if (!analog) {
+    return digital.flatMap(({ id, filter, stated }) => {
+      const found = orRefusal(() => residual(reference, filter, fromHz, upToHz, { removeDelay }))
+      if (found instanceof DesignError) return []
+      const { db, degrees, atHz } = found
+      const microseconds = atHz.degrees > 0 ? (degrees / 360 / atHz.degrees) * 1e6 : 0
+      return [{ id, stated, closest: false, worst: { db, degrees, microseconds }, trust: null }]
+    })
+  }
+  return trust.flatMap((entry, rank) => {
+    const version = digital.find(({ id }) => id === entry.id)
+    if (!version || isFir(version.filter)) return []
+    const { filter, stated } = version
+    const worst = orRefusal(() =>
+      worstDeparture(analog, filter, upToHz, { ...(fromHz > 0 && fromHz < upToHz ? { fromHz } : {}), removeDelay }),
+    )
+    if (worst instanceof DesignError) return []
+    return [{ id: entry.id, stated, closest: rank === 0, worst, trust: entry }]
+  })
 }
 
 const cell = (met: boolean) => classNames('numeric pl-2 text-right', met ? 'text-moss' : 'text-vermilion')

@@ -75,7 +75,7 @@ export function InlineQuantity({
     <>
       <span
         className={classNames(
-          'numeric inline-grid border-b border-dotted border-pencil text-[13px] text-ink focus-within:border-solid focus-within:border-spruce focus-within:bg-spruce-wash hover:bg-spruce-wash',
+          'numeric inline-grid items-center border-b border-dotted border-pencil text-[13px] text-ink focus-within:border-solid focus-within:border-spruce focus-within:bg-spruce-wash hover:bg-spruce-wash',
           problem && 'border-solid border-vermilion',
         )}
       >

@@ -11,7 +11,7 @@ import {
   waitingTrace,
   type Versions,
 } from '../derive'
-import { coreOf } from '../core-spec'
+import { coreOf, sharesCore } from '../core-spec'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { isFirDesign, type DesignSpec } from '@/dsp'
@@ -44,7 +44,8 @@ const tooSlowInMotion = (spec: DesignSpec): readonly TraceId[] => (statedId(spec
 export function useDrawnVersions(store: StudioStore) {
   const spec = useStudio(store, (state) => state.spec)
   const hidden = useStudio(store, (state) => state.view.hidden)
-  const inMotion = useStudio(store, (state) => state.gestureMark !== null)
+  // A drag of a requirement leaves the filter as it is, and the fit with it.
+  const inMotion = useStudio(store, (state) => state.gestureMark !== null && !sharesCore(state.gestureMark, state.spec))
   const core = coreOf(spec)
   const { versions, waiting } = useMemo(() => {
     const left = inMotion ? tooSlowInMotion(core).filter((id) => !hidden.includes(id)) : []

@@ -14,7 +14,7 @@ const departureUnits: readonly { value: DepartureUnit; word: string; name: strin
 /** Sheet around the letters, so that curves may pass behind them. */
 const haloed = { paintOrder: 'stroke', WebkitTextStroke: '4px var(--sheet)' } as const
 
-const floors = [-60, -100, -160] as const
+const floors = [-1, -60, -100, -160] as const
 
 /** In the lower left corner of each plot: what it shows, and how else it could. */
 export function PlotCorners({

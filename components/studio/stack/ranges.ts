@@ -60,7 +60,7 @@ const joined = (spans: readonly (Span | null)[]): Span | null =>
   )
 
 export function autoRanges(spec: DesignSpec, traces: readonly Trace[], view: StackView): Ranges {
-  const telling = traces.filter((trace) => trace.id === 'analog' || trace.stated)
+  const telling = traces.filter((trace) => trace.id === 'analog' || trace.id === 'candidate' || trace.stated)
   const seen: readonly Span[] = [[view.fromHz, view.toHz]]
   const seenPass = passBands(spec).map(([from, to]): Span => [Math.max(from, view.fromHz), Math.min(to, view.toHz)])
   return {
@@ -79,8 +79,10 @@ export function autoRanges(spec: DesignSpec, traces: readonly Trace[], view: Sta
 /** From the floor to a little above the highest of both curves. */
 function magnitudeRange(found: Span | null, view: StackView): Span {
   const floor = Math.min(view.magnitudeFloorDb, -1)
+  // A close look at the pass band keeps its proportions; elsewhere the highest of the curves must find room.
+  if (floor > -6) return [floor, -floor / 2]
   const headroom = Math.max(Math.abs(floor) / 10, 6)
-  const highest = found ? Math.min(Math.ceil((found[1] + 1) / 6) * 6, 40) : 0
+  const highest = found ? Math.min(Math.ceil((found[1] + 1) / 6) * 6, 240) : 0
   return [floor, Math.max(headroom, highest)]
 }
 

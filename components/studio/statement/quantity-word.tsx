@@ -41,6 +41,16 @@ export function QuantityWord(props: QuantityWordProps) {
   const input = useRef<HTMLInputElement>(null)
   const noteId = useId()
   const note = unread ?? refusal?.message ?? null
+  // A refused text stands only as long as its refusal: once another edit has taken that away, the word says what the design holds.
+  const [wasRefused, setWasRefused] = useState(false)
+  const isRefused = refusal !== null
+  if (wasRefused !== isRefused) {
+    setWasRefused(isRefused)
+    if (!isRefused && refused !== null) {
+      setTyped(null)
+      setRefused(null)
+    }
+  }
   const shown = typed ?? text
 
   async function finish(): Promise<boolean> {
