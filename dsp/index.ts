@@ -26,15 +26,18 @@ export {
   firResponseSchema,
   firSpecSchema,
   firWindowSchema,
-  isFamilyDesign,
-  isFirDesign,
-  isOwnDesign,
   methodSchema,
-  MOST_MEASURED_ROWS,
-  MOST_TAPS,
   ownTargetSchema,
   responseSchema,
 } from './spec'
+export {
+  isFamilyDesign,
+  isFirDesign,
+  isOwnDesign,
+  MOST_MEASURED_ROWS,
+  MOST_REQUIREMENTS,
+  MOST_TAPS,
+} from './spec-kinds'
 export type {
   AnalogSpec,
   DepartureBudget,
@@ -54,7 +57,6 @@ export type {
   ResponseKind,
 } from './spec'
 export {
-  MOST_REQUIREMENTS,
   requirementSchema,
   sheetSchema,
   type Requirement,
@@ -104,6 +106,7 @@ export { toTransferFunction, type TransferFunction } from './forms/transfer-func
 export { designFir } from './fir/design-fir'
 export { equiripple, type Equiripple } from './fir/equiripple'
 export { bandsWeightedFor, firMeets, leastTaps, type FirRequirement } from './fir/least-taps'
+export { mostTaps } from './fir/check'
 export { firBandMagnitudes, type BandMagnitude } from './fir/band-magnitudes'
 export { firWindow, kaiserBeta, kaiserOrder } from './fir/windows'
 export { firZeros, MOST_TAPS_FOR_ZEROS } from './fir/zeros'

@@ -1,5 +1,6 @@
 import { DesignError } from '../errors'
-import { MOST_TAPS, type FirSpec } from '../spec'
+import type { FirSpec } from '../spec'
+import { MOST_TAPS } from '../spec-kinds'
 import { checkedAttenuation } from './windows'
 import { show } from '../check'
 
@@ -205,21 +206,29 @@ export function tapsGrid(fir: Draft, sampleRateHz: number): { readonly step: num
   return { step: 1, remainder: 0 }
 }
 
+/** Factoring a minimum-phase filter takes time that grows with the cube of its taps. */
+const MOST_MINIMUM_PHASE_TAPS = 256
+
+/** The most taps that a filter of this kind can have. */
+export const mostTaps = (kind: FirSpec['kind']): number =>
+  kind === 'minimum-phase' ? MOST_MINIMUM_PHASE_TAPS : MOST_TAPS
+
 function checkTaps(fir: FirSpec, sampleRateHz: number): void {
   const { taps } = fir
   const { step, remainder } = tapsGrid(fir, sampleRateHz)
+  const most = mostTaps(fir.kind)
   const least = fir.kind === 'half-band' ? 7 : LEAST_TAPS
   const fit = (value: number): number => {
     const near = Math.round((value - remainder) / step) * step + remainder
     const low = Math.ceil((least - remainder) / step) * step + remainder
-    const high = Math.floor((MOST_TAPS - remainder) / step) * step + remainder
+    const high = Math.floor((most - remainder) / step) * step + remainder
     return Math.min(Math.max(near, low), high)
   }
-  if (!Number.isInteger(taps) || taps < least || taps > MOST_TAPS) {
+  if (!Number.isInteger(taps) || taps < least || taps > most) {
     throw new DesignError(
       'taps-out-of-range',
       'fir.taps',
-      `The number of taps is a whole number from ${least} to ${MOST_TAPS}; ${taps} was given.`,
+      `The number of taps${fir.kind === 'minimum-phase' ? ' of a minimum-phase filter' : ''} is a whole number from ${least} to ${most}; ${taps} was given.`,
       Number.isNaN(taps) ? fit(63) : fit(taps),
     )
   }

@@ -1,7 +1,7 @@
 import { DesignError } from '../errors'
-import { MOST_TAPS, type FirBand, type FirSpec } from '../spec'
+import type { FirBand, FirSpec } from '../spec'
 import { firBandMagnitudes } from './band-magnitudes'
-import { checkFirBands, tapsGrid } from './check'
+import { checkFirBands, mostTaps, tapsGrid } from './check'
 import { undescribed } from './design-fir'
 import { minimumPhaseErrors } from './minimum-phase'
 import { kaiserOrder } from './windows'
@@ -95,14 +95,14 @@ function estimateTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requirem
  *
  * @param fir a statement without its number of taps
  * @returns taps, among those that such a filter can have
- * @throws DesignError as designFir does; `out-of-reach` with field `fir.taps` when MOST_TAPS don't do
+ * @throws DesignError as designFir does; `out-of-reach` with field `fir.taps` when the most taps of its kind don't do
  */
 export function leastTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requirement: FirRequirement): number {
   checkFirBands(fir, sampleRateHz)
   const { step, remainder } = tapsGrid(fir, sampleRateHz)
   // Numbers of taps are counted as remainder + step·index.
   const lowest = Math.ceil(((fir.kind === 'half-band' ? 7 : 3) - remainder) / step)
-  const highest = Math.floor((MOST_TAPS - remainder) / step)
+  const highest = Math.floor((mostTaps(fir.kind) - remainder) / step)
   const tapsAt = (index: number): number => remainder + step * index
   const known = new Map<number, boolean>()
   const meets = (index: number): boolean => {
@@ -127,7 +127,7 @@ export function leastTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requ
   } else {
     low = high
     for (;;) {
-      if (low >= highest) throw outOfReach(requirement)
+      if (low >= highest) throw outOfReach(requirement, mostTaps(fir.kind))
       high = Math.min(low + stride, highest)
       if (meets(high)) break
       low = high
@@ -146,12 +146,12 @@ export function leastTaps(fir: Omit<FirSpec, 'taps'>, sampleRateHz: number, requ
   }
 }
 
-function outOfReach({ passWithinDb, stopAttenuationDb }: FirRequirement): DesignError {
+function outOfReach({ passWithinDb, stopAttenuationDb }: FirRequirement, most: number): DesignError {
   return new DesignError(
     'out-of-reach',
     'fir.taps',
-    `${MOST_TAPS} taps of this kind don’t keep within ${passWithinDb} dB and ${stopAttenuationDb} dB down; more room between the bands helps.`,
-    MOST_TAPS,
+    `${most} taps of this kind don’t keep within ${passWithinDb} dB and ${stopAttenuationDb} dB down; more room between the bands helps.`,
+    most,
   )
 }
 

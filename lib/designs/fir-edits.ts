@@ -1,5 +1,6 @@
 import {
   isFirDesign,
+  mostTaps,
   type DesignSpec,
   type FirBand,
   type FirDesign,
@@ -46,7 +47,7 @@ export function withFir(spec: DesignSpec, choice: FirChoice): FirDesign {
       fir: {
         kind,
         response: isAllowed ? fir.response : 'lowpass',
-        taps: kind === 'half-band' ? halfBandTaps(fir.taps) : fir.taps,
+        taps: kind === 'half-band' ? halfBandTaps(fir.taps) : Math.min(fir.taps, mostTaps(kind)),
         bands: weighted(bands, kind),
         ...windowParts(window, fir.attenuationDb),
       },

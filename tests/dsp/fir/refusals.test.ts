@@ -61,6 +61,7 @@ describe('refusals of an FIR filter', () => {
     ['a half-band filter of another length', lowPass('half-band', 41, 0.4, 0.6), 'fir.taps'],
     ['half-band edges that are not even', lowPass('half-band', 43, 0.4, 0.7), 'fir.bands.1.fromHz'],
     ['a half-band filter that is another response', { ...highPass, kind: 'half-band', taps: 43 }, 'fir.response'],
+    ['a minimum-phase filter too long to factor', lowPass('minimum-phase', 257, 0.3, 0.32), 'fir.taps'],
     ['a minimum-phase differentiator', { ...slope, kind: 'minimum-phase' }, 'fir.response'],
   ] as const)('%s, with the nearest that works', (_, spec, field) => {
     const error = refusal(spec as FirSpec)
