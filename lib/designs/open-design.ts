@@ -6,7 +6,7 @@ import { findVersion, listVersions } from '@/db/queries/versions'
 import type { ValidSession } from '@/lib/auth/sessions'
 import { accessFor } from '@/lib/auth/viewer'
 import { mayDo } from '@/lib/permissions'
-import { recomputeDifference } from './recompute'
+import { knownDifference } from './known-difference'
 import type { DesignRecord, DraftRecord, StudioProps, Viewer } from './types'
 
 /** What the studio is given of a design; the rest of the row stays here. */
@@ -26,7 +26,7 @@ async function openDraft(session: ValidSession, design: DesignRow, hasVersions: 
   return { spec: design.startingSpec, parentNumber: null, revision: 0, updatedAt: new Date().toISOString() }
 }
 
-/** All that the studio opens with; the latest version is computed anew and held against what was stored. */
+/** All that the studio opens with; the latest version is computed anew, once in each process, and held against what was stored. */
 export async function openDesign(
   session: ValidSession,
   access: Access,
@@ -41,6 +41,6 @@ export async function openDesign(
     viewer: viewerOf(session, design),
     versions,
     draft: await openDraft(session, design, versions.length > 0),
-    difference: latest ? recomputeDifference(latest) : null,
+    difference: latest ? knownDifference(latest) : null,
   }
 }
