@@ -5,11 +5,13 @@ import { judge, LEVEL_KINDS } from './judge'
 import type { Outline, Stretch } from './outline'
 import type { CandidateRequest } from './request'
 import type { Miss } from './screen'
+import { fitWindow, levelLinesOf, type WindowSetting } from './window-fit'
 
 /*
  * The fewest taps of a FIR kind that meet a sheet. An estimate is the start; from there the number is doubled or cut until it brackets
  * what pass and stop lines need, and halved down to it. All lines are then judged, and the room is spent by moving the edges of the bands
- * into the room between them: those of what is lost for a narrower filter, those of what is kept for a flatter one.
+ * into the room between them: those of what is lost for a narrower filter, those of what is kept for a flatter one. A windowed filter's
+ * cut and attenuation are searched for each number of taps.
  */
 
 const MOST_CANDIDATE_TAPS = 400
@@ -64,6 +66,8 @@ interface Plan {
   /** Lengths are `first`, `first + step`, … */
   readonly first: number
   readonly step: number
+  /** Of a windowed filter, by its number of taps: what came nearest. */
+  readonly settings: Map<number, WindowSetting>
 }
 
 function widened({ stretches, sampleRateHz }: Outline): Stretch[] {
@@ -141,18 +145,18 @@ function planOf(request: CandidateRequest, outline: Outline, what: FiniteKind): 
     estimate: estimateOf(what, errors, transition),
     first: FEWEST_TAPS,
     step,
+    settings: new Map(),
   }
 }
 
-/** Edges moved into the room beside them by a part of it. */
-function moved({ stretches, request }: Plan, part: number): readonly Stretch[] {
+/** Edges moved into the room beside them by a part of it: those of what is lost, or below 0 those of what is kept. */
+function moved({ stretches }: Plan, part: number): readonly Stretch[] {
   if (part === 0) return stretches
   return stretches.map((stretch, k) => {
     const below = stretches[k - 1]
     const above = stretches[k + 1]
-    const moves = request.spend === 'flatter' ? stretch.isKept : !stretch.isKept
-    if (!moves) return stretch
-    const reach = part * INTO_ROOM
+    if (stretch.isKept === part > 0) return stretch
+    const reach = Math.abs(part) * INTO_ROOM
     return {
       ...stretch,
       fromHz: below === undefined ? stretch.fromHz : stretch.fromHz - (stretch.fromHz - below.toHz) * reach,
@@ -161,8 +165,8 @@ function moved({ stretches, request }: Plan, part: number): readonly Stretch[] {
   })
 }
 
-function specOf(plan: Plan, taps: number, part = 0): FirDesign {
-  const { request, what, response, attenuationDb } = plan
+function specOf(plan: Plan, taps: number, { part, attenuationDb }: WindowSetting): FirDesign {
+  const { request, what, response } = plan
   const errors = plan.stretches.map(errorOf)
   const largest = Math.max(...errors)
   const isWeighted = what.kind !== 'windowed' && what.kind !== 'half-band'
@@ -187,13 +191,32 @@ function specOf(plan: Plan, taps: number, part = 0): FirDesign {
   }
 }
 
+/** The bands in their places, or for a window the cut and attenuation that come nearest with so many taps. */
+function settingOf(plan: Plan, taps: number): WindowSetting {
+  const { request, what, attenuationDb, settings } = plan
+  const { sheet, sampleRateHz } = request
+  const known = settings.get(taps)
+  if (known !== undefined) return known
+  if (what.kind !== 'windowed') return { part: 0, attenuationDb }
+  const search = {
+    lines: levelLinesOf(sheet, sampleRateHz),
+    sampleRateHz,
+    attenuationDb,
+    specOf: (setting: WindowSetting) => specOf(plan, taps, setting).fir,
+  }
+  const found = fitWindow(search, [...settings.values()].at(-1))
+  settings.set(taps, found)
+  return found
+}
+
 interface Trial extends Found {
   readonly miss: Miss | null
 }
 
 /** A filter of so many taps, held against all lines, or against pass and stop lines alone. */
-function trial(plan: Plan, taps: number, isWhole: boolean, part = 0): Trial {
-  const spec = specOf(plan, taps, part)
+function trial(plan: Plan, taps: number, isWhole: boolean, part?: number): Trial {
+  const setting = settingOf(plan, taps)
+  const spec = specOf(plan, taps, part === undefined ? setting : { ...setting, part })
   const design = designFromSpec(spec)
   const { sheet } = plan.request
   const verdict = judge(design, sheet, isWhole ? undefined : ({ kind }) => LEVEL_KINDS.has(kind))
@@ -277,7 +300,8 @@ function* fewest(plan: Plan): Generator<null, Trial | DesignError> {
 function* spread(plan: Plan, start: Trial): Generator<null, Trial> {
   if (plan.request.spend === 'less-delay' || plan.what.kind === 'half-band') return start
   let best = start
-  let [good, bad] = [0, 1]
+  let good = settingOf(plan, start.size).part
+  let bad = plan.request.spend === 'flatter' ? -1 : 1
   for (let round = 0; round < REFINEMENTS; round++) {
     yield null
     const part = (good + bad) / 2
@@ -309,7 +333,7 @@ export function* searchFinite(request: CandidateRequest, outline: Outline, what:
       const { index, words } = start.miss
       const isMost = start.size + plan.step > MOST_CANDIDATE_TAPS
       const reason = isMost
-        ? `It ${words} even with ${start.size} taps.`
+        ? `It ${words} even with ${start.size} taps; up to ${MOST_CANDIDATE_TAPS} are looked at.`
         : `It ${words} with ${start.size} taps, the nearest of those that can be designed.`
       return { miss: index, reason }
     }
