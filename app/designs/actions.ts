@@ -1,8 +1,10 @@
 'use server'
 
 import { findDesign, lockDesign, retitleDesign } from '@/db/queries/designs'
+import { designFromSpec } from '@/dsp'
 import { shaped, teamAction, type Answer } from '@/lib/actions/action'
 import { notFound } from '@/lib/errors'
+import { coefficientsOf } from '@/lib/designs/coefficients'
 import { saveVersion as save } from '@/lib/designs/save-version'
 import { renameDesignSchema, saveVersionSchema } from '@/lib/designs/schemas'
 import type { Problem, SaveVersionInput, SaveVersionOutcome } from '@/lib/designs/types'
@@ -12,7 +14,8 @@ export const saveVersion = shaped(
     schema: saveVersionSchema,
     what: 'design',
     find: (access, input, tx) => lockDesign(tx, access, input.designId),
-    run: ({ input, found, access, tx }) => save({ tx, access, design: found, input }),
+    prepare: ({ spec }) => coefficientsOf(designFromSpec(spec)),
+    run: ({ input, prepared, found, access, tx }) => save({ tx, access, design: found, input, coefficients: prepared }),
   }),
   (input: SaveVersionInput) => input,
   (answer: Answer<SaveVersionOutcome>): SaveVersionOutcome =>

@@ -48,14 +48,17 @@ export function shaped<Args extends readonly unknown[], Value, Out>(
   return named(name, async (...args: Args) => shape(await action(pack(...args))))
 }
 
-interface TeamActionParts<Input, Found, Value> {
+interface TeamActionParts<Input, Found, Value, Prepared> {
   readonly schema: z.ZodType<Input>
   /** What the input speaks of, in the words of a refusal. */
   readonly what: string
   /** The object, as far as `access` reaches; null when it doesn't. */
   readonly find: (access: Access, input: Input, tx: Transaction) => Promise<Found | null>
+  /** What takes long and needs no database: done before the transaction opens, so that it holds no lock, and a throw opens none. */
+  readonly prepare?: (input: Input) => Prepared
   readonly run: (context: {
     readonly input: Input
+    readonly prepared: Prepared
     readonly found: Found
     readonly access: Access
     readonly session: ValidSession
@@ -64,9 +67,9 @@ interface TeamActionParts<Input, Found, Value> {
 }
 
 /** An action on an object of a team. */
-export function teamAction<Input, Found, Value>(
+export function teamAction<Input, Found, Value, Prepared = undefined>(
   name: TeamAction,
-  { schema, what, find, run }: TeamActionParts<Input, Found, Value>,
+  { schema, what, find, prepare, run }: TeamActionParts<Input, Found, Value, Prepared>,
 ): (input: unknown) => Promise<Answer<Value>> {
   return named(name, async (raw: unknown) => {
     let actor: string | null = null
@@ -76,10 +79,11 @@ export function teamAction<Input, Found, Value>(
       actor = session.account.id
       const input = demandValid(schema, raw)
       const access = accessFor(session, name)
+      const prepared = prepare?.(input) as Prepared
       const value = await inTransaction(async (tx) => {
         const found = await find(access, input, tx)
         if (found === null) throw await denial(what, () => find(anyAccess(session), input, tx))
-        const done = await run({ input, found, access, session, tx })
+        const done = await run({ input, prepared, found, access, session, tx })
         if (done.trail) await recordTrail({ ...done.trail, actor: session.account.id, action: name }, tx)
         return done.value
       })

@@ -5,10 +5,10 @@ import type { DesignRow } from '@/db/queries/designs'
 import { rebaseDraft } from '@/db/queries/drafts'
 import type { Transaction } from '@/db/queries/transaction'
 import { findVersion, insertVersion, type VersionRow } from '@/db/queries/versions'
-import { designFromSpec, ENGINE_VERSION } from '@/dsp'
+import { ENGINE_VERSION } from '@/dsp'
 import type { Done } from '@/lib/actions/action'
 import { AppError } from '@/lib/errors'
-import { checksumOfStored, coefficientsOf } from './coefficients'
+import { checksumOfStored, type StoredCoefficients } from './coefficients'
 import type { saveVersionSchema } from './schemas'
 import type { SaveVersionOutcome, VersionSummary } from './types'
 
@@ -24,13 +24,21 @@ interface Save {
   /** Locked by the caller: nobody else numbers a version of it meanwhile. */
   readonly design: DesignRow
   readonly input: z.output<typeof saveVersionSchema>
+  /** Of the input's spec, computed by the caller before the transaction: a slow design must hold no lock. */
+  readonly coefficients: StoredCoefficients
 }
 
 /**
- * Saves the next version, computed here from its spec, whatever the browser had computed. When the latest version isn't the one that this
+ * Saves the next version, computed on this side from its spec, whatever the browser had computed. When the latest version isn't the one that this
  * spec came from, nothing is saved and the latest is shown, unless the user has seen exactly that one and saves on top of it.
  */
-export async function saveVersion({ tx, access, design, input }: Save): Promise<Done<SaveVersionOutcome>> {
+export async function saveVersion({
+  tx,
+  access,
+  design,
+  input,
+  coefficients,
+}: Save): Promise<Done<SaveVersionOutcome>> {
   const latest = await findVersion(access, design.id, 'latest', tx)
   const latestNumber = latest?.number ?? null
   if (input.parentNumber !== latestNumber && (input.onTopOf ?? null) !== latestNumber) {
@@ -40,7 +48,6 @@ export async function saveVersion({ tx, access, design, input }: Save): Promise<
     })
   }
 
-  const coefficients = coefficientsOf(designFromSpec(input.spec))
   const number = (latestNumber ?? 0) + 1
   const checksum = checksumOfStored(coefficients)
   await insertVersion(tx, access, {

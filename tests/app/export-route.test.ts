@@ -29,7 +29,8 @@ const save = (spec: DesignSpec, parentNumber: number | null) =>
     const access = team.access('designer')
     const design = await lockDesign(tx, access, team.designId)
     if (!design) throw new Error('no design')
-    return saveVersion({ tx, access, design, input: { designId: team.designId, spec, note: 'a note', parentNumber } })
+    const input = { designId: team.designId, spec, note: 'a note', parentNumber }
+    return saveVersion({ tx, access, design, input, coefficients: coefficientsOf(designFromSpec(spec)) })
   })
 
 beforeAll(async () => {

@@ -5,8 +5,10 @@ import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { closeConnections } from '@/db/client'
 import { lockDesign } from '@/db/queries/designs'
 import { inTransaction } from '@/db/queries/transaction'
+import { designFromSpec } from '@/dsp'
 import { actionNameOf } from '@/lib/actions/action'
 import { routeActionOf } from '@/lib/actions/route'
+import { coefficientsOf } from '@/lib/designs/coefficients'
 import { defaultSpec } from '@/lib/designs/edits'
 import { saveVersion } from '@/lib/designs/save-version'
 import { allRoles, pages, permissions, routes, type ActionName } from '@/lib/permissions'
@@ -129,7 +131,7 @@ beforeAll(async () => {
       const design = await lockDesign(tx, access, one.designId)
       if (!design) throw new Error('no design')
       const input = { designId: one.designId, spec: defaultSpec, note: 'first', parentNumber: null }
-      await saveVersion({ tx, access, design, input })
+      await saveVersion({ tx, access, design, input, coefficients: coefficientsOf(designFromSpec(input.spec)) })
     })
   }
 })

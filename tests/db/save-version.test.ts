@@ -34,7 +34,8 @@ const save = (role: Role, spec: DesignSpec, parentNumber: number | null, onTopOf
       parentNumber,
       ...(onTopOf !== undefined && { onTopOf }),
     }
-    return (await saveVersion({ tx, access, design, input })).value
+    const coefficients = coefficientsOf(designFromSpec(spec))
+    return (await saveVersion({ tx, access, design, input, coefficients })).value
   })
 
 const draft = (role: Role, spec: DesignSpec, parentNumber: number | null, revision: number) =>
