@@ -4,7 +4,8 @@ import { designFir } from './fir/design-fir'
 import { DesignError } from './errors'
 import type { AnyDigital, Diagnostic, DigitalFilter, Filter } from './forms/filter'
 import type { Reference } from './response/reference'
-import { isFamilyDesign, isFirDesign, type DesignSpec, type FamilyDesign, type FirDesign } from './spec'
+import type { DesignSpec, FamilyDesign, FirDesign } from './spec'
+import { isFamilyDesign, isFirDesign } from './spec-kinds'
 import { designOwn } from './targets/design-own'
 
 /** A design computed: what it is held against, its digital version, and what the user should know about them. */

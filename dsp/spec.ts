@@ -1,5 +1,6 @@
 import * as z from 'zod'
 import { sheetSchema } from './requirements/requirement'
+import { MOST_MEASURED_ROWS, MOST_TAPS } from './spec-kinds'
 
 /*
  * The written form of a design, versioned by `format`. The shapes are checked here; whether the numbers make a filter is decided by
@@ -53,7 +54,6 @@ export const methodSchema = z.discriminatedUnion('method', [
 export const firKindSchema = z.enum(['windowed', 'equiripple', 'least-squares', 'half-band', 'minimum-phase'])
 export const firWindowSchema = z.enum(['kaiser', 'hann', 'hamming', 'blackman', 'dolph-chebyshev'])
 export const firResponseSchema = z.enum([...responseSchema.options, 'multiband', 'differentiator'])
-export const MOST_TAPS = 1024
 
 export const firSpecSchema = z.strictObject({
   kind: firKindSchema,
@@ -83,7 +83,6 @@ export const firSpecSchema = z.strictObject({
 })
 
 const plane = z.strictObject({ re: z.number(), im: z.number() })
-export const MOST_MEASURED_ROWS = 2000
 
 /** Stands in the sentence of a design and in exports: control characters and marks that turn the reading direction would spoil both. */
 const ownName = z
@@ -168,7 +167,3 @@ export type FamilyDesign = z.infer<typeof familyDesignSchema>
 export type FirDesign = z.infer<typeof firDesignSchema>
 export type OwnDesign = z.infer<typeof ownDesignSchema>
 export type DesignSpec = FamilyDesign | FirDesign | OwnDesign
-
-export const isFamilyDesign = (spec: DesignSpec): spec is FamilyDesign => 'analog' in spec
-export const isFirDesign = (spec: DesignSpec): spec is FirDesign => 'fir' in spec
-export const isOwnDesign = (spec: DesignSpec): spec is OwnDesign => 'own' in spec

@@ -33,9 +33,10 @@ import { useStudio } from './use-studio'
 
 /** The sheet and its judging come after what is drawn: the first page stays light. */
 const SheetPanel = dynamic(() => import('./sheet/sheet-panel').then((module) => module.SheetPanel), {
+  ssr: false,
   loading: () => <p className="text-[13px] text-pencil">Opening the requirement sheet…</p>,
 })
-const SheetFigure = dynamic(() => import('./sheet/sheet-figure').then((module) => module.SheetFigure))
+const SheetFigure = dynamic(() => import('./sheet/sheet-figure').then((module) => module.SheetFigure), { ssr: false })
 
 /** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
 export function Studio({
@@ -57,6 +58,8 @@ export function Studio({
     const { view, drawer } = viewFromSearch(new URLSearchParams(search.toString()))
     return createStudioStore(opening, view, drawer)
   })
+  // What was opened may make no design; it is designed on the page alone, never while the server renders.
+  useEffect(() => store.getState().dismissRefusal(), [store])
   const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
   useEffect(() => remember(viewer.accountId, design.id, { versions: saved }), [viewer.accountId, design.id, saved])
   const [saving, setSaving] = useState(false)

@@ -1,4 +1,5 @@
 import * as z from 'zod'
+import { MOST_REQUIREMENTS } from '../spec-kinds'
 
 /*
  * The lines of a requirement sheet as they are written down. What each measures, and by how much a design meets or misses it, is
@@ -50,8 +51,6 @@ export const requirementSchema = z.discriminatedUnion('kind', [
   /** Coefficients held in this many bits, sign included, move the magnitude by no more than `withinDb` where a pass line asks for it. */
   z.strictObject({ kind: z.literal('word-length'), bits: z.int().min(4).max(53), withinDb: decibels }),
 ])
-
-export const MOST_REQUIREMENTS = 40
 
 export const sheetSchema = z.array(requirementSchema).max(MOST_REQUIREMENTS).readonly()
 

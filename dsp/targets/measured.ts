@@ -1,7 +1,8 @@
 import { show } from '../check'
 import { DesignError } from '../errors'
 import { cubicAt, monotoneCubic, type MonotoneCubic } from '../numeric/monotone-cubic'
-import { MOST_MEASURED_ROWS, type OwnTarget } from '../spec'
+import type { OwnTarget } from '../spec'
+import { MOST_MEASURED_ROWS } from '../spec-kinds'
 
 /** A measured response, ready to be asked between its rows. */
 export interface MeasuredTable {

@@ -17,26 +17,32 @@ import type { Settled } from './use-derived'
 const Opening = () => <p className="py-6 text-[14px] text-pencil">Opening…</p>
 const CandidatesPanel = dynamic(
   () => import('../candidates/candidates-panel').then((module) => module.CandidatesPanel),
-  { loading: Opening },
+  { ssr: false, loading: Opening },
 )
 const OriginalPanel = dynamic(() => import('../original/original-panel').then((module) => module.OriginalPanel), {
+  ssr: false,
   loading: Opening,
 })
 const RatesPanel = dynamic(() => import('../panels/rates/rates-panel').then((module) => module.RatesPanel), {
+  ssr: false,
   loading: Opening,
 })
 const TimePanel = dynamic(() => import('../panels/time/time-panel').then((module) => module.TimePanel), {
+  ssr: false,
   loading: Opening,
 })
 const SectionsPanel = dynamic(
   () => import('../panels/sections/sections-panel').then((module) => module.SectionsPanel),
-  { loading: Opening },
+  { ssr: false, loading: Opening },
 )
 const SignalTrial = dynamic(() => import('../trial/signal-trial').then((module) => module.SignalTrial), {
-  loading: Opening,
   ssr: false,
+  loading: Opening,
 })
-const History = dynamic(() => import('../panels/history').then((module) => module.History), { loading: Opening })
+const History = dynamic(() => import('../panels/history').then((module) => module.History), {
+  ssr: false,
+  loading: Opening,
+})
 
 /** The drawer under the sheet: one panel at a time, loaded when first opened. */
 export function Drawer({
