@@ -52,7 +52,8 @@ export function createStudioStore(spec: DesignSpec, view: Partial<StackView> = {
     past: [],
     future: [],
     gestureMark: null,
-    refusal: refusalOf(spec),
+    // Nothing is designed while a server renders, and the page it sends is taken over as it came: `dismissRefusal` looks afterwards.
+    refusal: null,
     view: { ...usualView(spec), ...view },
     drawer,
     held: null,

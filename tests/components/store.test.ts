@@ -25,6 +25,13 @@ describe('the studio’s store', () => {
     expect(refusal?.message).toMatch(/600/)
   })
 
+  it('designs nothing when it is made, as on a server, and says afterwards why what was opened makes no filter', () => {
+    const store = createStudioStore(at(700))
+    expect(store.getState().refusal).toBeNull()
+    store.getState().dismissRefusal()
+    expect(store.getState().refusal?.field).toBe('analog.edgesHz.0')
+  })
+
   it('makes one step of undo of a whole drag, and none of a cancelled one', () => {
     const store = createStudioStore(defaultSpec)
     const { begin, change, commit, cancel } = store.getState()

@@ -12,6 +12,7 @@ import { Chooser } from './chooser'
 import { CompareSides } from './compare-specs'
 import { keptText, readCandidates } from './kept-candidates'
 import { gatherSides, type GatheredSide } from './gather'
+import { Statements } from './statements'
 import { candidateId, compareAddress, inSentence, listed, sideLabel, MOST_SIDES, type SideId } from './sides'
 
 const never = () => () => undefined
@@ -48,6 +49,10 @@ export function CompareView({
   )
   const labels = sides.map(({ label }) => label)
   const [first = 'Nothing to compare', ...rest] = labels
+  const links =
+    sides.length > 1
+      ? { actions: (place: number) => <SideLinks designId={design.id} sides={sides} place={place} /> }
+      : {}
   return (
     <main className="mx-auto max-w-[1680px] px-4 pt-5 pb-10 sm:px-6">
       <div className="flex flex-wrap items-end justify-between gap-x-6 gap-y-3">
@@ -88,12 +93,8 @@ export function CompareView({
       {sides.length > 0 ? (
         <>
           <div className="mt-5">
-            <CompareSides
-              sides={sides}
-              {...(sides.length > 1
-                ? { actions: (place: number) => <SideLinks designId={design.id} sides={sides} place={place} /> }
-                : {})}
-            />
+            {/* Filters are computed on the page alone: a server would be held up for everybody. */}
+            {isOnPage ? <CompareSides sides={sides} {...links} /> : <Statements sides={sides} {...links} />}
           </div>
           <div className="mt-6 ml-auto max-w-lg">
             <TitleBlock

@@ -16,6 +16,7 @@ import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { isFirDesign, type DesignSpec } from '@/dsp'
 import type { TraceId } from '../view'
+import { useOnPage } from '../panels/chart/use-on-page'
 import { usePacedSpec } from './use-paced-spec'
 
 /*
@@ -83,14 +84,17 @@ export function useDrawnTraces(store: StudioStore) {
   return { spec, view, traces }
 }
 
-/** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design. */
+/** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design, and before the page is taken over. */
 export function useSettled(store: StudioStore) {
   const spec = usePacedSpec(store, TELL_EVERY_MS)
   const core = coreOf(spec)
+  // Never while the server renders: it would be held up for every reader of a slow design, and nothing of it is shown there.
+  const onPage = useOnPage()
   const derived = useMemo(() => {
+    if (!onPage) return null
     const versions = deriveVersions(core)
     return versions && { versions, trust: deriveTrust(core, versions), figures: deriveFigures(core, versions) }
-  }, [core])
+  }, [core, onPage])
   const made = useMemo(() => derived && { spec, ...derived }, [spec, derived])
   return { spec, made }
 }
