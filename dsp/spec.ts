@@ -1,4 +1,5 @@
 import * as z from 'zod'
+import { specRefusal } from './spec-refusal'
 import { sheetSchema } from './requirements/requirement'
 import { MOST_MEASURED_ROWS, MOST_TAPS } from './spec-kinds'
 
@@ -149,7 +150,9 @@ export const firDesignSchema = z.strictObject({ ...common, fir: firSpecSchema })
 export const ownDesignSchema = z.strictObject({ ...common, own: ownTargetSchema, how: methodSchema })
 
 /** A design says which of the three it is by the part it has: `analog`, `fir` or `own`. */
-export const designSpecSchema = z.union([familyDesignSchema, firDesignSchema, ownDesignSchema])
+export const designSpecSchema = z.union([familyDesignSchema, firDesignSchema, ownDesignSchema], {
+  error: (issue) => (issue.code === 'invalid_union' ? specRefusal(issue.input, issue.errors) : undefined),
+})
 
 export type Family = z.infer<typeof familySchema>
 export type ResponseKind = z.infer<typeof responseSchema>
