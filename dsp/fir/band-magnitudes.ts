@@ -14,6 +14,8 @@ export interface BandMagnitude {
 /** Points to each swing that the filter can make; a parabola through three of them finds the peak between. */
 const POINTS_PER_TAP = 6
 const LEAST_POINTS = 24
+/** Peaks that reach this part of the extreme may be it. */
+const NEARLY = 0.8
 
 /**
  * Extreme magnitudes of a filter in each of some bands: looked at closely enough that no ripple is missed, then refined at its peaks.
@@ -43,7 +45,23 @@ export function firBandMagnitudes(
     }
     hertz.forEach((at, k) => note(values[k]!, at))
     const vertices = turningPoints(hertz, values)
-    magnitudes(filter, vertices, isSlope).forEach((value, k) => note(value, vertices[k]!))
+    const tops = magnitudes(filter, vertices, isSlope)
+    tops.forEach((value, k) => note(value, vertices[k]!))
+    // Beside a steep slope a ripple leans, and one parabola misses its top: those that may be the extreme get a narrower second one.
+    const near = vertices.filter((_, k) => tops[k]! >= NEARLY * found.most || tops[k]! * NEARLY <= found.least)
+    const aside = width / (count - 1) / 3
+    const close = near.map((at) => Math.min(Math.max(at, fromHz + aside), toHz - aside))
+    const triples = Float64Array.from(
+      { length: 3 * close.length },
+      (_, k) => close[Math.floor(k / 3)]! + ((k % 3) - 1) * aside,
+    )
+    const around = magnitudes(filter, triples, isSlope)
+    around.forEach((value, k) => note(value, triples[k]!))
+    const closer = Float64Array.from(
+      close,
+      (at, k) => at + aside * vertexOf(around[3 * k]!, around[3 * k + 1]!, around[3 * k + 2]!),
+    )
+    magnitudes(filter, closer, isSlope).forEach((value, k) => note(value, closer[k]!))
     return found
   })
 }
@@ -60,10 +78,13 @@ function turningPoints(hertz: Float64Array, values: Float64Array): Float64Array 
   for (let k = 1; k + 1 < values.length; k++) {
     const [left, here, right] = [values[k - 1]!, values[k]!, values[k + 1]!]
     if ((here - left) * (right - here) > 0) continue
-    const curve = left - 2 * here + right
-    if (curve === 0) continue
-    const offset = Math.min(Math.max((left - right) / (2 * curve), -1), 1)
-    found.push(hertz[k]! + (offset * (hertz[k + 1]! - hertz[k - 1]!)) / 2)
+    found.push(hertz[k]! + (vertexOf(left, here, right) * (hertz[k + 1]! - hertz[k - 1]!)) / 2)
   }
   return Float64Array.from(found)
+}
+
+/** Where the parabola through three values turns, −1 at the first, 1 at the last, and not beyond them. */
+function vertexOf(left: number, here: number, right: number): number {
+  const curve = left - 2 * here + right
+  return curve === 0 ? 0 : Math.min(Math.max((left - right) / (2 * curve), -1), 1)
 }
