@@ -51,8 +51,9 @@ const MOST_CUTS = 10
 const RANGE_DB = { kaiser: [-4, 12], 'dolph-chebyshev': [-24, 6] } as const
 const COARSE_DB = 2
 const FINE_DB = [1, 0.5, 0.25] as const
-/** From what did for a similar number of taps the best is never far. */
-const FINE_FROM_HINT_DB = [0.5, 0.25] as const
+/** From what came nearest with a similar number of taps the best is mostly not far; where this much is missing, no other helps. */
+const FINE_FROM_HINT_DB = [1, 0.5] as const
+const HOPELESS_DB = 6
 
 export interface WindowSearch {
   readonly lines: readonly LevelLine[]
@@ -96,7 +97,7 @@ function bestCut(search: WindowSearch, attenuationDb: number, than: number, firs
  * The setting with which a windowed filter of a given number of taps comes nearest to the magnitude lines, or the first that holds them.
  *
  * @param search whose `specOf` gives the statement of a setting
- * @param hint what did for a similar number of taps
+ * @param hint what came nearest with a similar number of taps
  */
 export function fitWindow(search: WindowSearch, hint?: WindowSetting): WindowSetting {
   const { window } = search.specOf({ part: 0, attenuationDb: search.attenuationDb })
@@ -108,15 +109,18 @@ export function fitWindow(search: WindowSearch, hint?: WindowSetting): WindowSet
     const found = bestCut(search, attenuationDb, best.overDb, best.part)
     if (found.overDb < best.overDb) best = found
   }
-  if (hint === undefined) {
-    const [below, above] = RANGE_DB[window]
-    for (let db = below; db <= above; db += COARSE_DB) look(search.attenuationDb + db)
+  const closeIn = (steps: readonly number[]): void => {
+    for (const step of steps) {
+      const middle = best.attenuationDb
+      look(middle - step)
+      look(middle + step)
+    }
   }
-  for (const step of hint === undefined ? FINE_DB : FINE_FROM_HINT_DB) {
-    const middle = best.attenuationDb
-    look(middle - step)
-    look(middle + step)
-  }
+  if (hint !== undefined) closeIn(FINE_FROM_HINT_DB)
+  if (hint !== undefined && best.overDb > HOPELESS_DB) return best
+  const [below, above] = RANGE_DB[window]
+  for (let db = below; db <= above; db += COARSE_DB) look(search.attenuationDb + db)
+  closeIn(FINE_DB)
   return best
 }
 

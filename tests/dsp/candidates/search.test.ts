@@ -252,13 +252,13 @@ describe('FIR filters', () => {
       { kind: 'stop', fromHz: 400, attenuationDb: 70 },
       { kind: 'delay-spread', fromHz: 0, toHz: 200, atMostSeconds: 300e-6 },
     ]
-    // Least of every cut in steps of 0.5 Hz and, for Kaiser and Dolph–Chebyshev, of a grid of attenuations; cut in the middle of the
-    // room the first three take 50, 106 and 55, and Hamming's misses with 400.
+    // One tap fewer misses at every cut in steps of 0.5 Hz and, for Kaiser and Dolph–Chebyshev, a grid of attenuations (not Hamming, whose
+    // need isn't monotone in the taps); cut in the middle of the room the first three take 50, 106 and 55, and Hamming's misses with 400.
     const least: Readonly<Record<string, number>> = {
-      'windowed:kaiser': 42,
+      'windowed:kaiser': 41,
       'windowed:hann': 69,
       'windowed:blackman': 48,
-      'windowed:dolph-chebyshev': 41,
+      'windowed:dolph-chebyshev': 40,
       'windowed:hamming': 234,
     }
     for (const spend of ['narrower', 'flatter', 'less-delay'] as const) {
