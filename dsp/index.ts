@@ -30,14 +30,8 @@ export {
   ownTargetSchema,
   responseSchema,
 } from './spec'
-export {
-  isFamilyDesign,
-  isFirDesign,
-  isOwnDesign,
-  MOST_MEASURED_ROWS,
-  MOST_REQUIREMENTS,
-  MOST_TAPS,
-} from './spec-kinds'
+export { MOST_MEASURED_ROWS, MOST_REQUIREMENTS, MOST_TAPS } from './limits'
+export { isFamilyDesign, isFirDesign, isOwnDesign } from './spec-kinds'
 export type {
   AnalogSpec,
   DepartureBudget,

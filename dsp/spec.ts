@@ -1,7 +1,7 @@
 import * as z from 'zod'
 import { specRefusal } from './spec-refusal'
 import { sheetSchema } from './requirements/requirement'
-import { MOST_MEASURED_ROWS, MOST_TAPS } from './spec-kinds'
+import { MOST_MEASURED_ROWS, MOST_TAPS } from './limits'
 
 /*
  * The written form of a design, versioned by `format`. The shapes are checked here; whether the numbers make a filter is decided by

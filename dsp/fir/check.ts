@@ -1,6 +1,6 @@
 import { DesignError } from '../errors'
 import type { FirSpec } from '../spec'
-import { MOST_TAPS } from '../spec-kinds'
+import { MOST_TAPS } from '../limits'
 import { checkedAttenuation } from './windows'
 import { show } from '../check'
 

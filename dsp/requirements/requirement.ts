@@ -1,5 +1,5 @@
 import * as z from 'zod'
-import { MOST_REQUIREMENTS } from '../spec-kinds'
+import { MOST_REQUIREMENTS } from '../limits'
 
 /*
  * The lines of a requirement sheet as they are written down. What each measures, and by how much a design meets or misses it, is

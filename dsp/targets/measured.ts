@@ -2,7 +2,7 @@ import { show } from '../check'
 import { DesignError } from '../errors'
 import { cubicAt, monotoneCubic, type MonotoneCubic } from '../numeric/monotone-cubic'
 import type { OwnTarget } from '../spec'
-import { MOST_MEASURED_ROWS } from '../spec-kinds'
+import { MOST_MEASURED_ROWS } from '../limits'
 
 /** A measured response, ready to be asked between its rows. */
 export interface MeasuredTable {

@@ -98,6 +98,8 @@ describe('what is said of a line', () => {
   it('is summed up by the line that is worst for its own limit', () => {
     const lines = [of('dB', 0.5, 0.3), of('dB', 60, -6), of('°', 1, -2.1)]
     expect(plain(sheetSummary(lines))).toBe('1 of 3 met; farthest past its limit: line 3, missed by 2.1°')
-    expect(plain(sheetSummary([of('dB', 0.5, 0.3), of('dB', 60, 6)]))).toBe('All 2 met; closest to its limit: line 2, met by 6 dB')
+    expect(plain(sheetSummary([of('dB', 0.5, 0.3), of('dB', 60, 6)]))).toBe(
+      'All 2 met; closest to its limit: line 2, met by 6 dB',
+    )
   })
 })
