@@ -59,7 +59,7 @@ for (const [width, scheme] of [
         const why = page.getByText(/can’t meet it, and why/)
         await why.click()
         await drawer(page)
-          .getByText(/\(line \d: /)
+          .getByText(/misses line \d/)
           .first()
           .waitFor()
 
