@@ -79,10 +79,16 @@ export function teamAction<Input, Found, Value, Prepared = undefined>(
       actor = session.account.id
       const input = demandValid(schema, raw)
       const access = accessFor(session, name)
-      const prepared = prepare?.(input) as Prepared
-      const value = await inTransaction(async (tx) => {
+      const authorised = async (tx: Transaction): Promise<Found> => {
         const found = await find(access, input, tx)
         if (found === null) throw await denial(what, () => find(anyAccess(session), input, tx))
+        return found
+      }
+      // Whoever may not do this has nothing computed for them.
+      if (prepare) await inTransaction(authorised)
+      const prepared = prepare?.(input) as Prepared
+      const value = await inTransaction(async (tx) => {
+        const found = await authorised(tx)
         const done = await run({ input, prepared, found, access, session, tx })
         if (done.trail) await recordTrail({ ...done.trail, actor: session.account.id, action: name }, tx)
         return done.value
