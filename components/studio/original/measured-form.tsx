@@ -1,12 +1,11 @@
 import { useState } from 'react'
 import type { OwnTarget } from '@/dsp'
-import { Button } from '@/components/ui/button'
-import { TextField } from '@/components/ui/field'
 import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { parseMeasured, type FileProblem, type MeasuredFile } from '@/lib/targets/measured-file'
 import { ChooseFile, DropGround } from '../trial/drop-zone'
 import { TextAreaField } from './text-area-field'
 import type { GivenForm } from './given-form'
+import { GivenFrame } from './given-frame'
 
 type Measured = Extract<OwnTarget, { given: 'measured' }>
 type ReadFile = Extract<MeasuredFile, { ok: true }>
@@ -41,13 +40,15 @@ export function MeasuredForm({ given, onTake, readOnly }: GivenForm<Measured>) {
 
   return (
     <DropGround onFile={(file) => void (readOnly ? undefined : takeFile(file))}>
-      <form
-        className="flex flex-col gap-4"
-        onSubmit={(event) => {
-          event.preventDefault()
+      <GivenFrame
+        name={name}
+        onName={setName}
+        takeWords="Fit to this table"
+        onTake={() => {
           const found = read ?? parse(text)
           if (found) onTake({ given: 'measured', name, rows: found.rows })
         }}
+        readOnly={readOnly}
       >
         {readOnly ? null : (
           <div className="flex flex-wrap items-center gap-3 text-[13px] text-pencil">
@@ -71,23 +72,7 @@ export function MeasuredForm({ given, onTake, readOnly }: GivenForm<Measured>) {
           }}
         />
         {read ? <p className="text-[13px] text-pencil">{readWords(read)}</p> : null}
-        <TextField
-          label="Name"
-          hint="As the statement and the files call it."
-          value={name}
-          maxLength={80}
-          required
-          readOnly={readOnly}
-          onChange={(event) => setName(event.currentTarget.value)}
-        />
-        {readOnly ? null : (
-          <div>
-            <Button kind="primary" type="submit">
-              Fit to this table
-            </Button>
-          </div>
-        )}
-      </form>
+      </GivenFrame>
     </DropGround>
   )
 }

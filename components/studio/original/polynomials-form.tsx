@@ -1,9 +1,9 @@
 import { useState } from 'react'
 import type { OwnTarget } from '@/dsp'
-import { Button } from '@/components/ui/button'
 import { TextField } from '@/components/ui/field'
 import { readCoefficients } from '@/lib/targets/written-roots'
 import type { GivenForm } from './given-form'
+import { GivenFrame } from './given-frame'
 
 type Polynomials = Extract<OwnTarget, { given: 'polynomials' }>
 
@@ -23,13 +23,7 @@ export function PolynomialsForm({ given, onTake, readOnly }: GivenForm<Polynomia
   }
 
   return (
-    <form
-      className="flex flex-col gap-4"
-      onSubmit={(event) => {
-        event.preventDefault()
-        take()
-      }}
-    >
+    <GivenFrame name={name} onName={setName} takeWords="Use as the original" onTake={take} readOnly={readOnly}>
       <div className="grid gap-4 sm:grid-cols-2">
         <TextField
           label="Numerator"
@@ -49,23 +43,7 @@ export function PolynomialsForm({ given, onTake, readOnly }: GivenForm<Polynomia
           readOnly={readOnly}
           onChange={(event) => setDenominator(event.currentTarget.value)}
         />
-        <TextField
-          label="Name"
-          hint="As the statement and the files call it."
-          value={name}
-          maxLength={80}
-          required
-          readOnly={readOnly}
-          onChange={(event) => setName(event.currentTarget.value)}
-        />
       </div>
-      {readOnly ? null : (
-        <div>
-          <Button kind="primary" type="submit">
-            Use as the original
-          </Button>
-        </div>
-      )}
-    </form>
+    </GivenFrame>
   )
 }

@@ -6,6 +6,7 @@ import { gainForUnityAtDc, readRoots, writtenRoots, type RootUnit } from '@/lib/
 import { parsePlainNumber } from '@/lib/units/parse'
 import { ChoiceGroup } from '@/components/handover/choice-group'
 import type { GivenForm } from './given-form'
+import { GivenFrame } from './given-frame'
 import { TextAreaField } from './text-area-field'
 
 type Roots = Extract<OwnTarget, { given: 'roots' }>
@@ -63,12 +64,13 @@ export function RootsForm({ given, onTake, readOnly }: GivenForm<Roots>) {
   }
 
   return (
-    <form
-      className="flex flex-col gap-4"
-      onSubmit={(event) => {
-        event.preventDefault()
-        take()
-      }}
+    <GivenFrame
+      name={name}
+      onName={setName}
+      takeWords="Use as the original"
+      onTake={take}
+      readOnly={readOnly}
+      beside={<Button onClick={unity}>Make it one at DC</Button>}
     >
       <ChoiceGroup legend="Roots in" inline choices={units} value={unit} onChange={(next) => setUnit(next)} />
       <div className="grid gap-4 sm:grid-cols-2">
@@ -89,33 +91,15 @@ export function RootsForm({ given, onTake, readOnly }: GivenForm<Roots>) {
           onChange={(event) => setZeros(event.currentTarget.value)}
         />
       </div>
-      <div className="grid gap-4 sm:grid-cols-2">
-        <TextField
-          label="Gain"
-          hint="H(s) = gain · ∏(s − zeros) / ∏(s − poles), s in rad/s."
-          error={problems.gain?.[0]}
-          value={gain}
-          readOnly={readOnly}
-          onChange={(event) => setGain(event.currentTarget.value)}
-        />
-        <TextField
-          label="Name"
-          hint="As the statement and the files call it."
-          value={name}
-          maxLength={80}
-          required
-          readOnly={readOnly}
-          onChange={(event) => setName(event.currentTarget.value)}
-        />
-      </div>
-      {readOnly ? null : (
-        <div className="flex flex-wrap gap-3">
-          <Button kind="primary" type="submit">
-            Use as the original
-          </Button>
-          <Button onClick={unity}>Make it one at DC</Button>
-        </div>
-      )}
-    </form>
+
+      <TextField
+        label="Gain"
+        hint="H(s) = gain · ∏(s − zeros) / ∏(s − poles), s in rad/s."
+        error={problems.gain?.[0]}
+        value={gain}
+        readOnly={readOnly}
+        onChange={(event) => setGain(event.currentTarget.value)}
+      />
+    </GivenFrame>
   )
 }
