@@ -13,7 +13,11 @@ const kept = new Map<string, CanvasPattern>()
 /** Colours change with the theme; more looks than this at one time there are not. */
 const MOST_KEPT = 24
 
-/** A repeating tile of 45° lines, anchored at the canvas's corner; null where there is no canvas to make one on. */
+/**
+ * A repeating tile of 45° lines, anchored at the canvas's corner; null where there is no canvas to make one on. One dot of the tile is one
+ * of the bitmap, and its opacity is in it: a tile that must be scaled or faded as it is laid takes several times as long. The gap gives by
+ * a fraction of a dot for that.
+ */
 export function hatchPattern(
   brush: { createPattern(tile: OffscreenCanvas, repeat: 'repeat'): CanvasPattern | null },
   { ruling, gapPixels, stroke }: HatchLook,
@@ -22,7 +26,8 @@ export function hatchPattern(
 ): CanvasPattern | null {
   if (typeof OffscreenCanvas === 'undefined' || stroke.dash?.length) return null
   const colour = palette.inks[stroke.ink]
-  const key = [ruling, gapPixels, stroke.widthPixels, colour, devicePixelRatio].join()
+  const opacity = stroke.opacity ?? 1
+  const key = [ruling, gapPixels, stroke.widthPixels, opacity, colour, devicePixelRatio].join()
   const known = kept.get(key)
   if (known) return known
   // The gap is measured across the lines.
@@ -31,6 +36,7 @@ export function hatchPattern(
   const pen = tile.getContext('2d')
   if (!pen) return null
   pen.strokeStyle = colour
+  pen.globalAlpha = opacity
   pen.lineWidth = stroke.widthPixels * devicePixelRatio
   pen.beginPath()
   // The line and its neighbours, whose edges reach into this tile's corners.
@@ -47,7 +53,7 @@ export function hatchPattern(
   pen.stroke()
   const pattern = brush.createPattern(tile, 'repeat')
   if (!pattern) return null
-  pattern.setTransform(new DOMMatrix().scale((gapPixels * Math.SQRT2) / size))
+  pattern.setTransform(new DOMMatrix().scale(1 / devicePixelRatio))
   if (kept.size >= MOST_KEPT) kept.clear()
   kept.set(key, pattern)
   return pattern

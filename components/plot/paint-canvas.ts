@@ -78,10 +78,8 @@ function paintMark(brush: Brush, mark: Mark, palette: Palette, devicePixelRatio:
       brush.closePath()
       const pattern = hatchPattern(brush, mark, palette, devicePixelRatio)
       if (pattern) {
-        brush.globalAlpha = mark.stroke.opacity ?? 1
         brush.fillStyle = pattern
         brush.fill()
-        brush.globalAlpha = 1
         return
       }
       brush.save()
@@ -126,13 +124,21 @@ function paintMark(brush: Brush, mark: Mark, palette: Palette, devicePixelRatio:
     case 'clip':
       brush.save()
       brush.beginPath()
-      traceBox(brush, mark.box, 0)
+      // On whole pixels: a soft edge of the clip would be blended into every stroke.
+      traceBox(brush, wholePixels(mark.box), 0)
       brush.clip()
       for (const inner of mark.marks) paintMark(brush, inner, palette, devicePixelRatio)
       brush.restore()
       return
   }
 }
+
+const wholePixels = ({ left, top, right, bottom }: Box): Box => ({
+  left: Math.round(left),
+  top: Math.round(top),
+  right: Math.round(right),
+  bottom: Math.round(bottom),
+})
 
 function traceBox(brush: Brush, box: Box, corner: number): void {
   const width = box.right - box.left

@@ -73,7 +73,7 @@ export function deriveVersions(spec: DesignSpec, wanted: readonly MethodName[] =
 export type CurveView = Pick<StackView, 'fromHz' | 'toHz' | 'logFrequency' | 'removeDelay' | 'hidden'>
 
 /** How finely curves are drawn: at rest, and while the hand moves and the frame counts. */
-export const curvePoints = { atRest: 1024, inMotion: 360 } as const
+export const curvePoints = { atRest: 1024, inMotion: 200 } as const
 
 /** The frequencies a curve is computed at: even on the axis as drawn, with the edges and the last frequency met exactly. */
 function frequencyGrid(view: CurveView, points: number, upToHz: number, exactly: readonly number[] = []): Float64Array {

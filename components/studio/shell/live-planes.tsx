@@ -2,11 +2,11 @@ import { useDeferredValue, useMemo } from 'react'
 import { firZeros, isFir } from '@/dsp'
 import { Planes, type VersionRoots } from '../planes/planes'
 import type { StudioStore } from '../store'
-import { useDrawnVersions } from './use-derived'
+import { useDrawnRoots } from './use-derived'
 
-/** The planes as they stand in this frame; the zeros of an FIR filter are searched for, and may come a moment later. */
+/** The planes, moving with the hand; the zeros of an FIR filter are searched for, and may come a moment later. */
 export function LivePlanes({ store }: { store: StudioStore }) {
-  const { versions, hidden } = useDrawnVersions(store)
+  const { versions, hidden } = useDrawnRoots(store)
   const fir = versions?.digital.find(({ filter }) => isFir(filter))?.filter ?? null
   const searched = useDeferredValue(fir)
   const zeros = useMemo(() => (searched && isFir(searched) ? firZeros(searched) : null), [searched])

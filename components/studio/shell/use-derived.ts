@@ -17,14 +17,15 @@ import { useStudio } from '../use-studio'
 import { isFirDesign, type DesignSpec } from '@/dsp'
 import type { TraceId } from '../view'
 import { useOnPage } from '../panels/chart/use-on-page'
-import { usePacedSpec } from './use-paced-spec'
+import { usePacedSpec, type Pace } from './use-paced-spec'
 
 /*
- * Two paces. What is drawn follows the hand within the frame, with fewer points until the hand rests; what stands beside it in words and
- * tables is told at intervals and gives way to the next movement. Only small components listen at the first pace.
+ * Three paces. The curves follow the hand within the frame, with fewer points until the hand rests; the planes follow at intervals; what
+ * stands beside them in figures and tables is worked out when the hand pauses, and gives way to its next movement. Only small components
+ * listen at the first pace.
  */
 
-const TELL_EVERY_MS = 150
+const PAUSE: Pace = { afterMs: 120 }
 
 const drawnVersions = new WeakMap<DesignSpec, { readonly wanted: string; readonly versions: Versions | null }>()
 
@@ -41,9 +42,8 @@ function versionsDrawn(spec: DesignSpec, hidden: readonly string[]): Versions | 
 /** A fit takes longer than a frame leaves room for: unless it is the stated version it waits for the hand to rest. */
 const tooSlowInMotion = (spec: DesignSpec): readonly TraceId[] => (statedId(spec) === 'fitted' ? [] : ['fitted'])
 
-/** At the pace of the hand: the spec as it stands in this frame, and its versions; `waiting` are those that come when the hand rests. */
-export function useDrawnVersions(store: StudioStore) {
-  const spec = useStudio(store, (state) => state.spec)
+/** The versions of a spec that are drawn; `waiting` are those that come when the hand rests. */
+function useDrawnVersions(store: StudioStore, spec: DesignSpec) {
   const hidden = useStudio(store, (state) => state.view.hidden)
   // A drag of a requirement leaves the filter as it is, and the fit with it.
   const inMotion = useStudio(store, (state) => state.gestureMark !== null && !sharesCore(state.gestureMark, state.spec))
@@ -52,12 +52,16 @@ export function useDrawnVersions(store: StudioStore) {
     const left = inMotion ? tooSlowInMotion(core).filter((id) => !hidden.includes(id)) : []
     return { versions: versionsDrawn(core, [...hidden, ...left]), waiting: isFirDesign(core) ? [] : left }
   }, [core, hidden, inMotion])
-  return { spec, core, hidden, versions, waiting }
+  return { core, hidden, versions, waiting }
 }
+
+/** The roots move with the hand as the eye follows them, some twenty times a second: drawn at each step they would cost the curves a frame. */
+export const useDrawnRoots = (store: StudioStore) => useDrawnVersions(store, usePacedSpec(store, { everyMs: 45 }))
 
 /** At the pace of the hand: the curves. */
 export function useDrawnTraces(store: StudioStore) {
-  const { spec, core, versions, waiting } = useDrawnVersions(store)
+  const spec = useStudio(store, (state) => state.spec)
+  const { core, versions, waiting } = useDrawnVersions(store, spec)
   const inMotion = useStudio(store, (state) => state.gestureMark !== null)
   const looked = useStudio(store, (state) => state.view)
   const held = useStudio(store, (state) => state.held)
@@ -86,7 +90,7 @@ export function useDrawnTraces(store: StudioStore) {
 
 /** At the pace of words and tables: the spec, and everything said of it; `made` is null while it makes no design, and before the page is taken over. */
 export function useSettled(store: StudioStore) {
-  const spec = usePacedSpec(store, TELL_EVERY_MS)
+  const spec = usePacedSpec(store, PAUSE)
   const core = coreOf(spec)
   // Never while the server renders: it would be held up for every reader of a slow design, and nothing of it is shown there.
   const onPage = useOnPage()

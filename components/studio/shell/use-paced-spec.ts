@@ -2,12 +2,17 @@ import { startTransition, useEffect, useState } from 'react'
 import type { DesignSpec } from '@/dsp'
 import type { StudioStore } from '../store'
 
+/** While a gesture lasts: at intervals as it goes, or once it has paused for as long. */
+export type Pace = { readonly everyMs: number } | { readonly afterMs: number }
+
 /**
- * The spec at the pace of words and tables: at once where nothing moves, at intervals while a gesture lasts; either way it gives place to
+ * The spec at the pace of words and tables: at once where nothing moves, by `pace` while a gesture lasts; either way it gives place to
  * whatever the hand does next. Whoever listens to this doesn't render at every step of a drag.
  */
-export function usePacedSpec(store: StudioStore, everyMs: number): DesignSpec {
+export function usePacedSpec(store: StudioStore, pace: Pace): DesignSpec {
   const [spec, setSpec] = useState(() => store.getState().spec)
+  const isAtIntervals = 'everyMs' in pace
+  const waitMs = isAtIntervals ? pace.everyMs : pace.afterMs
   useEffect(() => {
     let timer: ReturnType<typeof setTimeout> | undefined
     const tell = () => {
@@ -18,7 +23,11 @@ export function usePacedSpec(store: StudioStore, everyMs: number): DesignSpec {
     const unsubscribe = store.subscribe((now, before) => {
       if (now.spec === before.spec && now.gestureMark === before.gestureMark) return
       if (now.gestureMark === null) tell()
-      else timer ??= setTimeout(tell, everyMs)
+      else if (isAtIntervals) timer ??= setTimeout(tell, waitMs)
+      else {
+        clearTimeout(timer)
+        timer = setTimeout(tell, waitMs)
+      }
     })
     // Whatever happened between the first render and now.
     tell()
@@ -26,6 +35,6 @@ export function usePacedSpec(store: StudioStore, everyMs: number): DesignSpec {
       unsubscribe()
       clearTimeout(timer)
     }
-  }, [store, everyMs])
+  }, [store, isAtIntervals, waitMs])
   return spec
 }

@@ -26,6 +26,8 @@ export interface PaintInput {
   /** The crosshair of this view is not looked at. */
   readonly view: StackView
   readonly grounds: readonly Ground<PlotId>[]
+  /** Something is being pulled: curves are pencilled as hairlines, which paint several times as fast as ink, until it is let go. */
+  readonly pencilled?: boolean
 }
 
 export interface StackPicture {
@@ -58,7 +60,7 @@ export function stackPicture(input: PaintInput, frame: StackFrame): StackPicture
     for (const trace of ordered) {
       const xs = columns.get(trace.frequenciesHz)
       if (!xs) continue
-      const stroked = traceMarks(trace, plot, xs, frame, view)
+      const stroked = traceMarks(trace, plot, xs, frame, input)
       marks.push(...stroked.marks)
       if (trace.id === 'analog' && plot === 'magnitude') analogSlope = stroked.path
     }
@@ -128,6 +130,7 @@ function ticksOf(plot: PlotId, frame: StackFrame, view: StackView): Tick[] {
   }
 }
 
+const HAIRLINE_PIXELS = 1
 const DEGREES = 180 / Math.PI
 
 function plottedCurve(trace: Trace, plot: PlotId, view: StackView): Float64Array | null {
@@ -143,7 +146,7 @@ function plottedCurve(trace: Trace, plot: PlotId, view: StackView): Float64Array
   }
 }
 
-function traceMarks(trace: Trace, plot: PlotId, xs: Float64Array, frame: StackFrame, view: StackView) {
+function traceMarks(trace: Trace, plot: PlotId, xs: Float64Array, frame: StackFrame, { view, pencilled }: PaintInput) {
   const box = frame.layout.plots[plot]
   const y = frame.y[plot]
   const style = traceStyles[trace.id]
@@ -152,11 +155,15 @@ function traceMarks(trace: Trace, plot: PlotId, xs: Float64Array, frame: StackFr
   if (!values) return { path: empty, marks: [] }
   const folds = plot === 'phase' && !view.unwrapped ? wrappedDegrees(xs, values) : { xs, values }
   const path = tracePath(folds.xs, folds.values, y, box)
-  const stroke = { ink: style.ink, widthPixels: style.widthPixels, dash: style.dash }
+  const stroke = { ink: style.ink, widthPixels: pencilled ? HAIRLINE_PIXELS : style.widthPixels, dash: style.dash }
   const inner: Mark[] = [{ kind: 'path', points: path, stroke }]
   if (plot === 'magnitude' && trace.image) {
     const image = tracePath(pixelsOf(frame.x, trace.image.frequenciesHz), trace.image.magnitudeDb, y, box)
-    inner.unshift({ kind: 'path', points: image, stroke: { ...stroke, widthPixels: 1.25, opacity: 0.38 } })
+    inner.unshift({
+      kind: 'path',
+      points: image,
+      stroke: { ...stroke, widthPixels: pencilled ? HAIRLINE_PIXELS : 1.25, opacity: 0.38 },
+    })
   }
   const marks: Mark[] = [{ kind: 'clip', box, marks: inner }]
   return { path, marks }

@@ -63,11 +63,6 @@ export function ResponseStack(props: StackProps) {
     () => stackFrame(spec, traces, painted, width, heldRanges),
     [spec, traces, painted, width, heldRanges],
   )
-  const input = useMemo(
-    () => ({ spec, traces, trusted, view: painted, grounds }),
-    [spec, traces, trusted, painted, grounds],
-  )
-  const picture = useMemo(() => stackPicture(input, frame), [input, frame])
   const handles = useMemo(() => specHandles(spec), [spec])
   const placed = useMemo(() => placedHandles(handles, spec, traces, frame), [handles, spec, traces, frame])
 
@@ -95,6 +90,13 @@ export function ResponseStack(props: StackProps) {
   }
   const { gesture, dispatch } = useGestures({ spec, frame, handles, edit: heldEdit, onView, onReadPlot })
   useWheel(stage, frame, onView)
+
+  const pencilled = gesture.name === 'dragging' || gesture.name === 'steepening'
+  const input = useMemo(
+    () => ({ spec, traces, trusted, view: painted, grounds, pencilled }),
+    [spec, traces, trusted, painted, grounds, pencilled],
+  )
+  const picture = useMemo(() => stackPicture(input, frame), [input, frame])
 
   const pointOf = (event: PointerEvent): Point => {
     const box = stage.current?.getBoundingClientRect()

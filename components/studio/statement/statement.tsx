@@ -2,6 +2,7 @@
 
 import { Fragment } from 'react'
 import { statementParts, type StatementPart, type WordKey } from '@/lib/designs/statement'
+import { usePacedSpec, type Pace } from '../shell/use-paced-spec'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { optionsFor, withQuantity, wordOfField } from './apply'
@@ -44,9 +45,12 @@ function labelOf(key: WordKey): string {
   return index === undefined ? (labels[key] ?? key) : `Band ${Number(index) + 1} ${bandLabels[part] ?? part}`
 }
 
+/** A sentence is set anew in its lines; ten times a second it is read, not sixty. */
+const PACE: Pace = { everyMs: 100 }
+
 /** The sentence that is the design, every word of it editable where it stands. */
 export function Statement({ store, readOnly }: { store: StudioStore; readOnly: boolean }) {
-  const spec = useStudio(store, (state) => state.spec)
+  const spec = usePacedSpec(store, PACE)
   const refusal = useStudio(store, (state) => state.refusal)
   const parts = statementParts(spec)
   const refusedWord = refusal ? wordOfField(refusal.field, spec) : null
