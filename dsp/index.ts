@@ -149,3 +149,35 @@ export { measureDelay, predictDelay, type DelayOptions, type MeasuredDelay } fro
 export { buildEnvelope, readEnvelope, type Envelope, type EnvelopeLevel, type EnvelopeView } from './signal/envelope'
 export { footbridgeDemo, type DemoOptions, type DemoRecording } from './signal/demo-recording'
 export { seededNoise } from './numeric/random'
+
+// Chains: sensor to stored sample
+export { chainSpecSchema, chainStageSchema, chainUnitSchema } from './chain/spec'
+export type {
+  AnalogStage,
+  ChainSpec,
+  ChainStage,
+  ChainStageKind,
+  ChainUnit,
+  ConverterStage,
+  DecimateStage,
+  DesignLink,
+  Interferer,
+  SensorStage,
+  ShapeStage,
+  ToleranceSettings,
+} from './chain/spec'
+export type { ChainRequirement, ChainRequirementKind } from './chain/requirement'
+export { chainUnits, integralOf, type ChainQuantity } from './chain/units'
+export type {
+  ChainRequirementResult,
+  ChainResponse,
+  ComputedChain,
+  ComputedStage,
+  FoldChart,
+  FoldPath,
+  FoldStrip,
+  InterfererLanding,
+  NoiseBudget,
+  UsableBand,
+  WorstAlias,
+} from './chain/chain'
