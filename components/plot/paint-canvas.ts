@@ -72,6 +72,15 @@ function paintMark(brush: Brush, mark: Mark, palette: Palette, devicePixelRatio:
       tracePoints(brush, mark.points)
       stroke(brush, mark.stroke, palette)
       return
+    case 'wash':
+      brush.beginPath()
+      tracePoints(brush, mark.outline)
+      brush.closePath()
+      brush.globalAlpha = mark.opacity
+      brush.fillStyle = palette.inks[mark.ink]
+      brush.fill()
+      brush.globalAlpha = 1
+      return
     case 'hatch': {
       brush.beginPath()
       tracePoints(brush, mark.outline)

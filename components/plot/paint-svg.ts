@@ -34,6 +34,8 @@ class SvgWriter {
         return `<rect ${this.box(mark.box)}${mark.cornerPixels ? ` rx="${size(mark.cornerPixels)}"` : ''} fill="${mark.fill ? this.ink(mark.fill) : 'none'}" ${this.stroke(mark.stroke)}/>`
       case 'path':
         return `<path d="${pathData(mark.points)}" fill="none" stroke-linejoin="round" ${this.stroke(mark.stroke)}/>`
+      case 'wash':
+        return `<path d="${pathData(mark.outline)}Z" fill="${this.ink(mark.ink)}"${opacity(mark.opacity)}/>`
       case 'hatch': {
         const clip = this.clip(`<path d="${pathData(mark.outline)}Z"/>`)
         const lines = rulingLines(outlineBox(mark.outline), mark.ruling, mark.gapPixels)

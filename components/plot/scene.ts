@@ -25,6 +25,8 @@ export type Mark =
     }
   /** x₀, y₀, x₁, y₁ …; a NaN pair lifts the pen. */
   | { readonly kind: 'path'; readonly points: Float64Array; readonly stroke: Stroke }
+  /** Closed outline filled with a wash of an ink. */
+  | { readonly kind: 'wash'; readonly outline: Float64Array; readonly ink: Ink; readonly opacity: number }
   /** Closed outline of a ground that is ruled with lines. */
   | {
       readonly kind: 'hatch'

@@ -114,6 +114,7 @@ function shifted(marks: readonly Mark[], dx: number, dy: number): Mark[] {
         return { ...mark, box: box(mark.box) }
       case 'path':
         return { ...mark, points: points(mark.points) }
+      case 'wash':
       case 'hatch':
         return { ...mark, outline: points(mark.outline) }
       case 'text':
