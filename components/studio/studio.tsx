@@ -36,6 +36,7 @@ const SheetPanel = dynamic(() => import('./sheet/sheet-panel').then((module) => 
   ssr: false,
   loading: () => <p className="text-[13px] text-pencil">Opening the requirement sheet…</p>,
 })
+const CompareSpecs = dynamic(() => import('./compare/compare-specs').then((module) => module.CompareSpecs))
 const SheetFigure = dynamic(() => import('./sheet/sheet-figure').then((module) => module.SheetFigure), { ssr: false })
 
 /** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
@@ -69,7 +70,8 @@ export function Studio({
   const { spec, made } = useSettled(store)
   const [autosave] = useState(() =>
     createAutosave({
-      designId: design.id,
+      kind: 'designs',
+      id: design.id,
       store,
       draft,
       parentNumber,
@@ -99,7 +101,7 @@ export function Studio({
 
   useEffect(() => {
     // A draft that never reached the server waits in this browser; it is offered, not forced.
-    void keptDraft(design.id).then((found) => {
+    void keptDraft(design.id, () => import('./shell/spec-from').then(({ specFrom }) => specFrom)).then((found) => {
       if (found && !sameSpec(found, store.getState().spec)) setKept(found)
     })
   }, [design.id, store])
@@ -150,11 +152,24 @@ export function Studio({
 
       {saving ? (
         <SaveVersion
-          store={store}
-          designId={design.id}
+          what="design"
           nextNumber={nextNumber}
           parentNumber={parentNumber}
-          saveVersion={actions.saveVersion}
+          save={(note, onTopOf) =>
+            actions.saveVersion({
+              designId: design.id,
+              spec: store.getState().spec,
+              note,
+              parentNumber,
+              ...(onTopOf === undefined ? {} : { onTopOf }),
+            })
+          }
+          compare={(theirs) => (
+            <CompareSpecs
+              left={{ label: `Version ${theirs.number}`, spec: theirs.spec }}
+              right={{ label: 'Your draft', spec: store.getState().spec }}
+            />
+          )}
           onSaved={goOnFrom}
           onTakeTheirs={(version) => {
             store.getState().propose(version.spec)

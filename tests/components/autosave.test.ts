@@ -25,7 +25,14 @@ const saved = (revision: number) => Response.json({ outcome: 'saved', revision, 
 
 function studio(spec: DesignSpec = defaultSpec) {
   const store = createStudioStore(spec)
-  const autosave = createAutosave({ designId: 'd', store, draft: null, parentNumber: null, onSaved: vi.fn() })
+  const autosave = createAutosave({
+    kind: 'designs',
+    id: 'd',
+    store,
+    draft: null,
+    parentNumber: null,
+    onSaved: vi.fn(),
+  })
   autosave.start()
   return { store, autosave }
 }

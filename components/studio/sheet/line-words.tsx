@@ -61,13 +61,10 @@ function Part({
         label={`Line ${index + 1}`}
         text={part.text}
         current={current}
-        options={options.map(({ value, label }) => ({ value, label, apply: (spec) => spec }))}
+        options={options}
         refusal={null}
         readOnly={false}
-        onPick={({ value }) => {
-          const picked = options.find((option) => option.value === value)
-          if (picked) desk.setLine(index, picked.line)
-        }}
+        onPick={(picked) => desk.setLine(index, picked.line)}
       />
     )
   }

@@ -1,17 +1,16 @@
 'use client'
 
 import { Button } from '@/components/ui/button'
-import type { DraftRecord } from '@/lib/designs/types'
 import { useOnPage } from '../panels/chart/use-on-page'
-import type { AutosaveState } from './autosave'
+import type { AutosaveState, StoredDraft } from './autosave'
 
 /** One quiet line: whether the draft is safe. */
-export function DraftStatus({
+export function DraftStatus<Spec>({
   state,
   onResolve,
 }: {
-  state: AutosaveState
-  onResolve(current: DraftRecord, take: 'theirs' | 'mine'): void
+  state: AutosaveState<Spec>
+  onResolve(current: StoredDraft<Spec>, take: 'theirs' | 'mine'): void
 }) {
   switch (state.kind) {
     case 'saving':

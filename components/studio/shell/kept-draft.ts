@@ -1,8 +1,6 @@
-import type { DesignSpec } from '@/dsp'
-
 /* A draft that has not reached the server yet, kept in this browser. Storage may be switched off or full: then there is nothing to keep it in. */
 
-const key = (designId: string) => `polewright-draft-${designId}`
+const key = (id: string) => `polewright-draft-${id}`
 
 function storage(): Storage | null {
   try {
@@ -13,22 +11,25 @@ function storage(): Storage | null {
   }
 }
 
-export function keepDraft(designId: string, spec: DesignSpec): void {
+export function keepDraft(id: string, spec: unknown): void {
   try {
-    storage()?.setItem(key(designId), JSON.stringify(spec))
+    storage()?.setItem(key(id), JSON.stringify(spec))
   } catch {
     // Full: the draft is still on the screen, and the save goes on.
   }
 }
 
-export function forgetKeptDraft(designId: string): void {
-  storage()?.removeItem(key(designId))
+export function forgetKeptDraft(id: string): void {
+  storage()?.removeItem(key(id))
 }
 
 /** The kept draft, checked; null when there is none or it is none of ours. The check is loaded only when there is something to check. */
-export async function keptDraft(designId: string): Promise<DesignSpec | null> {
-  const text = storage()?.getItem(key(designId))
+export async function keptDraft<Spec>(
+  id: string,
+  loadCheck: () => Promise<(text: string) => Spec | null>,
+): Promise<Spec | null> {
+  const text = storage()?.getItem(key(id))
   if (!text) return null
-  const { specFrom } = await import('./spec-from')
+  const specFrom = await loadCheck()
   return specFrom(text)
 }

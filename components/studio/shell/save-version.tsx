@@ -1,39 +1,49 @@
 'use client'
 
-import { useEffect, useRef, useState, useTransition, type FormEvent } from 'react'
-import dynamic from 'next/dynamic'
+import { useEffect, useRef, useState, useTransition, type FormEvent, type ReactNode } from 'react'
 import { Button } from '@/components/ui/button'
-import type { SaveVersionInput, StudioActions, VersionSummary } from '@/lib/designs/types'
-import type { StudioStore } from '../store'
+import type { Problem } from '@/lib/designs/types'
 
-const CompareSpecs = dynamic(() => import('../compare/compare-specs').then((module) => module.CompareSpecs))
+/** What is said of a version that somebody else saved meanwhile. */
+interface Saved {
+  readonly number: number
+  readonly note: string
+  readonly savedBy: string
+}
+
+type Outcome<Version> =
+  | { readonly outcome: 'saved'; readonly version: Version }
+  | { readonly outcome: 'conflict'; readonly theirs: Version }
+  | { readonly outcome: 'refused'; readonly problem: Problem }
 
 /**
  * Saving a version on purpose, with a note. When somebody else saved on the same parent in the meantime, both are shown and the user
  * chooses; the draft stays as it is until then.
  */
-export function SaveVersion({
-  store,
-  designId,
+export function SaveVersion<Version extends Saved>({
+  what,
   nextNumber,
   parentNumber,
-  saveVersion,
+  save,
+  compare,
   onSaved,
   onTakeTheirs,
   onClose,
 }: {
-  store: StudioStore
-  designId: string
+  what: 'design' | 'chain'
   nextNumber: number
   parentNumber: number | null
-  saveVersion: StudioActions['saveVersion']
-  onSaved(version: VersionSummary): void
-  onTakeTheirs(version: VersionSummary): void
+  /** Saves what stands on the sheet now; `onTopOf` when the user has seen the other version. */
+  save(note: string, onTopOf?: number): Promise<Outcome<Version>>
+  /** The other version and what stands here, side by side. */
+  compare(theirs: Version): ReactNode
+  onSaved(version: Version): void
+  onTakeTheirs(version: Version): void
   onClose(): void
 }) {
   const [note, setNote] = useState('')
   const [problem, setProblem] = useState<string | null>(null)
-  const [theirs, setTheirs] = useState<VersionSummary | null>(null)
+  const [theirs, setTheirs] = useState<Version | null>(null)
   const [pending, startTransition] = useTransition()
   const noteField = useRef<HTMLInputElement>(null)
   useEffect(() => noteField.current?.focus(), [])
@@ -45,9 +55,8 @@ export function SaveVersion({
       return
     }
     startTransition(async () => {
-      const input: SaveVersionInput = { designId, spec: store.getState().spec, note: note.trim(), parentNumber }
       try {
-        const outcome = await saveVersion(onTopOf === undefined ? input : { ...input, onTopOf })
+        const outcome = await save(note.trim(), onTopOf)
         if (outcome.outcome === 'saved') onSaved(outcome.version)
         else if (outcome.outcome === 'conflict') setTheirs(outcome.theirs)
         else setProblem(outcome.problem.message)
@@ -105,11 +114,13 @@ export function SaveVersion({
           <Conflict
             theirs={theirs}
             parentNumber={parentNumber}
-            mine={store.getState().spec}
+            what={what}
             disabled={pending}
             onKeepMine={() => submit(theirs.number)}
             onTakeTheirs={() => onTakeTheirs(theirs)}
-          />
+          >
+            {compare(theirs)}
+          </Conflict>
         ) : null}
       </div>
     </section>
@@ -119,17 +130,19 @@ export function SaveVersion({
 function Conflict({
   theirs,
   parentNumber,
-  mine,
+  what,
   disabled,
   onKeepMine,
   onTakeTheirs,
+  children,
 }: {
-  theirs: VersionSummary
+  theirs: Saved
   parentNumber: number | null
-  mine: VersionSummary['spec']
+  what: 'design' | 'chain'
   disabled: boolean
   onKeepMine(): void
   onTakeTheirs(): void
+  children: ReactNode
 }) {
   return (
     <div role="alert" className="mt-3 border-l-2 border-vermilion pl-3">
@@ -138,14 +151,9 @@ function Conflict({
         {parentNumber === null
           ? ', when there was none yet.'
           : `, on the same version ${parentNumber} as this draft.`}{' '}
-        Nothing is lost: here are both. Choose which the design goes on with.
+        Nothing is lost: here are both. Choose which the {what} goes on with.
       </p>
-      <div className="my-3">
-        <CompareSpecs
-          left={{ label: `Version ${theirs.number}`, spec: theirs.spec }}
-          right={{ label: 'Your draft', spec: mine }}
-        />
-      </div>
+      <div className="my-3">{children}</div>
       <div className="flex flex-wrap gap-2">
         <Button kind="primary" disabled={disabled} onClick={onKeepMine}>
           Save mine as version {theirs.number + 1}

@@ -1,6 +1,5 @@
 import { startTransition, useEffect, useState } from 'react'
-import type { DesignSpec } from '@/dsp'
-import type { StudioStore } from '../store'
+import type { DraftedStore } from './autosave'
 
 /** While a gesture lasts: at intervals as it goes, or once it has paused for as long. */
 export type Pace = { readonly everyMs: number } | { readonly afterMs: number }
@@ -9,7 +8,7 @@ export type Pace = { readonly everyMs: number } | { readonly afterMs: number }
  * The spec at the pace of words and tables: at once where nothing moves, by `pace` while a gesture lasts; either way it gives place to
  * whatever the hand does next. Whoever listens to this doesn't render at every step of a drag.
  */
-export function usePacedSpec(store: StudioStore, pace: Pace): DesignSpec {
+export function usePacedSpec<Spec>(store: Pick<DraftedStore<Spec>, 'getState' | 'subscribe'>, pace: Pace): Spec {
   const [spec, setSpec] = useState(() => store.getState().spec)
   const isAtIntervals = 'everyMs' in pace
   const waitMs = isAtIntervals ? pace.everyMs : pace.afterMs

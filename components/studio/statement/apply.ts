@@ -22,6 +22,7 @@ import { firChoices, withBand, withFir, withFirResponse } from '@/lib/designs/fi
 import { firName } from '@/lib/designs/fir-statement'
 import { besselWords, fittedWords, impulseWords, type QuantityUnit, type WordKey } from '@/lib/designs/statement'
 import { familyWords, firResponseWords, methodWords, responseWords } from '@/lib/designs/words'
+import { formatHz, formatNumber } from '@/lib/format/quantity'
 import { type Parsed, parseCount, parseDecibels, parseFrequency, parseOrder, parsePlainNumber } from '@/lib/units/parse'
 
 export interface WordOption {
@@ -223,6 +224,13 @@ export function parseQuantity(unit: QuantityUnit, text: string, nyquistHz: numbe
     default:
       return Promise.resolve(parseCount(text))
   }
+}
+
+/** A number with its unit, where it stands alone. */
+export function writtenIn(unit: QuantityUnit, value: number): string {
+  if (unit === 'Hz') return formatHz(value, 6)
+  if (unit === 'dB') return `${formatNumber(value, 5)}\u2009dB`
+  return String(value)
 }
 
 /** One press of an arrow key: 1 for a count (2 for taps, which keeps them odd or even), else one unit of the third significant digit. */

@@ -4,11 +4,15 @@ import { DropdownMenu } from 'radix-ui'
 import { useId } from 'react'
 import { classNames } from '@/lib/format/class-names'
 import { RefusalNote } from './refusal-note'
-import type { WordOption } from './apply'
 import { wordLook } from './word-look'
 
+export interface PickedOption {
+  readonly value: string
+  readonly label: string
+}
+
 /** A word picked from a list: Enter or arrows open it, typing finds, Escape leaves all as it was. */
-export function ChoiceWord({
+export function ChoiceWord<Option extends PickedOption>({
   label,
   text,
   current,
@@ -20,10 +24,10 @@ export function ChoiceWord({
   label: string
   text: string
   current: string
-  options: readonly WordOption[]
+  options: readonly Option[]
   refusal: { readonly message: string } | null
   readOnly: boolean
-  onPick(option: WordOption): void
+  onPick(option: Option): void
 }) {
   const noteId = useId()
   if (readOnly) return <strong className="font-semibold">{text}</strong>

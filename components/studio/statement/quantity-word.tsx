@@ -2,10 +2,8 @@
 
 import { useId, useRef, useState, type KeyboardEvent } from 'react'
 import { classNames } from '@/lib/format/class-names'
-import type { QuantityUnit } from '@/lib/designs/statement'
-import { formatHz, formatNumber } from '@/lib/format/quantity'
+import type { Parsed } from '@/lib/units/parse'
 import { RefusalNote } from './refusal-note'
-import { parseQuantity, stepped } from './apply'
 import { wordLook } from './word-look'
 
 export interface QuantityEdit {
@@ -18,15 +16,20 @@ export interface QuantityEdit {
   cancel(): void
 }
 
+export type StepSize = 'fine' | 'usual' | 'coarse'
+
 interface QuantityWordProps {
   readonly label: string
   readonly text: string
   readonly value: number
-  readonly unit: QuantityUnit
-  readonly nyquistHz: number | null
   readonly refusal: { readonly message: string; readonly nearest?: number | string } | null
   readonly readOnly: boolean
   readonly edit: QuantityEdit
+  parse(text: string): Parsed | Promise<Parsed>
+  /** A number with its unit, as a button offers it. */
+  written(value: number): string
+  /** One press of an arrow key. */
+  step(value: number, direction: 1 | -1, size: StepSize): number
   /** The value nearest to a refused one that works. */
   nearestTo(refused: number): number | null
   onDismiss(): void
@@ -34,7 +37,7 @@ interface QuantityWordProps {
 
 /** A number inside the statement: typed in place, stepped with the arrow keys, refused with its reason beside it. */
 export function QuantityWord(props: QuantityWordProps) {
-  const { label, text, value, unit, refusal, readOnly, edit } = props
+  const { label, text, value, refusal, readOnly, edit } = props
   const [typed, setTyped] = useState<string | null>(null)
   const [unread, setUnread] = useState<string | null>(null)
   const [refused, setRefused] = useState<number | null>(null)
@@ -59,7 +62,7 @@ export function QuantityWord(props: QuantityWordProps) {
       setUnread(null)
       return true
     }
-    const parsed = await parseQuantity(unit, typed, props.nyquistHz)
+    const parsed = await props.parse(typed)
     if (!parsed.ok) {
       setUnread(parsed.message)
       return false
@@ -90,7 +93,7 @@ export function QuantityWord(props: QuantityWordProps) {
       event.preventDefault()
       edit.begin()
       const size = event.shiftKey ? 'coarse' : event.altKey ? 'fine' : 'usual'
-      const next = stepped(unit, value, event.key === 'ArrowUp' ? 1 : -1, size)
+      const next = props.step(value, event.key === 'ArrowUp' ? 1 : -1, size)
       const accepted = edit.change(next)
       setRefused(accepted ? null : next)
       if (accepted) {
@@ -145,7 +148,7 @@ export function QuantityWord(props: QuantityWordProps) {
         <RefusalNote
           id={noteId}
           message={note}
-          nearestText={nearest === null ? undefined : nearestText(unit, nearest)}
+          nearestText={nearest === null ? undefined : props.written(nearest)}
           onUseNearest={nearest === null ? undefined : () => takeNearest(nearest)}
         />
       ) : null}
@@ -155,10 +158,4 @@ export function QuantityWord(props: QuantityWordProps) {
 
 function asNumber(nearest: number | string | undefined): number | null {
   return typeof nearest === 'number' ? nearest : null
-}
-
-function nearestText(unit: QuantityUnit, nearest: number): string {
-  if (unit === 'Hz') return formatHz(nearest, 6)
-  if (unit === 'dB') return `${formatNumber(nearest, 5)}\u2009dB`
-  return String(nearest)
 }

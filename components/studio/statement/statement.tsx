@@ -5,7 +5,7 @@ import { statementParts, type StatementPart, type WordKey } from '@/lib/designs/
 import { usePacedSpec, type Pace } from '../shell/use-paced-spec'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
-import { optionsFor, withQuantity, wordOfField } from './apply'
+import { optionsFor, parseQuantity, stepped, withQuantity, wordOfField, writtenIn } from './apply'
 import { ChoiceWord } from './choice-word'
 import { nearestThatWorks } from './nearest'
 import { QuantityWord } from './quantity-word'
@@ -50,7 +50,9 @@ const PACE: Pace = { everyMs: 100 }
 
 /** The sentence that is the design, every word of it editable where it stands. */
 export function Statement({ store, readOnly }: { store: StudioStore; readOnly: boolean }) {
-  const spec = usePacedSpec(store, PACE)
+  const atRest = useStudio(store, (state) => (state.gestureMark === null ? state.spec : null))
+  const inMotion = usePacedSpec(store, PACE)
+  const spec = atRest ?? inMotion
   const refusal = useStudio(store, (state) => state.refusal)
   const parts = statementParts(spec)
   const refusedWord = refusal ? wordOfField(refusal.field, spec) : null
@@ -119,8 +121,9 @@ function Word({
       label={labelOf(key)}
       text={part.text}
       value={part.value}
-      unit={part.unit}
-      nyquistHz={key === 'sampleRateHz' ? null : spec.sampleRateHz / 2}
+      parse={(text) => parseQuantity(part.unit, text, key === 'sampleRateHz' ? null : spec.sampleRateHz / 2)}
+      written={(value) => writtenIn(part.unit, value)}
+      step={(value, direction, size) => stepped(part.unit, value, direction, size)}
       refusal={refusal}
       readOnly={readOnly}
       onDismiss={dismissRefusal}
