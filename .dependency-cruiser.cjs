@@ -33,7 +33,7 @@ module.exports = {
       comment: 'The seed makes accounts, so that it needs their hashes and roles.',
       severity: 'error',
       from: { path: '^db/' },
-      to: { path: '^(app|components|tests)/|^lib/(?!env|errors|designs|launch|permissions|auth/passwords)' },
+      to: { path: '^(app|components|tests)/|^lib/(?!env|errors|chains|designs|launch|permissions|auth/passwords)' },
     },
     {
       name: 'only-queries-touch-the-client',

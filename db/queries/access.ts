@@ -1,7 +1,7 @@
 import { and, eq, inArray, type SQL } from 'drizzle-orm'
 import type { Role } from '@/lib/designs/types'
 import type { Executor } from '../client'
-import { designs, memberships, projects } from '../schema'
+import { chains, designs, memberships, projects } from '../schema'
 
 /**
  * Who asks, and in which roles the asked-for action is permitted. Every query on a team's data takes one and joins it, so that rows of
@@ -21,7 +21,7 @@ export function admits(access: Access): SQL | undefined {
 export const admittingTeams = (access: Access, on: Executor) =>
   on.select({ id: memberships.teamId }).from(memberships).where(admits(access))
 
-/** Ids of the projects, and of the designs, of those teams. */
+/** Ids of the projects, of the designs and of the chains of those teams. */
 export const reachableProjects = (access: Access, on: Executor) =>
   on
     .select({ id: projects.id })
@@ -33,3 +33,9 @@ export const reachableDesigns = (access: Access, on: Executor) =>
     .select({ id: designs.id })
     .from(designs)
     .where(inArray(designs.projectId, reachableProjects(access, on)))
+
+export const reachableChains = (access: Access, on: Executor) =>
+  on
+    .select({ id: chains.id })
+    .from(chains)
+    .where(inArray(chains.projectId, reachableProjects(access, on)))

@@ -1,5 +1,6 @@
 export * from './accounts'
 export * from './audit'
+export * from './chains'
 export * from './designs'
 export * from './installation'
 export * from './limits'
