@@ -166,10 +166,20 @@ export type {
   ShapeStage,
   ToleranceSettings,
 } from './chain/spec'
+export {
+  LEAST_CHANNELS,
+  MOST_CHAIN_REQUIREMENTS,
+  MOST_CHAIN_STAGES,
+  MOST_CHANNELS,
+  MOST_DECIMATION,
+  MOST_INTERFERERS,
+  MOST_STAGE_TAPS,
+} from './chain/limits'
 export type { ChainRequirement, ChainRequirementKind } from './chain/requirement'
 export { chainUnits, integralOf, type ChainQuantity } from './chain/units'
 export type {
   ChainRequirementResult,
+  ChainRequirementUnit,
   ChainResponse,
   ComputedChain,
   ComputedStage,
