@@ -78,11 +78,11 @@ export interface Problem {
   readonly nearest?: number | string
 }
 
-/** Answer of PUT /api/designs/[designId]/draft. */
-export type AutosaveOutcome =
+/** Answer of PUT /api/designs/[designId]/draft, and of a chain's. */
+export type AutosaveOutcome<Draft = DraftRecord> =
   | { readonly outcome: 'saved'; readonly revision: number; readonly updatedAt: string }
   /** The same person has the draft open elsewhere and saved there since. */
-  | { readonly outcome: 'stale'; readonly current: DraftRecord }
+  | { readonly outcome: 'stale'; readonly current: Draft }
 
 export interface StudioActions {
   saveVersion(input: SaveVersionInput): Promise<SaveVersionOutcome>

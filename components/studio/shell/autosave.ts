@@ -1,5 +1,6 @@
 import { MutationObserver, QueryClient } from '@tanstack/react-query'
 import { createStore } from 'zustand/vanilla'
+import type { AutosaveOutcome } from '@/lib/designs/types'
 import { sameValue } from '@/lib/designs/same-value'
 import { forgetKeptDraft, keepDraft } from './kept-draft'
 
@@ -16,9 +17,7 @@ export interface StoredDraft<Spec> {
   readonly updatedAt: string
 }
 
-type Outcome<Spec> =
-  | { readonly outcome: 'saved'; readonly revision: number; readonly updatedAt: string }
-  | { readonly outcome: 'stale'; readonly current: StoredDraft<Spec> }
+type Outcome<Spec> = AutosaveOutcome<StoredDraft<Spec>>
 
 export type AutosaveState<Spec> =
   | { readonly kind: 'idle'; readonly savedAt: string | null }
