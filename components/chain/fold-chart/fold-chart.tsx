@@ -22,7 +22,7 @@ import {
 import { foldExport, foldScene, type FoldPlan } from './picture'
 import { StripsTable, TraceTable } from './tables'
 import { TraceGround, TracePicture } from './trace-ground'
-import { beyondWords, downWords, stripName, traceWords, weakFoldSentence } from './words'
+import { beyondWords, boundWords, stripName, traceWords, weakFoldSentence } from './words'
 
 export interface FoldChartProps {
   readonly chain: ComputedChain
@@ -120,7 +120,7 @@ function Chart({ chain, spec, traceHz, onTrace }: FoldChartProps) {
               {gathered.count} more {gathered.count === 1 ? 'strip' : 'strips'}, {formatHz(gathered.fromHz)} to{' '}
               {formatHz(gathered.toHz)}:{' '}
               {gathered.worst?.worst
-                ? `${downWords(gathered.worst.worst.levelDb)} at most in the kept band, in the ${stripName(gathered.worst)}`
+                ? `${boundWords(gathered.worst.worst.levelDb)} in the kept band (the ${stripName(gathered.worst)})`
                 : 'nothing of them is kept'}
               .
             </span>

@@ -15,6 +15,12 @@ export function downWords(levelDb: number): string {
   return levelDb > 0 ? `${formatFixed(levelDb, 1)}\u2009dB up` : `${formatFixed(-levelDb, 1)}\u2009dB down`
 }
 
+/** The bound that a worst level is for all the others. */
+export function boundWords(levelDb: number): string {
+  if (levelDb === Number.NEGATIVE_INFINITY) return 'nothing comes through'
+  return levelDb > 0 ? `up to ${downWords(levelDb)}` : `at least ${downWords(levelDb)}`
+}
+
 /** Strips are counted as they lie: the base band is the first. */
 export const stripName = ({ strip }: Pick<FoldStrip, 'strip'>): string => `${ordinal(strip + 1)} strip`
 
@@ -37,11 +43,7 @@ export function weakFoldSentence(chain: ComputedChain, chart: FoldChart): string
 
 /** What is said of images that were not looked at one by one. */
 export const beyondWords = ({ lookedUpToHz, beyondAtMostDb }: FoldChart): string =>
-  `Images are looked at up to ${formatHz(lookedUpToHz)}; ${
-    beyondAtMostDb === Number.NEGATIVE_INFINITY
-      ? 'nothing comes through above it'
-      : `above it they are ${downWords(beyondAtMostDb)} at most`
-  }.`
+  `Images are looked at up to ${formatHz(lookedUpToHz)}; above it, ${boundWords(beyondAtMostDb)}.`
 
 const LISTED = 7
 
