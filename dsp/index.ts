@@ -191,3 +191,19 @@ export type {
   UsableBand,
   WorstAlias,
 } from './chain/chain'
+export { analogSections, type AnalogSection, type SectionResponse } from './chain/analog-sections'
+export {
+  toleranceResult,
+  type MatchPercentiles,
+  type Percentiles,
+  type ToleranceResult,
+  type ToleranceShard,
+} from './chain/tolerance'
+export { toleranceFrequencies, toleranceShard } from './chain/tolerance-shard'
+export {
+  buildSheet,
+  type BuildCircuit,
+  type BuildOptions,
+  type BuildPart,
+  type BuildSection,
+} from './chain/build-sheet'
