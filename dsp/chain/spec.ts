@@ -22,15 +22,17 @@ const decibels = z.number().positive().max(300)
 export const chainUnitSchema = z.enum(['g', 'm/s²', 'm/s', 'mm/s', 'm', 'mm', 'µm', 'Pa', 'N', 'µm/m', 'V'])
 
 /** Names appear in sentences and in exports: control characters and marks that turn the reading direction would spoil both. */
-const plainName = z
-  .string()
-  .min(1)
-  .max(60)
-  .regex(/\S/u, 'A name has at least one character that can be seen.')
-  .regex(
-    /^[^\p{Cc}\p{Cs}\p{Bidi_Control}]*$/u,
-    'A name has no control characters and no marks that turn the reading direction.',
-  )
+const plainText = (most: number) =>
+  z
+    .string()
+    .min(1)
+    .max(most)
+    .regex(/\S/u, 'A name has at least one character that can be seen.')
+    .regex(
+      /^[^\p{Cc}\p{Cs}\p{Bidi_Control}]*$/u,
+      'A name has no control characters and no marks that turn the reading direction.',
+    )
+const plainName = plainText(60)
 
 /**
  * A design version that a stage is tied to. Its spec is kept here, so that the chain can be computed by itself; whoever saves compares it
@@ -39,8 +41,8 @@ const plainName = z
 export const designLinkSchema = z.strictObject({
   designId: z.uuid(),
   version: z.int().min(1),
-  drawing: z.string().min(1).max(60),
-  title: z.string().min(1).max(120),
+  drawing: plainText(60),
+  title: plainText(120),
   spec: designSpecSchema,
 })
 
