@@ -125,6 +125,7 @@ export {
   type Reference,
 } from './response/reference'
 export { departureFrom, residual, type Residual } from './response/departure-from-reference'
+export { bestDelay } from './response/departure-curve'
 export { trustedBand, type TrustedBand } from './response/trusted-band'
 export {
   lowestRate,
@@ -191,6 +192,9 @@ export type {
   UsableBand,
   WorstAlias,
 } from './chain/chain'
+export { computeChain } from './chain/compute'
+export { chainResponse, stageMagnitudeDb } from './chain/response'
+export { foldChart, foldPaths, worstAlias } from './chain/folding'
 export { analogSections, type AnalogSection, type SectionResponse } from './chain/analog-sections'
 export {
   toleranceResult,
