@@ -1,0 +1,155 @@
+import { show } from '../check'
+import { DesignError } from '../errors'
+import { highestPeakHz, partMostAboveDb } from './analog-bound'
+import type { ComputedChain, FoldChart, FoldPath, FoldStrip, WorstAlias } from './chain'
+import { foldsAt, inputOf, partsAhead, stripsOver } from './strips'
+import { refineInStrip, weakestStrips, type StripWorst } from './weakest'
+
+/** How far images are looked at, in converter rates. */
+const LOOK_UP_RATES = 4
+const MOST_LOOK_UP_RATES = 64
+/** A chart keeps every strip as long as there are no more than this. */
+const MOST_FULL_STRIPS = 96
+const KEPT_LOWEST = 16
+const KEPT_WORST = 16
+
+/** Up to four converter rates, and on by doublings while a pair of analog poles still has its peak above. */
+function lookedUpTo(chain: ComputedChain): number {
+  const peaks = partsAhead(chain).map((part) => (part.kind === 'analog' ? highestPeakHz(part.filter) : 0))
+  const least = 1.5 * Math.max(0, ...peaks)
+  let rates = LOOK_UP_RATES
+  while (rates < MOST_LOOK_UP_RATES && rates * chain.converterRateHz < least) rates *= 2
+  return rates * chain.converterRateHz
+}
+
+const stripsUpTo = (chain: ComputedChain, upToHz: number): number => Math.round((2 * upToHz) / chain.outputRateHz)
+
+function checkOutput(chain: ComputedChain, outputHz: number, field: string): void {
+  const half = chain.outputRateHz / 2
+  if (outputHz >= 0 && outputHz <= half) return
+  const message = `0 Hz ≤ output frequency ≤ ${show(half)} Hz (half the output rate); ${show(outputHz)} Hz was given.`
+  throw new DesignError('output-out-of-range', field, message, outputHz > half ? half : 0)
+}
+
+/**
+ * Every input frequency that lands on an output frequency, k·rate ± f, and what reaches it through all stages. At 0 Hz and at half the
+ * output rate two neighbouring strips meet in one input frequency, which is given once, with the lower strip.
+ *
+ * Each part is evaluated at the input frequency that stands before it; a digital one repeats itself, so that what has folded ahead of it makes
+ * no difference. Behind an integrating stage the level counts against the ideal integral at the output frequency.
+ *
+ * @param outputHz from 0 up to half the output rate
+ * @param upToHz images up to here; without it four converter rates, or further while an analog resonance lies above
+ * @throws DesignError `output-out-of-range` with field `outputHz`
+ * Source: Oppenheim & Schafer, Discrete-Time Signal Processing, 3rd ed., eq. (4.20) and (4.77) (sampling and decimation; numbering from memory).
+ */
+export function foldPaths(chain: ComputedChain, outputHz: number, upToHz?: number): readonly FoldPath[] {
+  checkOutput(chain, outputHz, 'outputHz')
+  const most = upToHz ?? lookedUpTo(chain)
+  const at = Float64Array.of(outputHz)
+  const { levelDb } = stripsOver(chain, at)
+  const paths: FoldPath[] = []
+  for (let strip = 0; ; strip++) {
+    const inputHz = inputOf(strip, outputHz, chain.outputRateHz)
+    if (inputHz > most && strip > 0) break
+    if (paths.at(-1)?.inputHz === inputHz) continue
+    const mirrored = strip % 2 === 1
+    const foldsAtStageId = foldsAt(chain, strip)
+    paths.push({ inputHz, outputHz, strip, foldsAtStageId, mirrored, levelDb: levelDb(strip)[0]! })
+  }
+  return paths
+}
+
+/** Strips that a chart keeps of more than it can show: the lowest, the worst, and those beside the first two multiples of every rate. */
+function chosen(chain: ComputedChain, count: number, worst: readonly StripWorst[]): number[] {
+  const kept = new Set<number>()
+  for (let strip = 0; strip < KEPT_LOWEST; strip++) kept.add(strip)
+  for (const { strip } of worst.slice(0, KEPT_WORST)) kept.add(strip)
+  for (const { outRateHz } of chain.stages) {
+    if (outRateHz === null) continue
+    const whole = 2 * Math.round(outRateHz / chain.outputRateHz)
+    for (const strip of [whole - 1, whole, 2 * whole - 1, 2 * whole]) if (strip < count) kept.add(strip)
+  }
+  return [...kept].sort((a, b) => a - b)
+}
+
+/**
+ * The frequency axis folded onto the base band: what reaches each output frequency from each strip. Where there are more than 96 strips the
+ * chart holds the lowest 16, the worst 16 and those beside the first two multiples of every rate in the chain; all are looked at, the weakest
+ * is always among them, and its `worst` is refined between the chart's frequencies.
+ *
+ * `beyondAtMostDb` bounds whatever lies above `lookedUpToHz` and lands in the kept band: by the roots of the analog parts the most that they
+ * have anywhere above it, with the envelope of an averaging converter, times the most that the digital parts let through to the kept band at
+ * the frequencies looked at. Without an anti-alias filter that is near 0 dB, and says so.
+ *
+ * @param outputHz N rising frequencies from 0 up to half the output rate
+ * @returns strips with N levels in dB each
+ * @throws DesignError `output-out-of-range` with field `outputHz.<index>`
+ */
+export function foldChart(chain: ComputedChain, outputHz: Float64Array): FoldChart {
+  outputHz.forEach((hertz, index) => checkOutput(chain, hertz, `outputHz.${index}`))
+  const lookedUpToHz = lookedUpTo(chain)
+  const count = stripsUpTo(chain, lookedUpToHz)
+  const { fromHz, toHz } = chain.spec.kept
+  const inside = outputHz.filter((hertz) => hertz > fromHz && hertz < toHz)
+  const grid = count <= MOST_FULL_STRIPS ? Float64Array.of(fromHz, ...inside, toHz) : null
+  const worst = weakestStrips(chain, fromHz, toHz, count, grid)
+  const all = Array.from({ length: count }, (_, strip) => strip)
+  const strips = count <= MOST_FULL_STRIPS ? all : chosen(chain, count, worst.strips)
+  const byStrip = new Map(worst.strips.map((one) => [one.strip, one]))
+  const [first] = worst.strips
+  const weakStrip = first?.strip ?? 1
+  if (first !== undefined) byStrip.set(weakStrip, refineInStrip(chain, first, worst.grid))
+  const { levelDb } = stripsOver(chain, outputHz)
+  const half = chain.outputRateHz / 2
+  return {
+    outputHz,
+    strips: strips.map((strip): FoldStrip => {
+      const found = byStrip.get(strip)
+      return {
+        strip,
+        fromHz: strip * half,
+        toHz: (strip + 1) * half,
+        mirrored: strip % 2 === 1,
+        foldsAtStageId: foldsAt(chain, strip),
+        levelDb: levelDb(strip),
+        worst:
+          found === undefined
+            ? null
+            : {
+                levelDb: found.levelDb,
+                outputHz: found.outputHz,
+                inputHz: inputOf(strip, found.outputHz, chain.outputRateHz),
+              },
+      }
+    }),
+    weakStrip,
+    lookedUpToHz,
+    beyondAtMostDb: partsAhead(chain).reduce(
+      (sum, part) => sum + partMostAboveDb(part, lookedUpToHz),
+      worst.mostDigitalDb,
+    ),
+  }
+}
+
+/**
+ * The image that comes through strongest anywhere from the lower edge of the kept band up to a frequency; found on a grid, then refined between
+ * its points in the strips that are nearest to it.
+ *
+ * @param toHz up to half the output rate; without it the upper edge of the kept band
+ * @throws DesignError `output-out-of-range` with field `toHz`
+ */
+export function worstAlias(chain: ComputedChain, toHz: number = chain.spec.kept.toHz): WorstAlias {
+  checkOutput(chain, toHz, 'toHz')
+  const fromHz = Math.min(chain.spec.kept.fromHz, toHz)
+  const count = stripsUpTo(chain, lookedUpTo(chain))
+  const { strips, grid } = weakestStrips(chain, fromHz, toHz, count, null)
+  const [first] = strips
+  if (first === undefined) throw new DesignError('output-out-of-range', 'toHz', 'No image was looked at.')
+  const { levelDb, outputHz, strip } = strips
+    .slice(0, KEPT_WORST / 4)
+    .map((one) => refineInStrip(chain, one, grid))
+    .reduce((most, one) => (one.levelDb > most.levelDb ? one : most))
+  const inputHz = inputOf(strip, outputHz, chain.outputRateHz)
+  return { levelDb, outputHz, inputHz, strip, foldsAtStageId: foldsAt(chain, strip) }
+}
