@@ -93,6 +93,40 @@ export function parseSeconds(input: string): Parsed {
   )
 }
 
+const PREFIXES: Readonly<Record<string, number>> = {
+  '': 1,
+  k: 1e3,
+  M: 1e6,
+  m: 1e-3,
+  u: 1e-6,
+  µ: 1e-6,
+  n: 1e-9,
+  p: 1e-12,
+}
+const BARE = new RegExp(`^(${NUMBER})$`)
+const WITH_UNIT = new RegExp(String.raw`^(${NUMBER})\s*(\S.*)$`)
+
+/** √ as people write it where their keyboard has none, both micro signs, and spaces, which say nothing inside a unit. */
+const tidyUnit = (unit: string): string =>
+  unit
+    .replace(/\u03bc/g, 'µ')
+    .replace(/sqrt\(?hz\)?|rt\s?hz|√\s?hz/i, '√Hz')
+    .replace(/\^?2$/, '²')
+    .replace(/\s+/g, '')
+
+/** A value in `unit` from "0.5", "0.5 g", "50 mg", "3 µV/√Hz": the bare number counts in the unit itself, a prefix may stand before it. */
+export function parseInUnit(input: string, unit: string): Parsed {
+  const text = tidy(input)
+  const bare = BARE.exec(text)
+  if (bare) return found(toNumber(bare[1] ?? ''))
+  const [, digits = '', written = ''] = WITH_UNIT.exec(text) ?? []
+  const given = tidyUnit(written)
+  const factor = given === unit ? 1 : given.endsWith(unit) ? PREFIXES[given.slice(0, -unit.length)] : undefined
+  return factor === undefined || digits === ''
+    ? refused(`“${input.trim()}” isn’t a value in ${unit}; type one, such as 0.5\u2009${unit}.`)
+    : found(toNumber(digits) * factor)
+}
+
 /** Per cent from "5", "5 %", "0,5%". */
 export function parsePercent(input: string): Parsed {
   const match = new RegExp(String.raw`^(${NUMBER})\s*(?:%|per ?cent)?$`, 'i').exec(tidy(input))
