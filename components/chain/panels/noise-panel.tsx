@@ -1,0 +1,76 @@
+'use client'
+
+import { useMemo } from 'react'
+import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { noiseBudget, type ComputedChain, type NoiseBudget } from '@/dsp'
+import { formatDb, formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
+import { FigureLine, FiguresRuled } from './chart/figures'
+import { chainStageLabel } from './stage-label'
+import type { ChainPanelProps } from './props'
+import { ShareBar } from './share-bar'
+
+/** From the converter and the arithmetic to the bits that are left in the kept band. */
+export function NoisePanel(props: ChainPanelProps) {
+  return useOnPage() ? <Noise {...props} /> : null
+}
+
+/** The sensor's unit: noise is told where it would have to be felt. */
+export const sensorUnit = ({ spec }: Pick<ComputedChain, 'spec'>): string =>
+  spec.stages.find((stage) => stage.kind === 'sensor')?.unit ?? ''
+
+export function noiseRows(chain: ComputedChain, budget: NoiseBudget) {
+  const unit = sensorUnit(chain)
+  const written = (rms: number) => `${formatNumber(rms, 3)}\u2009${unit}`
+  return [
+    ...budget.parts.map(({ stageId, source, rms, words }) => {
+      const found = chain.stages.find(({ stage }) => stage.id === stageId)
+      return {
+        key: `${stageId} ${source}`,
+        cells: [found ? chainStageLabel(found.stage) : source, source, words, written(rms)],
+      }
+    }),
+    { key: 'total', strong: true, cells: ['All together', '', 'root of the sum of squares', written(budget.rms)] },
+  ]
+}
+
+function Noise({ chain }: ChainPanelProps) {
+  const budget = useMemo(() => noiseBudget(chain), [chain])
+  const unit = sensorUnit(chain)
+  const { kept } = chain.spec
+  return (
+    <div className="flex min-w-0 flex-col gap-4">
+      <FigureLine
+        figures={[
+          { name: 'Effective bits', value: formatFixed(budget.effectiveBits, 2) },
+          { name: 'Signal to noise', value: formatDb(budget.snrDb, 1) },
+          { name: 'Noise in the kept band', value: `${formatNumber(budget.rms, 3)}\u2009${unit} rms` },
+          { name: 'Density mid band', value: `${formatNumber(budget.density, 3)}\u2009${unit}/√Hz` },
+          { name: 'Full scale', value: `±${formatNumber(budget.fullScale, 4)}\u2009${unit}` },
+        ]}
+      />
+      <ShareBar
+        label="Noise power by part"
+        shares={budget.parts.map(({ stageId, source, rms }, index) => {
+          const found = chain.stages.find(({ stage }) => stage.id === stageId)
+          return {
+            id: `${stageId} ${index}`,
+            name: found ? `${chainStageLabel(found.stage)}, ${source}` : source,
+            amount: rms * rms,
+            text: `${formatNumber(rms, 3)}\u2009${unit}`,
+          }
+        })}
+      />
+      <FiguresRuled
+        label="Noise budget"
+        columns={['stage', 'source', 'how it is counted', 'rms in the kept band']}
+        wordColumns={[1, 2]}
+        rows={noiseRows(chain, budget)}
+      />
+      <p className="max-w-prose text-[13px] text-pencil">
+        All of it is told at the sensor, in {unit}, over {formatHz(kept.fromHz)} to {formatHz(kept.toHz)}. Effective
+        bits are those of an ideal converter with the same ratio of a sine that just fills it to the noise kept; the
+        sensor’s own noise is not counted.
+      </p>
+    </div>
+  )
+}

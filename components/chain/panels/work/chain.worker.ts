@@ -1,0 +1,4 @@
+import { expose } from 'comlink'
+import { chainWork } from './chain-work'
+
+expose(chainWork)
