@@ -1,4 +1,4 @@
-import { computeChain, DesignError, type ChainSpec, type ComputedChain } from '@/dsp'
+import { computeChain, type ChainSpec, type ComputedChain, type DesignError } from '@/dsp'
 import { orRefusal } from '@/components/studio/or-refusal'
 
 /** Specs are never altered, so that a chain can be kept beside its spec for as long as anybody holds it. */

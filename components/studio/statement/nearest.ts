@@ -8,16 +8,27 @@ const isCountKey = (key: WordKey): boolean => key === 'analog.order' || key === 
 
 /**
  * The value nearest to a refused one that makes a design, for the word that was edited, whichever part of the spec the refusal
- * itself names: halving between the value that stands and the refused one, then rounded towards the one that stands.
+ * itself names.
  */
 export function nearestThatWorks(spec: DesignSpec, key: WordKey, standing: number, refused: number): number | null {
-  const works = (value: number) => refusalOf(withQuantity(spec, key, value)) === null
+  return nearestWorking((value) => refusalOf(withQuantity(spec, key, value)) === null, {
+    standing,
+    refused,
+    isCount: isCountKey(key),
+  })
+}
+
+/** Halving between the value that stands and the refused one, then rounded towards the one that stands. */
+export function nearestWorking(
+  works: (value: number) => boolean,
+  { standing, refused, isCount }: { readonly standing: number; readonly refused: number; readonly isCount: boolean },
+): number | null {
   // Below nothing there is no nearest value that anybody would want.
   if (!Number.isFinite(refused) || refused <= 0 || !works(standing)) return null
   let good = standing
   let bad = refused
   for (let halving = 0; halving < HALVINGS; halving += 1) {
-    const middle = isCountKey(key) ? Math.trunc((good + bad) / 2) : (good + bad) / 2
+    const middle = isCount ? Math.trunc((good + bad) / 2) : (good + bad) / 2
     if (middle === good || middle === bad) break
     if (works(middle)) good = middle
     else bad = middle
