@@ -211,3 +211,5 @@ export {
   type BuildPart,
   type BuildSection,
 } from './chain/build-sheet'
+export { proofSteps, type ProofOptions } from './chain/proof/prove'
+export type { ProofLine, ProofResult } from './chain/proof/report'
