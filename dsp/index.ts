@@ -152,7 +152,7 @@ export { footbridgeDemo, type DemoOptions, type DemoRecording } from './signal/d
 export { seededNoise } from './numeric/random'
 
 // Chains: sensor to stored sample
-export { chainSpecSchema, chainStageSchema, chainUnitSchema } from './chain/spec'
+export { chainSpecSchema, chainStageSchema, chainUnitSchema, toleranceSchema } from './chain/spec'
 export type {
   AnalogStage,
   ChainSpec,
