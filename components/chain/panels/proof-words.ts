@@ -1,0 +1,65 @@
+import type { ProofLine, ProofResult } from '@/dsp'
+import { formatDb, formatFixed, formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
+import { spanOf, type LinesPlan } from './chart/lines-picture'
+
+/* What a run of the simulated chain showed, in words. */
+
+export const proofColumns = ['what', 'input', 'lands on', 'computed', 'measured', 'apart', 'bound', 'verdict'] as const
+
+export const proofCells = (line: ProofLine): readonly string[] => [
+  line.what,
+  formatHz(line.inputHz, 6),
+  formatHz(line.landsHz, 6),
+  formatDb(line.computedDb, 3),
+  formatDb(line.measuredDb, 3),
+  formatDb(line.measuredDb - line.computedDb, 3),
+  `±${formatDb(line.boundDb, 3)}`,
+  line.agrees ? 'agrees' : 'does not agree',
+]
+
+export function proofVerdict(result: ProofResult): string {
+  const apart = result.lines.filter(({ agrees }) => !agrees).length
+  const what = `${formatNumber(result.samplesIn, 7)} samples at ${formatHz(result.inputRateHz)} were run through the chain and ${formatNumber(result.samplesStored, 7)} stored`
+  if (result.agrees) return `${what}: every line measured agrees with what is computed, within its bound.`
+  const faults = [
+    ...(apart > 0
+      ? [`${apart} of ${result.lines.length} lines ${apart === 1 ? 'lies' : 'lie'} outside the bound`]
+      : []),
+    ...(result.delay.agrees ? [] : ['the delay lies outside its bound']),
+  ]
+  return `${what}: ${faults.length > 0 ? faults.join(', and ') : 'the spectrum does not agree'}. Don’t rely on the figures of this chain; tell the owner of the team.`
+}
+
+export const delayWords = ({ delay }: ProofResult): string =>
+  `Delay: computed ${formatSeconds(delay.computedSeconds, 5)}, measured ${formatSeconds(delay.measuredSeconds, 5)}, bound ±${formatSeconds(delay.boundSeconds, 3)}: ${delay.agrees ? 'agrees' : 'does not agree'}.`
+
+/** Density of what was stored, as measured and as computed. */
+export function spectrumPlan({ spectrum }: ProofResult, faded: boolean): LinesPlan {
+  const { frequenciesHz: x, measuredDensityDb, computedDensityDb } = spectrum
+  const [low, high] = spanOf([computedDensityDb, measuredDensityDb], 20)
+  return {
+    title: 'Density of the stored samples',
+    x: { kind: 'linear', span: [0, x[x.length - 1] ?? 1], are: 'hertz' },
+    y: { span: [Math.max(low, high - 220), high], quantity: 'decibels', sign: '\u2009dB' },
+    curves: [
+      { name: 'measured', x, y: measuredDensityDb, ink: 'slate', widthPixels: 1 },
+      { name: 'computed', x, y: computedDensityDb, ink: 'ink', dash: [7, 3], widthPixels: 1.6 },
+    ],
+    faded,
+  }
+}
+
+export const spectrumRows = ({ spectrum }: ProofResult): readonly (readonly string[])[] => {
+  const every = Math.max(1, Math.floor(spectrum.frequenciesHz.length / 128))
+  return [...spectrum.frequenciesHz].flatMap((hz, n) =>
+    n % every === 0
+      ? [
+          [
+            formatHz(hz, 5),
+            formatFixed(spectrum.measuredDensityDb[n] ?? Number.NaN, 2),
+            formatFixed(spectrum.computedDensityDb[n] ?? Number.NaN, 2),
+          ],
+        ]
+      : [],
+  )
+}

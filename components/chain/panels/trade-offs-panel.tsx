@@ -1,0 +1,144 @@
+'use client'
+
+import { useMemo, useState } from 'react'
+import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { Button } from '@/components/ui/button'
+import { Notice } from '@/components/ui/notice'
+import type { ChainSpec, PlanOption, RateOption } from '@/dsp'
+import { sameValue } from '@/lib/designs/same-value'
+import { formatHz } from '@/lib/format/quantity'
+import { FiguresRuled } from './chart/figures'
+import { LinesPlot } from './chart/lines-plot'
+import type { ChainPanelProps } from './props'
+import {
+  adviceQuestion,
+  planCells,
+  planColumns,
+  planName,
+  rateCells,
+  rateColumns,
+  rateName,
+  ratesPlan,
+} from './trade-offs'
+import { useWork } from './work/use-work'
+import { findPlans, findRates } from './work/work-client'
+import { WorkLine } from './work/work-line'
+
+/** Where analog order, converter rate and arithmetic can be traded for each other, all of it meeting the sheet. */
+export function TradeOffsPanel(props: ChainPanelProps) {
+  return useOnPage() ? <TradeOffs {...props} /> : null
+}
+
+function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
+  const rates = useWork(findRates)
+  const plans = useWork(findPlans)
+  const [taken, setTaken] = useState('')
+  const isOld = (question: ChainSpec | null) =>
+    question !== null && !sameValue(adviceQuestion(question), adviceQuestion(spec))
+  // What is taken is put into the chain as it stands now: its interferers and settings stay.
+  const take = (name: string, found: ChainSpec) => {
+    const { interferers, tolerance } = spec
+    if (propose({ ...found, interferers, tolerance })) setTaken(`Took ${name}.`)
+    else setTaken(`${name} was refused; the reason stands beside the statement.`)
+  }
+  const takeButton = (name: string, found: ChainSpec) =>
+    readOnly ? null : (
+      <Button small aria-label={`Take ${name}`} onClick={() => take(name, found)}>
+        Take
+      </Button>
+    )
+
+  const ratesFaded = isOld(rates.question)
+  const rateOptions = rates.value
+  const picture = useMemo(
+    () => (rateOptions === null ? null : ratesPlan(rateOptions, ratesFaded)),
+    [rateOptions, ratesFaded],
+  )
+  return (
+    <div className="grid gap-x-8 gap-y-6 xl:grid-cols-2">
+      <section aria-label="Order against rate" className="flex min-w-0 flex-col gap-3">
+        <h3 className="font-text text-[14px] font-semibold">Order against rate</h3>
+        <WorkLine
+          work={rates}
+          what="The search for rates"
+          startWords="Find the lowest rates"
+          againWords="Find them again"
+          stopWords="Stop the search for rates"
+          doneWords={(found: readonly RateOption[]) => `${found.length} orders meet the sheet`}
+          onStart={() => rates.run(spec)}
+          onStop={rates.stop}
+        />
+        {ratesFaded && rates.value ? <Older /> : null}
+        {rates.value?.length === 0 ? (
+          <Notice kind="note">
+            No order of this anti-alias filter meets the sheet at any rate tried. Ask for less, or keep a narrower band.
+          </Notice>
+        ) : null}
+        {picture ? <LinesPlot plan={picture} writeValue={(hertz) => formatHz(hertz)} /> : null}
+        {rates.value && rates.value.length > 0 ? (
+          <FiguresRuled
+            label="Order against rate, with the best marked"
+            columns={readOnly ? rateColumns : [...rateColumns, '']}
+            rows={rates.value.map((option) => ({
+              key: rateName(option),
+              strong: option.isBest,
+              cells: [...rateCells(option), ...(readOnly ? [] : [takeButton(rateName(option), option.spec)])],
+            }))}
+          />
+        ) : null}
+        {rates.value && rates.value.length > 0 ? (
+          <p className="text-[13px] text-pencil">
+            Marked as best: no other order has a lower rate and fewer multiplies at once.
+          </p>
+        ) : null}
+      </section>
+      <section aria-label="Decimation plans" className="flex min-w-0 flex-col gap-3">
+        <h3 className="font-text text-[14px] font-semibold">Decimation plans</h3>
+        <WorkLine
+          work={plans}
+          what="The search for plans"
+          startWords="Find decimation plans"
+          againWords="Find plans again"
+          stopWords="Stop the search for plans"
+          doneWords={(found: readonly PlanOption[]) => `${found.length} plans meet the sheet`}
+          onStart={() => plans.run(spec)}
+          onStop={plans.stop}
+        />
+        {isOld(plans.question) && plans.value ? <Older /> : null}
+        {plans.value?.length === 0 ? (
+          <Notice kind="note">
+            No plan meets the sheet with these rates. A higher converter rate, or a lower edge of the kept band, leaves
+            the filters more room.
+          </Notice>
+        ) : null}
+        {plans.value && plans.value.length > 0 ? (
+          <FiguresRuled
+            label="Decimation plans, fewest multiplies first"
+            columns={readOnly ? planColumns : [...planColumns, '']}
+            wordColumns={[1]}
+            rows={plans.value.map((option, index) => {
+              const name = `plan ${planName(option)} (${option.filters.join(', ')})`
+              return {
+                key: `${index} ${name}`,
+                strong: option.isCurrent,
+                cells: [...planCells(option), ...(readOnly ? [] : [takeButton(name, option.spec)])],
+              }
+            })}
+          />
+        ) : null}
+        {plans.value && plans.value.length > 0 ? (
+          <p className="text-[13px] text-pencil">
+            Multiplies are counted for each stored sample. Every filter is as short as the sheet allows.
+          </p>
+        ) : null}
+      </section>
+      <p role="status" className="text-[13px] text-pencil">
+        {taken}
+      </p>
+    </div>
+  )
+}
+
+const Older = () => (
+  <Notice kind="note">The chain or its sheet has changed since this search; search again to be sure.</Notice>
+)

@@ -1,0 +1,77 @@
+import type { ChainSpec, PlanOption, RateOption } from '@/dsp'
+import { formatDb, formatFixed, formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
+import type { LinesPlan } from './chart/lines-picture'
+
+/* What the advisor's tables and picture say. */
+
+export const rateColumns = [
+  'order',
+  'converter rate',
+  'down by',
+  'corner',
+  'images',
+  'ripple',
+  'delay',
+  'multiplies',
+] as const
+
+export const rateCells = (option: RateOption): readonly string[] => [
+  `${option.order}${option.isBest ? ', best' : ''}`,
+  formatHz(option.converterRateHz),
+  String(option.factor),
+  formatHz(option.cornerHz),
+  formatDb(option.aliasDb, 1),
+  `±${formatDb(option.rippleDb, 3)}`,
+  formatSeconds(option.delaySeconds),
+  `${formatNumber(option.multipliesPerSecond, 3)}/s`,
+]
+
+export const planColumns = ['down by', 'filters', 'multiplies', 'words', 'images', 'ripple', 'delay'] as const
+
+export const planName = ({ factors }: PlanOption): string => (factors.length === 0 ? '1' : factors.join(' × '))
+
+export const planCells = (option: PlanOption): readonly string[] => [
+  `${planName(option)}${option.isCurrent ? ', as it is' : ''}`,
+  option.filters.join(', '),
+  formatFixed(option.multipliesPerStoredSample, 1),
+  String(option.words),
+  formatDb(option.aliasDb, 1),
+  `±${formatDb(option.rippleDb, 3)}`,
+  formatSeconds(option.delaySeconds),
+]
+
+export const rateName = (option: RateOption): string => `order ${option.order} at ${formatHz(option.converterRateHz)}`
+
+/** What was found out belongs to stages, kept band and sheet; interferers and tolerances don't enter. */
+export const adviceQuestion = ({ stages, kept, sheet }: ChainSpec): readonly unknown[] => [stages, kept, sheet]
+
+/** The lowest converter rate for each order of the anti-alias filter; null with too few points to draw. */
+export function ratesPlan(options: readonly RateOption[], faded: boolean): LinesPlan | null {
+  const byOrder = [...options].sort((one, other) => one.order - other.order)
+  const [first] = byOrder
+  const last = byOrder.at(-1)
+  if (!first || !last || first.order === last.order) return null
+  const rates = byOrder.map(({ converterRateHz }) => converterRateHz)
+  const best = byOrder.filter(({ isBest }) => isBest)
+  const perUnit = Math.max(...rates) >= 2000 ? 1000 : 1
+  const curve = (name: string, from: readonly RateOption[]) => ({
+    name,
+    x: Float64Array.from(from, ({ order }) => order),
+    y: Float64Array.from(from, ({ converterRateHz }) => converterRateHz),
+  })
+  return {
+    title: 'Lowest converter rate for each order of the anti-alias filter',
+    x: { kind: 'linear', span: [first.order - 0.5, last.order + 0.5], are: 'plain' },
+    y: {
+      span: [0, Math.max(...rates) * 1.12],
+      quantity: 'plain',
+      sign: perUnit === 1000 ? '\u2009kHz' : '\u2009Hz',
+      perUnit,
+    },
+    curves: [
+      { ...curve('every order', byOrder), ink: 'pencil', dash: [4, 3], marker: 'circle' },
+      ...(best.length > 0 ? [{ ...curve('best', best), ink: 'spruce' as const, marker: 'diamond' as const }] : []),
+    ],
+    faded,
+  }
+}
