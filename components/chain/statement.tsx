@@ -72,11 +72,7 @@ export function ChainStatement({
           const stage = stageOf(part.key, spec.stages)
           // A full stop or a comma never begins a line: it stays with its word.
           return (
-            <span
-              key={part.key}
-              className={part.kind === 'name' ? undefined : 'whitespace-nowrap'}
-              onFocus={() => stage && store.getState().choose(stage)}
-            >
+            <span key={part.key} className={part.kind === 'name' ? undefined : 'whitespace-nowrap'}>
               <span className={stage && stage === chosen ? 'bg-spruce-wash' : undefined}>
                 <Word
                   part={part}

@@ -261,14 +261,6 @@ export function withIntegrationTimes(spec: ChainSpec, index: number, times: 1 | 
   return unit ? withStage(spec, index, { ...stage, filter: { ...stage.filter, times, unit } }) : spec
 }
 
-/** The pinned design of a stage, if it has one. */
-export function linkOf(stage: ChainStage): DesignLink | null {
-  if (stage.kind === 'analog') return stage.source.from === 'design' ? stage.source.link : null
-  if (stage.kind === 'decimate' || stage.kind === 'shape')
-    return stage.filter.type === 'design' ? stage.filter.link : null
-  return null
-}
-
 /** A stage's link moved to another version, or to another design. */
 export function withLink(spec: ChainSpec, index: number, link: DesignLink): ChainSpec {
   return spec.stages[index]?.kind === 'analog' ? withAnalogLink(spec, index, link) : withDigitalLink(spec, index, link)

@@ -192,14 +192,6 @@ export function chainMarginWords({ margin, met, unit }: Judged): string {
   return Number.isFinite(margin) ? `${word} by ${chainQuantity(Math.abs(margin), unit)}` : word
 }
 
-/** "3 of 5 met, 1 not judged". */
-export function chainSheetSummary(results: readonly Judged[]): string {
-  const [met, missed] = [true, false].map((is) => results.filter((result) => result.met === is).length)
-  const unjudged = results.length - (met ?? 0) - (missed ?? 0)
-  const open = unjudged > 0 ? `, ${unjudged} not judged` : ''
-  return missed === 0 && unjudged === 0 ? `All ${results.length} met` : `${met} of ${results.length} met${open}`
-}
-
 /** A new line of a kind, with values that suit the chain; every band lies below half its output rate. */
 export function usualLine(kind: ChainRequirementKind, { kept, sheet }: ChainSpec): ChainRequirement {
   const { fromHz, toHz } = kept

@@ -1,0 +1,249 @@
+'use client'
+
+import { useEffect, useMemo, useRef, useState, type KeyboardEvent, type PointerEvent } from 'react'
+import { chainSketch, noiseBudget, type ChainSpec, type ChainStage, type ComputedChain } from '@/dsp'
+import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { withStageMoved } from '@/lib/chains/edits'
+import { stageLabel, stageName } from '@/lib/chains/words'
+import { classNames } from '@/lib/format/class-names'
+import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
+import type { ChainDesk } from './chain-desk'
+import { StageSketch, stageLevels, storedLevels } from './sketch'
+import { stageFacts } from './stage-facts'
+
+/** The pointer has to go so far before a press becomes a drag. */
+const DRAG_PIXELS = 6
+
+interface Drag {
+  readonly stageId: string
+  readonly startX: number
+  /** Null until the pointer has gone far enough. */
+  readonly to: number | null
+}
+
+/** The stages in signal order, from the sensor to what is stored: chosen by a press, moved by pulling or with Alt and an arrow key. */
+export function Strip({
+  spec,
+  chain,
+  chosen,
+  desk,
+  readOnly,
+  onChoose,
+}: {
+  spec: ChainSpec
+  /** Null before the page is taken over, and where the spec makes no chain. */
+  chain: ComputedChain | null
+  chosen: string | null
+  desk: ChainDesk
+  readOnly: boolean
+  onChoose(stageId: string | null): void
+}) {
+  const [drag, setDrag] = useState<Drag | null>(null)
+  const [said, setSaid] = useState<{ readonly words: string; readonly isRefusal: boolean } | null>(null)
+  const row = useRef<HTMLOListElement>(null)
+  const hasDragged = useRef(false)
+  // A cell that was moved takes the focus along: the browser lets go of it when it changes its place.
+  const awaited = useRef<string | null>(null)
+  useEffect(() => {
+    if (awaited.current === null) return
+    row.current?.querySelector<HTMLElement>(`[data-stage="${awaited.current}"]`)?.focus()
+    awaited.current = null
+  }, [spec.stages])
+
+  function move(from: number, to: number) {
+    const stage = spec.stages[from]
+    if (!stage || from === to) return
+    const refusal = desk.editStages((now) => withStageMoved(now, from, to))
+    if (refusal === null) awaited.current = stage.id
+    const place = `${stageName(stage)} is stage ${to + 1} of ${spec.stages.length} now.`
+    setSaid({ words: refusal ?? place, isRefusal: refusal !== null })
+  }
+
+  /** Where a stage would come to stand if it were let go here. */
+  function placeAt(clientX: number, stageId: string): number {
+    const others = [...(row.current?.querySelectorAll<HTMLElement>('[data-stage]') ?? [])].filter(
+      (cell) => cell.dataset['stage'] !== stageId,
+    )
+    return others.filter((cell) => {
+      const { left, width } = cell.getBoundingClientRect()
+      return left + width / 2 < clientX
+    }).length
+  }
+
+  function onPointerMove(event: PointerEvent) {
+    if (!drag) return
+    if (drag.to === null && Math.abs(event.clientX - drag.startX) < DRAG_PIXELS) return
+    if (drag.to === null) event.currentTarget.setPointerCapture(event.pointerId)
+    setDrag({ ...drag, to: placeAt(event.clientX, drag.stageId) })
+  }
+
+  function letGo(isMeant: boolean) {
+    if (drag && drag.to !== null) {
+      hasDragged.current = true
+      const from = spec.stages.findIndex(({ id }) => id === drag.stageId)
+      if (isMeant && from >= 0) move(from, drag.to)
+    }
+    setDrag(null)
+  }
+
+  function onKeyDown(event: KeyboardEvent, index: number) {
+    if (event.key === 'Escape') {
+      if (drag) letGo(false)
+      else if (chosen !== null) onChoose(null)
+      return
+    }
+    if (event.key !== 'ArrowLeft' && event.key !== 'ArrowRight') return
+    event.preventDefault()
+    const to = index + (event.key === 'ArrowLeft' ? -1 : 1)
+    if (event.altKey) {
+      if (!readOnly) move(index, to)
+    } else {
+      const id = spec.stages[to]?.id
+      if (id) row.current?.querySelector<HTMLElement>(`[data-stage="${id}"]`)?.focus()
+    }
+  }
+
+  return (
+    <section aria-label="Stages in signal order">
+      <ol ref={row} className="flex overflow-x-auto border border-graph-strong bg-sheet">
+        {spec.stages.map((stage, index) => (
+          <li
+            key={stage.id}
+            className={classNames(
+              'relative flex min-w-36 flex-1 border-r border-graph-strong',
+              drag?.stageId === stage.id && drag.to !== null && 'opacity-50',
+            )}
+          >
+            {drag && drag.to === index && drag.stageId !== stage.id ? (
+              <span
+                aria-hidden
+                className={classNames(
+                  'absolute inset-y-0 w-[3px] bg-spruce',
+                  spec.stages.findIndex(({ id }) => id === drag.stageId) < index ? 'right-0' : 'left-0',
+                )}
+              />
+            ) : null}
+            <button
+              type="button"
+              data-stage={stage.id}
+              aria-pressed={stage.id === chosen}
+              aria-keyshortcuts={readOnly ? undefined : 'Alt+ArrowLeft Alt+ArrowRight'}
+              className={classNames(
+                'flex w-full touch-pan-x flex-col border-b-[3px] px-2.5 pt-1.5 pb-1 text-left -outline-offset-2 select-none',
+                stage.id === chosen ? 'border-spruce bg-spruce-wash' : 'border-transparent hover:bg-spruce-wash',
+              )}
+              onClick={() => {
+                if (hasDragged.current) hasDragged.current = false
+                else onChoose(stage.id === chosen ? null : stage.id)
+              }}
+              onKeyDown={(event) => onKeyDown(event, index)}
+              onPointerDown={(event) => {
+                hasDragged.current = false
+                if (!readOnly && event.pointerType !== 'touch' && event.button === 0)
+                  setDrag({ stageId: stage.id, startX: event.clientX, to: null })
+              }}
+              onPointerMove={onPointerMove}
+              onPointerUp={() => letGo(true)}
+              onPointerCancel={() => letGo(false)}
+            >
+              <StageCell spec={spec} stage={stage} index={index} chain={chain} />
+            </button>
+          </li>
+        ))}
+        <StoredCell spec={spec} chain={chain} />
+      </ol>
+      <p
+        role={said?.isRefusal ? 'alert' : 'status'}
+        className={said?.isRefusal ? 'mt-1 border-l-2 border-vermilion pl-2 text-[13px] text-vermilion' : 'sr-only'}
+      >
+        {said?.words}
+      </p>
+    </section>
+  )
+}
+
+function StageCell({
+  spec,
+  stage,
+  index,
+  chain,
+}: {
+  spec: ChainSpec
+  stage: ChainStage
+  index: number
+  chain: ComputedChain | null
+}) {
+  const levels = useMemo(() => (chain?.stages[index] ? stageLevels(chain, index) : null), [chain, index])
+  const computed = chain?.stages[index] ?? null
+  const facts = stageFacts(spec, index, computed)
+  const isDigital = stage.kind === 'decimate' || stage.kind === 'shape'
+  return (
+    <>
+      <Words label={stageLabel(stage)} name={stageName(stage)} isBypassed={stage.bypassed} />
+      <span className="flex min-h-[3.375rem] w-full items-end justify-between gap-2">
+        <Facts facts={facts} />
+        {levels ? <StageSketch levels={levels} tone={isDigital ? 'digital' : 'analog'} /> : null}
+      </span>
+    </>
+  )
+}
+
+function Words({ label, name, isBypassed = false }: { label: string; name: string; isBypassed?: boolean }) {
+  return (
+    <>
+      <span className="text-[11px] leading-4 tracking-wide text-pencil">
+        {label}
+        {isBypassed ? <span className="text-ochre"> · bypassed</span> : null}
+      </span>
+      <span
+        className={classNames(
+          'w-full truncate text-[13px] leading-5 font-semibold',
+          isBypassed && 'text-pencil line-through',
+        )}
+        title={name}
+      >
+        {name}
+      </span>
+    </>
+  )
+}
+
+const Facts = ({ facts }: { facts: readonly string[] }) => (
+  <span className="numeric flex min-w-0 flex-col self-start text-[11.5px] leading-[1.125rem] whitespace-nowrap text-ink">
+    {facts.map((fact) => (
+      <span key={fact} className="truncate">
+        {fact}
+      </span>
+    ))}
+  </span>
+)
+
+/** What comes of it all: the last cell, which can't be chosen. */
+function StoredCell({ spec, chain }: { spec: ChainSpec; chain: ComputedChain | null }) {
+  const onPage = useOnPage()
+  const figures = useMemo(
+    () =>
+      chain && onPage
+        ? {
+            delay: chainSketch(chain).delaySeconds,
+            bits: noiseBudget(chain).effectiveBits,
+            levels: storedLevels(chain),
+          }
+        : null,
+    [chain, onPage],
+  )
+  return (
+    <li className="flex min-w-36 flex-1 flex-col px-2.5 pt-1.5 pb-1">
+      <Words label="Stored" name={chain ? formatHz(chain.outputRateHz) : '—'} />
+      <span className="flex min-h-[3.375rem] w-full items-end justify-between gap-2">
+        <Facts
+          facts={[
+            `kept to ${formatHz(spec.kept.toHz, 4)}`,
+            ...(figures ? [formatSeconds(figures.delay, 3), `${formatNumber(figures.bits, 3)} bits`] : []),
+          ]}
+        />
+        {figures ? <StageSketch levels={figures.levels} tone="stored" /> : null}
+      </span>
+    </li>
+  )
+}
