@@ -39,46 +39,59 @@ const MOST_HIGH_PASS_RATIO = 10
 
 interface Tried extends Chosen {
   readonly error: number
-  readonly oddity: number
 }
 
 const spreadOf = (values: readonly number[]) => Math.log(Math.max(...values) / Math.min(...values))
 
-function tried(chosen: Chosen, wanted: Wanted): Tried {
-  const { ohms, farads, f0Hz, q } = chosen
+/** How far from ordinary the values are: spread among themselves, and off what resistors usually are. */
+function oddity({ ohms, farads }: Chosen): number {
   const middle = ohms.reduce((sum, value) => sum + Math.log(value), 0) / ohms.length
-  return {
-    ...chosen,
-    error: Math.hypot(f0Hz / wanted.f0Hz - 1, q === null ? 0 : q / wanted.q - 1),
-    oddity: spreadOf(farads) + spreadOf(ohms) + 0.5 * Math.abs(middle - Math.log(USUAL_OHMS)),
-  }
+  return spreadOf(farads) + spreadOf(ohms) + 0.5 * Math.abs(middle - Math.log(USUAL_OHMS))
 }
 
-/** The least error √(f0 error² + Q error²); among those within the slack of it, the most ordinary values. */
-function best(all: readonly Tried[]): Chosen | null {
-  const least = all.reduce((error, one) => Math.min(error, one.error), Infinity)
-  const good = all.filter((one) => one.error <= least + SLACK)
-  return good.length === 0 ? null : good.reduce((chosen, one) => (one.oddity < chosen.oddity ? one : chosen))
+/** Keeps what may yet be chosen: the least error √(f0 error² + Q error²) so far, and all within the slack of it. */
+class Shortlist {
+  private readonly wanted: Wanted
+  private least = Infinity
+  private good: Tried[] = []
+
+  constructor(wanted: Wanted) {
+    this.wanted = wanted
+  }
+
+  offer({ f0Hz, q }: PoleFigures, ohms: readonly number[], farads: readonly number[]): void {
+    const error = Math.hypot(f0Hz / this.wanted.f0Hz - 1, q === null ? 0 : q / this.wanted.q - 1)
+    if (error > this.least + SLACK) return
+    this.least = Math.min(this.least, error)
+    this.good.push({ f0Hz, q, ohms, farads, error })
+  }
+
+  /** The most ordinary of the good ones; null when nothing was offered. */
+  chosen(): Chosen | null {
+    const good = this.good.filter(({ error }) => error <= this.least + SLACK)
+    if (good.length === 0) return null
+    const { f0Hz, q, ohms, farads } = good.reduce((best, one) => (oddity(one) < oddity(best) ? one : best))
+    return { f0Hz, q, ohms, farads }
+  }
 }
 
 type Solve = (c1: number, c2: number) => readonly (readonly [number, number])[]
 type Evaluate = (first: number, second: number, c1: number, c2: number) => PoleFigures
 
 function search(stock: Stock, wanted: Wanted, solve: Solve, evaluate: Evaluate): Chosen | null {
-  const all: Tried[] = []
+  const shortlist = new Shortlist(wanted)
   for (const c1 of stock.farads) {
     for (const c2 of stock.farads) {
       for (const [exactFirst, exactSecond] of solve(c1, c2)) {
         for (const first of neighbours(stock.ohms, exactFirst)) {
           for (const second of neighbours(stock.ohms, exactSecond)) {
-            const figures = evaluate(first, second, c1, c2)
-            all.push(tried({ ...figures, ohms: [first, second], farads: [c1, c2] }, wanted))
+            shortlist.offer(evaluate(first, second, c1, c2), [first, second], [c1, c2])
           }
         }
       }
     }
   }
-  return best(all)
+  return shortlist.chosen()
 }
 
 /** Both roots of x² − sum·x + product = 0 where they are real, or nearly; null elsewhere. */
@@ -128,11 +141,11 @@ export function chooseMultipleFeedback(stock: Stock, wanted: Wanted): Chosen | n
 
 /** R and C. Null where nothing in stock reaches the values. */
 export function chooseRc(stock: Stock, f0Hz: number): Chosen | null {
-  const all: Tried[] = []
+  const shortlist = new Shortlist({ f0Hz, q: 1 })
   for (const farads of stock.farads) {
     for (const ohms of neighbours(stock.ohms, 1 / (2 * Math.PI * f0Hz * farads))) {
-      all.push(tried({ ...rcFigures(ohms, farads), ohms: [ohms], farads: [farads] }, { f0Hz, q: 1 }))
+      shortlist.offer(rcFigures(ohms, farads), [ohms], [farads])
     }
   }
-  return best(all)
+  return shortlist.chosen()
 }

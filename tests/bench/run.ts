@@ -21,6 +21,7 @@ import {
 import { benchCandidates } from './candidates'
 import { format, least, median, times } from './measure'
 import { timePython } from './python'
+import { benchTolerance } from './tolerance'
 
 const SAMPLES = 10_000_000
 const POINTS = 65_536
@@ -121,3 +122,8 @@ for (const { spend, offered, refused, firstSeconds, seconds } of benchCandidates
   const figures = `${seconds.toFixed(2)} s, ratio to 2 s ${(seconds / 2).toFixed(2)} (the first time ${firstSeconds.toFixed(2)} s)`
   say(`candidates for a usual sheet, ${spend}: ${figures}; ${offered} offered, ${refused} refused (asked: under 2 s)`)
 }
+
+const tolerance = benchTolerance()
+say(
+  `tolerance run, ${tolerance.channels} channels × ${tolerance.points} points: ${tolerance.twoCores.toFixed(2)} s halved between two cores, ratio to ${tolerance.askedSeconds} s ${tolerance.ratio.toFixed(2)} (asked: under ${tolerance.askedSeconds} s); ${tolerance.oneCore.toFixed(2)} s on one`,
+)
