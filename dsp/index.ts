@@ -195,6 +195,11 @@ export type {
 export { computeChain } from './chain/compute'
 export { chainResponse, stageMagnitudeDb } from './chain/response'
 export { foldChart, foldPaths, worstAlias } from './chain/folding'
+export { usableBand } from './chain/usable-band'
+export { noiseBudget } from './chain/noise'
+export { interfererLandings } from './chain/interferers'
+export { checkChainSheet } from './chain/sheet'
+export { chainSketch, type ChainSketch } from './chain/sketch'
 export { analogSections, type AnalogSection, type SectionResponse } from './chain/analog-sections'
 export {
   toleranceResult,

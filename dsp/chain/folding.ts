@@ -1,28 +1,15 @@
 import { show } from '../check'
 import { DesignError } from '../errors'
-import { highestPeakHz, partMostAboveDb } from './analog-bound'
+import { partMostAboveDb } from './analog-bound'
 import type { ComputedChain, FoldChart, FoldPath, FoldStrip, WorstAlias } from './chain'
+import { lookedUpTo, stripsUpTo } from './reach'
 import { foldsAt, inputOf, partsAhead, stripsOver } from './strips'
-import { refineInStrip, weakestStrips, type StripWorst } from './weakest'
+import { weakestStrips, type StripWorst } from './weakest'
 
-/** How far images are looked at, in converter rates. */
-const LOOK_UP_RATES = 4
-const MOST_LOOK_UP_RATES = 64
 /** A chart keeps every strip as long as there are no more than this. */
 const MOST_FULL_STRIPS = 96
 const KEPT_LOWEST = 16
 const KEPT_WORST = 16
-
-/** Up to four converter rates, and on by doublings while a pair of analog poles still has its peak above. */
-function lookedUpTo(chain: ComputedChain): number {
-  const peaks = partsAhead(chain).map((part) => (part.kind === 'analog' ? highestPeakHz(part.filter) : 0))
-  const least = 1.5 * Math.max(0, ...peaks)
-  let rates = LOOK_UP_RATES
-  while (rates < MOST_LOOK_UP_RATES && rates * chain.converterRateHz < least) rates *= 2
-  return rates * chain.converterRateHz
-}
-
-const stripsUpTo = (chain: ComputedChain, upToHz: number): number => Math.round((2 * upToHz) / chain.outputRateHz)
 
 function checkOutput(chain: ComputedChain, outputHz: number, field: string): void {
   const half = chain.outputRateHz / 2
@@ -91,15 +78,11 @@ export function foldChart(chain: ComputedChain, outputHz: Float64Array): FoldCha
   const lookedUpToHz = lookedUpTo(chain)
   const count = stripsUpTo(chain, lookedUpToHz)
   const { fromHz, toHz } = chain.spec.kept
-  const inside = outputHz.filter((hertz) => hertz > fromHz && hertz < toHz)
-  const grid = count <= MOST_FULL_STRIPS ? Float64Array.of(fromHz, ...inside, toHz) : null
-  const worst = weakestStrips(chain, fromHz, toHz, count, grid)
+  const worst = weakestStrips(chain, fromHz, toHz, count)
   const all = Array.from({ length: count }, (_, strip) => strip)
   const strips = count <= MOST_FULL_STRIPS ? all : chosen(chain, count, worst.strips)
   const byStrip = new Map(worst.strips.map((one) => [one.strip, one]))
-  const [first] = worst.strips
-  const weakStrip = first?.strip ?? 1
-  if (first !== undefined) byStrip.set(weakStrip, refineInStrip(chain, first, worst.grid))
+  const weakStrip = worst.strips[0]?.strip ?? 1
   const { levelDb } = stripsOver(chain, outputHz)
   const half = chain.outputRateHz / 2
   return {
@@ -143,13 +126,9 @@ export function worstAlias(chain: ComputedChain, toHz: number = chain.spec.kept.
   checkOutput(chain, toHz, 'toHz')
   const fromHz = Math.min(chain.spec.kept.fromHz, toHz)
   const count = stripsUpTo(chain, lookedUpTo(chain))
-  const { strips, grid } = weakestStrips(chain, fromHz, toHz, count, null)
-  const [first] = strips
+  const [first] = weakestStrips(chain, fromHz, toHz, count).strips
   if (first === undefined) throw new DesignError('output-out-of-range', 'toHz', 'No image was looked at.')
-  const { levelDb, outputHz, strip } = strips
-    .slice(0, KEPT_WORST / 4)
-    .map((one) => refineInStrip(chain, one, grid))
-    .reduce((most, one) => (one.levelDb > most.levelDb ? one : most))
+  const { levelDb, outputHz, strip } = first
   const inputHz = inputOf(strip, outputHz, chain.outputRateHz)
   return { levelDb, outputHz, inputHz, strip, foldsAtStageId: foldsAt(chain, strip) }
 }

@@ -1,3 +1,4 @@
+import type { Filter } from '../forms/filter'
 import type { ChainPart, ComputedChain } from './chain'
 import { addMagnitudeDb } from './part-response'
 
@@ -32,9 +33,32 @@ export function foldsAt(chain: ComputedChain, strip: number): string | null {
   return stage?.stage.id ?? null
 }
 
-/** Parts ahead of the quantiser, which see the input frequency itself. */
-export const partsAhead = (chain: ComputedChain): readonly ChainPart[] =>
-  chain.stages.slice(0, chain.converterIndex + 1).flatMap(({ parts }) => parts)
+/** Gains whose product could leave a double's range are kept apart. */
+const SAFE_GAIN = 1e280
+
+/** Analog filters one after the other as one, which takes one evaluation and one logarithm. */
+function together(filters: readonly Filter<'s'>[]): readonly Filter<'s'>[] {
+  const gain = filters.reduce((product, filter) => product * filter.gain, 1)
+  if (filters.length < 2 || !(Math.abs(gain) < SAFE_GAIN && Math.abs(gain) > 1 / SAFE_GAIN)) return filters
+  const zeros = filters.flatMap((filter) => filter.zeros)
+  return [{ domain: 's', zeros, poles: filters.flatMap((filter) => filter.poles), gain }]
+}
+
+const ahead = new WeakMap<ComputedChain, readonly ChainPart[]>()
+
+/** Parts ahead of the quantiser, which see the input frequency itself; the analog ones are taken together. */
+export function partsAhead(chain: ComputedChain): readonly ChainPart[] {
+  const known = ahead.get(chain)
+  if (known !== undefined) return known
+  const parts = chain.stages.slice(0, chain.converterIndex + 1).flatMap((stage) => stage.parts)
+  const analog = together(parts.flatMap((part) => (part.kind === 'analog' ? [part.filter] : [])))
+  const fresh = [
+    ...analog.map((filter): ChainPart => ({ kind: 'analog', filter })),
+    ...parts.filter((part) => part.kind !== 'analog'),
+  ]
+  ahead.set(chain, fresh)
+  return fresh
+}
 
 interface RateGroup {
   readonly strips: number
@@ -79,7 +103,7 @@ export interface Strips {
 export function stripsOver(chain: ComputedChain, outputHz: Float64Array): Strips {
   const count = outputHz.length
   const groups = groupsOf(chain)
-  const ahead = partsAhead(chain)
+  const inFront = partsAhead(chain)
   const scratch = new Float64Array(count)
   const inputs = new Float64Array(count)
   const takeInputs = (strip: number): void => {
@@ -114,7 +138,7 @@ export function stripsOver(chain: ComputedChain, outputHz: Float64Array): Strips
   const levelDb = (strip: number): Float64Array => {
     const total = digitalDb(strip)
     takeInputs(strip)
-    for (const part of ahead) addMagnitudeDb(part, inputs, total, scratch)
+    for (const part of inFront) addMagnitudeDb(part, inputs, total, scratch)
     return total
   }
   return { levelDb, digitalDb }

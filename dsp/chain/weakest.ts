@@ -1,3 +1,5 @@
+import { largest, type Curve } from '../requirements/extremes'
+import { ripplesOver } from './band-grid'
 import type { ComputedChain } from './chain'
 import { converterStrips, stripsOver, type Strips } from './strips'
 
@@ -6,24 +8,23 @@ export interface StripWorst {
   readonly strip: number
   readonly levelDb: number
   readonly outputHz: number
-  /** Index in the grid it was found on. */
-  readonly at: number
 }
 
 export interface Weakest {
   /** Every strip but the base band, the worst first. */
   readonly strips: readonly StripWorst[]
-  /** Output frequencies that the first of them were found on. */
-  readonly grid: Float64Array
   /** Most that the digital parts let through from any strip below half the converter's rate, on the grid. */
   readonly mostDigitalDb: number
 }
 
-const GRID_POINTS = 129
+const FEWEST_POINTS = 49
+const MOST_POINTS = 513
+const POINTS_A_RIPPLE = 6
 /** With more strips than this all are looked at on few frequencies first, and the worst again on the whole grid. */
 const MOST_ON_FULL_GRID = 192
 const FEW_POINTS = 5
 const LOOKED_AT_AGAIN = 32
+const REFINED = 4
 
 const evenGrid = (fromHz: number, toHz: number, points: number): Float64Array =>
   fromHz === toHz
@@ -36,7 +37,7 @@ function worstOf(strips: Strips, strip: number, grid: Float64Array): StripWorst 
   const levels = strips.levelDb(strip)
   let at = 0
   for (let n = 1; n < levels.length; n++) if (levels[n]! > levels[at]!) at = n
-  return { strip, levelDb: levels[at]!, outputHz: grid[at]!, at }
+  return { strip, levelDb: levels[at]!, outputHz: grid[at]! }
 }
 
 const worstFirst = (a: StripWorst, b: StripWorst): number =>
@@ -50,53 +51,74 @@ function mostDigital(chain: ComputedChain, strips: Strips): number {
   return most
 }
 
-/**
- * Strips by how strongly they come through to a band.
- *
- * @param count strips looked at, the base band included
- * @param given a grid to look at all of them on; without it one of 129 points, or few points first where there are very many strips
- */
-export function weakestStrips(
-  chain: ComputedChain,
-  fromHz: number,
-  toHz: number,
-  count: number,
-  given: Float64Array | null,
-): Weakest {
-  const grid = given ?? evenGrid(fromHz, toHz, GRID_POINTS)
-  const isFew = given === null && count > MOST_ON_FULL_GRID
+/** The highest level of a strip anywhere on the grid and between its points; never less than what the grid had. */
+function refined(chain: ComputedChain, found: StripWorst, grid: Float64Array): StripWorst {
+  const { value, hz } = largest((at) => stripsOver(chain, at).levelDb(found.strip), grid)
+  return value > found.levelDb ? { ...found, levelDb: value, outputHz: hz } : found
+}
+
+function look(chain: ComputedChain, fromHz: number, toHz: number, count: number): Weakest {
+  const points = Math.ceil(POINTS_A_RIPPLE * ripplesOver(chain, fromHz, toHz))
+  const grid = evenGrid(fromHz, toHz, Math.min(MOST_POINTS, Math.max(FEWEST_POINTS, points)))
+  const isFew = count > MOST_ON_FULL_GRID
   const firstGrid = isFew ? evenGrid(fromHz, toHz, FEW_POINTS) : grid
   const first = stripsOver(chain, firstGrid)
   const found = Array.from({ length: count - 1 }, (_, n) => worstOf(first, n + 1, firstGrid)).sort(worstFirst)
   const mostDigitalDb = mostDigital(chain, first)
-  if (!isFew) return { strips: found, grid, mostDigitalDb }
   const again = stripsOver(chain, grid)
-  const looked = found
-    .slice(0, LOOKED_AT_AGAIN)
-    .map(({ strip }) => worstOf(again, strip, grid))
+  const looked = isFew ? found.slice(0, LOOKED_AT_AGAIN).map(({ strip }) => worstOf(again, strip, grid)) : found
+  const nearest = looked
+    .slice(0, REFINED)
+    .map((one) => refined(chain, one, grid))
     .sort(worstFirst)
-  return { strips: [...looked, ...found.slice(LOOKED_AT_AGAIN)], grid, mostDigitalDb }
+  const rest = [...looked.slice(REFINED), ...(isFew ? found.slice(LOOKED_AT_AGAIN) : [])]
+  return { strips: [...nearest, ...rest], mostDigitalDb }
 }
 
-const GOLDEN = (Math.sqrt(5) - 1) / 2
-const STEPS = 40
+const looked = new WeakMap<ComputedChain, Map<string, Weakest>>()
 
-/** The highest level between the neighbours of a grid point, by golden section; never less than what the grid had. */
-export function refineInStrip(chain: ComputedChain, found: StripWorst, grid: Float64Array): StripWorst {
-  let low = grid[Math.max(0, found.at - 1)]!
-  let high = grid[Math.min(grid.length - 1, found.at + 1)]!
-  let best = found
-  for (let step = 0; step < STEPS && high - low > 1e-9 * high; step++) {
-    const left = high - GOLDEN * (high - low)
-    const right = low + GOLDEN * (high - low)
-    const [atLeft = -Infinity, atRight = -Infinity] = stripsOver(chain, Float64Array.of(left, right)).levelDb(
-      found.strip,
+/**
+ * Strips by how strongly they come through to a band, the foremost refined between the points looked at. Kept with the chain, since its chart,
+ * its sheet and its figures all ask for it.
+ *
+ * @param count strips looked at, the base band included
+ */
+export function weakestStrips(chain: ComputedChain, fromHz: number, toHz: number, count: number): Weakest {
+  const byBand = looked.get(chain) ?? new Map<string, Weakest>()
+  looked.set(chain, byBand)
+  const key = `${fromHz} ${toHz} ${count}`
+  const known = byBand.get(key) ?? look(chain, fromHz, toHz, count)
+  byBand.set(key, known)
+  return known
+}
+
+const STRONGEST_AT_EACH = 4
+const PLACES = 17
+
+/**
+ * The level of the strongest image over output frequencies of a band, from the strips that are among the strongest anywhere in it.
+ *
+ * @param count strips looked at, the base band included
+ */
+export function strongestImage(chain: ComputedChain, fromHz: number, toHz: number, count: number): Curve {
+  const places = evenGrid(fromHz, toHz, count > MOST_ON_FULL_GRID ? FEW_POINTS : PLACES)
+  const { levelDb } = stripsOver(chain, places)
+  const levels = Array.from({ length: count - 1 }, (_, n) => ({ strip: n + 1, levels: levelDb(n + 1) }))
+  const strips = new Set<number>()
+  places.forEach((_, at) => {
+    const byLevel = [...levels].sort((a, b) =>
+      b.levels[at]! > a.levels[at]! ? 1 : b.levels[at]! < a.levels[at]! ? -1 : 0,
     )
-    const isLeft = atLeft > atRight
-    const levelDb = isLeft ? atLeft : atRight
-    if (levelDb > best.levelDb) best = { ...best, levelDb, outputHz: isLeft ? left : right }
-    if (isLeft) high = right
-    else low = left
+    for (const { strip } of byLevel.slice(0, STRONGEST_AT_EACH)) strips.add(strip)
+  })
+  return (at) => {
+    const over = stripsOver(chain, at)
+    const most = new Float64Array(at.length).fill(-Infinity)
+    for (const strip of strips) {
+      over.levelDb(strip).forEach((level, n) => {
+        if (level > most[n]!) most[n] = level
+      })
+    }
+    return most
   }
-  return best
 }
