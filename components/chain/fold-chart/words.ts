@@ -1,4 +1,6 @@
-import type { ChainStage, ComputedChain, FoldChart, FoldPath, FoldStrip } from '@/dsp'
+import type { ComputedChain, FoldChart, FoldPath, FoldStrip } from '@/dsp'
+import { listed } from '@/components/studio/compare/sides'
+import { stageLabel } from '@/lib/chains/words'
 import { formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
 
 /* What the fold chart says in words. */
@@ -47,9 +49,6 @@ export const beyondWords = ({ lookedUpToHz, beyondAtMostDb }: FoldChart): string
 
 const LISTED = 7
 
-const listed = (words: readonly string[]): string =>
-  words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} and ${words[words.length - 1] ?? ''}`
-
 /** Frequencies in one unit, so that the unit is said once: 215, 285 and 465 Hz. */
 function frequencyList(hertz: readonly number[], more: number): string {
   const inKilohertz = Math.max(...hertz) >= 10_000
@@ -79,24 +78,9 @@ export function spokenTrace(outputHz: number, paths: readonly FoldPath[]): strin
 export const imagesOf = (paths: readonly FoldPath[]): readonly FoldPath[] => paths.filter(({ strip }) => strip > 0)
 
 /** A stage as the chart names it at a fold. */
-export function foldStageName(stage: ChainStage): string {
-  switch (stage.kind) {
-    case 'decimate':
-      return `Down by ${stage.factor}`
-    case 'converter':
-      return 'Converter'
-    case 'sensor':
-      return 'Sensor'
-    case 'analog':
-      return 'Analog'
-    case 'shape':
-      return 'Shaping'
-  }
-}
-
 export function stageNameOf(chain: ComputedChain, stageId: string | null): string | null {
   const found = chain.stages.find(({ stage }) => stage.id === stageId)
-  return found ? foldStageName(found.stage) : null
+  return found ? stageLabel(found.stage) : null
 }
 
 /**
@@ -107,7 +91,7 @@ export function foldMaker(chain: ComputedChain, hertz: number): string | null {
   for (const { stage, outRateHz } of chain.stages) {
     if (outRateHz === null || (stage.kind !== 'converter' && stage.kind !== 'decimate') || stage.bypassed) continue
     const turns = hertz / (outRateHz / 2)
-    if (Math.round(turns) > 0 && Math.abs(turns - Math.round(turns)) < 1e-6) return foldStageName(stage)
+    if (Math.round(turns) > 0 && Math.abs(turns - Math.round(turns)) < 1e-6) return stageLabel(stage)
   }
   return null
 }

@@ -3,10 +3,11 @@
 import Link from 'next/link'
 import { useState } from 'react'
 import { Button, buttonClass } from '@/components/ui/button'
-import type { ChainFigures, ChainVersionSummary } from '@/lib/chains/types'
+import { figureRows } from '@/lib/chains/figure-words'
+import type { ChainVersionSummary } from '@/lib/chains/types'
 import { sameValue } from '@/lib/designs/same-value'
 import { stateWords } from '@/lib/designs/words'
-import { formatDb, formatFixed, formatHz, formatInstant, formatNumber, formatSeconds } from '@/lib/format/quantity'
+import { formatInstant } from '@/lib/format/quantity'
 import { FigureLine } from './chart/figures'
 import type { ChainPanelProps } from './props'
 
@@ -107,7 +108,7 @@ function Entry({
             <span className="numeric">{number}</span> · {note}
           </h3>
         </div>
-        <FigureLine figures={versionFigures(figures)} />
+        <FigureLine figures={figureRows(figures).map(({ name, text }) => ({ name, value: text }))} />
         <p className="flex flex-wrap gap-x-4 text-[13px] text-pencil">
           <span>
             Saved <time dateTime={savedAt}>{formatInstant(savedAt)}</time> by {savedBy}
@@ -139,22 +140,3 @@ function Entry({
     </li>
   )
 }
-
-/** Lines met, missed and not judged: 4 met, 1 missed. */
-export function sheetWords({ met, missed, unjudged }: Pick<ChainFigures, 'met' | 'missed' | 'unjudged'>): string {
-  const parts = [
-    ...(met > 0 ? [`${met} met`] : []),
-    ...(missed > 0 ? [`${missed} missed`] : []),
-    ...(unjudged > 0 ? [`${unjudged} not judged`] : []),
-  ]
-  return parts.length > 0 ? parts.join(', ') : 'no lines'
-}
-
-export const versionFigures = (figures: ChainFigures) => [
-  { name: 'Stored at', value: formatHz(figures.outputRateHz) },
-  { name: 'Worst image', value: formatDb(figures.worstAliasDb, 1) },
-  { name: 'Delay', value: formatSeconds(figures.delaySeconds) },
-  { name: 'Effective bits', value: formatFixed(figures.effectiveBits, 1) },
-  { name: 'Multiplies', value: formatNumber(figures.multipliesPerStoredSample, 4) },
-  { name: 'Sheet', value: sheetWords(figures) },
-]

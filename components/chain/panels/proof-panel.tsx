@@ -98,6 +98,11 @@ function Proof({ spec }: ChainPanelProps) {
               }
             })}
           />
+          {result.notes.map((note) => (
+            <p key={note} className="max-w-prose text-[13px] text-pencil">
+              {note}
+            </p>
+          ))}
           <p className={classNames('numeric text-[13px]', !result.delay.agrees && 'text-vermilion')}>
             {delayWords(result)}
           </p>

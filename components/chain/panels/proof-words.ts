@@ -13,7 +13,7 @@ export const proofCells = (line: ProofLine): readonly string[] => [
   formatDb(line.computedDb, 3),
   formatDb(line.measuredDb, 3),
   formatDb(line.measuredDb - line.computedDb, 3),
-  `±${formatDb(line.boundDb, 3)}`,
+  line.comparison === 'within' ? `±${formatDb(line.boundDb, 3)}` : `${formatDb(line.boundDb, 3)} above`,
   line.agrees ? 'agrees' : 'does not agree',
 ]
 
@@ -38,7 +38,7 @@ export function spectrumPlan({ spectrum }: ProofResult, faded: boolean): LinesPl
   const { frequenciesHz: x, measuredDensityDb, computedDensityDb } = spectrum
   const [low, high] = spanOf([computedDensityDb, measuredDensityDb], 20)
   return {
-    title: 'Density of the stored samples',
+    title: 'Density of the stored samples, dB against one squared per hertz',
     x: { kind: 'linear', span: [0, x[x.length - 1] ?? 1], are: 'hertz' },
     y: { span: [Math.max(low, high - 220), high], quantity: 'decibels', sign: '\u2009dB' },
     curves: [

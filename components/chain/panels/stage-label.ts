@@ -1,6 +1,6 @@
 import type { ChainStage } from '@/dsp'
-import { foldStageName } from '../fold-chart/words'
+import { stageLabel, stageName } from '@/lib/chains/words'
 
-/** A stage in a table of the drawer: what it does, and that it is bypassed. */
+/** A stage in a table of the drawer: what it does, by what, and whether it is bypassed. */
 export const chainStageLabel = (stage: ChainStage): string =>
-  `${stage.kind === 'sensor' ? `Sensor, ${stage.name}` : foldStageName(stage)}${stage.bypassed ? ', bypassed' : ''}`
+  `${stageLabel(stage)}, ${stageName(stage)}${stage.bypassed ? ', bypassed' : ''}`

@@ -12,6 +12,7 @@ import { LinesPlot } from './chart/lines-plot'
 import type { ChainPanelProps } from './props'
 import {
   adviceQuestion,
+  filterWords,
   planCells,
   planColumns,
   planName,
@@ -100,7 +101,9 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           startWords="Find decimation plans"
           againWords="Find plans again"
           stopWords="Stop the search for plans"
-          doneWords={(found: readonly PlanOption[]) => `${found.length} plans meet the sheet`}
+          doneWords={(found: readonly PlanOption[]) =>
+            `${found.filter(({ meets }) => meets).length} plans meet the sheet`
+          }
           onStart={() => plans.run(spec)}
           onStop={plans.stop}
         />
@@ -117,11 +120,14 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
             columns={readOnly ? planColumns : [...planColumns, '']}
             wordColumns={[1]}
             rows={plans.value.map((option, index) => {
-              const name = `plan ${planName(option)} (${option.filters.join(', ')})`
+              const name = `plan ${planName(option)} (${filterWords(option)})`
               return {
                 key: `${index} ${name}`,
                 strong: option.isCurrent,
-                cells: [...planCells(option), ...(readOnly ? [] : [takeButton(name, option.spec)])],
+                cells: [
+                  ...planCells(option),
+                  ...(readOnly ? [] : [option.isCurrent ? null : takeButton(name, option.spec)]),
+                ],
               }
             })}
           />

@@ -1,5 +1,8 @@
 import type { ChainSpec, PlanOption, RateOption } from '@/dsp'
+import type { DecimateFilterType } from '@/lib/chains/stage-starts'
+import { decimateWords } from '@/lib/chains/words'
 import { formatDb, formatFixed, formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
+import { downWords } from '../fold-chart/words'
 import type { LinesPlan } from './chart/lines-picture'
 
 /* What the advisor's tables and picture say. */
@@ -20,7 +23,7 @@ export const rateCells = (option: RateOption): readonly string[] => [
   formatHz(option.converterRateHz),
   String(option.factor),
   formatHz(option.cornerHz),
-  formatDb(option.aliasDb, 1),
+  downWords(-option.aliasDb),
   `±${formatDb(option.rippleDb, 3)}`,
   formatSeconds(option.delaySeconds),
   `${formatNumber(option.multipliesPerSecond, 3)}/s`,
@@ -28,14 +31,18 @@ export const rateCells = (option: RateOption): readonly string[] => [
 
 export const planColumns = ['down by', 'filters', 'multiplies', 'words', 'images', 'ripple', 'delay'] as const
 
+/** Kinds of filter in signal order. */
+export const filterWords = ({ filters }: PlanOption): string =>
+  filters.map((type) => (type in decimateWords ? decimateWords[type as DecimateFilterType] : type)).join(', ')
+
 export const planName = ({ factors }: PlanOption): string => (factors.length === 0 ? '1' : factors.join(' × '))
 
 export const planCells = (option: PlanOption): readonly string[] => [
-  `${planName(option)}${option.isCurrent ? ', as it is' : ''}`,
-  option.filters.join(', '),
+  `${planName(option)}${option.isCurrent ? ', as it is' : ''}${option.meets ? '' : ', misses the sheet'}`,
+  filterWords(option),
   formatFixed(option.multipliesPerStoredSample, 1),
   String(option.words),
-  formatDb(option.aliasDb, 1),
+  downWords(-option.aliasDb),
   `±${formatDb(option.rippleDb, 3)}`,
   formatSeconds(option.delaySeconds),
 ]
