@@ -1,4 +1,5 @@
 import { DesignError } from '../errors'
+import { quantilesOf } from './tolerance-quantiles'
 import type { ComputedChain } from './chain'
 import type { ToleranceSettings } from './spec'
 
@@ -37,18 +38,6 @@ export interface ToleranceResult {
 
 /** Frequencies whose columns are gathered in one walk over the channels. */
 const COLUMNS = 16
-
-/**
- * The p-th quantile of rising values: linear between the order statistics around position p·(n − 1), which is definition 7 of R. J.
- * Hyndman & Y. Fan, Sample Quantiles in Statistical Packages, The American Statistician 50(4), 1996.
- */
-export function quantileOf(rising: Float64Array, p: number): number {
-  const position = p * (rising.length - 1)
-  const below = Math.floor(position)
-  const low = rising[below]!
-  const high = rising[Math.min(below + 1, rising.length - 1)]!
-  return low + (position - below) * (high - low)
-}
 
 function checkShards(shards: readonly ToleranceShard[], channels: number, points: number): readonly ToleranceShard[] {
   const inOrder = [...shards].sort((a, b) => a.fromChannel - b.fromChannel)
@@ -91,19 +80,17 @@ function distributionOf(
     }
     for (let column = 0; column < width; column += 1) {
       const values = columns[column]!
+      let most = Math.abs(values[0]! - values[channels - 1]!)
+      apart[0] = most
       for (let channel = 1; channel < channels; channel += 1) {
-        apart[channel] = Math.abs(values[channel]! - values[channel - 1]!)
+        const distance = Math.abs(values[channel]! - values[channel - 1]!)
+        apart[channel] = distance
+        if (distance > most) most = distance
       }
-      apart[0] = Math.abs(values[0]! - values[channels - 1]!)
-      apart.sort()
-      values.sort()
       const point = first + column
-      spread.p5[point] = quantileOf(values, 0.05)
-      spread.p50[point] = quantileOf(values, 0.5)
-      spread.p95[point] = quantileOf(values, 0.95)
-      match.p50[point] = quantileOf(apart, 0.5)
-      match.p95[point] = quantileOf(apart, 0.95)
-      match.most[point] = apart[channels - 1]!
+      match.most[point] = most
+      ;[match.p50[point], match.p95[point]] = quantilesOf(apart, [0.5, 0.95])
+      ;[spread.p5[point], spread.p50[point], spread.p95[point]] = quantilesOf(values, [0.05, 0.5, 0.95])
     }
   }
   return { spread, match }

@@ -1,6 +1,7 @@
+import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { toleranceFrequencies, toleranceResult, toleranceShard, type AnalogSpec, type ToleranceShard } from '@/dsp'
-import { quantileOf } from '@/dsp/chain/tolerance'
+import { quantilesOf } from '@/dsp/chain/tolerance-quantiles'
 import { analogChain } from '../../helpers/analog-chain'
 
 const analog: readonly AnalogSpec[] = [{ family: 'bessel', response: 'lowpass', order: 4, edgesHz: [1500] }]
@@ -15,10 +16,22 @@ function naive(values: readonly number[], p: number): number {
 
 describe('quantiles', () => {
   it('are order statistics where they fall on one, and straight between', () => {
-    const rising = Float64Array.of(1, 2, 4, 8, 16)
-    expect([0, 0.25, 0.5, 0.75, 1].map((p) => quantileOf(rising, p))).toEqual([1, 2, 4, 8, 16])
-    expect(quantileOf(rising, 0.95)).toBeCloseTo(14.4, 12)
-    expect(quantileOf(Float64Array.of(3), 0.95)).toBe(3)
+    expect(quantilesOf(Float64Array.of(4, 16, 1, 8, 2), [0, 0.25, 0.5, 0.75, 1])).toEqual([1, 2, 4, 8, 16])
+    expect(quantilesOf(Float64Array.of(4, 16, 1, 8, 2), [0.95])).toEqual([expect.closeTo(14.4, 12)])
+    expect(quantilesOf(Float64Array.of(3), [0.05, 0.5, 0.95])).toEqual([3, 3, 3])
+  })
+
+  it('are those of a plain sort for any values, equal ones among them', () => {
+    const values = fc.array(fc.oneof(fc.double({ min: -10, max: 10, noNaN: true }), fc.integer({ min: -2, max: 2 })), {
+      minLength: 1,
+      maxLength: 200,
+    })
+    fc.assert(
+      fc.property(values, (list) => {
+        const quantiles = quantilesOf(Float64Array.from(list), [0.05, 0.5, 0.95])
+        ;[0.05, 0.5, 0.95].forEach((p, k) => expect(quantiles[k]).toBeCloseTo(naive(list, p), 10))
+      }),
+    )
   })
 })
 
