@@ -1,9 +1,10 @@
 'use client'
 
+import dynamic from 'next/dynamic'
 import { useSearchParams } from 'next/navigation'
 import { useEffect, useMemo, useState } from 'react'
 import { useStore } from 'zustand'
-import { DesignError, type ChainSpec } from '@/dsp'
+import { DesignError, type ChainSpec, type ChainStageKind } from '@/dsp'
 import { Header } from '@/components/frame/header'
 import { matches } from '@/components/studio/commands'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
@@ -14,15 +15,37 @@ import { forgetKeptDraft, keptDraft } from '@/components/studio/shell/kept-draft
 import { SaveVersion } from '@/components/studio/shell/save-version'
 import { usePacedSpec, type Pace } from '@/components/studio/shell/use-paced-spec'
 import { Button, buttonClass } from '@/components/ui/button'
+import { Fence } from '@/components/ui/fence'
 import { Notice } from '@/components/ui/notice'
+import { withStageAdded } from '@/lib/chains/edits'
+import { indexOfStage } from '@/lib/chains/outline'
+import { chainText } from '@/lib/chains/statement'
 import type { ChainPageProps, ChainVersionSummary } from '@/lib/chains/types'
 import { sameValue } from '@/lib/designs/same-value'
+import { AddStage } from './add-stage'
+import { chainDesk } from './chain-desk'
+import { ChainDrawer } from './chain-drawer'
 import { ChainTitleBlock } from './chain-title-block'
 import { chainCommands } from './commands'
 import { computedChain } from './computed-chain'
-import { createChainStore } from './store'
+import { useChainJudgements } from './judge'
+import { StageDesk } from './stage-desk'
+import { ChainStatement } from './statement'
+import { createChainStore, toleranceFor } from './store'
+import { Strip } from './strip'
 import { useChain } from './use-chain'
 import { chainDrawerTabs } from './view'
+
+/** The chart, the sheet and the drawer come after what is said in words: the first page stays light. */
+const FoldChart = dynamic(() => import('./fold-chart/fold-chart').then((module) => module.FoldChart), {
+  ssr: false,
+  loading: () => <p className="min-h-[28rem] text-[13px] text-pencil">Opening the fold chart…</p>,
+})
+const ChainSheet = dynamic(() => import('./sheet').then((module) => module.ChainSheet), {
+  ssr: false,
+  loading: () => <p className="text-[13px] text-pencil">Opening the requirement sheet…</p>,
+})
+const Interferers = dynamic(() => import('./interferers').then((module) => module.Interferers), { ssr: false })
 
 /** Figures and tables follow a gesture once it pauses. */
 const PAUSE: Pace = { afterMs: 60 }
@@ -103,6 +126,28 @@ export function ChainPage({
     setSaving(false)
   }
 
+  const stageId = useChain(store, (state) => state.stageId)
+  const traceHz = useChain(store, (state) => state.traceHz)
+  const tolerance = useChain(store, (state) => state.tolerance)
+  const match = useMemo(() => toleranceFor(spec, tolerance), [spec, tolerance])
+  const judgements = useChainJudgements(spec, match)
+  const desk = useMemo(() => chainDesk(store), [store])
+  const { trace } = store.getState()
+  const chosenIndex = indexOfStage(spec, stageId)
+  const [adding, setAdding] = useState<string | null>(null)
+
+  function addStage(kind: ChainStageKind) {
+    const behind = chosenIndex < 0 ? spec.stages.length - 1 : chosenIndex
+    const links = linkable.map(({ link }) => link)
+    setAdding(desk.editStages((now) => withStageAdded(now, kind, behind, links)))
+  }
+
+  /** The focus goes back to the stage that lay on the desk. */
+  function putAway() {
+    document.querySelector<HTMLElement>(`[data-stage="${stageId}"]`)?.focus()
+    store.getState().choose(null)
+  }
+
   const canUndo = useChain(store, (state) => state.past.length > 0)
   const canRedo = useChain(store, (state) => state.future.length > 0)
   const nextNumber = (latest?.number ?? 0) + 1
@@ -154,7 +199,12 @@ export function ChainPage({
               ...(onTopOf === undefined ? {} : { onTopOf }),
             })
           }
-          compare={() => null}
+          compare={(theirs) => (
+            <dl className="grid gap-3 text-[14px] sm:grid-cols-2">
+              <Side label={`Version ${theirs.number}`} spec={theirs.spec} />
+              <Side label="Your draft" spec={spec} />
+            </dl>
+          )}
           onSaved={goOnFrom}
           onTakeTheirs={(version) => {
             store.getState().propose(version.spec)
@@ -188,10 +238,75 @@ export function ChainPage({
             </Button>
           </Notice>
         ) : null}
-        <p>
-          {linkable.length} {made?.outputRateHz ?? 0}
-        </p>
-        <ChainTitleBlock chain={chain} latest={latest} spec={spec} viewer={viewer} />
+        <ChainStatement store={store} linkable={linkable} readOnly={!mayEdit} />
+
+        <div className="mt-2 flex items-baseline justify-between gap-3 pb-1">
+          <p className="text-[13px] text-pencil">
+            {mayEdit
+              ? 'Press a stage to edit it; pull it, or press Alt and an arrow key, to move it.'
+              : 'Press a stage to see it.'}
+          </p>
+          {mayEdit ? <AddStage spec={spec} onAdd={addStage} /> : null}
+        </div>
+        <Fence what="The strip of stages" retryOn={spec}>
+          <Strip
+            spec={spec}
+            chain={made}
+            chosen={stageId}
+            desk={desk}
+            readOnly={!mayEdit}
+            onChoose={store.getState().choose}
+          />
+          {chosenIndex >= 0 ? (
+            <StageDesk
+              key={stageId}
+              spec={spec}
+              index={chosenIndex}
+              desk={desk}
+              linkable={linkable}
+              readOnly={!mayEdit}
+              onClose={putAway}
+            />
+          ) : null}
+        </Fence>
+        {adding ? (
+          <p role="alert" className="mt-1 border-l-2 border-vermilion pl-2 text-[13px] text-vermilion">
+            {adding}
+          </p>
+        ) : null}
+
+        <div className="mt-3 grid gap-x-8 gap-y-6 min-[1025px]:grid-cols-[minmax(0,1fr)_minmax(0,28.5rem)]">
+          <div className="min-w-0">
+            {made ? (
+              <Fence what="The fold chart" retryOn={spec}>
+                <FoldChart chain={made} spec={spec} traceHz={traceHz} onTrace={trace} />
+              </Fence>
+            ) : null}
+          </div>
+          <aside aria-label="Requirements, interferers and title block" className="flex min-w-0 flex-col gap-5">
+            <Fence what="The requirement sheet" retryOn={spec}>
+              <ChainSheet
+                spec={spec}
+                judgements={judgements}
+                desk={desk}
+                readOnly={!mayEdit}
+                onTrace={trace}
+                onRunTolerance={() => {
+                  store.getState().open('tolerance')
+                  document.getElementById('drawer-panel')?.scrollIntoView({ block: 'start' })
+                }}
+              />
+            </Fence>
+            <Fence what="The list of interferers" retryOn={spec}>
+              <Interferers spec={spec} chain={made} desk={desk} readOnly={!mayEdit} onTrace={trace} />
+            </Fence>
+            <ChainTitleBlock chain={chain} latest={latest} spec={spec} viewer={viewer} />
+          </aside>
+        </div>
+
+        {onPage ? (
+          <ChainDrawer store={store} chainId={chain.id} spec={spec} chain={made} saved={saved} readOnly={!mayEdit} />
+        ) : null}
         <footer className="border-t border-graph py-4 text-[13px] text-pencil">
           A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the
           applicable local codes and a licensed practitioner decide.
@@ -200,3 +315,10 @@ export function ChainPage({
     </>
   )
 }
+
+const Side = ({ label, spec }: { label: string; spec: ChainSpec }) => (
+  <div className="border-t border-graph-strong pt-1">
+    <dt className="text-[13px] text-pencil">{label}</dt>
+    <dd className="font-heading text-[16px] leading-snug">{chainText(spec)}</dd>
+  </div>
+)

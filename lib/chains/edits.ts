@@ -112,20 +112,36 @@ function withStages(spec: ChainSpec, stages: readonly ChainStage[], stageId: str
   return { ok: true, spec: followed(spec, { ...spec, stages }), stageId }
 }
 
-/** A new stage behind the chosen one where its kind may stand there, else as far down the chain as it may. */
-export function withStageAdded(spec: ChainSpec, kind: ChainStageKind, behindIndex: number): StagesEdit {
+/**
+ * A new stage behind the chosen one where its kind may stand there, else as far down the chain as it may. Shaping where there is nothing
+ * to integrate takes the first of the designs that can be linked.
+ */
+export function withStageAdded(
+  spec: ChainSpec,
+  kind: ChainStageKind,
+  behindIndex: number,
+  links: readonly DesignLink[] = [],
+): StagesEdit {
   if (spec.stages.length >= MOST_CHAIN_STAGES) return full
   const places = placesFor(spec, kind)
   const index = places.includes(behindIndex + 1) ? behindIndex + 1 : places.at(-1)
   if (index === undefined) return refused(`A chain has one ${kind}.`)
-  const stage = newStage(kind, spec, index)
+  const [link] = links
+  const stage = newStage(kind, spec, index) ?? (link ? linkedShape(spec, link) : null)
   if (!stage) {
     return refused(
-      `There is nothing to integrate ${unitAfter(spec, index - 1)} to, and no design chosen: shape with a design of the project instead.`,
+      `There is nothing that ${unitAfter(spec, index - 1)} is integrated to, and no design with a version to shape by. Save a version of a design in this project first.`,
     )
   }
   return withStages(spec, [...spec.stages.slice(0, index), stage, ...spec.stages.slice(index)], stage.id)
 }
+
+const linkedShape = (spec: ChainSpec, link: DesignLink): ChainStage => ({
+  id: freshStageId(spec),
+  bypassed: false,
+  kind: 'shape',
+  filter: { type: 'design', link },
+})
 
 /** The stage at `from` moved to stand at `to`. */
 export function withStageMoved(spec: ChainSpec, from: number, to: number): StagesEdit {

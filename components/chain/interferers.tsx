@@ -1,0 +1,221 @@
+'use client'
+
+import { X } from 'lucide-react'
+import { useEffect, useMemo, useRef, useState } from 'react'
+import { interfererLandings, MOST_INTERFERERS, type ChainSpec, type ComputedChain, type InterfererLanding } from '@/dsp'
+import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { wordLook } from '@/components/studio/statement/word-look'
+import { Button } from '@/components/ui/button'
+import { levelText, withPartAt } from '@/lib/chains/fields'
+import { nameRefusal } from '@/lib/chains/names'
+import { unitAfter } from '@/lib/chains/outline'
+import { classNames } from '@/lib/format/class-names'
+import { formatFixed, formatHz } from '@/lib/format/quantity'
+import type { ChainDesk } from './chain-desk'
+import { ChainNumber } from './desk-fields'
+import { NameWord } from './name-word'
+
+/** What is there beside the wanted signal: where each lands in the samples, and how big. */
+export function Interferers({
+  spec,
+  chain,
+  desk,
+  readOnly,
+  onTrace,
+}: {
+  spec: ChainSpec
+  chain: ComputedChain | null
+  desk: ChainDesk
+  readOnly: boolean
+  onTrace(hz: number): void
+}) {
+  const { interferers } = spec
+  const onPage = useOnPage()
+  // A chain is computed of one spec: while it follows a gesture, its landings may be of the one before.
+  const landings = useMemo(
+    () => (onPage && chain && chain.spec.interferers.length > 0 ? interfererLandings(chain) : []),
+    [onPage, chain],
+  )
+  const [problem, setProblem] = useState<string | null>(null)
+  const section = useRef<HTMLElement>(null)
+  const awaited = useRef<number | null>(null)
+  useEffect(() => {
+    if (awaited.current === null || interferers.length <= awaited.current) return
+    section.current?.querySelector<HTMLElement>(`[data-interferer="${awaited.current}"] input`)?.focus()
+    awaited.current = null
+  }, [interferers])
+
+  function add(kind: 'tone' | 'band') {
+    const { toHz } = spec.kept
+    const hz = Number((2.5 * toHz).toPrecision(2))
+    awaited.current = interferers.length
+    setProblem(
+      desk.addInterferer(
+        kind === 'tone'
+          ? { kind, name: 'tone', hz, level: 0.1 }
+          : { kind, name: 'band', fromHz: hz, toHz: 2 * hz, level: 0.1 },
+      ),
+    )
+  }
+  function remove(index: number) {
+    setProblem(desk.removeInterferer(index))
+    requestAnimationFrame(() =>
+      section.current
+        ?.querySelector<HTMLElement>(
+          interferers.length === 1 ? '[data-tool="add"]' : `[data-interferer="${Math.max(index - 1, 0)}"] button`,
+        )
+        ?.focus(),
+    )
+  }
+
+  return (
+    <section ref={section} aria-labelledby="interferers-heading">
+      <div className="flex flex-wrap items-baseline justify-between gap-x-3">
+        <h2 id="interferers-heading" className="font-text text-[13px] font-semibold text-pencil">
+          Interferers
+        </h2>
+        {interferers.length > 0 ? (
+          <span className="text-[12px] text-pencil">level at the sensor → in the samples</span>
+        ) : null}
+      </div>
+      {interferers.length > 0 ? (
+        <div className="overflow-x-auto border-t border-graph-strong">
+          <table className="w-full text-[13px]">
+            <thead className="sr-only">
+              <tr>
+                <th scope="col">Name</th>
+                <th scope="col">Frequency</th>
+                <th scope="col">Level at the sensor</th>
+                <th scope="col">Lands at</th>
+                <th scope="col">Level in the samples</th>
+                {readOnly ? null : <th scope="col">Remove</th>}
+              </tr>
+            </thead>
+            <tbody>
+              {interferers.map((one, index) => {
+                const at = `interferers.${index}`
+                const fields = { spec, desk, readOnly }
+                return (
+                  <tr key={index} data-interferer={index} className="border-b border-graph [&>td]:py-0.5 [&>td]:pl-2">
+                    <th scope="row" className="py-0.5 text-left text-[14px] font-normal">
+                      <NameWord
+                        label={`Interferer ${index + 1}, name`}
+                        name={one.name}
+                        look={nameLook}
+                        readOnly={readOnly}
+                        onName={(name) => nameRefusal(name) ?? desk.edit((now) => withPartAt(now, `${at}.name`, name))}
+                      />
+                    </th>
+                    <td className="text-right whitespace-nowrap">
+                      {one.kind === 'tone' ? (
+                        <ChainNumber {...fields} path={`${at}.hz`} name={`Interferer ${index + 1}, frequency`} />
+                      ) : (
+                        <>
+                          <ChainNumber {...fields} path={`${at}.fromHz`} name={`Interferer ${index + 1}, from`} />
+                          <span className="text-pencil"> to </span>
+                          <ChainNumber {...fields} path={`${at}.toHz`} name={`Interferer ${index + 1}, to`} />
+                        </>
+                      )}
+                    </td>
+                    <td className="text-right whitespace-nowrap">
+                      <ChainNumber {...fields} path={`${at}.level`} name={`Interferer ${index + 1}, level`} />
+                    </td>
+                    <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
+                    {readOnly ? null : (
+                      <td>
+                        <Button
+                          kind="quiet"
+                          small
+                          className="min-w-6 px-1"
+                          aria-label={`Remove interferer ${index + 1}, ${one.name}`}
+                          title="Remove this interferer"
+                          onClick={() => remove(index)}
+                        >
+                          <X aria-hidden size={14} />
+                        </Button>
+                      </td>
+                    )}
+                  </tr>
+                )
+              })}
+            </tbody>
+          </table>
+        </div>
+      ) : (
+        <p className="border-t border-graph-strong pt-1.5 text-[14px] leading-6">
+          {readOnly
+            ? 'No interferers are listed.'
+            : 'Nothing listed yet. A pump’s blade pass, a drive’s switching frequency: say what is there, and see where it lands.'}
+        </p>
+      )}
+      {problem ? (
+        <p role="alert" className="mt-1 border-l-2 border-vermilion pl-2 text-[13px] text-vermilion">
+          {problem}
+        </p>
+      ) : null}
+      {readOnly ? null : (
+        <div className="mt-1.5 flex flex-wrap gap-2">
+          <Button small data-tool="add" disabled={interferers.length >= MOST_INTERFERERS} onClick={() => add('tone')}>
+            Add a tone
+          </Button>
+          <Button small disabled={interferers.length >= MOST_INTERFERERS} onClick={() => add('band')}>
+            Add a band
+          </Button>
+        </div>
+      )}
+    </section>
+  )
+}
+
+/** As the statement's words, in the weight of a list. */
+const nameLook = classNames(wordLook.frame, 'font-normal')
+
+function Landing({
+  landing,
+  spec,
+  onTrace,
+}: {
+  landing: InterfererLanding | null
+  spec: ChainSpec
+  onTrace(hz: number): void
+}) {
+  if (!landing) {
+    return (
+      <>
+        <td className="numeric text-right text-pencil">…</td>
+        <td />
+      </>
+    )
+  }
+  const isFelt = isAboveFloor(landing, spec)
+  const level = levelText(landing.level, unitAfter(spec))
+  return (
+    <>
+      <td className="text-right whitespace-nowrap">
+        <button
+          type="button"
+          className="numeric min-h-6 border-b border-dotted border-pencil hover:bg-spruce-wash"
+          aria-label={`${landing.name} lands at ${formatHz(landing.landsHz, 3)}: trace it on the fold chart`}
+          onClick={() => onTrace(landing.landsHz)}
+        >
+          → {formatHz(landing.landsHz, 3)}
+        </button>
+      </td>
+      <td
+        className={classNames('numeric text-right whitespace-nowrap', isFelt && 'font-semibold text-vermilion')}
+        title={`${formatFixed(-landing.levelDb, 1)}\u2009dB down${isFelt ? ', inside the kept band and above the alias floor' : ''}`}
+      >
+        {level}
+        {isFelt ? <span className="sr-only">, inside the kept band and above the alias floor</span> : null}
+      </td>
+    </>
+  )
+}
+
+/** Inside the kept band, and less far down than the sheet asks of images; without such a line nothing is too much. */
+export function isAboveFloor({ inKeptBand, levelDb }: InterfererLanding, { sheet }: ChainSpec): boolean {
+  const floors = sheet.flatMap((line) =>
+    line.kind === 'alias-floor' ? [line.atLeastDb] : line.kind === 'usable-band' ? [line.aliasDb] : [],
+  )
+  return inKeptBand && floors.length > 0 && levelDb > -Math.max(...floors)
+}

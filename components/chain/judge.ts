@@ -1,0 +1,41 @@
+import { useDeferredValue, useMemo } from 'react'
+import {
+  checkChainSheet,
+  DesignError,
+  type ChainRequirement,
+  type ChainRequirementResult,
+  type ChainSpec,
+  type ToleranceResult,
+} from '@/dsp'
+import { orRefusal } from '@/components/studio/or-refusal'
+import { computedChain } from './computed-chain'
+
+/** What is said of each line; a line that is not in here is still being worked out. */
+export type ChainJudgements = ReadonlyMap<ChainRequirement, ChainRequirementResult>
+
+const none: ChainJudgements = new Map()
+
+const kept = new WeakMap<ChainSpec, { readonly match: ToleranceResult | null; readonly judgements: ChainJudgements }>()
+
+/** The judgement of every line of the spec's sheet, worked out once, however many ask; of none where the spec makes no chain. */
+export function chainJudgements(spec: ChainSpec, match: ToleranceResult | null): ChainJudgements {
+  const known = kept.get(spec)
+  if (known?.match === match) return known.judgements
+  const judgements = workedOut(spec, match)
+  kept.set(spec, { match, judgements })
+  return judgements
+}
+
+function workedOut(spec: ChainSpec, match: ToleranceResult | null): ChainJudgements {
+  const chain = computedChain(spec)
+  if (spec.sheet.length === 0 || chain instanceof DesignError) return none
+  const results = orRefusal(() => checkChainSheet(chain, match))
+  if (results instanceof DesignError) return none
+  return new Map(results.map((result) => [result.requirement, result]))
+}
+
+/** The judgements, worked out after the rest of the page has been drawn and anew only with the spec or the tolerance run. */
+export function useChainJudgements(spec: ChainSpec, match: ToleranceResult | null): ChainJudgements {
+  const judged = useDeferredValue<ChainSpec | null>(spec, null)
+  return useMemo(() => (judged ? chainJudgements(judged, match) : none), [judged, match])
+}

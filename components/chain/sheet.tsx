@@ -1,0 +1,303 @@
+'use client'
+
+import { ArrowDown, ArrowUp, X } from 'lucide-react'
+import { DropdownMenu } from 'radix-ui'
+import { useEffect, useRef, useState, type KeyboardEvent, type ReactNode } from 'react'
+import { MOST_CHAIN_REQUIREMENTS, type ChainRequirementKind, type ChainRequirementResult, type ChainSpec } from '@/dsp'
+import { Button, buttonClass } from '@/components/ui/button'
+import { chainFieldOf } from '@/lib/chains/fields'
+import { sheetTone, sheetWords } from '@/lib/chains/sheet-words'
+import {
+  chainLineParts,
+  chainLineText,
+  chainMarginWords,
+  chainQuantity,
+  chainRequirementKindWords,
+} from '@/lib/chains/words'
+import { classNames } from '@/lib/format/class-names'
+import { formatHz } from '@/lib/format/quantity'
+import type { ChainDesk } from './chain-desk'
+import { ChainNumber } from './desk-fields'
+import type { ChainJudgements } from './judge'
+
+const kinds = Object.entries(chainRequirementKindWords) as [ChainRequirementKind, string][]
+
+interface SheetProps {
+  readonly spec: ChainSpec
+  readonly judgements: ChainJudgements
+  readonly desk: ChainDesk
+  readonly readOnly: boolean
+  /** Takes the trace of the fold chart to where a line is nearest to its limit. */
+  onTrace(hz: number): void
+  /** Opens the drawer where the run is that a channel match waits for. */
+  onRunTolerance(): void
+}
+
+/** What the chain must meet, line by line, with what it comes to and by how much that is met. */
+export function ChainSheet({ spec, judgements, desk, readOnly, onTrace, onRunTolerance }: SheetProps) {
+  const { sheet } = spec
+  const [problem, setProblem] = useState<string | null>(null)
+  const section = useRef<HTMLElement>(null)
+  // A line that was added takes the focus once it is there.
+  const awaited = useRef<number | null>(null)
+  useEffect(() => {
+    if (awaited.current === null || sheet.length <= awaited.current) return
+    section.current?.querySelector<HTMLElement>(`[data-line="${awaited.current}"] input`)?.focus()
+    awaited.current = null
+  }, [sheet])
+  const focus = (selector: string) => section.current?.querySelector<HTMLElement>(selector)?.focus()
+
+  function move(index: number, by: 1 | -1) {
+    if (index + by < 0 || index + by >= sheet.length) return
+    setProblem(desk.moveLine(index, by))
+    requestAnimationFrame(() => focus(`[data-line="${index + by}"] [data-tool="${by < 0 ? 'up' : 'down'}"]`))
+  }
+  function remove(index: number) {
+    setProblem(desk.removeLine(index))
+    requestAnimationFrame(() =>
+      focus(sheet.length === 1 ? '[data-tool="add"]' : `[data-line="${Math.max(index - 1, 0)}"] [data-tool="remove"]`),
+    )
+  }
+
+  return (
+    <section ref={section} aria-labelledby="chain-sheet-heading">
+      <div className="flex flex-wrap items-baseline justify-between gap-x-3">
+        <h2 id="chain-sheet-heading" className="font-text text-[13px] font-semibold text-pencil">
+          Requirement sheet
+        </h2>
+        {sheet.length > 0 ? <Summary spec={spec} judgements={judgements} /> : null}
+      </div>
+      {sheet.length > 0 ? (
+        <ol className="border-t border-graph-strong">
+          {sheet.map((line, index) => (
+            <Line
+              key={index}
+              spec={spec}
+              index={index}
+              result={judgements.get(line) ?? null}
+              desk={desk}
+              readOnly={readOnly}
+              onTrace={onTrace}
+              onRunTolerance={onRunTolerance}
+              onMove={(by) => move(index, by)}
+              onRemove={() => remove(index)}
+            />
+          ))}
+        </ol>
+      ) : (
+        <p className="border-t border-graph-strong pt-1.5 text-[14px] leading-6">
+          Nothing is required of this chain yet.
+          {readOnly ? '' : ' Say what the samples must be good for, one line each; every line then shows its margin.'}
+        </p>
+      )}
+      {problem ? (
+        <p role="alert" className="mt-1 border-l-2 border-vermilion pl-2 text-[13px] text-vermilion">
+          {problem}
+        </p>
+      ) : null}
+      {readOnly ? null : (
+        <div className="mt-1.5">
+          <AddLine
+            isFull={sheet.length >= MOST_CHAIN_REQUIREMENTS}
+            onAdd={(kind) => {
+              awaited.current = sheet.length
+              setProblem(desk.addLine(kind))
+            }}
+          />
+        </div>
+      )}
+    </section>
+  )
+}
+
+function Line({
+  spec,
+  index,
+  result,
+  desk,
+  readOnly,
+  onTrace,
+  onRunTolerance,
+  onMove,
+  onRemove,
+}: Omit<SheetProps, 'judgements'> & {
+  index: number
+  result: ChainRequirementResult | null
+  onMove(by: 1 | -1): void
+  onRemove(): void
+}) {
+  const name = `line ${index + 1}: ${chainLineText(spec, index)}`
+  const worstHz = result?.worstHz ?? null
+  const waits = result !== null && result.met === null && result.requirement.kind === 'channel-match'
+  function onMoveKey(event: KeyboardEvent) {
+    if (event.key !== 'ArrowUp' && event.key !== 'ArrowDown') return
+    event.preventDefault()
+    onMove(event.key === 'ArrowUp' ? -1 : 1)
+  }
+  return (
+    <li data-line={index} className="border-b border-graph py-0.5 text-[14px] leading-6">
+      <div className="flex items-baseline gap-x-3">
+        <p className="min-w-0 flex-1">
+          {chainLineParts(spec, index).map((part, at) =>
+            part.kind === 'text' ? (
+              part.text
+            ) : (
+              <ChainNumber
+                key={`${part.path}-${at}`}
+                spec={spec}
+                desk={desk}
+                readOnly={readOnly}
+                path={part.path}
+                name={`Line ${index + 1}, ${chainFieldOf(part.path)?.label}`}
+              />
+            ),
+          )}
+        </p>
+        <Verdict result={result} />
+      </div>
+      <div className="flex min-h-6 flex-wrap items-center gap-x-2 text-[13px] leading-5 text-pencil">
+        {worstHz !== null ? (
+          <button
+            type="button"
+            className="min-h-6 border-b border-dotted border-pencil hover:bg-spruce-wash hover:text-ink"
+            aria-label={`Line ${index + 1}, worst at ${formatHz(worstHz, 3)}: trace it on the fold chart`}
+            onClick={() => onTrace(worstHz)}
+          >
+            worst at {formatHz(worstHz, 3)}
+          </button>
+        ) : null}
+        {waits ? (
+          <Button small onClick={onRunTolerance}>
+            Run the tolerance
+          </Button>
+        ) : result?.reason ? (
+          <span className="min-w-0 flex-1">{result.reason}</span>
+        ) : null}
+        {readOnly ? null : (
+          <span className="ml-auto inline-flex" role="group" aria-label={`Line ${index + 1}`}>
+            <Tool
+              label={`Move up ${name}`}
+              mark="up"
+              isInert={index === 0}
+              onPress={() => onMove(-1)}
+              onKeyDown={onMoveKey}
+            >
+              <ArrowUp aria-hidden size={14} />
+            </Tool>
+            <Tool
+              label={`Move down ${name}`}
+              mark="down"
+              isInert={index === spec.sheet.length - 1}
+              onPress={() => onMove(1)}
+              onKeyDown={onMoveKey}
+            >
+              <ArrowDown aria-hidden size={14} />
+            </Tool>
+            <Tool label={`Remove ${name}`} mark="remove" onPress={onRemove}>
+              <X aria-hidden size={14} />
+            </Tool>
+          </span>
+        )}
+      </div>
+    </li>
+  )
+}
+
+function Verdict({ result }: { result: ChainRequirementResult | null }) {
+  if (!result) return <span className="numeric shrink-0 text-right text-[13px] text-pencil">…</span>
+  const tone = result.met === null ? 'text-pencil' : result.met ? 'text-moss' : 'text-vermilion'
+  return (
+    <span className="numeric flex shrink-0 flex-col text-right text-[13px] leading-5">
+      <span>{chainQuantity(result.value, result.unit)}</span>
+      <span className={classNames('text-[12px]', tone)}>{chainMarginWords(result)}</span>
+    </span>
+  )
+}
+
+function Summary({ spec, judgements }: { spec: ChainSpec; judgements: ChainJudgements }) {
+  const results = spec.sheet.flatMap((line) => judgements.get(line) ?? [])
+  const isWhole = results.length === spec.sheet.length
+  const count = (met: boolean | null) => results.filter((result) => result.met === met).length
+  const counts = { met: count(true), missed: count(false), unjudged: count(null) }
+  const tone = { met: 'text-moss', missed: 'text-vermilion', open: 'text-pencil' }[sheetTone(counts)]
+  return (
+    <p role="status" className={classNames('text-[13px]', isWhole ? tone : 'text-pencil')}>
+      {isWhole ? sheetWords(counts) : 'Working it out…'}
+    </p>
+  )
+}
+
+function AddLine({ isFull, onAdd }: { isFull: boolean; onAdd(kind: ChainRequirementKind): void }) {
+  const added = useRef(false)
+  return (
+    <DropdownMenu.Root modal={false}>
+      <DropdownMenu.Trigger
+        className={buttonClass('plain', true)}
+        disabled={isFull}
+        title={isFull ? `A sheet holds ${MOST_CHAIN_REQUIREMENTS} lines` : undefined}
+        data-tool="add"
+      >
+        Add a line
+      </DropdownMenu.Trigger>
+      <DropdownMenu.Portal>
+        <DropdownMenu.Content
+          align="start"
+          sideOffset={4}
+          collisionPadding={8}
+          className="z-20 min-w-44 rounded border border-ink bg-sheet py-1 text-[15px] text-ink"
+          onCloseAutoFocus={(event) => {
+            // The focus goes to the new line, not back to the button.
+            if (added.current) event.preventDefault()
+            added.current = false
+          }}
+        >
+          {kinds.map(([kind, label]) => (
+            <DropdownMenu.Item
+              key={kind}
+              className="flex min-h-8 cursor-pointer items-center px-3 outline-none data-highlighted:bg-spruce-wash"
+              onSelect={() => {
+                added.current = true
+                onAdd(kind)
+              }}
+            >
+              {label}
+            </DropdownMenu.Item>
+          ))}
+        </DropdownMenu.Content>
+      </DropdownMenu.Portal>
+    </DropdownMenu.Root>
+  )
+}
+
+/** Stays reachable at the end of its way, so that the focus isn't lost there. */
+function Tool({
+  label,
+  mark,
+  isInert = false,
+  onPress,
+  onKeyDown,
+  children,
+}: {
+  label: string
+  mark: 'up' | 'down' | 'remove'
+  isInert?: boolean
+  onPress(): void
+  onKeyDown?(event: KeyboardEvent): void
+  children: ReactNode
+}) {
+  return (
+    <Button
+      kind="quiet"
+      small
+      className={classNames('min-w-6 px-1', isInert && 'opacity-40')}
+      aria-label={label}
+      title={mark === 'remove' ? 'Remove this line' : mark === 'up' ? 'Move up (arrow keys)' : 'Move down (arrow keys)'}
+      aria-disabled={isInert || undefined}
+      data-tool={mark}
+      onClick={onPress}
+      onKeyDown={onKeyDown}
+    >
+      {children}
+    </Button>
+  )
+}
