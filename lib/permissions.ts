@@ -42,6 +42,13 @@ export const permissions = {
   'version.save': editors,
   /** Observers read; coefficients that leave the product come from the other roles. */
   'version.export': ['owner', 'designer', 'reviewer', 'integrator'],
+  'chain.read': allRoles,
+  'chain.create': editors,
+  'chain.rename': editors,
+  'chain.duplicate': editors,
+  'chain-draft.save': editors,
+  'chain-version.save': editors,
+  'chain-version.export': ['owner', 'designer', 'reviewer', 'integrator'],
 } as const satisfies Record<string, Audience>
 
 export type ActionName = keyof typeof permissions
@@ -72,6 +79,9 @@ export const pages: Readonly<Record<string, ActionName>> = {
   '/designs/[designId]': 'design.read',
   '/designs/[designId]/compare': 'design.read',
   '/designs/[designId]/versions/[number]': 'design.read',
+  '/chains/[chainId]': 'chain.read',
+  '/chains/[chainId]/compare': 'chain.read',
+  '/chains/[chainId]/versions/[number]': 'chain.read',
   '/formats': 'formats.read',
   '/dev/mailbox': 'mailbox.read',
 }
@@ -80,6 +90,9 @@ export const pages: Readonly<Record<string, ActionName>> = {
 export const routes: Readonly<Record<string, Readonly<Record<string, ActionName>>>> = {
   '/api/health': { GET: 'health.read' },
   '/api/formats/coefficient-set': { GET: 'formats.read' },
+  '/api/formats/chain': { GET: 'formats.read' },
   '/api/designs/[designId]/draft': { PUT: 'draft.save' },
   '/api/designs/[designId]/versions/[number]/export': { GET: 'version.export' },
+  '/api/chains/[chainId]/draft': { PUT: 'chain-draft.save' },
+  '/api/chains/[chainId]/versions/[number]/export': { GET: 'chain-version.export' },
 }

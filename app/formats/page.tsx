@@ -1,6 +1,7 @@
 import type { Metadata } from 'next'
 import Link from 'next/link'
 import { Header } from '@/components/frame/header'
+import { ChainFormatPart } from '@/components/handover/chain-format-part'
 import { FormatsSheet } from '@/components/handover/formats-sheet'
 import { buttonClass } from '@/components/ui/button'
 
@@ -15,7 +16,9 @@ export default function FormatsPage() {
           Projects
         </Link>
       </Header>
-      <FormatsSheet schemaHref="/api/formats/coefficient-set" />
+      <FormatsSheet schemaHref="/api/formats/coefficient-set">
+        <ChainFormatPart schemaHref="/api/formats/chain" />
+      </FormatsSheet>
     </>
   )
 }

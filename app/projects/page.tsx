@@ -1,6 +1,8 @@
 import type { Metadata } from 'next'
 import Link from 'next/link'
 import { signOut } from '@/app/(account)/actions'
+import { duplicateChain } from '@/app/chains/actions'
+import { ChainList } from '@/components/projects/chain-list'
 import { DesignList } from '@/components/projects/design-list'
 import { SignedInPage } from '@/components/projects/signed-in-page'
 import { buttonClass } from '@/components/ui/button'
@@ -58,6 +60,12 @@ export default async function ProjectsPage() {
                 ) : null}
               </p>
             )}
+            {project.chains.length > 0 ? (
+              <>
+                <h3 className="mt-5 pb-1 text-[15px]">Measurement chains</h3>
+                <ChainList chains={project.chains} duplicateChain={project.mayCreate ? duplicateChain : null} />
+              </>
+            ) : null}
           </section>
         ))
       )}

@@ -4,9 +4,10 @@ import { typesetEquation } from '@/lib/exports/equation'
 import { coefficientSetFields } from '@/lib/exports/json-fields'
 import { judgedRangeDb } from '@/lib/exports/rounding'
 import { testVectorWords } from '@/lib/exports/test-vector'
+import { FieldsTable } from './fields-table'
 
 /** What a coefficient file says and how firmware proves its port with it. */
-export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
+export function FormatsSheet({ schemaHref, children }: { schemaHref: string; children?: ReactNode }) {
   return (
     <main className="mx-auto flex w-full max-w-4xl flex-col gap-8 px-4 py-8 sm:px-6">
       <div>
@@ -96,47 +97,17 @@ export function FormatsSheet({ schemaHref }: { schemaHref: string }) {
           </a>
           ; every key is always there, and no other.
         </p>
-        <div
-          role="region"
-          aria-label="Fields of the JSON file"
-          tabIndex={0}
-          className="mt-3 min-w-0 overflow-x-auto border-t border-graph-strong -outline-offset-2"
-        >
-          <table className="w-full text-left text-[13px]">
-            <thead>
-              <tr className="text-pencil">
-                <th scope="col" className="py-1.5 pr-4 font-normal">
-                  Field
-                </th>
-                <th scope="col" className="py-1.5 pr-4 font-normal">
-                  Kind
-                </th>
-                <th scope="col" className="py-1.5 font-normal">
-                  Meaning
-                </th>
-              </tr>
-            </thead>
-            <tbody>
-              {coefficientSetFields().map((field, index) => (
-                <tr key={index} className="border-t border-graph align-top">
-                  <th scope="row" className="numeric py-1 pr-4 font-normal whitespace-nowrap">
-                    {field.path}
-                  </th>
-                  <td className="numeric py-1 pr-4 text-pencil">{field.kind}</td>
-                  <td className="min-w-52 py-1">{field.description}</td>
-                </tr>
-              ))}
-            </tbody>
-          </table>
-        </div>
+        <FieldsTable label="Fields of the JSON file" fields={coefficientSetFields()} />
       </Part>
+
+      {children}
 
       <p className="border-t border-graph pt-4 text-[13px] text-pencil">{caution}</p>
     </main>
   )
 }
 
-function Part({ id, title, children }: { id: string; title: string; children: ReactNode }) {
+export function Part({ id, title, children }: { id: string; title: string; children: ReactNode }) {
   return (
     <section aria-labelledby={id} className="min-w-0">
       <h2 id={id} className="mb-1 text-[19px]">

@@ -13,6 +13,8 @@ import { inTransaction, type Transaction } from '../queries/transaction'
 import { insertVersion } from '../queries/versions'
 import { installation } from '../schema'
 import accountList from './accounts.json' with { type: 'json' }
+import { seedChains } from './chains'
+import { linkAmong, plantChain, type PlantedDesign } from './plant-chain'
 import { seedProjects, type SeedDesign, type SeedVersion } from './projects'
 
 const accountsSchema = z
@@ -61,7 +63,10 @@ export async function plantDemo(): Promise<boolean> {
         { actor: owner, team, action: 'project.create', object: `project:${project.id}`, details: { code } },
         tx,
       )
-      for (const design of designs) await plantDesign(tx, { team, projectId: project.id, design, access })
+      const planted: PlantedDesign[] = []
+      for (const design of designs) planted.push(await plantDesign(tx, { team, projectId: project.id, design, access }))
+      for (const chain of seedChains[code] ?? [])
+        await plantChain(tx, { team, projectId: project.id, chain, access, linkTo: linkAmong(planted) })
     }
     return true
   })
@@ -74,7 +79,7 @@ interface Plot {
   readonly access: Record<SeedVersion['by'], Access>
 }
 
-async function plantDesign(tx: Transaction, { team, projectId, design, access }: Plot): Promise<void> {
+async function plantDesign(tx: Transaction, { team, projectId, design, access }: Plot): Promise<PlantedDesign> {
   const [first] = design.versions
   if (!first) throw new Error(`The demo's design "${design.title}" has no version.`)
   const made = await insertDesign(tx, access[first.by], { projectId, title: design.title, spec: first.spec })
@@ -108,4 +113,5 @@ async function plantDesign(tx: Transaction, { team, projectId, design, access }:
       tx,
     )
   }
+  return { ...made, design }
 }

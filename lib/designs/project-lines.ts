@@ -1,3 +1,5 @@
+import type { ChainLine } from '@/lib/chains/project-lines'
+
 /*
  * What the lists show; filled by the pages.
  */
@@ -21,4 +23,5 @@ export interface ProjectSheet {
   readonly name: string
   readonly mayCreate: boolean
   readonly designs: readonly DesignLine[]
+  readonly chains: readonly ChainLine[]
 }

@@ -2,32 +2,44 @@ import { isOwnDesign, type DesignSpec } from '@/dsp'
 import { sameValue } from './same-value'
 import { statementParts, type StatementPart, type WordKey } from './statement'
 
-/** A piece of two statements laid over each other: what both say, what only the earlier one said, what only the later one says. */
-export interface MarkedPart {
-  readonly mark: 'same' | 'gone' | 'new'
-  readonly part: StatementPart
+/** What the alignment needs to know of a part of any statement: its words, and the place in the spec that they stand for. */
+interface AnyPart {
+  readonly kind: string
+  readonly text: string
+  readonly key?: string
 }
 
-const keyOf = (part: StatementPart) => (part.kind === 'text' ? '' : part.key)
-const isSame = (one: StatementPart, other: StatementPart) => one.text === other.text && keyOf(one) === keyOf(other)
+/** A piece of two statements laid over each other: what both say, what only the earlier one said, what only the later one says. */
+export interface MarkedPart<Part extends AnyPart = StatementPart> {
+  readonly mark: 'same' | 'gone' | 'new'
+  readonly part: Part
+}
+
+const keyOf = (part: AnyPart) => (part.kind === 'text' ? '' : (part.key ?? ''))
+const isSame = (one: AnyPart, other: AnyPart) => one.text === other.text && keyOf(one) === keyOf(other)
 
 /** How much it is worth to lay one part over the other: words of one place in the spec belong together even when they differ. */
-function worth(one: StatementPart, other: StatementPart): number {
+function worth(one: AnyPart, other: AnyPart): number {
   if (one.kind === 'text' || other.kind === 'text') return isSame(one, other) ? 1 : 0
-  if (one.key !== other.key) return 0
+  if (keyOf(one) !== keyOf(other)) return 0
   return isSame(one, other) ? 4 : 3
 }
 
+/** The later statement of a design with the changed words marked, each old word before the one that replaced it. */
+export const markedStatement = (before: DesignSpec, after: DesignSpec): readonly MarkedPart[] =>
+  markedParts(statementParts(before), statementParts(after))
+
 /**
- * The later statement with the changed words marked, each old word before the one that replaced it. Words count whole and belong to their
+ * Two statements in one, the changed words marked, each old word before the one that replaced it. Words count whole and belong to their
  * place in the spec: a rate of 120 Hz is not an edge of 120 Hz. (Alignment of greatest worth; Needleman & Wunsch 1970.)
  */
-export function markedStatement(before: DesignSpec, after: DesignSpec): readonly MarkedPart[] {
-  const older = statementParts(before)
-  const newer = statementParts(after)
+export function markedParts<Part extends AnyPart>(
+  older: readonly Part[],
+  newer: readonly Part[],
+): readonly MarkedPart<Part>[] {
   const worths = alignmentWorths(older, newer)
   const rest = (i: number, j: number) => worths[i]?.[j] ?? 0
-  const marked: MarkedPart[] = []
+  const marked: MarkedPart<Part>[] = []
   let i = 0
   let j = 0
   while (i < older.length || j < newer.length) {
@@ -51,7 +63,7 @@ export function markedStatement(before: DesignSpec, after: DesignSpec): readonly
 }
 
 /** worths[i][j]: the greatest worth of laying older[i…] over newer[j…], in order. */
-function alignmentWorths(older: readonly StatementPart[], newer: readonly StatementPart[]): number[][] {
+function alignmentWorths(older: readonly AnyPart[], newer: readonly AnyPart[]): number[][] {
   const worths = Array.from({ length: older.length + 1 }, () => new Array<number>(newer.length + 1).fill(0))
   for (let i = older.length - 1; i >= 0; i--) {
     for (let j = newer.length - 1; j >= 0; j--) {

@@ -1,5 +1,5 @@
 import { aboutLines } from './about'
-import { array, literalOf, zeroOf } from './c-parts'
+import { array, commentLines, literalOf, zeroOf } from './c-parts'
 import { tapsCode } from './c-taps'
 import type { CoefficientSet } from './coefficient-set'
 import { cComment, cString } from './escape'
@@ -193,19 +193,4 @@ function selfTest(set: CoefficientSet): string[] {
     `#endif /* ${upper}_SELF_TEST */`,
     '',
   ]
-}
-
-const width = 112
-
-/** A comment's text over as many lines as it needs; only spaces are broken at, so that what was parted stays parted. */
-function commentLines(text: string): string[] {
-  const lines: string[] = []
-  let line = ''
-  for (const word of text.split(' ')) {
-    if (line !== '' && line.length + 1 + word.length > width) {
-      lines.push(line)
-      line = `  ${word}`
-    } else line = line === '' ? word : `${line} ${word}`
-  }
-  return [...lines, line].map((part) => ` * ${part}`)
 }

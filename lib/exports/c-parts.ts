@@ -16,3 +16,18 @@ export function array(declaration: string, literals: readonly string[]): string[
   for (let k = 0; k < literals.length; k += 4) lines.push(`  ${literals.slice(k, k + 4).join(', ')}`)
   return [`${declaration} = {`, lines.join(',\n'), '};']
 }
+
+const width = 112
+
+/** A comment's text over as many lines as it needs; only spaces are broken at, so that what was parted stays parted. */
+export function commentLines(text: string): string[] {
+  const lines: string[] = []
+  let line = ''
+  for (const word of text.split(' ')) {
+    if (line !== '' && line.length + 1 + word.length > width) {
+      lines.push(line)
+      line = `  ${word}`
+    } else line = line === '' ? word : `${line} ${word}`
+  }
+  return [...lines, line].map((part) => ` * ${part}`)
+}

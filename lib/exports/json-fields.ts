@@ -1,4 +1,5 @@
 import * as z from 'zod'
+import { chainJsonSchema } from './chain-json'
 import { coefficientSetJsonSchema } from './json'
 
 /** One line of the description of the JSON file. */
@@ -39,8 +40,14 @@ const node: z.ZodType<Node> = z.lazy(() =>
 )
 
 /** Every field of the JSON file, read from the schema that is served, so that the page can't say anything else. */
-export function coefficientSetFields(): readonly FieldRow[] {
-  const rows = fieldsOf(node.parse(coefficientSetJsonSchema()), '')
+export const coefficientSetFields = (): readonly FieldRow[] => fieldsOfSchema(coefficientSetJsonSchema())
+
+/** The same of a chain's file. The spec of a linked design is the one that the design's own page states, and is left out. */
+export const chainFields = (): readonly FieldRow[] =>
+  fieldsOfSchema(chainJsonSchema()).filter(({ path }) => !path.includes('.link.spec.'))
+
+function fieldsOfSchema(schema: unknown): readonly FieldRow[] {
+  const rows = fieldsOf(node.parse(schema), '')
   // What several branches have alike is listed once.
   return rows.filter(
     ({ path, kind }, index) => rows.findIndex((other) => other.path === path && other.kind === kind) === index,

@@ -40,7 +40,10 @@ const keptTaps = z.strictObject({
   symmetry,
 })
 
-const kept = z.union([keptRecursive, keptTaps]).meta({
+/** The numbers of one filter, whatever is said of them where they stand. */
+export const keptNumbersSchema = z.union([keptRecursive, keptTaps])
+
+const kept = keptNumbersSchema.meta({
   description:
     'The numbers kept with the version, in double precision and with subtracted feedback. Written without spaces, keys in this ' +
     'order, as ECMAScript’s JSON.stringify writes it, their SHA-256 is the checksum.',

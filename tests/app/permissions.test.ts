@@ -5,9 +5,13 @@ import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest'
 import { closeConnections } from '@/db/client'
 import { lockDesign } from '@/db/queries/designs'
 import { inTransaction } from '@/db/queries/transaction'
+import { lockChain } from '@/db/queries/chains'
 import { designFromSpec } from '@/dsp'
 import { actionNameOf } from '@/lib/actions/action'
 import { routeActionOf } from '@/lib/actions/route'
+import { computeChainVersion } from '@/lib/chains/compute-version'
+import { saveChainVersion } from '@/lib/chains/save-chain-version'
+import { startingChain } from '@/lib/chains/stage-starts'
 import { coefficientsOf } from '@/lib/designs/coefficients'
 import { defaultSpec } from '@/lib/designs/edits'
 import { saveVersion } from '@/lib/designs/save-version'
@@ -23,6 +27,9 @@ vi.mock('next/server', () => import('../helpers/next-request'))
 vi.mock('@/components/studio/studio', () => ({ Studio: () => null }))
 vi.mock('@/components/studio/compare/compare-view', () => ({ CompareView: () => null }))
 vi.mock('@/components/handover/version-sheet', () => ({ VersionSheet: () => null }))
+vi.mock('@/components/chain/chain-page', () => ({ ChainPage: () => null }))
+vi.mock('@/components/chain-versions/chain-compare', () => ({ ChainCompare: () => null }))
+vi.mock('@/components/chain-versions/chain-version-sheet', () => ({ ChainVersionSheet: () => null }))
 
 /** Every file below a folder. */
 function filesIn(folder: string): string[] {
@@ -103,7 +110,7 @@ describe('the table lists', () => {
 describe('the table says', () => {
   it('what the product says of the five roles', () => {
     const may = (role: Role) => teamActions.filter(({ roles }) => roles.includes(role)).map(({ name }) => name)
-    const reading = ['project.read', 'team.read', 'design.read']
+    const reading = ['project.read', 'team.read', 'design.read', 'chain.read']
     const editing = [
       'project.create',
       'design.create',
@@ -111,11 +118,17 @@ describe('the table says', () => {
       'design.duplicate',
       'draft.save',
       'version.save',
+      'chain.create',
+      'chain.rename',
+      'chain.duplicate',
+      'chain-draft.save',
+      'chain-version.save',
     ]
+    const exporting = ['version.export', 'chain-version.export']
     expect(may('observer').sort()).toEqual([...reading].sort())
-    expect(may('reviewer').sort()).toEqual([...reading, 'version.export'].sort())
-    expect(may('integrator').sort()).toEqual([...reading, 'version.export'].sort())
-    expect(may('designer').sort()).toEqual([...reading, ...editing, 'version.export'].sort())
+    expect(may('reviewer').sort()).toEqual([...reading, ...exporting].sort())
+    expect(may('integrator').sort()).toEqual([...reading, ...exporting].sort())
+    expect(may('designer').sort()).toEqual([...reading, ...editing, ...exporting].sort())
     expect(may('owner').sort()).toEqual(teamActions.map(({ name }) => name).sort())
   })
 })
@@ -132,6 +145,10 @@ beforeAll(async () => {
       if (!design) throw new Error('no design')
       const input = { designId: one.designId, spec: defaultSpec, note: 'first', parentNumber: null }
       await saveVersion({ tx, access, design, input, coefficients: coefficientsOf(designFromSpec(input.spec)) })
+      const chain = await lockChain(tx, access, one.chainId)
+      if (!chain) throw new Error('no chain')
+      const chainInput = { chainId: one.chainId, spec: startingChain, note: 'first', parentNumber: null }
+      await saveChainVersion({ tx, access, chain, input: chainInput, computed: computeChainVersion(startingChain) })
     })
   }
 })
@@ -227,6 +244,7 @@ describe.each(Object.entries(pages).map(([path, name]) => ({ path, name })))('pa
     const seen = await see(path, null)
     const filled = path
       .replace('[designId]', team.designId)
+      .replace('[chainId]', team.chainId)
       .replace('[projectId]', team.projectId)
       .replace('[number]', '1')
     if (path === '/dev/mailbox') expect(seen).toBe('not found')

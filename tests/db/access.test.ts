@@ -1,12 +1,24 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { closeConnections, pool } from '@/db/client'
 import type { Access } from '@/db/queries/access'
+import { findChainDraft, saveChainDraft } from '@/db/queries/chain-drafts'
+import { findChainVersion, listChainsUsing, listChainVersions } from '@/db/queries/chain-versions'
+import {
+  findChain,
+  insertChain,
+  listChains,
+  listDesignVersions,
+  listNewestDesignVersions,
+  lockChain,
+  retitleChain,
+} from '@/db/queries/chains'
 import { findDesign, insertDesign, lockDesign, retitleDesign } from '@/db/queries/designs'
 import { findDraft, saveDraft } from '@/db/queries/drafts'
 import { findProject, insertProject, listDesigns, listProjects, takeSerial } from '@/db/queries/projects'
 import { findTeam, listMembers, listTeams } from '@/db/queries/teams'
 import { inTransaction } from '@/db/queries/transaction'
 import { findVersion, listVersions } from '@/db/queries/versions'
+import { startingChain } from '@/lib/chains/stage-starts'
 import { defaultSpec } from '@/lib/designs/edits'
 import { rolesFor } from '@/lib/permissions'
 import { makeTeam, type TestTeam } from '../helpers/people'
@@ -30,12 +42,20 @@ describe('rows of another team', () => {
     expect(await listVersions(stranger(), ours.designId)).toEqual([])
     expect(await findVersion(stranger(), ours.designId, 'latest')).toBeNull()
     expect(await findDraft(stranger(), ours.designId)).toBeNull()
+    expect(await findChain(stranger(), ours.chainId)).toBeNull()
+    expect(await listChainVersions(stranger(), ours.chainId)).toEqual([])
+    expect(await findChainVersion(stranger(), ours.chainId, 'latest')).toBeNull()
+    expect(await findChainDraft(stranger(), ours.chainId)).toBeNull()
+    expect(await listChainsUsing(stranger(), ours.designId)).toEqual([])
+    expect(await listNewestDesignVersions(stranger(), ours.projectId)).toEqual([])
+    expect(await listDesignVersions(stranger(), [ours.designId])).toEqual([])
   })
 
   it('are not listed', async () => {
     expect((await listTeams(stranger())).map(({ id }) => id)).toEqual([theirs.id])
     expect((await listProjects(stranger())).map(({ id }) => id)).toEqual([theirs.projectId])
     expect((await listDesigns(stranger())).map(({ id }) => id)).toEqual([theirs.designId])
+    expect((await listChains(stranger())).map(({ id }) => id)).toEqual([theirs.chainId])
   })
 
   it('are not changed', async () => {
@@ -49,7 +69,14 @@ describe('rows of another team', () => {
       expect(await insertProject(tx, stranger(), { teamId: ours.id, code: 'NEW', name: 'Mine' })).toBeNull()
       const draft = { designId: ours.designId, spec: defaultSpec, parentNumber: null, revision: 0 }
       expect(await saveDraft(tx, stranger(), draft)).toBeNull()
+      expect(await lockChain(tx, stranger(), ours.chainId)).toBeNull()
+      expect(await retitleChain(tx, stranger(), ours.chainId, 'Mine now')).toBe(false)
+      const chain = { projectId: ours.projectId, title: 'Mine', spec: startingChain }
+      expect(await insertChain(tx, stranger(), chain)).toBeNull()
+      const chainDraft = { chainId: ours.chainId, spec: startingChain, parentNumber: null, revision: 0 }
+      expect(await saveChainDraft(tx, stranger(), chainDraft)).toBeNull()
     })
+    expect(await findChain(ours.access('owner'), ours.chainId)).toMatchObject({ title: 'A chain' })
     expect(await findDesign(ours.access('owner'), ours.designId)).toMatchObject({ title: 'A design' })
   })
 })
@@ -85,7 +112,7 @@ describe('drawing numbers', () => {
       ),
     )
     expect(made.map((one) => one?.drawingNumber).sort()).toEqual(
-      [2, 3, 4, 5, 6, 7, 8, 9].map((serial) => `TST-LP-00${serial}`),
+      [3, 4, 5, 6, 7, 8, 9, 10].map((serial) => `TST-LP-${String(serial).padStart(3, '0')}`),
     )
   })
 })

@@ -1,10 +1,12 @@
 import { insertAccount } from '@/db/queries/accounts'
 import type { Access } from '@/db/queries/access'
+import { insertChain } from '@/db/queries/chains'
 import { insertDesign } from '@/db/queries/designs'
 import { insertProject } from '@/db/queries/projects'
 import { insertMember, insertTeam } from '@/db/queries/teams'
 import { inTransaction } from '@/db/queries/transaction'
 import { createSession } from '@/lib/auth/sessions'
+import { startingChain } from '@/lib/chains/stage-starts'
 import { defaultSpec } from '@/lib/designs/edits'
 import type { Role } from '@/lib/designs/types'
 import { allRoles } from '@/lib/permissions'
@@ -32,10 +34,11 @@ export interface TestTeam {
   readonly members: Record<Role, Member>
   readonly projectId: string
   readonly designId: string
+  readonly chainId: string
   access(role: Role, roles?: readonly Role[]): Access
 }
 
-/** A team with one member in each role, a project and a design without versions. */
+/** A team with one member in each role, a project, and a design and a chain without versions. */
 export async function makeTeam(spec: DesignSpec = defaultSpec): Promise<TestTeam> {
   const people = await Promise.all(allRoles.map(async (role) => [role, await makeAccount(role)] as const))
   const members = Object.fromEntries(people) as Record<Role, Member>
@@ -47,6 +50,12 @@ export async function makeTeam(spec: DesignSpec = defaultSpec): Promise<TestTeam
     if (project === null || project === 'taken') throw new Error('no project')
     const design = await insertDesign(tx, access('owner'), { projectId: project.id, title: 'A design', spec })
     if (!design) throw new Error('no design')
-    return { id, members, projectId: project.id, designId: design.id, access }
+    const chain = await insertChain(tx, access('owner'), {
+      projectId: project.id,
+      title: 'A chain',
+      spec: startingChain,
+    })
+    if (!chain) throw new Error('no chain')
+    return { id, members, projectId: project.id, designId: design.id, chainId: chain.id, access }
   })
 }

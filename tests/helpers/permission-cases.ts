@@ -1,5 +1,8 @@
 import { createDesign, createProject, duplicateDesign } from '@/app/projects/actions'
 import { renameDesign, saveVersion } from '@/app/designs/actions'
+import { createChain, duplicateChain, renameChain, saveVersion as saveChainVersion } from '@/app/chains/actions'
+import { PUT as putChainDraft } from '@/app/api/chains/[chainId]/draft/route'
+import { GET as getChainExport } from '@/app/api/chains/[chainId]/versions/[number]/export/route'
 import { PUT as putDraft } from '@/app/api/designs/[designId]/draft/route'
 import { GET as getExport } from '@/app/api/designs/[designId]/versions/[number]/export/route'
 import AccountPage from '@/app/account/page'
@@ -11,12 +14,16 @@ import TeamPage from '@/app/team/page'
 import DesignPage from '@/app/designs/[designId]/page'
 import ComparePage from '@/app/designs/[designId]/compare/page'
 import VersionPage from '@/app/designs/[designId]/versions/[number]/page'
+import ChainRoute from '@/app/chains/[chainId]/page'
+import ChainComparePage from '@/app/chains/[chainId]/compare/page'
+import ChainVersionPage from '@/app/chains/[chainId]/versions/[number]/page'
 import FormatsPage from '@/app/formats/page'
 import MailboxPage from '@/app/dev/mailbox/page'
 import SignInPage from '@/app/(account)/sign-in/page'
 import SignUpPage from '@/app/(account)/sign-up/page'
 import ForgotPage from '@/app/(account)/forgot/page'
 import ResetPage from '@/app/(account)/reset/page'
+import { startingChain } from '@/lib/chains/stage-starts'
 import { defaultSpec } from '@/lib/designs/edits'
 import type { TeamAction } from '@/lib/permissions'
 import type { TestTeam } from './people'
@@ -50,6 +57,16 @@ const put = (designId: string, headers: Headers) =>
     { params: Promise.resolve({ designId }) },
   )
 
+const putChain = (chainId: string, headers: Headers) =>
+  putChainDraft(
+    new Request(`http://127.0.0.1:3000/api/chains/${chainId}/draft`, {
+      method: 'PUT',
+      headers,
+      body: JSON.stringify({ spec: startingChain, parentNumber: null, revision: 0 }),
+    }),
+    { params: Promise.resolve({ chainId }) },
+  )
+
 /** Writes: one for each action of the table that acts on a team's object and isn't a page. */
 type Case = (team: TestTeam, headers: Headers) => Promise<Verdict>
 
@@ -67,6 +84,20 @@ export const writes: Readonly<Record<string, Case>> = {
     own.set('content-type', 'application/json')
     return verdictOfResponse(await put(team.designId, own))
   },
+  'chain.create': async (team) =>
+    verdictOf(await createChain({ projectId: team.projectId, title: 'x', template: 'empty' })),
+  'chain.duplicate': async (team) => verdictOf(await duplicateChain({ chainId: team.chainId })),
+  'chain.rename': async (team) => (await renameChain(team.chainId, 'x')).problem?.code ?? 'done',
+  'chain-version.save': async (team) => {
+    const input = { chainId: team.chainId, spec: startingChain, note: 'x', parentNumber: null }
+    const answer = await saveChainVersion(input)
+    return answer.outcome === 'refused' ? answer.problem.code : 'done'
+  },
+  'chain-draft.save': async (team, headers) => {
+    const own = new Headers(headers)
+    own.set('content-type', 'application/json')
+    return verdictOfResponse(await putChain(team.chainId, own))
+  },
 } satisfies Partial<Record<TeamAction, Case>>
 
 /** Reads by a route: the same, but from any page, since nothing is changed. */
@@ -76,6 +107,13 @@ export const reads: Readonly<Record<string, Case>> = {
       await getExport(
         new Request(`http://127.0.0.1:3000/api/designs/${team.designId}/versions/1/export?format=json`, { headers }),
         { params: Promise.resolve({ designId: team.designId, number: '1' }) },
+      ),
+    ),
+  'chain-version.export': async (team, headers) =>
+    verdictOfResponse(
+      await getChainExport(
+        new Request(`http://127.0.0.1:3000/api/chains/${team.chainId}/versions/1/export?as=json`, { headers }),
+        { params: Promise.resolve({ chainId: team.chainId, number: '1' }) },
       ),
     ),
 } satisfies Partial<Record<TeamAction, Case>>
@@ -99,6 +137,11 @@ export const pageCases: Readonly<Record<string, (team: TestTeam) => Promise<unkn
     ComparePage({ params: Promise.resolve({ designId }), searchParams: search }),
   '/designs/[designId]/versions/[number]': ({ designId }) =>
     VersionPage({ params: Promise.resolve({ designId, number: '1' }) }),
+  '/chains/[chainId]': ({ chainId }) => ChainRoute({ params: Promise.resolve({ chainId }) }),
+  '/chains/[chainId]/compare': ({ chainId }) =>
+    ChainComparePage({ params: Promise.resolve({ chainId }), searchParams: search }),
+  '/chains/[chainId]/versions/[number]': ({ chainId }) =>
+    ChainVersionPage({ params: Promise.resolve({ chainId, number: '1' }) }),
   '/formats': () => Promise.resolve(FormatsPage()),
   '/dev/mailbox': () => MailboxPage(),
 }

@@ -2,7 +2,10 @@ import type { Metadata } from 'next'
 import { notFound } from 'next/navigation'
 import { z } from 'zod'
 import { signOut } from '@/app/(account)/actions'
+import { createChain, duplicateChain } from '@/app/chains/actions'
+import { ChainList } from '@/components/projects/chain-list'
 import { DesignList } from '@/components/projects/design-list'
+import { NewChainForm } from '@/components/projects/new-chain-form'
 import { NewDesignForm } from '@/components/projects/new-design-form'
 import { SignedInPage } from '@/components/projects/signed-in-page'
 import { requireFound } from '@/lib/auth/page-access'
@@ -45,6 +48,25 @@ export default async function ProjectPage({ params }: { params: Promise<unknown>
           <NewDesignForm projectId={project.id} createDesign={createDesign} />
         </section>
       ) : null}
+      <section aria-labelledby="chains-heading" className="mt-12">
+        <h2 id="chains-heading" className="pb-3 text-[19px]">
+          Measurement chains
+        </h2>
+        {project.chains.length > 0 ? (
+          <ChainList chains={project.chains} duplicateChain={project.mayCreate ? duplicateChain : null} />
+        ) : (
+          <p className="border-t border-graph-strong pt-4">
+            {project.mayCreate
+              ? 'No chain yet. A chain goes from the sensor to the stored sample, and says whether the samples can be trusted.'
+              : 'No chain yet.'}
+          </p>
+        )}
+        {project.mayCreate ? (
+          <div className="mt-8 max-w-3xl">
+            <NewChainForm projectId={project.id} createChain={createChain} />
+          </div>
+        ) : null}
+      </section>
     </SignedInPage>
   )
 }

@@ -1,0 +1,204 @@
+import type { ReactNode } from 'react'
+import type { ChainRequirementResult, ChainSpec, ChainStage } from '@/dsp'
+import { Button } from '@/components/ui/button'
+import { SelectField } from '@/components/ui/field'
+import { figureRows } from '@/lib/chains/figure-words'
+import { chainStatementParts, type ChainStatementPart } from '@/lib/chains/statement'
+import { chainLineText, chainMarginWords, stageLabel, stageName } from '@/lib/chains/words'
+import { sameValue } from '@/lib/designs/same-value'
+import { markedParts } from '@/lib/designs/statement-changes'
+import { chainCurves } from './chain-curves'
+import { ChainOverlay } from './chain-overlay'
+import { ChainTable } from './chain-table'
+import type { ChosenVersions } from './chosen-versions'
+
+/** The lines of a version's sheet, judged; null where today's engine can't compute it. */
+export type Judge = (version: ChosenVersions['left']) => readonly ChainRequirementResult[] | null
+
+/** Two versions of a chain side by side: their sentences with the words that differ, figures, sheets, stages, and responses over each other. */
+export function ChainCompare({
+  numbers,
+  chosen,
+  judge,
+}: {
+  /** Of all versions, newest first. */
+  numbers: readonly number[]
+  chosen: ChosenVersions | null
+  judge: Judge
+}) {
+  return (
+    <main className="mx-auto flex max-w-5xl flex-col gap-8 px-4 pt-5 pb-10 sm:px-6">
+      {chosen ? (
+        <Sides numbers={numbers} chosen={chosen} judge={judge} />
+      ) : (
+        <>
+          <h1 className="text-[22px]">Compare versions</h1>
+          <p>This chain has no version yet; save two, and they can be compared.</p>
+        </>
+      )}
+    </main>
+  )
+}
+
+function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen: ChosenVersions; judge: Judge }) {
+  const { left, right } = chosen
+  const labels = [`version ${left.number}`, `version ${right.number}`] as const
+  const columns = [`Version ${left.number}`, `Version ${right.number}`]
+  const curves = chainCurves(left.spec, right.spec)
+  return (
+    <>
+      <div>
+        <h1 className="mb-3 text-[22px]">
+          Version {left.number} beside version {right.number}
+        </h1>
+        <Chooser numbers={numbers} chosen={chosen} />
+      </div>
+      <Part title="What they say">
+        <Statements left={left.spec} right={right.spec} labels={columns} />
+      </Part>
+      <Part title="Figures">
+        <ChainTable label="Figures of both" columns={['Figure', ...columns, 'Difference']} numeric={[1, 2, 3]}>
+          {figureRows(left.figures).map((row, at) => {
+            const other = figureRows(right.figures)[at] ?? row
+            return [row.name, row.text, marked(other.text, row.text !== other.text), differenceWords(row, other)]
+          })}
+        </ChainTable>
+      </Part>
+      <Part title="Responses over each other">
+        {curves ? (
+          <ChainOverlay curves={curves} labels={labels} />
+        ) : (
+          <p className="text-[14px] text-pencil">
+            This engine can’t compute one of the two any more, so that their responses can’t be drawn.
+          </p>
+        )}
+      </Part>
+      <Part title="Requirement sheets">
+        <Sheets sides={[left, right]} columns={columns} judge={judge} />
+      </Part>
+      <Part title="Stages">
+        <ChainTable label="Stages of both" columns={['Stage', ...columns, '']}>
+          {stageRows(left.spec, right.spec)}
+        </ChainTable>
+      </Part>
+    </>
+  )
+}
+
+function differenceWords(
+  row: ReturnType<typeof figureRows>[number],
+  other: ReturnType<typeof figureRows>[number],
+): string {
+  if (row.value === null || other.value === null) return row.text === other.text ? 'same' : 'differs'
+  return row.value === other.value ? 'same' : other.change(other.value - row.value)
+}
+
+const marked = (text: string, differs: boolean): ReactNode =>
+  differs ? <mark className="bg-spruce-wash font-semibold text-ink">{text}</mark> : text
+
+function Chooser({ numbers, chosen }: { numbers: readonly number[]; chosen: ChosenVersions }) {
+  const options = numbers.map((number) => (
+    <option key={number} value={number}>
+      Version {number}
+    </option>
+  ))
+  return (
+    <form method="get" className="flex flex-wrap items-end gap-3">
+      <SelectField label="Left" name="left" defaultValue={chosen.left.number}>
+        {options}
+      </SelectField>
+      <SelectField label="Right" name="right" defaultValue={chosen.right.number}>
+        {options}
+      </SelectField>
+      <Button type="submit">Compare</Button>
+    </form>
+  )
+}
+
+function Statements({ left, right, labels }: { left: ChainSpec; right: ChainSpec; labels: readonly string[] }) {
+  const pieces = markedParts(chainStatementParts(left), chainStatementParts(right))
+  const sides = [
+    { mark: 'gone', look: 'bg-graph font-semibold' },
+    { mark: 'new', look: 'bg-spruce-wash font-semibold' },
+  ] as const
+  return (
+    <div className="grid gap-4 sm:grid-cols-2">
+      {sides.map(({ mark, look }, at) => (
+        <div key={mark}>
+          <p className="text-[13px] text-pencil">{labels[at]}</p>
+          <p>
+            {pieces
+              .filter((piece) => piece.mark === 'same' || piece.mark === mark)
+              .map((piece, index) => (
+                <Words key={index} part={piece.part} look={piece.mark === 'same' ? null : look} />
+              ))}
+          </p>
+        </div>
+      ))}
+    </div>
+  )
+}
+
+/** What joins the words is no change by itself. */
+function Words({ part, look }: { part: ChainStatementPart; look: string | null }) {
+  return look === null || part.kind === 'text' ? part.text : <mark className={`text-ink ${look}`}>{part.text}</mark>
+}
+
+/** A row for each line that either sheet has. */
+function Sheets({
+  sides,
+  columns,
+  judge,
+}: {
+  sides: readonly ChosenVersions['left'][]
+  columns: readonly string[]
+  judge: Judge
+}) {
+  const judged = sides.map((version) => {
+    const results = judge(version)
+    return new Map(
+      version.spec.sheet.map((_, index) => {
+        const result = results?.[index]
+        return [chainLineText(version.spec, index), result ? chainMarginWords(result) : 'can’t be computed any more']
+      }),
+    )
+  })
+  const lines = [...new Set(judged.flatMap((side) => [...side.keys()]))]
+  if (lines.length === 0) return <p className="text-[14px] text-pencil">Nothing is asked of either.</p>
+  return (
+    <ChainTable label="Requirement sheets of both" columns={['Line', ...columns]}>
+      {lines.map((line) => {
+        const [one, other] = judged.map((side) => side.get(line) ?? 'not asked')
+        return [line, one, marked(other ?? '', one !== other)]
+      })}
+    </ChainTable>
+  )
+}
+
+/** By the stages' names: those of the right in order, then those that are gone. */
+function stageRows(left: ChainSpec, right: ChainSpec): readonly (readonly ReactNode[])[] {
+  const gone = left.stages.filter(({ id }) => !right.stages.some((stage) => stage.id === id))
+  return [...right.stages, ...gone].map((stage) => {
+    const [before, after] = [left, right].map(({ stages }) => stages.find(({ id }) => id === stage.id))
+    const [one, other] = [before, after].map((side) => (side ? nameOf(side) : '—'))
+    const moved = left.stages.findIndex(({ id }) => id === stage.id) !== right.stages.indexOf(stage)
+    const change =
+      before === undefined
+        ? 'added'
+        : after === undefined
+          ? 'gone'
+          : [!sameValue(before, after) && 'changed', moved && 'moved'].filter(Boolean).join(', ')
+    return [stageLabel(stage), one, marked(other ?? '', one !== other), change || 'same']
+  })
+}
+
+const nameOf = (stage: ChainStage): string => `${stageName(stage)}${stage.bypassed ? ', bypassed' : ''}`
+
+function Part({ title, children }: { title: string; children: ReactNode }) {
+  return (
+    <section aria-label={title} className="min-w-0">
+      <h2 className="mb-2 text-[19px]">{title}</h2>
+      {children}
+    </section>
+  )
+}

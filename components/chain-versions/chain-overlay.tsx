@@ -1,0 +1,77 @@
+'use client'
+
+import { useMemo, useRef, useState } from 'react'
+import { ChoiceGroup } from '@/components/handover/choice-group'
+import type { Curves } from '@/components/studio/compare/curves'
+import { overlayScene, type DifferenceUnit } from '@/components/studio/compare/overlay-scene'
+import { SideSwatch } from '@/components/studio/compare/side-swatch'
+import { DataTable } from '@/components/studio/panels/chart/data-table'
+import { PlotSheet } from '@/components/studio/panels/chart/plot-sheet'
+import { useWidth } from '@/components/studio/stack/use-width'
+import { formatDegrees, formatFixed, formatHz, formatSeconds } from '@/lib/format/quantity'
+
+const units = [
+  { value: 'db', label: 'dB' },
+  { value: 'degrees', label: '°' },
+  { value: 'microseconds', label: 'µs' },
+] as const
+
+const TABLE_ROWS = 24
+
+/** The responses of two versions of a chain over each other, the difference under them, and the table of what is plotted. */
+export function ChainOverlay({ curves, labels }: { curves: Curves; labels: readonly [string, string] }) {
+  const [unit, setUnit] = useState<DifferenceUnit>('db')
+  const place = useRef<HTMLDivElement>(null)
+  const width = useWidth(place)
+  const [base, other] = labels
+  const scene = useMemo(() => overlayScene(curves, { unit, base }, width), [curves, unit, base, width])
+  return (
+    <div className="flex min-w-0 flex-col gap-2">
+      <div className="flex flex-wrap items-center gap-x-6 gap-y-1 text-[13px]">
+        {labels.map((label, at) => (
+          <span key={at} className="flex items-center gap-2">
+            <SideSwatch place={at} /> {label}
+          </span>
+        ))}
+        <ChoiceGroup
+          legend={`Difference from ${base} in`}
+          inline
+          choices={units}
+          value={unit}
+          onChange={(next) => setUnit(next)}
+        />
+      </div>
+      <div
+        ref={place}
+        className="overflow-hidden"
+        role="img"
+        aria-label={`Magnitude, phase and group delay of ${base} and ${other} from the sensor to the stored sample, and their difference, over frequency; the values are in the table below`}
+      >
+        <PlotSheet scene={scene} />
+      </div>
+      <DataTable
+        summary="Values of the plots"
+        columns={['version', 'frequency', 'magnitude, dB', 'phase, °', 'delay']}
+        rows={() => tableRows(curves, labels)}
+      />
+    </div>
+  )
+}
+
+function tableRows({ sides }: Curves, labels: readonly [string, string]) {
+  return sides.flatMap((curve, at) => {
+    const { length } = curve.frequenciesHz
+    const rows = Math.min(TABLE_ROWS, length)
+    return Array.from({ length: rows }, (_, row) => {
+      const k = Math.round((row * (length - 1)) / (rows - 1))
+      const value = (of: Float64Array) => of[k] ?? Number.NaN
+      return [
+        labels[at] ?? '',
+        formatHz(value(curve.frequenciesHz), 4),
+        formatFixed(value(curve.magnitudeDb), 3),
+        formatDegrees(value(curve.phaseDegrees), 2),
+        formatSeconds(value(curve.delaySeconds), 4),
+      ]
+    })
+  })
+}

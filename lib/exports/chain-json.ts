@@ -1,0 +1,82 @@
+import * as z from 'zod'
+import { chainSpecSchema, chainUnitSchema } from '@/dsp'
+import { chainFiguresSchema, storedChainNumbersSchema } from './chain-kept'
+import { chainText } from '@/lib/chains/statement'
+import { stateWords } from '@/lib/designs/words'
+import { caution } from './coefficient-set'
+import { asciiJson } from './escape'
+import type { ChainSource } from './chain-source'
+
+/*
+ * The documented file of a chain: this schema is what is written, what is served as JSON Schema, and what tests read the file back with.
+ */
+
+export const chainFileSchema = z
+  .strictObject({
+    format: z.literal('polewright chain'),
+    formatVersion: z.literal(1),
+    name: z.string().meta({ description: 'What identifiers made from this chain begin with.' }),
+    chain: z.strictObject({ drawingNumber: z.string(), title: z.string(), project: z.string() }),
+    version: z.strictObject({
+      number: z.int(),
+      state: z.string(),
+      note: z.string(),
+      savedAt: z.string().meta({ description: 'ISO 8601, UTC.' }),
+      savedBy: z.string(),
+      engine: z.string().meta({ description: 'Version of the program that computed the numbers.' }),
+    }),
+    statement: z.string().meta({ description: 'The chain as one sentence.' }),
+    unit: chainUnitSchema.meta({ description: 'Of the sensor, to which all gains are referred.' }),
+    spec: chainSpecSchema.meta({
+      description:
+        'The chain as it was stated: its stages in signal order, the band that is kept, the requirement sheet, the interferers and the ' +
+        'settings of the tolerance run. Frequencies in Hz, levels in the sensor’s unit.',
+    }),
+    figures: chainFiguresSchema.meta({ description: 'What the version was saved with.' }),
+    numbers: storedChainNumbersSchema.meta({
+      description: 'What the decimation stages run, in double precision and with subtracted feedback.',
+    }),
+    checksum: z.strictObject({
+      algorithm: z.literal('SHA-256'),
+      of: z.literal('spec, figures and numbers').meta({
+        description:
+          'As one object of these three keys, written by RFC 8785: keys in order, no spaces, numbers as ECMAScript writes them.',
+      }),
+      hex: z.string().regex(/^[0-9a-f]{64}$/),
+    }),
+    caution: z.string(),
+  })
+  .meta({ title: 'Polewright chain' })
+
+export type ChainFile = z.infer<typeof chainFileSchema>
+
+/** The schema as JSON Schema (draft 2020-12). */
+export const chainJsonSchema = () => z.toJSONSchema(chainFileSchema)
+
+export function chainJsonFile({ chain, version }: ChainSource, name: string): string {
+  const { spec, figures, numbers } = version
+  const [sensor] = spec.stages
+  if (sensor?.kind !== 'sensor') throw new Error('A chain that was saved begins with its sensor.')
+  const file = chainFileSchema.parse({
+    format: 'polewright chain',
+    formatVersion: 1,
+    name,
+    chain: { drawingNumber: chain.drawingNumber, title: chain.title, project: chain.projectName },
+    version: {
+      number: version.number,
+      state: stateWords[version.state],
+      note: version.note,
+      savedAt: version.savedAt,
+      savedBy: version.savedBy,
+      engine: version.engineVersion,
+    },
+    statement: chainText(spec),
+    unit: sensor.unit,
+    spec,
+    figures,
+    numbers,
+    checksum: { algorithm: 'SHA-256', of: 'spec, figures and numbers', hex: version.checksum },
+    caution,
+  })
+  return `${asciiJson(file)}\n`
+}
