@@ -5,10 +5,13 @@ import { cosHalfTurns, foldedTurns, sinHalfTurns } from '../response/axis'
  * samples, the integrator none against the ideal one.
  */
 
+/** Below this part of the rate each of them is 1 to the last bit or nearly, and their quotients may no longer be formed. */
+const NEAR_ZERO = 1e-12
+
 /** (sin(πf/fs) / (πf/fs))^N; exactly 0 at multiples of the rate. */
 export function averagingAmplitude(frequencyHz: number, order: number, sampleRateHz: number): number {
   const turns = frequencyHz / sampleRateHz
-  if (turns === 0) return 1
+  if (Math.abs(turns) < NEAR_ZERO) return 1
   const folded = foldedTurns(frequencyHz, sampleRateHz)
   const sign = Math.round(turns - folded) % 2 === 0 ? 1 : -1
   return ((sign * sinHalfTurns(folded)) / (Math.PI * turns)) ** order
@@ -21,8 +24,8 @@ export function averagingAmplitude(frequencyHz: number, order: number, sampleRat
  */
 export function cicAmplitude(frequencyHz: number, order: number, length: number, sampleRateHz: number): number {
   const turns = foldedTurns(frequencyHz, sampleRateHz)
+  if (Math.abs(turns) < NEAR_ZERO) return 1
   const below = length * sinHalfTurns(turns)
-  if (below === 0) return 1
   const folded = foldedTurns(frequencyHz * length, sampleRateHz)
   // Half turns that the two foldings took away, each of which turns the sign of its sine.
   const halves =
@@ -34,6 +37,6 @@ export function cicAmplitude(frequencyHz: number, order: number, length: number,
 /** The trapezoidal rule over the ideal integral, (x·cot x)^n with x = πf/fs folded to half the rate; exactly 0 there, 1 at DC. */
 export function integrationAmplitude(frequencyHz: number, times: number, sampleRateHz: number): number {
   const turns = foldedTurns(frequencyHz, sampleRateHz)
-  if (turns === 0) return 1
+  if (Math.abs(turns) < NEAR_ZERO) return 1
   return ((Math.PI * turns * cosHalfTurns(turns)) / sinHalfTurns(turns)) ** times
 }

@@ -2,23 +2,11 @@ import type { ComputedChain, InterfererLanding } from './chain'
 import { addMagnitudeDb } from './part-response'
 import { integral } from './quadrature'
 import type { Interferer } from './spec'
+import { outputOf } from './strips'
 import { chainUnits } from './units'
 
 type Tone = Extract<Interferer, { kind: 'tone' }>
 type Band = Extract<Interferer, { kind: 'band' }>
-
-interface Place {
-  readonly strip: number
-  readonly landsHz: number
-}
-
-/** Where an input frequency lands: k·rate ± f. */
-function placeOf(inputHz: number, outputRateHz: number): Place {
-  const half = outputRateHz / 2
-  const strip = Math.floor(inputHz / half)
-  const landsHz = strip % 2 === 0 ? inputHz - (strip / 2) * outputRateHz : ((strip + 1) / 2) * outputRateHz - inputHz
-  return { strip, landsHz: Math.min(Math.max(landsHz, 0), half) }
-}
 
 /** How often the samples were integrated, and the factor from the sensor's unit in SI to the chain's. */
 interface Integration {
@@ -54,8 +42,8 @@ function levelsAt(chain: ComputedChain, inputHz: Float64Array): Levels {
       addMagnitudeDb(part, inputHz, levelDb, scratch)
       if (part.kind !== 'integration' || inRateHz === null) continue
       inputHz.forEach((hertz, n) => {
-        const at = placeOf(hertz, inRateHz).landsHz
-        const lands = placeOf(hertz, chain.outputRateHz).landsHz
+        const at = outputOf(hertz, inRateHz).landsHz
+        const lands = outputOf(hertz, chain.outputRateHz).landsHz
         seen[n] = lands
         if (at > 0) levelDb[n] = levelDb[n]! + 20 * part.times * Math.log10(lands / at)
       })
@@ -72,7 +60,7 @@ function levelsAt(chain: ComputedChain, inputHz: Float64Array): Levels {
 const isKept = ({ spec: { kept } }: ComputedChain, hertz: number): boolean => hertz >= kept.fromHz && hertz <= kept.toHz
 
 function landingOfTone(chain: ComputedChain, { name, hz, level }: Tone): InterfererLanding {
-  const { strip, landsHz } = placeOf(hz, chain.outputRateHz)
+  const { strip, landsHz } = outputOf(hz, chain.outputRateHz)
   const { levelDb, gain } = levelsAt(chain, Float64Array.of(hz))
   return {
     name,
@@ -92,8 +80,8 @@ const BAND_TOLERANCE = 1e-4
 
 /** Whether any of an input band lands in the kept band. */
 function touchesKept(chain: ComputedChain, { fromHz, toHz }: Band): boolean {
-  const { strip, landsHz } = placeOf(fromHz, chain.outputRateHz)
-  const end = placeOf(toHz, chain.outputRateHz)
+  const { strip, landsHz } = outputOf(fromHz, chain.outputRateHz)
+  const end = outputOf(toHz, chain.outputRateHz)
   if (end.strip > strip + 1) return true
   if (isKept(chain, landsHz) || isKept(chain, end.landsHz)) return true
   const half = chain.outputRateHz / 2
@@ -127,7 +115,7 @@ function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
   return {
     name,
     inputHz,
-    ...placeOf(inputHz, chain.outputRateHz),
+    ...outputOf(inputHz, chain.outputRateHz),
     levelDb: levelsAt(chain, Float64Array.of(inputHz)).levelDb[0]!,
     level: level * Math.sqrt(power / (toHz - fromHz)),
     inKeptBand: touchesKept(chain, band),

@@ -12,6 +12,14 @@ import { addMagnitudeDb } from './part-response'
 export const inputOf = (strip: number, outputHz: number, outputRateHz: number): number =>
   strip % 2 === 0 ? (strip / 2) * outputRateHz + outputHz : ((strip + 1) / 2) * outputRateHz - outputHz
 
+/** The strip of an input frequency, and where it lands. */
+export function outputOf(inputHz: number, outputRateHz: number): { readonly strip: number; readonly landsHz: number } {
+  const half = outputRateHz / 2
+  const strip = Math.floor(inputHz / half)
+  const landsHz = strip % 2 === 0 ? inputHz - (strip / 2) * outputRateHz : ((strip + 1) / 2) * outputRateHz - inputHz
+  return { strip, landsHz: Math.min(Math.max(landsHz, 0), half) }
+}
+
 /** Where a strip comes to lie when folded at a rate that has `strips` strips below its half. */
 export function foldedStrip(strip: number, strips: number): number {
   const within = strip % (2 * strips)

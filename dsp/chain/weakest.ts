@@ -1,7 +1,7 @@
 import { largest, type Curve } from '../requirements/extremes'
 import { ripplesOver } from './band-grid'
 import type { ComputedChain } from './chain'
-import { converterStrips, stripsOver, type Strips } from './strips'
+import { converterStrips, outputOf, partsAhead, stripsOver, type Strips } from './strips'
 
 /** Where a strip comes through strongest. */
 export interface StripWorst {
@@ -57,11 +57,21 @@ function refined(chain: ComputedChain, found: StripWorst, grid: Float64Array): S
   return value > found.levelDb ? { ...found, levelDb: value, outputHz: hz } : found
 }
 
+/** Where analog resonances land, which may be sharper than a grid. */
+const peaksLanding = (chain: ComputedChain): number[] =>
+  partsAhead(chain).flatMap((part) => {
+    if (part.kind !== 'analog') return []
+    const upper = part.filter.poles.filter(({ im }) => im > 0)
+    return upper.map(({ im }) => outputOf(im / (2 * Math.PI), chain.outputRateHz).landsHz)
+  })
+
 function look(chain: ComputedChain, fromHz: number, toHz: number, count: number): Weakest {
   const points = Math.ceil(POINTS_A_RIPPLE * ripplesOver(chain, fromHz, toHz))
-  const grid = evenGrid(fromHz, toHz, Math.min(MOST_POINTS, Math.max(FEWEST_POINTS, points)))
+  const even = evenGrid(fromHz, toHz, Math.min(MOST_POINTS, Math.max(FEWEST_POINTS, points)))
+  const peaks = peaksLanding(chain).filter((hertz) => hertz > fromHz && hertz < toHz)
+  const grid = Float64Array.of(...even, ...peaks).sort()
   const isFew = count > MOST_ON_FULL_GRID
-  const firstGrid = isFew ? evenGrid(fromHz, toHz, FEW_POINTS) : grid
+  const firstGrid = isFew ? Float64Array.of(...evenGrid(fromHz, toHz, FEW_POINTS), ...peaks).sort() : grid
   const first = stripsOver(chain, firstGrid)
   const found = Array.from({ length: count - 1 }, (_, n) => worstOf(first, n + 1, firstGrid)).sort(worstFirst)
   const mostDigitalDb = mostDigital(chain, first)
