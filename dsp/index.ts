@@ -218,3 +218,5 @@ export {
 } from './chain/build-sheet'
 export { proofSteps, type ProofOptions } from './chain/proof/prove'
 export type { ProofLine, ProofResult } from './chain/proof/report'
+export { advisePlans, planSteps, type PlanOption } from './chain/advisor/plans'
+export { adviseRates, rateSteps, type RateOption } from './chain/advisor/rates'

@@ -90,7 +90,7 @@ function* walk(
   const length = coefficients.length
   const at = (n: number): number => coefficients[((n % length) + length) % length]!
   let x = state
-  let next = new Float64Array(order)
+  let next: Float64Array = new Float64Array(order)
   let c0 = at(from - 1)
   let c1 = at(from)
   let c2 = at(from + 1)

@@ -93,7 +93,7 @@ const unitFactor = (before: ComputedStage, stage: ComputedStage): number =>
 /** Volts of the converter in, stored samples in the chain's unit out. Yields behind each stage. */
 export function* runBehind(chain: ComputedChain, volts: Float64Array): Generator<void, Float64Array> {
   const sensitivity = sensitivityOf(chain)
-  let signal = volts.map((value) => value / sensitivity)
+  let signal: Float64Array = volts.map((value) => value / sensitivity)
   for (let index = chain.converterIndex + 1; index < chain.stages.length; index++) {
     const stage = chain.stages[index]!
     let isKept = false
