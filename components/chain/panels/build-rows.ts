@@ -2,6 +2,7 @@ import { csvText } from '@/lib/exports/escape'
 import { decimalText } from '@/lib/exports/numbers'
 import type { BuildCircuit, BuildPart, BuildSection, ComputedChain } from '@/dsp'
 import { formatFixed, formatHz, formatNumber, formatQuantity } from '@/lib/format/quantity'
+import { chainStageLabel } from './stage-label'
 
 /* The build sheet in words and as a file. */
 
@@ -23,12 +24,12 @@ export const errorWords = (percent: number | null): string =>
 export const sectionWords = ({ order, response, f0Hz, q }: BuildSection): string =>
   `${order === 1 ? 'first' : 'second'} order ${response}, f0 ${formatHz(f0Hz, 5)}${q === null ? '' : `, Q ${formatNumber(q, 4)}`}`
 
-/** A section's name: which of its stage's, where the stage has several. */
-export function sectionName(section: BuildSection, sections: readonly BuildSection[]): string {
-  const stages = [...new Set(sections.map(({ stageIndex }) => stageIndex))]
-  const ofStage = sections.filter(({ stageIndex }) => stageIndex === section.stageIndex).length
-  const stage = stages.length > 1 ? `Filter ${stages.indexOf(section.stageIndex) + 1}, section` : 'Section'
-  return ofStage > 1 || stages.length > 1 ? `${stage} ${section.index + 1}` : 'Section'
+/** A section's name: its stage, and which of the stage's sections where there are several. */
+export function sectionName(chain: ComputedChain, section: BuildSection, sections: readonly BuildSection[]): string {
+  const found = chain.stages.find(({ stage }) => stage.id === section.stageId)
+  const stage = found ? chainStageLabel(found.stage) : section.stageId
+  const ofStage = sections.filter(({ stageId }) => stageId === section.stageId).length
+  return ofStage > 1 ? `${stage}, section ${section.index + 1}` : stage
 }
 
 /** One row a part (RFC 4180); text is guarded, numbers are bare. */
@@ -57,7 +58,7 @@ export function buildCsv(chain: ComputedChain, sections: readonly BuildSection[]
     ].join(','),
     ...sections.flatMap((section) => {
       const head = [
-        csvText(sectionName(section, sections)),
+        csvText(sectionName(chain, section, sections)),
         csvText(section.response),
         number(section.f0Hz),
         number(section.q),

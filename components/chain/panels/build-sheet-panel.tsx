@@ -49,7 +49,7 @@ function BuildSheet({ chain }: ChainPanelProps) {
         <SectionParts
           key={`${section.stageId} ${section.index}`}
           section={section}
-          name={sectionName(section, sections)}
+          name={sectionName(chain, section, sections)}
         />
       ))}
     </div>

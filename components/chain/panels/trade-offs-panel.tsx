@@ -13,6 +13,7 @@ import type { ChainPanelProps } from './props'
 import {
   adviceQuestion,
   filterWords,
+  notesOf,
   planCells,
   planColumns,
   planName,
@@ -89,7 +90,8 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         ) : null}
         {rates.value && rates.value.length > 0 ? (
           <p className="text-[13px] text-pencil">
-            Marked as best: no other order has a lower rate and fewer multiplies at once.
+            Marked as best: nothing else has as low an order at a lower rate, or as low a rate with a lower order.{' '}
+            {notesOf(rates.value).join(' ')}
           </p>
         ) : null}
       </section>
@@ -134,7 +136,8 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         ) : null}
         {plans.value && plans.value.length > 0 ? (
           <p className="text-[13px] text-pencil">
-            Multiplies are counted for each stored sample. Every filter is as short as the sheet allows.
+            Multiplies are counted for each stored sample. Every filter is as short as the sheet allows.{' '}
+            {notesOf(plans.value).join(' ')}
           </p>
         ) : null}
       </section>

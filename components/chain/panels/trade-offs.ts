@@ -49,6 +49,11 @@ export const planCells = (option: PlanOption): readonly string[] => [
 
 export const rateName = (option: RateOption): string => `order ${option.order} at ${formatHz(option.converterRateHz)}`
 
+/** What was taken or left out, said once for all options. */
+export const notesOf = (options: readonly { readonly notes: readonly string[] }[]): readonly string[] => [
+  ...new Set(options.flatMap(({ notes }) => notes)),
+]
+
 /** What was found out belongs to stages, kept band and sheet; interferers and tolerances don't enter. */
 export const adviceQuestion = ({ stages, kept, sheet }: ChainSpec): readonly unknown[] => [stages, kept, sheet]
 
@@ -60,7 +65,8 @@ export function ratesPlan(options: readonly RateOption[], faded: boolean): Lines
   if (!first || !last || first.order === last.order) return null
   const rates = byOrder.map(({ converterRateHz }) => converterRateHz)
   const best = byOrder.filter(({ isBest }) => isBest)
-  const perUnit = Math.max(...rates) >= 2000 ? 1000 : 1
+  const [least, most] = [Math.min(...rates), Math.max(...rates)]
+  const perUnit = most >= 2000 ? 1000 : 1
   const curve = (name: string, from: readonly RateOption[]) => ({
     name,
     x: Float64Array.from(from, ({ order }) => order),
@@ -70,7 +76,8 @@ export function ratesPlan(options: readonly RateOption[], faded: boolean): Lines
     title: 'Lowest converter rate for each order of the anti-alias filter',
     x: { kind: 'linear', span: [first.order - 0.5, last.order + 0.5], are: 'plain' },
     y: {
-      span: [0, Math.max(...rates) * 1.12],
+      kind: 'log',
+      span: [least / 1.4, most * 1.4],
       quantity: 'plain',
       sign: perUnit === 1000 ? '\u2009kHz' : '\u2009Hz',
       perUnit,

@@ -5,6 +5,7 @@ import { pixelsOf, scaleOf, type Scale, type Span } from '@/components/plot/scal
 import { crisp, line, type Mark, type Scene } from '@/components/plot/scene'
 import { frequencyTicks, valueTicks, type Quantity, type Tick } from '@/components/plot/ticks'
 import type { MarkerShape } from '@/components/plot/trace-style'
+import { formatNumber } from '@/lib/format/quantity'
 
 /* One plot of the drawer as data: curves, bands and limits over one axis. All panels of a chain draw theirs this way. */
 
@@ -76,9 +77,9 @@ export function linesScene(plan: LinesPlan, frame: LinesFrame): Scene {
   const room = width < 560 ? 62 : 78
   const xTicks =
     plan.x.are === 'hertz' ? frequencyTicks({ scale: x, normalised: false }, room) : valueTicks('plain', x, room)
-  const yTicks = (plan.y.kind === 'log' ? decades(y) : valueTicks(plan.y.quantity, y, 26, plan.y.perUnit)).map(
-    (tick): Tick => ({ ...tick, label: tick.label === null ? null : `${tick.label}${plan.y.sign}` }),
-  )
+  const yTicks = (
+    plan.y.kind === 'log' ? decades(y, plan.y.perUnit) : valueTicks(plan.y.quantity, y, 26, plan.y.perUnit)
+  ).map((tick): Tick => ({ ...tick, label: tick.label === null ? null : `${tick.label}${plan.y.sign}` }))
   const opacity = plan.faded ? 0.4 : 1
   return {
     width,
@@ -167,14 +168,14 @@ function limitMarks({ from, to, at }: { from: number; to: number; at: number }, 
   ]
 }
 
-function decades(scale: Scale): Tick[] {
+function decades(scale: Scale, perUnit = 1): Tick[] {
   const [from, to] = scale.domain
   const ticks: Tick[] = []
   for (let power = Math.floor(Math.log10(from)); power <= Math.ceil(Math.log10(to)); power++)
     for (const digit of [1, 2, 5]) {
       const value = Number((digit * 10 ** power).toPrecision(12))
       if (value < from * (1 - 1e-9) || value > to * (1 + 1e-9)) continue
-      ticks.push({ value, label: String(value), strong: digit === 1 })
+      ticks.push({ value, label: formatNumber(value / perUnit, 3), strong: digit === 1 })
     }
   return ticks
 }
