@@ -19,6 +19,7 @@ import {
   type Section,
 } from '@/dsp'
 import { benchCandidates } from './candidates'
+import { benchChains } from './chains'
 import { format, least, median, times } from './measure'
 import { timePython } from './python'
 import { benchTolerance } from './tolerance'
@@ -127,3 +128,8 @@ const tolerance = benchTolerance()
 say(
   `tolerance run, ${tolerance.channels} channels × ${tolerance.points} points: ${tolerance.twoCores.toFixed(2)} s halved between two cores, ratio to ${tolerance.askedSeconds} s ${tolerance.ratio.toFixed(2)} (asked: under ${tolerance.askedSeconds} s); ${tolerance.oneCore.toFixed(2)} s on one`,
 )
+
+for (const { edit, milliseconds } of benchChains()) {
+  const ratio = (milliseconds / 30).toFixed(2)
+  say(`chain of 6 stages, ${edit} edited: median ${format(milliseconds)}, ratio to 30 ms ${ratio} (asked: at most 1)`)
+}
