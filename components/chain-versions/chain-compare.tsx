@@ -77,7 +77,7 @@ function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen:
         <Sheets sides={[left, right]} columns={columns} judge={judge} />
       </Part>
       <Part title="Stages">
-        <ChainTable label="Stages of both" columns={['Stage', ...columns, '']}>
+        <ChainTable label="Stages of both" columns={['Stage', ...columns, 'Change']}>
           {stageRows(left.spec, right.spec)}
         </ChainTable>
       </Part>

@@ -54,8 +54,8 @@ export function ChainVersionSheet({
       </Part>
 
       <Part id="stages" title="Stages">
-        <ChainTable label="Stages in signal order" columns={['Stage', 'What it is', '']}>
-          {spec.stages.map((stage) => [stageLabel(stage), stageName(stage), stage.bypassed ? 'bypassed' : ''])}
+        <ChainTable label="Stages in signal order" columns={['Stage', 'What it is', 'In use']}>
+          {spec.stages.map((stage) => [stageLabel(stage), stageName(stage), stage.bypassed ? 'bypassed' : 'yes'])}
         </ChainTable>
       </Part>
 

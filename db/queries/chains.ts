@@ -122,7 +122,7 @@ export async function listChains(access: Access, on: Executor = database()): Pro
     .innerJoin(memberships, and(eq(memberships.teamId, projects.teamId), admits(access)))
     .leftJoin(latest, eq(latest.chainId, chains.id))
     .leftJoin(accounts, eq(accounts.id, latest.savedBy))
-    .orderBy(asc(chains.serial))
+    .orderBy(asc(chains.serial), asc(chains.drawingNumber))
   return rows.map(({ startingSpec, spec, figures, number, savedAt, savedBy, ...chain }) => ({
     ...chain,
     spec: chainSpecSchema.parse(spec ?? startingSpec),

@@ -2,7 +2,7 @@ import { afterAll, describe, expect, it } from 'vitest'
 import { closeConnections, pool } from '@/db/client'
 import { findAccountByEmail } from '@/db/queries/accounts'
 import { findChainVersion, listChainVersions, listChainsUsing } from '@/db/queries/chain-versions'
-import { listChains } from '@/db/queries/chains'
+import { listChains, type ChainListRow } from '@/db/queries/chains'
 import { listDesigns, listProjects } from '@/db/queries/projects'
 import { findVersion, listVersions } from '@/db/queries/versions'
 import accounts from '@/db/seed/accounts.json'
@@ -17,6 +17,9 @@ import { recomputeDifference } from '@/lib/designs/recompute'
 import { allRoles } from '@/lib/permissions'
 
 afterAll(closeConnections)
+
+const byDrawing = (chains: readonly ChainListRow[]) =>
+  [...chains].sort((one, other) => (one.drawingNumber < other.drawingNumber ? -1 : 1))
 
 describe('the demo', () => {
   it('is planted once, though two processes start together', async () => {
@@ -60,7 +63,7 @@ describe('the demo', () => {
   it('has three chains, each version saved with what its spec computes to, its links kept', async () => {
     const observer = await findAccountByEmail('observer@polewright.example')
     const access = { accountId: observer?.id ?? '', roles: allRoles }
-    const chains = await listChains(access)
+    const chains = byDrawing(await listChains(access))
     expect(chains.map(({ drawingNumber }) => drawingNumber)).toEqual(['HMF-CH-005', 'SPH-CH-004', 'SPH-CH-005'])
     let links = 0
     for (const chain of chains) {
@@ -90,7 +93,7 @@ describe('the demo', () => {
 
   it('has a chain that meets its sheet, one that misses nothing but its alias floor, and all seven kinds of line', async () => {
     const observer = await findAccountByEmail('observer@polewright.example')
-    const chains = await listChains({ accountId: observer?.id ?? '', roles: allRoles })
+    const chains = byDrawing(await listChains({ accountId: observer?.id ?? '', roles: allRoles }))
     const [deck, pump, velocity] = chains.map(({ spec }) => judgedChain(spec).results)
     for (const met of [deck, velocity]) expect(met?.filter((line) => line.met !== true)).toEqual([])
     expect(pump?.filter((line) => line.met !== true).map((line) => line.requirement.kind)).toEqual(['alias-floor'])
