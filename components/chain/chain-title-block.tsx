@@ -24,16 +24,17 @@ export function ChainTitleBlock({
     <TitleBlock
       label="Title block"
       cells={[
-        { label: 'Drawing', value: chain.drawingNumber },
-        { label: 'Version', value: isSaved ? String(latest.number) : `${(latest?.number ?? 0) + 1} (draft)` },
+        { label: 'Drawing', value: chain.drawingNumber, span: 3 },
+        { label: 'Version', value: isSaved ? String(latest.number) : `${(latest?.number ?? 0) + 1} (draft)`, span: 3 },
+        {
+          label: 'Drawn',
+          value: isSaved ? `${latest.savedBy}, ${formatInstant(latest.savedAt).slice(0, 11)}` : viewer.label,
+          span: 6,
+        },
         {
           label: 'State',
           value: stateWords[state],
           tone: state === 'released' || state === 'approved' ? 'met' : 'caution',
-        },
-        {
-          label: 'Drawn',
-          value: isSaved ? `${latest.savedBy}, ${formatInstant(latest.savedAt).slice(0, 11)}` : viewer.label,
         },
         { label: 'Checked', value: '—' },
         { label: 'Released', value: '—' },

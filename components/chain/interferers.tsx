@@ -4,16 +4,15 @@ import { X } from 'lucide-react'
 import { useEffect, useMemo, useRef, useState } from 'react'
 import { interfererLandings, MOST_INTERFERERS, type ChainSpec, type ComputedChain, type InterfererLanding } from '@/dsp'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
-import { wordLook } from '@/components/studio/statement/word-look'
 import { Button } from '@/components/ui/button'
-import { levelText, withPartAt } from '@/lib/chains/fields'
+import { hertzText, levelText, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
 import { unitAfter } from '@/lib/chains/outline'
 import { classNames } from '@/lib/format/class-names'
-import { formatFixed, formatHz } from '@/lib/format/quantity'
+import { formatFixed } from '@/lib/format/quantity'
 import type { ChainDesk } from './chain-desk'
 import { ChainNumber } from './desk-fields'
-import { NameWord } from './name-word'
+import { NameWord, plainWord } from './name-word'
 
 /** What is there beside the wanted signal: where each lands in the samples, and how big. */
 export function Interferers({
@@ -62,7 +61,9 @@ export function Interferers({
     requestAnimationFrame(() =>
       section.current
         ?.querySelector<HTMLElement>(
-          interferers.length === 1 ? '[data-tool="add"]' : `[data-interferer="${Math.max(index - 1, 0)}"] button`,
+          interferers.length === 1
+            ? '[data-tool="add"]'
+            : `[data-interferer="${Math.max(index - 1, 0)}"] [data-tool="remove"]`,
         )
         ?.focus(),
     )
@@ -79,68 +80,55 @@ export function Interferers({
         ) : null}
       </div>
       {interferers.length > 0 ? (
-        <div className="overflow-x-auto border-t border-graph-strong">
-          <table className="w-full text-[13px]">
-            <thead className="sr-only">
-              <tr>
-                <th scope="col">Name</th>
-                <th scope="col">Frequency</th>
-                <th scope="col">Level at the sensor</th>
-                <th scope="col">Lands at</th>
-                <th scope="col">Level in the samples</th>
-                {readOnly ? null : <th scope="col">Remove</th>}
-              </tr>
-            </thead>
-            <tbody>
-              {interferers.map((one, index) => {
-                const at = `interferers.${index}`
-                const fields = { spec, desk, readOnly }
-                return (
-                  <tr key={index} data-interferer={index} className="border-b border-graph [&>td]:py-0.5 [&>td]:pl-2">
-                    <th scope="row" className="py-0.5 text-left text-[14px] font-normal">
-                      <NameWord
-                        label={`Interferer ${index + 1}, name`}
-                        name={one.name}
-                        look={nameLook}
-                        readOnly={readOnly}
-                        onName={(name) => nameRefusal(name) ?? desk.edit((now) => withPartAt(now, `${at}.name`, name))}
-                      />
-                    </th>
-                    <td className="text-right whitespace-nowrap">
-                      {one.kind === 'tone' ? (
-                        <ChainNumber {...fields} path={`${at}.hz`} name={`Interferer ${index + 1}, frequency`} />
-                      ) : (
-                        <>
-                          <ChainNumber {...fields} path={`${at}.fromHz`} name={`Interferer ${index + 1}, from`} />
-                          <span className="text-pencil"> to </span>
-                          <ChainNumber {...fields} path={`${at}.toHz`} name={`Interferer ${index + 1}, to`} />
-                        </>
-                      )}
-                    </td>
-                    <td className="text-right whitespace-nowrap">
-                      <ChainNumber {...fields} path={`${at}.level`} name={`Interferer ${index + 1}, level`} />
-                    </td>
-                    <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
-                    {readOnly ? null : (
-                      <td>
-                        <Button
-                          kind="quiet"
-                          small
-                          className="min-w-6 px-1"
-                          aria-label={`Remove interferer ${index + 1}, ${one.name}`}
-                          title="Remove this interferer"
-                          onClick={() => remove(index)}
-                        >
-                          <X aria-hidden size={14} />
-                        </Button>
-                      </td>
-                    )}
-                  </tr>
-                )
-              })}
-            </tbody>
-          </table>
-        </div>
+        <ul className="border-t border-graph-strong">
+          {interferers.map((one, index) => {
+            const at = `interferers.${index}`
+            const fields = { spec, desk, readOnly }
+            return (
+              <li
+                key={index}
+                data-interferer={index}
+                className="flex flex-wrap items-baseline justify-end gap-x-3 border-b border-graph py-0.5"
+              >
+                <span className="mr-auto min-w-0 text-[14px]">
+                  <NameWord
+                    label={`Interferer ${index + 1}, name`}
+                    name={one.name}
+                    look={plainWord}
+                    readOnly={readOnly}
+                    onName={(name) => nameRefusal(name) ?? desk.edit((now) => withPartAt(now, `${at}.name`, name))}
+                  />
+                </span>
+                {one.kind === 'tone' ? (
+                  <ChainNumber {...fields} path={`${at}.hz`} name={`Interferer ${index + 1}, frequency`} />
+                ) : (
+                  <span>
+                    <ChainNumber {...fields} path={`${at}.fromHz`} name={`Interferer ${index + 1}, from`} />
+                    <span className="text-[13px] text-pencil"> to </span>
+                    <ChainNumber {...fields} path={`${at}.toHz`} name={`Interferer ${index + 1}, to`} />
+                  </span>
+                )}
+                <ChainNumber {...fields} path={`${at}.level`} name={`Interferer ${index + 1}, level`} />
+                <span className="flex min-w-42 items-baseline justify-end gap-x-2">
+                  <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
+                  {readOnly ? null : (
+                    <Button
+                      kind="quiet"
+                      small
+                      className="min-w-6 self-center px-1"
+                      aria-label={`Remove interferer ${index + 1}, ${one.name}`}
+                      title="Remove this interferer"
+                      data-tool="remove"
+                      onClick={() => remove(index)}
+                    >
+                      <X aria-hidden size={14} />
+                    </Button>
+                  )}
+                </span>
+              </li>
+            )
+          })}
+        </ul>
       ) : (
         <p className="border-t border-graph-strong pt-1.5 text-[14px] leading-6">
           {readOnly
@@ -167,9 +155,6 @@ export function Interferers({
   )
 }
 
-/** As the statement's words, in the weight of a list. */
-const nameLook = classNames(wordLook.frame, 'font-normal')
-
 function Landing({
   landing,
   spec,
@@ -179,35 +164,30 @@ function Landing({
   spec: ChainSpec
   onTrace(hz: number): void
 }) {
-  if (!landing) {
-    return (
-      <>
-        <td className="numeric text-right text-pencil">…</td>
-        <td />
-      </>
-    )
-  }
+  if (!landing) return <span className="numeric text-[13px] text-pencil">…</span>
   const isFelt = isAboveFloor(landing, spec)
+  const lands = hertzText(landing.landsHz, 3)
   const level = levelText(landing.level, unitAfter(spec))
   return (
     <>
-      <td className="text-right whitespace-nowrap">
-        <button
-          type="button"
-          className="numeric min-h-6 border-b border-dotted border-pencil hover:bg-spruce-wash"
-          aria-label={`${landing.name} lands at ${formatHz(landing.landsHz, 3)}: trace it on the fold chart`}
-          onClick={() => onTrace(landing.landsHz)}
-        >
-          → {formatHz(landing.landsHz, 3)}
-        </button>
-      </td>
-      <td
-        className={classNames('numeric text-right whitespace-nowrap', isFelt && 'font-semibold text-vermilion')}
+      <button
+        type="button"
+        className="numeric min-h-6 border-b border-dotted border-pencil text-[13px] whitespace-nowrap hover:bg-spruce-wash"
+        aria-label={`${landing.name} lands at ${lands}: trace it on the fold chart`}
+        onClick={() => onTrace(landing.landsHz)}
+      >
+        → {lands}
+      </button>
+      <span
+        className={classNames(
+          'numeric min-w-16 text-right text-[13px] whitespace-nowrap',
+          isFelt && 'font-semibold text-vermilion',
+        )}
         title={`${formatFixed(-landing.levelDb, 1)}\u2009dB down${isFelt ? ', inside the kept band and above the alias floor' : ''}`}
       >
         {level}
         {isFelt ? <span className="sr-only">, inside the kept band and above the alias floor</span> : null}
-      </td>
+      </span>
     </>
   )
 }

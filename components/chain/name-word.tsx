@@ -4,6 +4,10 @@ import { useId, useRef, useState, type KeyboardEvent } from 'react'
 import { RefusalNote } from '@/components/studio/statement/refusal-note'
 import { classNames } from '@/lib/format/class-names'
 
+/** A name in a list, of the weight of what stands around it. */
+export const plainWord =
+  'border-b border-dotted border-pencil focus-within:border-solid focus-within:border-spruce focus-within:bg-spruce-wash hover:bg-spruce-wash'
+
 /** A name typed where it stands, in the statement or in a list; Escape brings the old one back. */
 export function NameWord({
   label,
@@ -45,6 +49,7 @@ export function NameWord({
     }
   }
 
+  if (readOnly) return <span className="wrap-anywhere">{name}</span>
   return (
     <>
       <span className={classNames('inline-grid max-w-full align-baseline', look, problem && 'text-vermilion')}>
@@ -57,7 +62,6 @@ export function NameWord({
           aria-label={label}
           aria-invalid={problem ? true : undefined}
           aria-describedby={problem ? id : undefined}
-          readOnly={readOnly}
           size={1}
           maxLength={60}
           autoComplete="off"

@@ -1,11 +1,11 @@
 'use client'
 
-import { ArrowDown, ArrowUp, X } from 'lucide-react'
+import { EllipsisVertical } from 'lucide-react'
 import { DropdownMenu } from 'radix-ui'
-import { useEffect, useRef, useState, type KeyboardEvent, type ReactNode } from 'react'
+import { useEffect, useRef, useState } from 'react'
 import { MOST_CHAIN_REQUIREMENTS, type ChainRequirementKind, type ChainRequirementResult, type ChainSpec } from '@/dsp'
 import { Button, buttonClass } from '@/components/ui/button'
-import { chainFieldOf } from '@/lib/chains/fields'
+import { chainFieldOf, hertzText } from '@/lib/chains/fields'
 import { sheetTone, sheetWords } from '@/lib/chains/sheet-words'
 import {
   chainLineParts,
@@ -15,7 +15,6 @@ import {
   chainRequirementKindWords,
 } from '@/lib/chains/words'
 import { classNames } from '@/lib/format/class-names'
-import { formatHz } from '@/lib/format/quantity'
 import type { ChainDesk } from './chain-desk'
 import { ChainNumber } from './desk-fields'
 import type { ChainJudgements } from './judge'
@@ -50,12 +49,12 @@ export function ChainSheet({ spec, judgements, desk, readOnly, onTrace, onRunTol
   function move(index: number, by: 1 | -1) {
     if (index + by < 0 || index + by >= sheet.length) return
     setProblem(desk.moveLine(index, by))
-    requestAnimationFrame(() => focus(`[data-line="${index + by}"] [data-tool="${by < 0 ? 'up' : 'down'}"]`))
+    requestAnimationFrame(() => focus(`[data-line="${index + by}"] [data-tool="line"]`))
   }
   function remove(index: number) {
     setProblem(desk.removeLine(index))
     requestAnimationFrame(() =>
-      focus(sheet.length === 1 ? '[data-tool="add"]' : `[data-line="${Math.max(index - 1, 0)}"] [data-tool="remove"]`),
+      focus(sheet.length === 1 ? '[data-tool="add"]' : `[data-line="${Math.max(index - 1, 0)}"] [data-tool="line"]`),
     )
   }
 
@@ -126,18 +125,11 @@ function Line({
   onMove(by: 1 | -1): void
   onRemove(): void
 }) {
-  const name = `line ${index + 1}: ${chainLineText(spec, index)}`
-  const worstHz = result?.worstHz ?? null
   const waits = result !== null && result.met === null && result.requirement.kind === 'channel-match'
-  function onMoveKey(event: KeyboardEvent) {
-    if (event.key !== 'ArrowUp' && event.key !== 'ArrowDown') return
-    event.preventDefault()
-    onMove(event.key === 'ArrowUp' ? -1 : 1)
-  }
   return (
     <li data-line={index} className="border-b border-graph py-0.5 text-[14px] leading-6">
-      <div className="flex items-baseline gap-x-3">
-        <p className="min-w-0 flex-1">
+      <div className="flex flex-wrap items-baseline justify-end gap-x-3">
+        <p className="mr-auto min-w-0 grow basis-56">
           {chainLineParts(spec, index).map((part, at) =>
             part.kind === 'text' ? (
               part.text
@@ -153,64 +145,64 @@ function Line({
             ),
           )}
         </p>
-        <Verdict result={result} />
+        <span className="flex items-baseline gap-x-2">
+          <Verdict result={result} index={index} onTrace={onTrace} />
+          {readOnly ? null : (
+            <LineMenu
+              name={`line ${index + 1}: ${chainLineText(spec, index)}`}
+              isFirst={index === 0}
+              isLast={index === spec.sheet.length - 1}
+              onMove={onMove}
+              onRemove={onRemove}
+            />
+          )}
+        </span>
       </div>
-      <div className="flex min-h-6 flex-wrap items-center gap-x-2 text-[13px] leading-5 text-pencil">
-        {worstHz !== null ? (
-          <button
-            type="button"
-            className="min-h-6 border-b border-dotted border-pencil hover:bg-spruce-wash hover:text-ink"
-            aria-label={`Line ${index + 1}, worst at ${formatHz(worstHz, 3)}: trace it on the fold chart`}
-            onClick={() => onTrace(worstHz)}
-          >
-            worst at {formatHz(worstHz, 3)}
-          </button>
-        ) : null}
-        {waits ? (
+      {waits ? (
+        <p className="flex flex-wrap items-center gap-2 pb-1 text-[13px] leading-5 text-pencil">
+          {result.reason}
           <Button small onClick={onRunTolerance}>
-            Run the tolerance
+            To the tolerance run
           </Button>
-        ) : result?.reason ? (
-          <span className="min-w-0 flex-1">{result.reason}</span>
-        ) : null}
-        {readOnly ? null : (
-          <span className="ml-auto inline-flex" role="group" aria-label={`Line ${index + 1}`}>
-            <Tool
-              label={`Move up ${name}`}
-              mark="up"
-              isInert={index === 0}
-              onPress={() => onMove(-1)}
-              onKeyDown={onMoveKey}
-            >
-              <ArrowUp aria-hidden size={14} />
-            </Tool>
-            <Tool
-              label={`Move down ${name}`}
-              mark="down"
-              isInert={index === spec.sheet.length - 1}
-              onPress={() => onMove(1)}
-              onKeyDown={onMoveKey}
-            >
-              <ArrowDown aria-hidden size={14} />
-            </Tool>
-            <Tool label={`Remove ${name}`} mark="remove" onPress={onRemove}>
-              <X aria-hidden size={14} />
-            </Tool>
-          </span>
-        )}
-      </div>
+        </p>
+      ) : result?.reason ? (
+        <p className="pb-0.5 text-[13px] leading-5 text-pencil">{result.reason}</p>
+      ) : null}
     </li>
   )
 }
 
-function Verdict({ result }: { result: ChainRequirementResult | null }) {
-  if (!result) return <span className="numeric shrink-0 text-right text-[13px] text-pencil">…</span>
+/** What the chain comes to, by how much that is met, and on the press of the figure where it is nearest to its limit. */
+function Verdict({
+  result,
+  index,
+  onTrace,
+}: {
+  result: ChainRequirementResult | null
+  index: number
+  onTrace(hz: number): void
+}) {
+  if (!result) return <span className="numeric text-[13px] text-pencil">…</span>
   const tone = result.met === null ? 'text-pencil' : result.met ? 'text-moss' : 'text-vermilion'
+  const value = chainQuantity(result.value, result.unit)
+  const { worstHz } = result
   return (
-    <span className="numeric flex shrink-0 flex-col text-right text-[13px] leading-5">
-      <span>{chainQuantity(result.value, result.unit)}</span>
-      <span className={classNames('text-[12px]', tone)}>{chainMarginWords(result)}</span>
-    </span>
+    <>
+      {worstHz === null ? (
+        <span className="numeric text-[13px]">{value}</span>
+      ) : (
+        <button
+          type="button"
+          className="numeric min-h-6 border-b border-dotted border-pencil text-[13px] hover:bg-spruce-wash"
+          title={`Worst at ${hertzText(worstHz, 3)}: trace it on the fold chart`}
+          aria-label={`Line ${index + 1}, ${value}, worst at ${hertzText(worstHz, 3)}: trace it on the fold chart`}
+          onClick={() => onTrace(worstHz)}
+        >
+          {value}
+        </button>
+      )}
+      <span className={classNames('numeric min-w-28 text-right text-[12px]', tone)}>{chainMarginWords(result)}</span>
+    </>
   )
 }
 
@@ -269,35 +261,60 @@ function AddLine({ isFull, onAdd }: { isFull: boolean; onAdd(kind: ChainRequirem
   )
 }
 
-/** Stays reachable at the end of its way, so that the focus isn't lost there. */
-function Tool({
-  label,
-  mark,
-  isInert = false,
-  onPress,
-  onKeyDown,
-  children,
+/** What can be done to a line as a whole. */
+function LineMenu({
+  name,
+  isFirst,
+  isLast,
+  onMove,
+  onRemove,
 }: {
-  label: string
-  mark: 'up' | 'down' | 'remove'
-  isInert?: boolean
-  onPress(): void
-  onKeyDown?(event: KeyboardEvent): void
-  children: ReactNode
+  name: string
+  isFirst: boolean
+  isLast: boolean
+  onMove(by: 1 | -1): void
+  onRemove(): void
 }) {
-  return (
-    <Button
-      kind="quiet"
-      small
-      className={classNames('min-w-6 px-1', isInert && 'opacity-40')}
-      aria-label={label}
-      title={mark === 'remove' ? 'Remove this line' : mark === 'up' ? 'Move up (arrow keys)' : 'Move down (arrow keys)'}
-      aria-disabled={isInert || undefined}
-      data-tool={mark}
-      onClick={onPress}
-      onKeyDown={onKeyDown}
+  const acted = useRef(false)
+  const item = (label: string, isOut: boolean, act: () => void) => (
+    <DropdownMenu.Item
+      className="flex min-h-8 cursor-pointer items-center px-3 outline-none data-disabled:cursor-default data-disabled:text-pencil data-highlighted:bg-spruce-wash"
+      disabled={isOut}
+      onSelect={() => {
+        acted.current = true
+        act()
+      }}
     >
-      {children}
-    </Button>
+      {label}
+    </DropdownMenu.Item>
+  )
+  return (
+    <DropdownMenu.Root modal={false}>
+      <DropdownMenu.Trigger
+        className={classNames(buttonClass('quiet', true), 'min-w-6 self-center px-1')}
+        aria-label={`Change ${name}`}
+        title="Move or remove this line"
+        data-tool="line"
+      >
+        <EllipsisVertical aria-hidden size={14} />
+      </DropdownMenu.Trigger>
+      <DropdownMenu.Portal>
+        <DropdownMenu.Content
+          align="end"
+          sideOffset={4}
+          collisionPadding={8}
+          className="z-20 min-w-36 rounded border border-ink bg-sheet py-1 text-[15px] text-ink"
+          onCloseAutoFocus={(event) => {
+            // The focus follows the line, which stands elsewhere now, or is gone.
+            if (acted.current) event.preventDefault()
+            acted.current = false
+          }}
+        >
+          {item('Move up', isFirst, () => onMove(-1))}
+          {item('Move down', isLast, () => onMove(1))}
+          {item('Remove', false, onRemove)}
+        </DropdownMenu.Content>
+      </DropdownMenu.Portal>
+    </DropdownMenu.Root>
   )
 }

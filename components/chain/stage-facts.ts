@@ -1,4 +1,5 @@
 import type { ChainSpec, ComputedStage } from '@/dsp'
+import { hertzText } from '@/lib/chains/fields'
 import { unitAfter } from '@/lib/chains/outline'
 import { formatHz, formatNumber, formatQuantity, formatSeconds } from '@/lib/format/quantity'
 
@@ -14,7 +15,7 @@ export function stageFacts(spec: ChainSpec, index: number, computed: ComputedSta
     case 'sensor':
       return [
         `${formatQuantity(stage.sensitivity, 'V')}/${stage.unit}`,
-        ...(stage.highPass ? [`from ${formatHz(stage.highPass.cornerHz, 3)}`] : []),
+        ...(stage.highPass ? [`from ${hertzText(stage.highPass.cornerHz, 3)}`] : []),
         ...(stage.resonance ? [`f0 ${formatHz(stage.resonance.f0Hz, 3)}`] : []),
       ]
     case 'analog':

@@ -1,7 +1,6 @@
 'use client'
 
 import type { AnalogStage, ChainSpec, ConverterStage, DecimateStage, SensorStage, ShapeStage } from '@/dsp'
-import { wordLook } from '@/components/studio/statement/word-look'
 import { withDecimateType, withIntegrationTimes } from '@/lib/chains/edits'
 import { withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
@@ -11,7 +10,7 @@ import type { LinkableDesign } from '@/lib/chains/types'
 import { decimateWords } from '@/lib/chains/words'
 import type { ChainDesk } from './chain-desk'
 import { ChoiceField, NumberField, SwitchField } from './desk-fields'
-import { NameWord } from './name-word'
+import { NameWord, plainWord } from './name-word'
 import { chainOptions, type ChainOption } from './statement-options'
 
 /* Every field of a stage, by its kind. */
@@ -38,7 +37,7 @@ export function SensorFields({ stage, index, ...rest }: StageFieldsProps<SensorS
         <NameWord
           label="Name of the sensor on the desk"
           name={stage.name}
-          look={wordLook.frame}
+          look={plainWord}
           readOnly={readOnly}
           onName={(name) => nameRefusal(name) ?? desk.edit(put(`${at}.name`, name))}
         />

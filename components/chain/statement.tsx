@@ -144,12 +144,13 @@ function Word({
     )
   }
   if (part.kind === 'name') {
+    if (readOnly) return <strong className="font-semibold">{part.text}</strong>
     return (
       <NameWord
         label={label}
         name={part.text}
         look={wordLook.frame}
-        readOnly={readOnly}
+        readOnly={false}
         onName={(name) => {
           const reason = nameRefusal(name)
           if (reason === null) propose(withPartAt(store.getState().spec, key, name), key)

@@ -139,12 +139,16 @@ export const levelText = (value: number, unit: string, significant = 3): string 
     ? `${formatNumber(value, significant)}\u2009${unit}`
     : formatQuantity(value, unit, significant)
 
+/** A frequency; below 1 Hz, where corners of sensors lie, nobody says millihertz: 0.5 Hz. */
+export const hertzText = (hertz: number, significant = 4): string =>
+  hertz > 0 && hertz < 1 ? `${formatNumber(hertz, significant)}\u2009Hz` : formatHz(hertz, significant)
+
 /** The number at a path as it stands alone, with its unit. */
 export function chainFieldText(spec: ChainSpec, path: string, value: number): string {
   const unit = chainFieldOf(path)?.unit ?? 'number'
   switch (unit) {
     case 'Hz':
-      return formatHz(value, 6)
+      return hertzText(value, 6)
     case 'dB':
       return `${formatNumber(value, 5)}\u2009dB`
     case '°':

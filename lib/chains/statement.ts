@@ -1,7 +1,6 @@
 import type { AnalogSpec, ChainSpec, ChainStage, DesignLink } from '@/dsp'
 import { familyWords, responseWords } from '@/lib/designs/words'
-import { formatHz } from '@/lib/format/quantity'
-import { chainFieldText } from './fields'
+import { chainFieldText, hertzText } from './fields'
 
 /*
  * The chain as a sentence. A word's key is its path in the spec, the same that a DesignError names, but for words that stand for more than
@@ -132,13 +131,13 @@ function analogPhrase(
 
 function keptPhrase({ kept: { fromHz, toHz } }: ChainSpec): ChainStatementPart[] {
   // "0.5 to 90 Hz": the unit is said once, where it is the one that a bare number is read in.
-  const isPlain = fromHz < 1000 && toHz < 1000 && (fromHz >= 1 || fromHz === 0 || toHz >= 1)
-  const from = isPlain && fromHz < 1 && fromHz > 0 ? String(Number(fromHz.toPrecision(6))) : formatHz(fromHz, 6)
+  const [from, to] = [hertzText(fromHz, 6), hertzText(toHz, 6)]
+  const isPlain = from.endsWith('\u2009Hz') && to.endsWith('\u2009Hz')
   return [
     text(', kept from '),
-    { kind: 'quantity', key: 'kept.fromHz', value: fromHz, text: isPlain ? from.replace(/\u2009Hz$/, '') : from },
+    { kind: 'quantity', key: 'kept.fromHz', value: fromHz, text: isPlain ? from.slice(0, -3) : from },
     text(' to '),
-    { kind: 'quantity', key: 'kept.toHz', value: toHz, text: formatHz(toHz, 6) },
+    { kind: 'quantity', key: 'kept.toHz', value: toHz, text: to },
   ]
 }
 

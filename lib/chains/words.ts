@@ -7,8 +7,8 @@ import type {
   ChainStageKind,
 } from '@/dsp'
 import { familyWords, responseWords } from '@/lib/designs/words'
-import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
-import { chainFieldText } from './fields'
+import { formatNumber, formatSeconds } from '@/lib/format/quantity'
+import { chainFieldText, hertzText } from './fields'
 import type { DecimateFilterType } from './stage-starts'
 
 /* The product's words for the parts of a chain; one place, so that the sentence, the strip, the sheet and files say the same. */
@@ -172,7 +172,7 @@ export function chainQuantity(value: number | null, unit: ChainRequirementResult
   if (value === null) return '—'
   switch (unit) {
     case 'Hz':
-      return formatHz(value, 3)
+      return hertzText(value, 3)
     case 's':
       return formatSeconds(value, 3)
     case '°':
