@@ -27,7 +27,7 @@ import { makeTeam, type TestTeam } from '../helpers/people'
 
 vi.mock('next/headers', () => import('../helpers/next-request'))
 vi.mock('next/navigation', async (original) => ({
-  ...(await original<typeof import('next/navigation')>()),
+  ...(await original<object>()),
   useRouter: () => ({ push: () => undefined, refresh: () => undefined }),
 }))
 
