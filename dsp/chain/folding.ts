@@ -62,8 +62,8 @@ function chosen(chain: ComputedChain, count: number, worst: readonly StripWorst[
 
 /**
  * The frequency axis folded onto the base band: what reaches each output frequency from each strip. Where there are more than 96 strips the
- * chart holds the lowest 16, the worst 16 and those beside the first two multiples of every rate in the chain; all are looked at, the weakest
- * is always among them, and its `worst` is refined between the chart's frequencies.
+ * chart holds the lowest 16, the worst 16 and those beside the first two multiples of every rate in the chain; none above those looked at
+ * can be weaker, the weakest is always among them, and its `worst` is refined between the chart's frequencies.
  *
  * `beyondAtMostDb` bounds whatever lies above `lookedUpToHz` and lands in the kept band: by the roots of the analog parts the most that they
  * have anywhere above it, with the envelope of an averaging converter, times the most that the digital parts let through to the kept band at
@@ -88,7 +88,7 @@ export function foldChart(chain: ComputedChain, outputHz: Float64Array): FoldCha
   return {
     outputHz,
     strips: strips.map((strip): FoldStrip => {
-      const found = byStrip.get(strip)
+      const found = strip === 0 ? undefined : (byStrip.get(strip) ?? worst.worstIn(strip))
       return {
         strip,
         fromHz: strip * half,

@@ -6,7 +6,7 @@ import { integral } from './quadrature'
 import type { ConverterStage, SensorStage } from './spec'
 import { converterStrips, partsAhead, stripsOver } from './strips'
 
-const TOLERANCE = 1e-7
+const TOLERANCE = 1e-6
 
 /** Noise of a converter at its input, V²/Hz, even from 0 Hz to half its rate. */
 function voltsSquaredPerHz({ resolution, fullScaleVolts, sampleRateHz }: ConverterStage): number {

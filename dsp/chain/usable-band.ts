@@ -3,7 +3,7 @@ import { chainGrid } from './band-grid'
 import type { ComputedChain, UsableBand } from './chain'
 import { lookedUpTo, stripsUpTo } from './reach'
 import { chainResponse } from './response'
-import { strongestImage } from './weakest'
+import { strongestImage } from './strongest'
 
 /** A line met exactly by design is off by rounding alone. */
 const SLACK_DB = 1e-9

@@ -1,6 +1,7 @@
-import { largest, type Curve } from '../requirements/extremes'
+import { largest } from '../requirements/extremes'
 import { ripplesOver } from './band-grid'
 import type { ComputedChain } from './chain'
+import { partMostAboveDb } from './analog-bound'
 import { converterStrips, outputOf, partsAhead, stripsOver, type Strips } from './strips'
 
 /** Where a strip comes through strongest. */
@@ -11,8 +12,10 @@ export interface StripWorst {
 }
 
 export interface Weakest {
-  /** Every strip but the base band, the worst first. */
+  /** Strips but the base band, the worst first; those above the last multiple looked at can't be among the first 32. */
   readonly strips: readonly StripWorst[]
+  /** Where any strip comes through strongest, on the grid. */
+  readonly worstIn: (strip: number) => StripWorst
   /** Most that the digital parts let through from any strip below half the converter's rate, on the grid. */
   readonly mostDigitalDb: number
 }
@@ -21,12 +24,14 @@ const FEWEST_POINTS = 49
 const MOST_POINTS = 513
 const POINTS_A_RIPPLE = 6
 /** With more strips than this all are looked at on few frequencies first, and the worst again on the whole grid. */
-const MOST_ON_FULL_GRID = 192
-const FEW_POINTS = 5
+export const MOST_ON_FULL_GRID = 192
+export const FEW_POINTS = 5
+/** Strips between two looks at whether any further one could matter. */
+export const STRIDE = 256
 const LOOKED_AT_AGAIN = 32
 const REFINED = 4
 
-const evenGrid = (fromHz: number, toHz: number, points: number): Float64Array =>
+export const evenGrid = (fromHz: number, toHz: number, points: number): Float64Array =>
   fromHz === toHz
     ? Float64Array.of(fromHz)
     : Float64Array.from({ length: points }, (_, n) =>
@@ -43,13 +48,18 @@ function worstOf(strips: Strips, strip: number, grid: Float64Array): StripWorst 
 const worstFirst = (a: StripWorst, b: StripWorst): number =>
   a.levelDb === b.levelDb ? a.strip - b.strip : a.levelDb > b.levelDb ? -1 : 1
 
-function mostDigital(chain: ComputedChain, strips: Strips): number {
+/** Most that the digital parts let through at places of the output, from any strip. */
+export function mostDigital(chain: ComputedChain, strips: Strips): number {
   let most = -Infinity
   for (let strip = 0; strip < converterStrips(chain); strip++) {
     for (const level of strips.digitalDb(strip)) if (level > most) most = level
   }
   return most
 }
+
+/** Most that the parts ahead of the quantiser have anywhere above a strip. */
+export const mostAboveDb = (chain: ComputedChain, strip: number): number =>
+  partsAhead(chain).reduce((sum, part) => sum + partMostAboveDb(part, (strip * chain.outputRateHz) / 2), 0)
 
 /** The highest level of a strip anywhere on the grid and between its points; never less than what the grid had. */
 function refined(chain: ComputedChain, found: StripWorst, grid: Float64Array): StripWorst {
@@ -73,16 +83,24 @@ function look(chain: ComputedChain, fromHz: number, toHz: number, count: number)
   const isFew = count > MOST_ON_FULL_GRID
   const firstGrid = isFew ? Float64Array.of(...evenGrid(fromHz, toHz, FEW_POINTS), ...peaks).sort() : grid
   const first = stripsOver(chain, firstGrid)
-  const found = Array.from({ length: count - 1 }, (_, n) => worstOf(first, n + 1, firstGrid)).sort(worstFirst)
   const mostDigitalDb = mostDigital(chain, first)
+  const found: StripWorst[] = []
+  for (let strip = 1; strip < count; strip++) {
+    found.push(worstOf(first, strip, firstGrid))
+    if (strip % STRIDE !== 0) continue
+    found.sort(worstFirst)
+    if (mostAboveDb(chain, strip) + mostDigitalDb < found[LOOKED_AT_AGAIN]!.levelDb) break
+  }
+  found.sort(worstFirst)
   const again = stripsOver(chain, grid)
-  const looked = isFew ? found.slice(0, LOOKED_AT_AGAIN).map(({ strip }) => worstOf(again, strip, grid)) : found
+  const near = found.slice(0, isFew ? LOOKED_AT_AGAIN : found.length)
+  const looked = isFew ? near.map(({ strip }) => worstOf(again, strip, grid)).sort(worstFirst) : near
   const nearest = looked
     .slice(0, REFINED)
     .map((one) => refined(chain, one, grid))
     .sort(worstFirst)
   const rest = [...looked.slice(REFINED), ...(isFew ? found.slice(LOOKED_AT_AGAIN) : [])]
-  return { strips: [...nearest, ...rest], mostDigitalDb }
+  return { strips: [...nearest, ...rest], mostDigitalDb, worstIn: (strip) => worstOf(again, strip, grid) }
 }
 
 const looked = new WeakMap<ComputedChain, Map<string, Weakest>>()
@@ -100,35 +118,4 @@ export function weakestStrips(chain: ComputedChain, fromHz: number, toHz: number
   const known = byBand.get(key) ?? look(chain, fromHz, toHz, count)
   byBand.set(key, known)
   return known
-}
-
-const STRONGEST_AT_EACH = 4
-const PLACES = 17
-
-/**
- * The level of the strongest image over output frequencies of a band, from the strips that are among the strongest anywhere in it.
- *
- * @param count strips looked at, the base band included
- */
-export function strongestImage(chain: ComputedChain, fromHz: number, toHz: number, count: number): Curve {
-  const places = evenGrid(fromHz, toHz, count > MOST_ON_FULL_GRID ? FEW_POINTS : PLACES)
-  const { levelDb } = stripsOver(chain, places)
-  const levels = Array.from({ length: count - 1 }, (_, n) => ({ strip: n + 1, levels: levelDb(n + 1) }))
-  const strips = new Set<number>()
-  places.forEach((_, at) => {
-    const byLevel = [...levels].sort((a, b) =>
-      b.levels[at]! > a.levels[at]! ? 1 : b.levels[at]! < a.levels[at]! ? -1 : 0,
-    )
-    for (const { strip } of byLevel.slice(0, STRONGEST_AT_EACH)) strips.add(strip)
-  })
-  return (at) => {
-    const over = stripsOver(chain, at)
-    const most = new Float64Array(at.length).fill(-Infinity)
-    for (const strip of strips) {
-      over.levelDb(strip).forEach((level, n) => {
-        if (level > most[n]!) most[n] = level
-      })
-    }
-    return most
-  }
 }
