@@ -23,6 +23,8 @@ import { chainText } from '@/lib/chains/statement'
 import type { ChainPageProps, ChainVersionSummary } from '@/lib/chains/types'
 import { sameValue } from '@/lib/designs/same-value'
 import { AddStage } from './add-stage'
+import { chainViewFromSearch, useChainAddress } from './address'
+import { Cautions } from './cautions'
 import { chainDesk } from './chain-desk'
 import { ChainDrawer } from './chain-drawer'
 import { ChainTitleBlock } from './chain-title-block'
@@ -34,7 +36,6 @@ import { ChainStatement } from './statement'
 import { createChainStore, toleranceFor } from './store'
 import { Strip } from './strip'
 import { useChain } from './use-chain'
-import { chainDrawerTabs } from './view'
 
 /** The chart, the sheet and the drawer come after what is said in words: the first page stays light. */
 const FoldChart = dynamic(() => import('./fold-chart/fold-chart').then((module) => module.FoldChart), {
@@ -70,7 +71,7 @@ export function ChainPage({
   const [store] = useState(() =>
     createChainStore(
       draft?.spec ?? savedAtOpening[0]?.spec ?? startingSpec,
-      chainDrawerTabs.find((tab) => tab === search.get('drawer')),
+      chainViewFromSearch(new URLSearchParams(search.toString())),
     ),
   )
   // What was opened may make no chain; it is computed on the page alone, never while the server renders.
@@ -93,6 +94,7 @@ export function ChainPage({
   )
   const autosaveState = useStore(autosave.state)
   useEffect(() => (mayEdit ? autosave.start() : undefined), [autosave, mayEdit])
+  useChainAddress(store)
   // Computed figures may differ in their last digit between the server's engine and this browser's: they are shown here alone.
   const onPage = useOnPage()
   const computed = useMemo(() => (onPage ? computedChain(spec) : null), [onPage, spec])
@@ -239,6 +241,7 @@ export function ChainPage({
           </Notice>
         ) : null}
         <ChainStatement store={store} linkable={linkable} readOnly={!mayEdit} />
+        {made ? <Cautions chain={made} /> : null}
 
         <div className="mt-2 flex items-baseline justify-between gap-3 pb-1">
           <p className="text-[13px] text-pencil">

@@ -112,7 +112,7 @@ export function ChoiceField({
       </label>
       <select
         id={id}
-        className="min-h-7 max-w-full rounded border border-graph-strong bg-sheet px-1.5 text-[13px] text-ink hover:border-pencil"
+        className="min-h-7 w-auto max-w-60 min-w-0 rounded border border-graph-strong bg-sheet px-1.5 text-[13px] text-ink hover:border-pencil"
         value={current}
         disabled={readOnly}
         aria-describedby={problem ? `${id}-problem` : undefined}

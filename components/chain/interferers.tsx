@@ -88,7 +88,7 @@ export function Interferers({
               <li
                 key={index}
                 data-interferer={index}
-                className="flex flex-wrap items-baseline justify-end gap-x-3 border-b border-graph py-0.5"
+                className="flex flex-wrap items-baseline justify-end gap-x-2.5 border-b border-graph py-0.5"
               >
                 <span className="mr-auto min-w-0 text-[14px]">
                   <NameWord
@@ -109,7 +109,7 @@ export function Interferers({
                   </span>
                 )}
                 <ChainNumber {...fields} path={`${at}.level`} name={`Interferer ${index + 1}, level`} />
-                <span className="flex min-w-42 items-baseline justify-end gap-x-2">
+                <span className="flex items-baseline justify-end gap-x-1.5">
                   <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
                   {readOnly ? null : (
                     <Button
@@ -180,7 +180,7 @@ function Landing({
       </button>
       <span
         className={classNames(
-          'numeric min-w-16 text-right text-[13px] whitespace-nowrap',
+          'numeric min-w-14 text-right text-[13px] whitespace-nowrap',
           isFelt && 'font-semibold text-vermilion',
         )}
         title={`${formatFixed(-landing.levelDb, 1)}\u2009dB down${isFelt ? ', inside the kept band and above the alias floor' : ''}`}

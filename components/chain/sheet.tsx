@@ -129,7 +129,7 @@ function Line({
   return (
     <li data-line={index} className="border-b border-graph py-0.5 text-[14px] leading-6">
       <div className="flex flex-wrap items-baseline justify-end gap-x-3">
-        <p className="mr-auto min-w-0 grow basis-56">
+        <p className="mr-auto min-w-0 grow basis-44">
           {chainLineParts(spec, index).map((part, at) =>
             part.kind === 'text' ? (
               part.text
@@ -201,7 +201,7 @@ function Verdict({
           {value}
         </button>
       )}
-      <span className={classNames('numeric min-w-28 text-right text-[12px]', tone)}>{chainMarginWords(result)}</span>
+      <span className={classNames('numeric min-w-26 text-right text-[12px]', tone)}>{chainMarginWords(result)}</span>
     </>
   )
 }

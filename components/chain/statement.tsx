@@ -177,7 +177,9 @@ function Word({
       refusal={refusal}
       readOnly={readOnly}
       onDismiss={dismissRefusal}
-      nearestTo={(refused) => boundRefusal(spec, key, refused)?.nearest ?? nearestNumber(spec, key, refused)}
+      nearestTo={(refused) =>
+        typeof refusal?.nearest === 'number' ? refusal.nearest : nearestNumber(spec, key, refused)
+      }
       edit={{
         propose: (value) => tried(value, (good) => propose(withField(store.getState().spec, key, good), key)),
         begin,

@@ -49,7 +49,10 @@ export interface ChainCommands {
 
 export type ChainStore = ReturnType<typeof createChainStore>
 
-export function createChainStore(spec: ChainSpec, drawer: ChainDrawerTab = 'trade-offs') {
+export function createChainStore(
+  spec: ChainSpec,
+  { drawer = 'trade-offs', traceHz = null }: { drawer?: ChainDrawerTab; traceHz?: number | null } = {},
+) {
   return createStore<ChainState & ChainCommands>()((set, get) => ({
     spec,
     past: [],
@@ -58,7 +61,7 @@ export function createChainStore(spec: ChainSpec, drawer: ChainDrawerTab = 'trad
     // Nothing is computed while a server renders, and the page it sends is taken over as it came: `dismissRefusal` looks afterwards.
     refusal: null,
     drawer,
-    traceHz: null,
+    traceHz,
     stageId: null,
     tolerance: null,
 

@@ -124,7 +124,8 @@ export function parseInUnit(input: string, unit: string): Parsed {
   const factor = given === unit ? 1 : given.endsWith(unit) ? PREFIXES[given.slice(0, -unit.length)] : undefined
   return factor === undefined || digits === ''
     ? refused(`“${input.trim()}” isn’t a value in ${unit}; type one, such as 0.5\u2009${unit}.`)
-    : found(toNumber(digits) * factor)
+    : // 200 nV is 2e-7 V, without the dust of the product.
+      found(Number((toNumber(digits) * factor).toPrecision(15)))
 }
 
 /** Per cent from "5", "5 %", "0,5%". */

@@ -3,6 +3,7 @@ import {
   parseDecibels,
   parseDegrees,
   parseFrequency,
+  parseInUnit,
   parseOrder,
   parseCount,
   parsePercent,
@@ -86,4 +87,26 @@ describe('levels, angles and orders', () => {
   it('refuses half an order', () => {
     expect(parseOrder('2.5').ok).toBe(false)
   })
+})
+
+describe('values in a unit', () => {
+  it.each([
+    ['0.5', 'g', 0.5],
+    ['0,5 g', 'g', 0.5],
+    ['50 mg', 'g', 0.05],
+    ['50\u2009mg', 'g', 0.05],
+    ['3 µV/√Hz', 'V/√Hz', 3e-6],
+    ['200 nV/rtHz', 'V/√Hz', 2e-7],
+    ['2 uV/sqrt(Hz)', 'V/√Hz', 2e-6],
+    ['5 m', 'm', 5],
+    ['5 mm', 'm', 0.005],
+    ['1 m/s^2', 'm/s²', 1],
+  ])('%s in %s', (text, unit, value) => expect(parseInUnit(text, unit)).toEqual({ ok: true, value }))
+
+  it.each([
+    ['5 V', 'g'],
+    ['g', 'g'],
+    ['', 'g'],
+    ['5 km/s', 'mm/s'],
+  ])('refuses %s in %s', (text, unit) => expect(parseInUnit(text, unit)).toMatchObject({ ok: false }))
 })

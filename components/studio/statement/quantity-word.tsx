@@ -122,7 +122,8 @@ export function QuantityWord(props: QuantityWordProps) {
           ref={input}
           aria-label={label}
           role="spinbutton"
-          aria-valuenow={value}
+          // Readers don't know 2e-7; the text says it with its unit.
+          aria-valuenow={String(value).includes('e') ? undefined : value}
           aria-valuetext={text}
           aria-invalid={note ? true : undefined}
           aria-describedby={note ? noteId : undefined}
