@@ -17,12 +17,14 @@ import {
   spectrumRows,
 } from '@/components/chain/panels/proof-words'
 import {
+  answersFor,
   notesOf,
   planCells,
   planColumns,
   rateCells,
   rateColumns,
   ratesPlan,
+  standsAs,
 } from '@/components/chain/panels/trade-offs'
 import { ShareBar } from '@/components/chain/panels/share-bar'
 import { isOlder } from '@/components/chain/panels/tolerance-panel'
@@ -282,7 +284,7 @@ describe('the advisor', () => {
     expect(ratesPlan(options.slice(0, 1), false)).toBeNull()
   })
 
-  it('offers plans by name, and says which one stands and which misses', () => {
+  it('offers plans by name, and answers for the chain asked about and for what is taken from it', () => {
     const option = {
       factors: [4, 2],
       filters: ['cic', 'half-band'],
@@ -297,7 +299,7 @@ describe('the advisor', () => {
       spec: deckSpec,
     }
     expect(planCells(option).map(plain)).toEqual([
-      '4 × 2, as it is, misses the sheet',
+      '4 × 2',
       'Integrator–comb (CIC), Half-band',
       '15.0',
       '40',
@@ -307,6 +309,12 @@ describe('the advisor', () => {
     ])
     expect(planCells(option)).toHaveLength(planColumns.length)
     expect(notesOf([option, option])).toEqual(['one', 'two'])
+    const taken = { ...deckSpec, stages: deckSpec.stages.slice(0, -1) }
+    expect(answersFor(deckSpec, [], deckSpec)).toBe(true)
+    expect(answersFor(deckSpec, [], taken)).toBe(false)
+    expect(answersFor(deckSpec, [{ spec: taken }], { ...taken, interferers: [] })).toBe(true)
+    expect(answersFor(deckSpec, [{ spec: taken }], { ...taken, sheet: [] })).toBe(false)
+    expect(standsAs({ spec: taken }, deckSpec)).toBe(false)
   })
 })
 

@@ -8,6 +8,7 @@ import { offerFile, svgFile } from '@/components/studio/stack/download'
 import { StaticLayer } from '@/components/studio/stack/static-layer'
 import { useWidth } from '@/components/studio/stack/use-width'
 import { foldChart, foldPaths, type ChainSpec, type ComputedChain, type FoldPath } from '@/dsp'
+import { classNames } from '@/lib/format/class-names'
 import { formatFixed, formatHz } from '@/lib/format/quantity'
 import {
   aliasFloors,
@@ -102,7 +103,7 @@ function Chart({ chain, spec, traceHz, onTrace }: FoldChartProps) {
         </div>
       </div>
       <div className="flex min-h-6 flex-wrap items-baseline justify-between gap-x-4">
-        <p className="numeric min-h-6 text-[12px] leading-6">
+        <p className={classNames('min-h-6 text-[12px] leading-6', hz !== null && 'numeric')}>
           {hz === null ? (
             <span className="text-pencil">point at a strip to see what shares its output frequency</span>
           ) : (

@@ -42,8 +42,8 @@ export function stripRows(chain: ComputedChain, { strips, weakStrip }: FoldChart
     (strip.strip === 0 ? null : foldMaker(chain, strip.fromHz)) ?? '—',
     stageNameOf(chain, strip.foldsAtStageId) ?? '—',
     strip.strip === 0 ? 'kept' : strip.worst === null ? 'nothing kept' : downWords(strip.worst.levelDb),
-    strip.worst === null ? '—' : formatHz(strip.worst.inputHz, 6),
-    strip.worst === null ? '—' : formatHz(strip.worst.outputHz, 6),
+    strip.worst === null ? '—' : formatHz(strip.worst.inputHz, 4),
+    strip.worst === null ? '—' : formatHz(strip.worst.outputHz, 4),
   ])
 }
 

@@ -5,13 +5,12 @@ import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
 import type { ChainSpec, PlanOption, RateOption } from '@/dsp'
-import { sameValue } from '@/lib/designs/same-value'
 import { formatHz } from '@/lib/format/quantity'
 import { FiguresRuled } from './chart/figures'
 import { LinesPlot } from './chart/lines-plot'
 import type { ChainPanelProps } from './props'
 import {
-  adviceQuestion,
+  answersFor,
   filterWords,
   notesOf,
   planCells,
@@ -21,6 +20,7 @@ import {
   rateColumns,
   rateName,
   ratesPlan,
+  standsAs,
 } from './trade-offs'
 import { useWork } from './work/use-work'
 import { findPlans, findRates } from './work/work-client'
@@ -35,22 +35,24 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
   const rates = useWork(findRates)
   const plans = useWork(findPlans)
   const [taken, setTaken] = useState('')
-  const isOld = (question: ChainSpec | null) =>
-    question !== null && !sameValue(adviceQuestion(question), adviceQuestion(spec))
+  const isOld = (work: { question: ChainSpec | null; value: readonly { spec: ChainSpec }[] | null }) =>
+    work.question !== null && work.value !== null && !answersFor(work.question, work.value, spec)
   // What is taken is put into the chain as it stands now: its interferers and settings stay.
   const take = (name: string, found: ChainSpec) => {
     const { interferers, tolerance } = spec
     if (propose({ ...found, interferers, tolerance })) setTaken(`Took ${name}.`)
     else setTaken(`${name} was refused; the reason stands beside the statement.`)
   }
-  const takeButton = (name: string, found: ChainSpec) =>
-    readOnly ? null : (
+  const choice = (name: string, found: ChainSpec) =>
+    standsAs({ spec: found }, spec) ? (
+      'as it is'
+    ) : readOnly ? null : (
       <Button small aria-label={`Take ${name}`} onClick={() => take(name, found)}>
         Take
       </Button>
     )
 
-  const ratesFaded = isOld(rates.question)
+  const ratesFaded = isOld(rates)
   const rateOptions = rates.value
   const picture = useMemo(
     () => (rateOptions === null ? null : ratesPlan(rateOptions, ratesFaded)),
@@ -70,7 +72,7 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           onStart={() => rates.run(spec)}
           onStop={rates.stop}
         />
-        {ratesFaded && rates.value ? <Older /> : null}
+        {ratesFaded ? <Older /> : null}
         {rates.value?.length === 0 ? (
           <Notice kind="note">
             No order of this anti-alias filter meets the sheet at any rate tried. Ask for less, or keep a narrower band.
@@ -80,11 +82,11 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         {rates.value && rates.value.length > 0 ? (
           <FiguresRuled
             label="Order against rate, with the best marked"
-            columns={readOnly ? rateColumns : [...rateColumns, '']}
+            columns={[...rateColumns, '']}
             rows={rates.value.map((option) => ({
               key: rateName(option),
               strong: option.isBest,
-              cells: [...rateCells(option), ...(readOnly ? [] : [takeButton(rateName(option), option.spec)])],
+              cells: [...rateCells(option), choice(rateName(option), option.spec)],
             }))}
           />
         ) : null}
@@ -109,7 +111,7 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           onStart={() => plans.run(spec)}
           onStop={plans.stop}
         />
-        {isOld(plans.question) && plans.value ? <Older /> : null}
+        {isOld(plans) ? <Older /> : null}
         {plans.value?.length === 0 ? (
           <Notice kind="note">
             No plan meets the sheet with these rates. A higher converter rate, or a lower edge of the kept band, leaves
@@ -119,16 +121,19 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         {plans.value && plans.value.length > 0 ? (
           <FiguresRuled
             label="Decimation plans, fewest multiplies first"
-            columns={readOnly ? planColumns : [...planColumns, '']}
+            columns={[...planColumns, '']}
             wordColumns={[1]}
             rows={plans.value.map((option, index) => {
               const name = `plan ${planName(option)} (${filterWords(option)})`
               return {
                 key: `${index} ${name}`,
-                strong: option.isCurrent,
+                strong: standsAs(option, spec),
                 cells: [
                   ...planCells(option),
-                  ...(readOnly ? [] : [option.isCurrent ? null : takeButton(name, option.spec)]),
+                  <>
+                    {choice(name, option.spec)}
+                    {option.meets ? null : <span className="block text-vermilion">misses the sheet</span>}
+                  </>,
                 ],
               }
             })}
@@ -141,7 +146,7 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           </p>
         ) : null}
       </section>
-      <p role="status" className="text-[13px] text-pencil">
+      <p role="status" className="text-[13px] text-pencil xl:col-span-2">
         {taken}
       </p>
     </div>

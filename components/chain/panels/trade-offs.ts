@@ -1,6 +1,7 @@
 import type { ChainSpec, PlanOption, RateOption } from '@/dsp'
 import type { DecimateFilterType } from '@/lib/chains/stage-starts'
 import { decimateWords } from '@/lib/chains/words'
+import { sameValue } from '@/lib/designs/same-value'
 import { formatDb, formatFixed, formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
 import { downWords } from '../fold-chart/words'
 import type { LinesPlan } from './chart/lines-picture'
@@ -38,7 +39,7 @@ export const filterWords = ({ filters }: PlanOption): string =>
 export const planName = ({ factors }: PlanOption): string => (factors.length === 0 ? '1' : factors.join(' × '))
 
 export const planCells = (option: PlanOption): readonly string[] => [
-  `${planName(option)}${option.isCurrent ? ', as it is' : ''}${option.meets ? '' : ', misses the sheet'}`,
+  planName(option),
   filterWords(option),
   formatFixed(option.multipliesPerStoredSample, 1),
   String(option.words),
@@ -54,8 +55,21 @@ export const notesOf = (options: readonly { readonly notes: readonly string[] }[
   ...new Set(options.flatMap(({ notes }) => notes)),
 ]
 
-/** What was found out belongs to stages, kept band and sheet; interferers and tolerances don't enter. */
-export const adviceQuestion = ({ stages, kept, sheet }: ChainSpec): readonly unknown[] => [stages, kept, sheet]
+/** Whether the chain stands as an option would have it. */
+export const standsAs = (option: { readonly spec: ChainSpec }, spec: ChainSpec): boolean =>
+  sameValue(option.spec.stages, spec.stages)
+
+/**
+ * Whether options still answer for a chain: kept band and sheet are those that were asked about, and the stages are those or an option's
+ * own. Interferers and tolerances don't enter.
+ */
+export const answersFor = (
+  question: ChainSpec,
+  options: readonly { readonly spec: ChainSpec }[],
+  spec: ChainSpec,
+): boolean =>
+  sameValue([question.kept, question.sheet], [spec.kept, spec.sheet]) &&
+  [{ spec: question }, ...options].some((option) => standsAs(option, spec))
 
 /** The lowest converter rate for each order of the anti-alias filter; null with too few points to draw. */
 export function ratesPlan(options: readonly RateOption[], faded: boolean): LinesPlan | null {

@@ -32,7 +32,7 @@ export function FiguresRuled({
               <th
                 key={column}
                 scope="col"
-                className={classNames('py-1 pr-4 font-normal whitespace-nowrap last:pr-1', side(index))}
+                className={classNames('py-1 pr-3 font-normal whitespace-nowrap last:pr-1', side(index))}
               >
                 {column === '' ? <span className="sr-only">Actions</span> : column}
               </th>
@@ -45,7 +45,7 @@ export function FiguresRuled({
               <th
                 scope="row"
                 className={classNames(
-                  'py-1 pr-4 text-left align-top whitespace-nowrap',
+                  'py-1 pr-3 text-left align-top whitespace-nowrap',
                   strong ? 'font-semibold' : 'font-normal',
                 )}
               >
@@ -55,9 +55,9 @@ export function FiguresRuled({
                 <td
                   key={index}
                   className={classNames(
-                    'py-1 pr-4 align-top last:pr-1',
+                    'py-1 pr-3 align-top last:pr-1',
                     side(index + 1),
-                    !wordColumns.includes(index + 1) && 'numeric whitespace-nowrap',
+                    wordColumns.includes(index + 1) ? 'min-w-36' : 'numeric whitespace-nowrap',
                   )}
                 >
                   {cell}
