@@ -7,7 +7,6 @@ import { chainStatementParts, type ChainStatementPart } from '@/lib/chains/state
 import { chainLineText, chainMarginWords, stageLabel, stageName } from '@/lib/chains/words'
 import { sameValue } from '@/lib/designs/same-value'
 import { markedParts } from '@/lib/designs/statement-changes'
-import { chainCurves } from './chain-curves'
 import { ChainOverlay } from './chain-overlay'
 import { ChainTable } from './chain-table'
 import type { ChosenVersions } from './chosen-versions'
@@ -44,7 +43,6 @@ function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen:
   const { left, right } = chosen
   const labels = [`version ${left.number}`, `version ${right.number}`] as const
   const columns = [`Version ${left.number}`, `Version ${right.number}`]
-  const curves = chainCurves(left.spec, right.spec)
   return (
     <>
       <div>
@@ -65,13 +63,7 @@ function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen:
         </ChainTable>
       </Part>
       <Part title="Responses over each other">
-        {curves ? (
-          <ChainOverlay curves={curves} labels={labels} />
-        ) : (
-          <p className="text-[14px] text-pencil">
-            This engine can’t compute one of the two any more, so that their responses can’t be drawn.
-          </p>
-        )}
+        <ChainOverlay left={left.spec} right={right.spec} labels={labels} />
       </Part>
       <Part title="Requirement sheets">
         <Sheets sides={[left, right]} columns={columns} judge={judge} />

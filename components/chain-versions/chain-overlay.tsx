@@ -7,8 +7,11 @@ import { overlayScene, type DifferenceUnit } from '@/components/studio/compare/o
 import { SideSwatch } from '@/components/studio/compare/side-swatch'
 import { DataTable } from '@/components/studio/panels/chart/data-table'
 import { PlotSheet } from '@/components/studio/panels/chart/plot-sheet'
+import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { useWidth } from '@/components/studio/stack/use-width'
+import type { ChainSpec } from '@/dsp'
 import { formatDegrees, formatFixed, formatHz, formatSeconds } from '@/lib/format/quantity'
+import { chainCurves } from './chain-curves'
 
 const units = [
   { value: 'db', label: 'dB' },
@@ -18,8 +21,30 @@ const units = [
 
 const TABLE_ROWS = 24
 
-/** The responses of two versions of a chain over each other, the difference under them, and the table of what is plotted. */
-export function ChainOverlay({ curves, labels }: { curves: Curves; labels: readonly [string, string] }) {
+/** The responses of two versions of a chain over each other, computed on the page, where their values are shown to the last digit. */
+export function ChainOverlay({
+  left,
+  right,
+  labels,
+}: {
+  left: ChainSpec
+  right: ChainSpec
+  labels: readonly [string, string]
+}) {
+  const isOnPage = useOnPage()
+  const curves = useMemo(() => (isOnPage ? chainCurves(left, right) : 'not yet'), [isOnPage, left, right])
+  if (curves === 'not yet') return <p className="text-[14px] text-pencil">Computing both responses…</p>
+  if (curves === null)
+    return (
+      <p className="text-[14px] text-pencil">
+        This engine can’t compute one of the two any more, so that their responses can’t be drawn.
+      </p>
+    )
+  return <Plots curves={curves} labels={labels} />
+}
+
+/** The responses, the difference under them, and the table of what is plotted. */
+function Plots({ curves, labels }: { curves: Curves; labels: readonly [string, string] }) {
   const [unit, setUnit] = useState<DifferenceUnit>('db')
   const place = useRef<HTMLDivElement>(null)
   const width = useWidth(place)
