@@ -138,7 +138,8 @@ export function planTones(
     .filter(({ strip, worst }) => strip > 0 && worst !== null && worst.inputHz / spacing <= most)
     .sort((left, right) => right.worst!.levelDb - left.worst!.levelDb)
     .slice(0, MOST_STRIPS)
-  for (const { strip, worst } of weak) place(worst!.inputHz, 'image', `image from strip ${strip}`)
+  // Counted as they are read: the base band is the first strip.
+  for (const { strip, worst } of weak) place(worst!.inputHz, 'image', `image from strip ${strip + 1}`)
   for (let k = 0; k < MOST_WANTED; k++) {
     const hertz = kept.fromHz + ((k + 0.5) / MOST_WANTED) * (kept.toHz - kept.fromHz)
     const count = tones.length
