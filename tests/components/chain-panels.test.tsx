@@ -10,6 +10,7 @@ import { responseCurves, responseSpan } from '@/components/chain/panels/response
 import { responsePlan, responseRows, responseViews } from '@/components/chain/panels/response-panel'
 import {
   delayWords,
+  highest,
   proofCells,
   proofColumns,
   proofVerdict,
@@ -370,6 +371,13 @@ describe('the proof', () => {
     expect(plan.curves.map(({ name }) => name)).toEqual(['measured', 'computed'])
     expect(paintSvg(linesScene(plan, linesFrame(600, plan)), daylight, plan.title)).not.toMatch(/NaN|Infinity/)
     expect(spectrumRows(result)).toHaveLength(3)
+    // Of many points the highest of each stretch is drawn, where it stands: no line gets lost.
+    const x = Float64Array.from({ length: 1000 }, (_, n) => n)
+    const y = Float64Array.from(x, (n) => (n === 501 ? 5 : -n / 1000))
+    const drawn = highest(x, y)
+    expect(drawn.x.length).toBe(250)
+    expect(drawn.x[125]).toBe(501)
+    expect(Math.max(...drawn.y)).toBe(5)
   })
 })
 

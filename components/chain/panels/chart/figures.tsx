@@ -74,7 +74,7 @@ export function FiguresRuled({
 /** Named figures side by side, ruled like the title block. */
 export function FigureLine({ figures }: { figures: readonly { readonly name: string; readonly value: ReactNode }[] }) {
   return (
-    <dl className="flex flex-wrap border-t border-l border-graph-strong">
+    <dl className="flex w-fit max-w-full flex-wrap border-t border-l border-graph-strong">
       {figures.map(({ name, value }) => (
         <div key={name} className="min-w-32 border-r border-b border-graph-strong px-2 py-1">
           <dt className="text-[11px] leading-4 tracking-wide text-pencil">{name}</dt>
