@@ -33,6 +33,14 @@ export interface PlanOption {
 const MOST_OPTIONS = 12
 /** Factorisations that are designed, of those that the estimates put first. */
 const MOST_DESIGNED = 16
+/** Chains computed and judged in one search; a large factor has many images to look at, and gets fewer. */
+const MOST_JUDGED = 240
+const LEAST_JUDGED = 24
+const USUAL_FACTOR = 64
+/** Of those, what finding plans may take; the rest is for shortening them. */
+const FINDING_SHARE = 0.6
+/** Plans that are enough when the chains run out. */
+const ENOUGH = 4
 
 const ALL: readonly PlanKind[] = ['cic', 'half-band', 'equiripple', 'kaiser']
 /** What each factorisation is tried with: everything, no CIC filter, windows alone. */
@@ -98,8 +106,10 @@ export function* planSteps(spec: ChainSpec): Generator<number, readonly PlanOpti
   const mine: Judged = { plan: { factors: decimations.map(({ factor }) => factor), filters }, chain: current, figures }
   const found: Settled[] = []
   const search = searchFor(spec, needs)
+  const most = Math.max(LEAST_JUDGED, Math.min(MOST_JUDGED, (MOST_JUDGED * USUAL_FACTOR) / total))
   for (const [index, { factors }] of ranked.entries()) {
     for (const [mix, kinds] of MIXES.entries()) {
+      if (search.judged.size > FINDING_SHARE * most && found.length >= ENOUGH) continue
       const made = settlePlan(search, task, factors, kinds)
       const isNew = made !== null && [mine, ...found].every(({ plan }) => !sameFilters(plan.filters, made.plan.filters))
       if (isNew) found.push(made)
@@ -114,7 +124,7 @@ export function* planSteps(spec: ChainSpec): Generator<number, readonly PlanOpti
   const first = found.sort((a, b) => costOf(a) - costOf(b)).slice(0, MOST_OPTIONS - 1)
   const options: Judged[] = [mine]
   for (const [index, one] of first.entries()) {
-    const short = trimmed(search, relaxed(search, one))
+    const short = search.judged.size < most ? trimmed(search, relaxed(search, one)) : one
     if (options.every(({ plan }) => !sameFilters(plan.filters, short.plan.filters))) options.push(short)
     yield 0.65 + (0.35 * (index + 1)) / first.length
   }

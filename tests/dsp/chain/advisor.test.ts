@@ -23,6 +23,14 @@ const long = { type: 'kaiser', taps: 201, passHz: 1000, stopHz: 2100, attenuatio
 const oneStage: ChainSpec = chainOf([sensor, antiAlias(6, 6000), converter(51_200), decimate('d', 16, long)], {
   sheet: [flat(1000, 0.1), clean(1000, 85)],
 })
+/** 12.8 kHz to 3.2 kHz: few plans, soon found. */
+const small: ChainSpec = {
+  ...oneStage,
+  stages: oneStage.stages
+    .with(1, antiAlias(8, 1800))
+    .with(2, converter(12_800))
+    .with(3, decimate('d', 4, { ...long, taps: 71 })),
+}
 const usable: ChainSpec = {
   ...oneStage,
   stages: oneStage.stages.with(3, decimate('d', 12, { ...long, taps: 121 })).with(2, converter(48_000, 24, 1)),
@@ -111,14 +119,14 @@ describe.each([
 
 describe('plans', () => {
   it('lists a current plan that misses the sheet, and says so', () => {
-    const short = { ...oneStage, stages: oneStage.stages.with(3, decimate('d', 16, { ...long, taps: 51 })) }
+    const short = { ...small, stages: small.stages.with(3, decimate('d', 4, { ...long, taps: 21 })) }
     const options = advisePlans(short)
     expect(options.find(({ isCurrent }) => isCurrent)?.meets).toBe(false)
-    expect(options.filter(({ meets }) => meets).length).toBeGreaterThanOrEqual(4)
+    expect(options.filter(({ meets }) => meets).length).toBeGreaterThanOrEqual(3)
   })
 
   it('says what it took where the sheet asks for nothing', () => {
-    const { notes } = advisePlans({ ...oneStage, sheet: [] })[0]!
+    const { notes } = advisePlans({ ...small, sheet: [] })[0]!
     expect(notes).toHaveLength(2)
     expect(notes[0]).toMatch(/no flatness; ±0.5 dB/u)
     expect(notes[1]).toMatch(/no alias floor; 80 dB/u)
@@ -127,8 +135,8 @@ describe('plans', () => {
   it('leaves bypassed stages where they are and gives every stage a name of its own', () => {
     const bypassed = { ...decimate('x', 4, long), bypassed: true }
     const spec = {
-      ...oneStage,
-      stages: [...oneStage.stages.slice(0, 3), bypassed, ...oneStage.stages.slice(3), toVelocity],
+      ...small,
+      stages: [...small.stages.slice(0, 3), bypassed, ...small.stages.slice(3), toVelocity],
     }
     for (const { spec: own } of advisePlans({ ...spec, sheet: [] })) {
       expect(own.stages.filter((stage) => stage.bypassed)).toEqual([bypassed])
@@ -173,7 +181,7 @@ describe('plans', () => {
   })
 
   it('names the level that would have worked', () => {
-    const spec = { ...oneStage, sheet: [flat(1000, 0.1), clean(1000, 140)] }
+    const spec = { ...small, sheet: [flat(1000, 0.1), clean(1000, 140)] }
     let nearest: unknown
     try {
       advisePlans(spec)
@@ -186,7 +194,7 @@ describe('plans', () => {
   })
 
   it('rises from 0 to 1 on its way', () => {
-    const steps = planSteps(oneStage)
+    const steps = planSteps(small)
     let before = 0
     let count = 0
     for (let next = steps.next(); next.done !== true; next = steps.next()) {
@@ -195,7 +203,7 @@ describe('plans', () => {
       count += 1
     }
     expect(before).toBeCloseTo(1, 9)
-    expect(count).toBeGreaterThan(10)
+    expect(count).toBeGreaterThan(6)
   })
 })
 
