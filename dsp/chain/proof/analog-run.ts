@@ -22,7 +22,7 @@ const PIECES = [
 ] as const
 
 /** sin(x)/x */
-export const sinc = (x: number): number => (x === 0 ? 1 : Math.sin(x) / x)
+const sinc = (x: number): number => (x === 0 ? 1 : Math.sin(x) / x)
 
 /** What a tone of 1 in the coefficients is in the spline. */
 export const splineGain = (turns: number): number => sinc(Math.PI * turns) ** 4

@@ -32,7 +32,7 @@ export interface RunSize {
 }
 
 /** Tones above this part of the input rate are left out: the run would take them too coarsely. */
-export const MOST_PART_OF_INPUT_RATE = 0.25
+const MOST_PART_OF_INPUT_RATE = 0.25
 const MOST_LENGTH = 2 ** 20
 const MOST_STORED = 2048
 const LEAST_STORED = 64
@@ -58,7 +58,7 @@ export function runSize(chain: ComputedChain): RunSize {
 }
 
 /** The line that `cycles` in the record lands on among `stored` samples. */
-export function landing(cycles: number, stored: number): number {
+function landing(cycles: number, stored: number): number {
   const rest = cycles % stored
   return rest <= stored / 2 ? rest : stored - rest
 }
