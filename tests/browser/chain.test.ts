@@ -3,6 +3,7 @@ import type { Page } from 'playwright-core'
 import { describe, expect, it } from 'vitest'
 import { signedIn } from './accounts'
 import { expectAccessible, expectFits, picture, withPage } from './browser'
+import { draftSaved } from './studio'
 
 /** A demo chain by its title, from the list of projects as a person would. */
 async function openChain(page: Page, title: RegExp): Promise<void> {
@@ -15,6 +16,21 @@ async function openChain(page: Page, title: RegExp): Promise<void> {
 const trace = (page: Page) => page.getByRole('slider', { name: /^Output frequency traced/ })
 const chart = (page: Page) => page.getByRole('region', { name: 'Fold chart' })
 const openDrawer = (page: Page, name: string) => page.getByRole('tab', { name, exact: true }).click()
+/** Back to the version that fails, whatever the draft was left as; a draft that equals it stays. */
+async function bringBackFailing(page: Page): Promise<void> {
+  await openDrawer(page, 'History')
+  const failing = page
+    .getByRole('list', { name: 'Versions, newest first' })
+    .getByRole('listitem')
+    .filter({ hasText: 'Half the taps in the second decimation' })
+  await failing.waitFor()
+  const back = failing.getByRole('button', { name: /^Bring back into the draft/ })
+  if ((await back.count()) === 0) return
+  const saved = draftSaved(page, '"taps":27')
+  await back.click()
+  await saved
+}
+
 /** How often the strips’ canvas was painted when it last was. */
 const paints = (page: Page) => chart(page).locator('canvas').getAttribute('data-paints')
 
@@ -25,6 +41,8 @@ describe.each([
   it('is seen, traced, mended by a plan, spread, proved and saved', async () => {
     await withPage({ width, scheme, state: await signedIn('designer') }, async ({ page }) => {
       await openChain(page, /^Pump casing, rate down by four and by two/)
+
+      await bringBackFailing(page)
 
       // The fold chart says which strip is weak, and who folds it.
       const sentence = chart(page).getByText(/^The weak fold is the 2nd strip/)
@@ -129,14 +147,8 @@ describe.each([
       await newest.getByText('The draft equals it').waitFor()
       await expectAccessible(page)
       // As it was, so that whoever comes next finds a chain that fails.
-      await page
-        .getByRole('list', { name: 'Versions, newest first' })
-        .getByRole('listitem')
-        .filter({ hasText: 'Half the taps in the second decimation' })
-        .getByRole('button', { name: /^Bring back into the draft/ })
-        .click()
+      await bringBackFailing(page)
       await expect.poll(() => sentenceOf(page)).toBe(weakBefore)
-      await page.getByText(/^Draft saved/).waitFor()
     })
   }, 300_000)
 })

@@ -146,7 +146,7 @@ describe('the noise budget', () => {
     const rows = noiseRows(deckChain, budget)
     expect(rows).toHaveLength(budget.parts.length + 1)
     expect(rows[0]?.cells[0]).toBe('Converter, 16 bits')
-    expect(plain(rows.at(-1)?.cells.at(-1) ?? '')).toMatch(/ g$/)
+    expect(plain(rows.at(-1)?.cells.at(-1) ?? '')).toMatch(/ [mµn]?g$/)
     const squares = budget.parts.reduce((sum, { rms }) => sum + rms * rms, 0)
     expect(Math.sqrt(squares)).toBeCloseTo(budget.rms, 12)
   })

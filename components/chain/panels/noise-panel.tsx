@@ -3,7 +3,8 @@
 import { useMemo } from 'react'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { noiseBudget, type ComputedChain, type NoiseBudget } from '@/dsp'
-import { formatDb, formatFixed, formatHz, formatNumber } from '@/lib/format/quantity'
+import { levelText, sensorUnitOf } from '@/lib/chains/fields'
+import { formatDb, formatFixed, formatHz } from '@/lib/format/quantity'
 import { FigureLine, FiguresRuled } from './chart/figures'
 import { chainStageLabel } from './stage-label'
 import type { ChainPanelProps } from './props'
@@ -14,13 +15,10 @@ export function NoisePanel(props: ChainPanelProps) {
   return useOnPage() ? <Noise {...props} /> : null
 }
 
-/** The sensor's unit: noise is told where it would have to be felt. */
-export const sensorUnit = ({ spec }: Pick<ComputedChain, 'spec'>): string =>
-  spec.stages.find((stage) => stage.kind === 'sensor')?.unit ?? ''
-
+/** Noise is told where it would have to be felt: in the sensor's unit. */
 export function noiseRows(chain: ComputedChain, budget: NoiseBudget) {
-  const unit = sensorUnit(chain)
-  const written = (rms: number) => `${formatNumber(rms, 3)}\u2009${unit}`
+  const unit = sensorUnitOf(chain.spec)
+  const written = (rms: number) => levelText(rms, unit)
   return [
     ...budget.parts.map(({ stageId, source, rms, words }) => {
       const found = chain.stages.find(({ stage }) => stage.id === stageId)
@@ -35,7 +33,7 @@ export function noiseRows(chain: ComputedChain, budget: NoiseBudget) {
 
 function Noise({ chain }: ChainPanelProps) {
   const budget = useMemo(() => noiseBudget(chain), [chain])
-  const unit = sensorUnit(chain)
+  const unit = sensorUnitOf(chain.spec)
   const { kept } = chain.spec
   return (
     <div className="flex min-w-0 flex-col gap-4">
@@ -43,9 +41,9 @@ function Noise({ chain }: ChainPanelProps) {
         figures={[
           { name: 'Effective bits', value: formatFixed(budget.effectiveBits, 2) },
           { name: 'Signal to noise', value: formatDb(budget.snrDb, 1) },
-          { name: 'Noise in the kept band', value: `${formatNumber(budget.rms, 3)}\u2009${unit} rms` },
-          { name: 'Density mid band', value: `${formatNumber(budget.density, 3)}\u2009${unit}/√Hz` },
-          { name: 'Full scale', value: `±${formatNumber(budget.fullScale, 4)}\u2009${unit}` },
+          { name: 'Noise in the kept band', value: `${levelText(budget.rms, unit)} rms` },
+          { name: 'Density mid band', value: `${levelText(budget.density, unit)}/√Hz` },
+          { name: 'Full scale', value: `±${levelText(budget.fullScale, unit, 4)}` },
         ]}
       />
       <ShareBar
@@ -54,9 +52,9 @@ function Noise({ chain }: ChainPanelProps) {
           const found = chain.stages.find(({ stage }) => stage.id === stageId)
           return {
             id: `${stageId} ${index}`,
-            name: found ? `${chainStageLabel(found.stage)}, ${source}` : source,
+            name: found ? chainStageLabel(found.stage) + (source === 'converter' ? '' : `, ${source}`) : source,
             amount: rms * rms,
-            text: `${formatNumber(rms, 3)}\u2009${unit}`,
+            text: levelText(rms, unit),
           }
         })}
       />
