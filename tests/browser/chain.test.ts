@@ -88,9 +88,10 @@ describe.each([
       await page.getByRole('button', { name: 'Find decimation plans' }).click()
       await page.getByText(/\d+ plans meet the sheet/).waitFor({ timeout: 60_000 })
       const plans = page.getByRole('region', { name: 'Decimation plans', exact: true })
+      // Another at each width: a version that equals the newest one can't be saved.
       await plans
         .getByRole('button', { name: /^Take plan/ })
-        .first()
+        .nth(width === 390 ? 1 : 0)
         .click()
       await page.getByText(/^Took plan/).waitFor()
       await page.getByText('All 4 met').waitFor()
@@ -138,12 +139,12 @@ describe.each([
         .first()
         .click()
       const saving = page.getByRole('region', { name: 'Save a version' })
-      await saving.getByRole('textbox').fill(`Fewest multiplies that meet the sheet, ${width}`)
+      await saving.getByRole('textbox').fill(`Few multiplies, and the sheet is met, ${width}`)
       await saving.getByRole('button', { name: /^Save version \d+$/ }).click()
       await page.getByRole('button', { name: /^Version \d+ saved$/ }).waitFor({ timeout: 60_000 })
       await openDrawer(page, 'History')
       const newest = page.getByRole('list', { name: 'Versions, newest first' }).getByRole('listitem').first()
-      expect(await newest.textContent()).toContain(`Fewest multiplies that meet the sheet, ${width}`)
+      expect(await newest.textContent()).toContain(`Few multiplies, and the sheet is met, ${width}`)
       await newest.getByText('The draft equals it').waitFor()
       await expectAccessible(page)
       // As it was, so that whoever comes next finds a chain that fails.
