@@ -6,7 +6,7 @@ import { downWords, ordinal } from './words'
 /* Tracing one output frequency: where it may stand, how keys move it, and what is written of it. */
 
 /** A step that a hand can point at and that reads well: a few hundred over half the output rate. */
-export const traceStepHz = (outputRateHz: number): number => roundedStep(outputRateHz / 2 / 250)
+const traceStepHz = (outputRateHz: number): number => roundedStep(outputRateHz / 2 / 250)
 
 export function tracedAt(hertz: number, outputRateHz: number): number {
   const highest = outputRateHz / 2

@@ -75,7 +75,7 @@ export function spokenTrace(outputHz: number, paths: readonly FoldPath[]): strin
   return `${traceWords(outputHz, paths)}; the loudest of them is ${formatHz(loudest.inputHz, 6)}, ${downWords(loudest.levelDb)}`
 }
 
-export const imagesOf = (paths: readonly FoldPath[]): readonly FoldPath[] => paths.filter(({ strip }) => strip > 0)
+const imagesOf = (paths: readonly FoldPath[]): readonly FoldPath[] => paths.filter(({ strip }) => strip > 0)
 
 /** A stage as the chart names it at a fold. */
 export function stageNameOf(chain: ComputedChain, stageId: string | null): string | null {

@@ -27,7 +27,7 @@ export const delayShares = ({ stages }: ComputedChain): readonly Share[] =>
   }))
 
 /** Delays that are told by a sign: a high-pass hurries a signal a little, and a bar can't show less than nothing. */
-export const advanceSeconds = ({ stages }: ComputedChain): number =>
+const advanceSeconds = ({ stages }: ComputedChain): number =>
   stages.reduce((sum, { delaySeconds }) => sum + Math.min(0, delaySeconds), 0)
 
 function Delay({ chain }: ChainPanelProps) {

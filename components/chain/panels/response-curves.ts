@@ -12,7 +12,7 @@ export function responseSpan({ spec, outputRateHz }: ComputedChain): Span {
   return [Math.min(to / 100, Math.max(to / 1e5, wished)), to]
 }
 
-export function responseFrequencies(chain: ComputedChain): Float64Array {
+function responseFrequencies(chain: ComputedChain): Float64Array {
   const [from, to] = responseSpan(chain)
   return Float64Array.from({ length: POINTS }, (_, k) =>
     k === POINTS - 1 ? to : from * (to / from) ** (k / (POINTS - 1)),

@@ -133,7 +133,7 @@ export function responsePlan(
   }
 }
 
-export function delayAxis(seconds: Float64Array): { readonly y: LinesPlan['y'] } {
+function delayAxis(seconds: Float64Array): { readonly y: LinesPlan['y'] } {
   const most = seconds.reduce((high, value) => (Number.isFinite(value) ? Math.max(high, Math.abs(value)) : high), 0)
   const unit = delayUnit(most)
   const [low, high] = spanOf([seconds], Math.max(most * 0.2, 1e-9))

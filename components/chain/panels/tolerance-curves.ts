@@ -14,7 +14,7 @@ export const toleranceViews = [
 ] as const
 export type ToleranceView = (typeof toleranceViews)[number]['value']
 
-export const spreadWords = ({ spread }: ToleranceSettings): string =>
+const spreadWords = ({ spread }: ToleranceSettings): string =>
   spread.of === 'parts'
     ? `${formatNumber(spread.percent)}\u2009% parts`
     : `f0 within ${formatNumber(spread.f0Percent)}\u2009%, Q within ${formatNumber(spread.qPercent)}\u2009%`
@@ -82,7 +82,7 @@ const percentileCurves = (x: Float64Array, { p5, p50, p95 }: Percentiles): Lines
 ]
 
 /** The highest value up to a frequency. */
-export function worstUpTo(x: Float64Array, y: Float64Array, toHz: number): number {
+function worstUpTo(x: Float64Array, y: Float64Array, toHz: number): number {
   let worst = curveAt({ x, y }, Math.min(toHz, x[x.length - 1] ?? toHz))
   for (let n = 0; n < x.length && (x[n] ?? 0) <= toHz; n++) worst = Math.max(worst, y[n] ?? Number.NaN)
   return worst

@@ -76,7 +76,7 @@ function driven<Value>(steps: Iterator<number, Value>, onProgress: OnProgress): 
   }
 }
 
-export function* channelSteps(
+function* channelSteps(
   spec: ChainSpec,
   fromChannel: number,
   toChannel: number,
