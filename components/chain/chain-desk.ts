@@ -87,7 +87,7 @@ function moved<Item>(items: readonly Item[], index: number, by: 1 | -1): readonl
 }
 
 /** Why a number can't stand at a path, with the nearest that can; null when it can. */
-export function numberRefusal(spec: ChainSpec, path: string, value: number): DeskRefusal | null {
+function numberRefusal(spec: ChainSpec, path: string, value: number): DeskRefusal | null {
   const refusal = boundRefusal(spec, path, value) ?? chainRefusal(withField(spec, path, value), path)
   if (!refusal) return null
   const nearest = typeof refusal.nearest === 'number' ? refusal.nearest : nearestNumber(spec, path, value)

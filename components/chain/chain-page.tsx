@@ -31,7 +31,7 @@ import { ChainTitleBlock } from './chain-title-block'
 import { chainCommands } from './commands'
 import { computedChain } from './computed-chain'
 import { useChainJudgements } from './judge'
-import { StageDesk } from './stage-desk'
+import { LiveDesk } from './stage-desk'
 import { ChainStatement } from './statement'
 import { createChainStore, toleranceFor } from './store'
 import { Strip } from './strip'
@@ -260,17 +260,7 @@ export function ChainPage({
             readOnly={!mayEdit}
             onChoose={store.getState().choose}
           />
-          {chosenIndex >= 0 ? (
-            <StageDesk
-              key={stageId}
-              spec={spec}
-              index={chosenIndex}
-              desk={desk}
-              linkable={linkable}
-              readOnly={!mayEdit}
-              onClose={putAway}
-            />
-          ) : null}
+          <LiveDesk store={store} desk={desk} linkable={linkable} readOnly={!mayEdit} onClose={putAway} />
         </Fence>
         {adding ? (
           <p role="alert" className="mt-1 border-l-2 border-vermilion pl-2 text-[13px] text-vermilion">

@@ -5,7 +5,7 @@ import { useEffect, useMemo, useRef, useState } from 'react'
 import { interfererLandings, MOST_INTERFERERS, type ChainSpec, type ComputedChain, type InterfererLanding } from '@/dsp'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { Button } from '@/components/ui/button'
-import { hertzText, levelText, withPartAt } from '@/lib/chains/fields'
+import { hertzText, shownLevel, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
 import { unitAfter } from '@/lib/chains/outline'
 import { classNames } from '@/lib/format/class-names'
@@ -167,7 +167,7 @@ function Landing({
   if (!landing) return <span className="numeric text-[13px] text-pencil">…</span>
   const isFelt = isAboveFloor(landing, spec)
   const lands = hertzText(landing.landsHz, 3)
-  const level = levelText(landing.level, unitAfter(spec))
+  const level = shownLevel(landing.level, unitAfter(spec))
   return (
     <>
       <button

@@ -13,12 +13,26 @@ import {
   type StagesEdit,
 } from '@/lib/chains/edits'
 import { linksOf } from '@/lib/chains/links'
+import { indexOfStage } from '@/lib/chains/outline'
 import { linkText } from '@/lib/chains/statement'
 import type { LinkableDesign } from '@/lib/chains/types'
 import { stageKindWords } from '@/lib/chains/words'
 import { classNames } from '@/lib/format/class-names'
 import type { ChainDesk } from './chain-desk'
+import type { ChainStore } from './store'
+import { useChain } from './use-chain'
 import { AnalogFields, ConverterFields, DecimateFields, SensorFields, ShapeFields } from './stage-fields'
+
+/** The desk at the pace of the hand: a box that is ticked is ticked at once. */
+export function LiveDesk({
+  store,
+  ...rest
+}: { store: ChainStore } & Omit<Parameters<typeof StageDesk>[0], 'spec' | 'index'>) {
+  const spec = useChain(store, (state) => state.spec)
+  const stageId = useChain(store, (state) => state.stageId)
+  const index = indexOfStage(spec, stageId)
+  return index < 0 ? null : <StageDesk key={stageId} spec={spec} index={index} {...rest} />
+}
 
 /** The chosen stage, all of it, to be edited under the strip. */
 export function StageDesk({

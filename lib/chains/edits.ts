@@ -45,7 +45,7 @@ function asFactorAllows(spec: ChainSpec, index: number): ChainSpec {
 }
 
 /** Lets the filters of `after` follow its kept band and rates, as far as those of `before` stood where its own put them. */
-export function followed(before: ChainSpec, after: ChainSpec): ChainSpec {
+function followed(before: ChainSpec, after: ChainSpec): ChainSpec {
   const [ratesBefore, ratesAfter] = [ratesOf(before), ratesOf(after)]
   const stages = after.stages.map((stage, index) => {
     const at = before.stages.findIndex(({ id }) => id === stage.id)
@@ -220,7 +220,7 @@ export function withAnalogResponse(spec: ChainSpec, index: number, response: Res
   return withAnalogSpec(spec, index, (analog) => withResponse(family(analog), response).analog)
 }
 
-export function withAnalogSpec(spec: ChainSpec, index: number, change: (analog: AnalogSpec) => AnalogSpec): ChainSpec {
+function withAnalogSpec(spec: ChainSpec, index: number, change: (analog: AnalogSpec) => AnalogSpec): ChainSpec {
   const stage = spec.stages[index]
   if (stage?.kind !== 'analog' || stage.source.from !== 'here') return spec
   return withStage(spec, index, { ...stage, source: { from: 'here', analog: change(stage.source.analog) } })

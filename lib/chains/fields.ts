@@ -1,11 +1,4 @@
-import {
-  MOST_DECIMATION,
-  MOST_STAGE_TAPS,
-  type ChainRequirement,
-  type ChainSpec,
-  type ChainStage,
-  type Interferer,
-} from '@/dsp'
+import { MOST_DECIMATION, MOST_STAGE_TAPS, type ChainSpec, type ChainStage } from '@/dsp'
 import { formatHz, formatNumber, formatQuantity, formatSeconds } from '@/lib/format/quantity'
 import {
   parseCount,
@@ -122,10 +115,6 @@ export function withPartAt(spec: ChainSpec, path: string, value: unknown): Chain
 
 export const withStage = (spec: ChainSpec, index: number, stage: ChainStage): ChainSpec =>
   withPartAt(spec, `stages.${index}`, stage)
-export const withLine = (spec: ChainSpec, index: number, line: ChainRequirement): ChainSpec =>
-  withPartAt(spec, `sheet.${index}`, line)
-export const withInterferer = (spec: ChainSpec, index: number, interferer: Interferer): ChainSpec =>
-  withPartAt(spec, `interferers.${index}`, interferer)
 
 export const isWholeNumber = (unit: ChainFieldUnit): boolean =>
   unit === 'bits' || unit === 'order' || unit === 'count' || unit === 'taps'
@@ -138,6 +127,19 @@ export const levelText = (value: number, unit: string, significant = 3): string 
   unprefixed.includes(unit)
     ? `${formatNumber(value, significant)}\u2009${unit}`
     : formatQuantity(value, unit, significant)
+
+/** The unit that a prefixed one is a part of, so that what is far smaller can be said with another prefix. */
+const whole: Readonly<Record<string, readonly [unit: string, factor: number]>> = {
+  'mm/s': ['m/s', 1e-3],
+  mm: ['m', 1e-3],
+  µm: ['m', 1e-6],
+}
+
+/** A level that is read, not typed: 3.6e-6 mm/s → 3.6 nm/s. */
+export function shownLevel(value: number, unit: string): string {
+  const [base, factor] = whole[unit] ?? [unit, 1]
+  return levelText(value * factor, base)
+}
 
 /** A frequency; below 1 Hz, where corners of sensors lie, nobody says millihertz: 0.5 Hz. */
 export const hertzText = (hertz: number, significant = 4): string =>
@@ -170,7 +172,7 @@ export function chainFieldText(spec: ChainSpec, path: string, value: number): st
 }
 
 /** Interferers are given at the sensor, in its unit. */
-export const sensorUnitOf = (spec: ChainSpec): string => unitAfter(spec, 0)
+const sensorUnitOf = (spec: ChainSpec): string => unitAfter(spec, 0)
 
 /** A typed text as the number at a path. */
 export function parseChainField(

@@ -13,7 +13,7 @@ import {
   withoutStage,
   type StagesEdit,
 } from '@/lib/chains/edits'
-import { boundRefusal, levelText, numberAt, withPartAt } from '@/lib/chains/fields'
+import { boundRefusal, levelText, numberAt, shownLevel, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
 import { outputRateOf, ratesOf, unitAfter } from '@/lib/chains/outline'
 import { startingChain, usualEdges } from '@/lib/chains/stage-starts'
@@ -136,5 +136,8 @@ describe('names and levels', () => {
   it('never stack one prefix on another', () => {
     expect(levelText(0.00187, 'g').replace('\u2009', ' ')).toBe('1.87 mg')
     expect(levelText(0.00187, 'mm/s').replace('\u2009', ' ')).toBe('0.00187 mm/s')
+    expect(shownLevel(3.63e-6, 'mm/s').replace('\u2009', ' ')).toBe('3.63 nm/s')
+    expect(shownLevel(1.5, 'mm/s').replace('\u2009', ' ')).toBe('1.5 mm/s')
+    expect(shownLevel(3.63e-6, 'µm/m')).toContain('µm/m')
   })
 })
