@@ -3,7 +3,8 @@
 import { useMemo } from 'react'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { noiseBudget, type ComputedChain, type NoiseBudget } from '@/dsp'
-import { levelText, sensorUnitOf } from '@/lib/chains/fields'
+import { levelText } from '@/lib/chains/fields'
+import { unitAfter } from '@/lib/chains/outline'
 import { formatDb, formatFixed, formatHz } from '@/lib/format/quantity'
 import { FigureLine, FiguresRuled } from './chart/figures'
 import { chainStageLabel } from './stage-label'
@@ -17,7 +18,7 @@ export function NoisePanel(props: ChainPanelProps) {
 
 /** Noise is told where it would have to be felt: in the sensor's unit. */
 export function noiseRows(chain: ComputedChain, budget: NoiseBudget) {
-  const unit = sensorUnitOf(chain.spec)
+  const unit = unitAfter(chain.spec, 0)
   const written = (rms: number) => levelText(rms, unit)
   return [
     ...budget.parts.map(({ stageId, source, rms, words }) => {
@@ -33,7 +34,7 @@ export function noiseRows(chain: ComputedChain, budget: NoiseBudget) {
 
 function Noise({ chain }: ChainPanelProps) {
   const budget = useMemo(() => noiseBudget(chain), [chain])
-  const unit = sensorUnitOf(chain.spec)
+  const unit = unitAfter(chain.spec, 0)
   const { kept } = chain.spec
   return (
     <div className="flex min-w-0 flex-col gap-4">
