@@ -25,7 +25,7 @@ function leastPairFrom({ re, im }: Complex, from: number): number {
 const lg = (value: number): number => 10 * Math.log10(value)
 
 /** Most that a filter has anywhere above a frequency, in dB; +Infinity where it has more zeros than poles. */
-export function analogMostAboveDb(filter: Filter<'s'>, fromHz: number): number {
+function analogMostAboveDb(filter: Filter<'s'>, fromHz: number): number {
   if (filter.zeros.length > filter.poles.length) return Infinity
   const square = (2 * Math.PI * fromHz) ** 2
   const most = 1 / square

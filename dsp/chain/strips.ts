@@ -21,7 +21,7 @@ export function outputOf(inputHz: number, outputRateHz: number): { readonly stri
 }
 
 /** Where a strip comes to lie when folded at a rate that has `strips` strips below its half. */
-export function foldedStrip(strip: number, strips: number): number {
+function foldedStrip(strip: number, strips: number): number {
   const within = strip % (2 * strips)
   return within < strips ? within : 2 * strips - 1 - within
 }

@@ -9,7 +9,7 @@ interface UnitFacts {
 }
 
 /** Standard acceleration of gravity, m/s²: exact by definition (ISO 80000-3; 3rd CGPM 1901). */
-export const STANDARD_GRAVITY = 9.80665
+const STANDARD_GRAVITY = 9.80665
 
 export const chainUnits: Readonly<Record<ChainUnit, UnitFacts>> = {
   g: { quantity: 'acceleration', si: STANDARD_GRAVITY },

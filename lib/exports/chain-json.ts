@@ -48,8 +48,6 @@ export const chainFileSchema = z
   })
   .meta({ title: 'Polewright chain' })
 
-export type ChainFile = z.infer<typeof chainFileSchema>
-
 /** The schema as JSON Schema (draft 2020-12). */
 export const chainJsonSchema = () => z.toJSONSchema(chainFileSchema)
 
