@@ -6,6 +6,7 @@ import { costOf } from './cost'
 import { addGroupDelay } from './part-response'
 import { partsOf } from './parts'
 import type { ChainSpec, ChainUnit } from './spec'
+import { checkToleranceWork } from './tolerance-bound'
 import { chainUnits, integralOf, type ChainQuantity } from './units'
 
 const usualUnits: Readonly<Partial<Record<ChainQuantity, ChainUnit>>> = { velocity: 'mm/s', displacement: 'µm' }
@@ -52,8 +53,8 @@ function cautionsOf(spec: ChainSpec): Diagnostic[] {
  *
  * Filters are kept by their statements, so that an edit of one stage makes only that stage's again.
  *
- * @throws DesignError with field `stages.<i>.…`, `kept.toHz`, `sheet.<i>.toHz`, `interferers.<i>.toHz` and, where there is one, the nearest
- *   value that works
+ * @throws DesignError with field `stages.<i>.…`, `kept.toHz`, `sheet.<i>.toHz`, `interferers.<i>.toHz`, `tolerance.channels` and, where there
+ *   is one, the nearest value that works
  */
 export function computeChain(spec: ChainSpec): ComputedChain {
   const converterIndex = checkOrder(spec)
@@ -86,6 +87,7 @@ export function computeChain(spec: ChainSpec): ComputedChain {
     }
   })
   checkBands(spec, outputRateHz)
+  checkToleranceWork(spec, stages)
   const diagnostics = [...cautionsOf(spec), ...stages.flatMap((stage) => stage.diagnostics)]
   return { spec, stages, converterIndex, converterRateHz, outputRateHz, unit, diagnostics }
 }

@@ -9,3 +9,5 @@ export const MOST_CHAIN_REQUIREMENTS = 24
 /** Channels of one tolerance run. */
 export const LEAST_CHANNELS = 100
 export const MOST_CHANNELS = 20_000
+/** Work of one tolerance run: channels times the sections that are drawn for each. */
+export const MOST_CHANNEL_SECTIONS = 400_000
