@@ -7,6 +7,7 @@ import {
   parseFrequency,
   parseInUnit,
   parseOrder,
+  parsePart,
   parsePlainNumber,
   parseSeconds,
   type Parsed,
@@ -197,12 +198,18 @@ export function parseChainField(
     case 'level':
       return parseInUnit(text, sensorUnitOf(spec))
     case 'order':
-      return parseOrder(text)
+      return counted(parseOrder(text), text)
     case 'number':
       return parsePlainNumber(text.replace(/\s*bits?$/i, ''))
     default:
-      return parseCount(text)
+      return counted(parseCount(text), text)
   }
+}
+
+/** A number between two counts is read, so that it is refused with the nearest one: see `boundRefusal`. */
+function counted(parsed: Parsed, text: string): Parsed {
+  const value = parsed.ok ? null : parsePart(text)
+  return value === null ? parsed : { ok: true, value }
 }
 
 export interface FieldRefusal {

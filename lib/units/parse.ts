@@ -114,16 +114,33 @@ const tidyUnit = (unit: string): string =>
     .replace(/\^?2$/, '²')
     .replace(/\s+/g, '')
 
-/** A value in `unit` from "0.5", "0.5 g", "50 mg", "3 µV/√Hz": the bare number counts in the unit itself, a prefix may stand before it. */
+/** A value that people would type, where half of one is far from any. */
+const exampleOf = (unit: string): string => (unit === 'V/√Hz' ? '500\u2009nV/√Hz' : `0.5\u2009${unit}`)
+
+/** Units that carry a prefix of their own: a bare one behind the number would stand before another. */
+const PREFIXED = /^(?:mm|µm)/
+
+/** What a unit, as it was written, is of the field's own; undefined where it is another. A prefix alone counts for the field's unit. */
+function factorOf(given: string, unit: string): number | undefined {
+  if (given === unit) return 1
+  if (!PREFIXED.test(unit) && given in PREFIXES) return PREFIXES[given]
+  // Beside a field of noise densities nobody says "per root hertz": 500 nV.
+  const said = unit.endsWith('/√Hz') && !given.includes('/') ? `${given}/√Hz` : given
+  return said.endsWith(unit) ? PREFIXES[said.slice(0, -unit.length)] : undefined
+}
+
+/**
+ * A value in `unit` from "0.5", "0.5 g", "50 mg", "50m", "3 µV/√Hz": the bare number counts in the unit itself, a prefix may stand before it
+ * or alone.
+ */
 export function parseInUnit(input: string, unit: string): Parsed {
   const text = tidy(input)
   const bare = BARE.exec(text)
   if (bare) return found(toNumber(bare[1] ?? ''))
   const [, digits = '', written = ''] = WITH_UNIT.exec(text) ?? []
-  const given = tidyUnit(written)
-  const factor = given === unit ? 1 : given.endsWith(unit) ? PREFIXES[given.slice(0, -unit.length)] : undefined
+  const factor = factorOf(tidyUnit(written), unit)
   return factor === undefined || digits === ''
-    ? refused(`“${input.trim()}” isn’t a value in ${unit}; type one, such as 0.5\u2009${unit}.`)
+    ? refused(`“${input.trim()}” isn’t a value in ${unit}; type one, such as ${exampleOf(unit)}.`)
     : // 200 nV is 2e-7 V, without the dust of the product.
       found(Number((toNumber(digits) * factor).toPrecision(15)))
 }
@@ -137,7 +154,17 @@ export function parsePercent(input: string): Parsed {
 /** A whole number from "63", "63 taps", "5 poles", "16 bits" or "20 multiplies". */
 export function parseCount(input: string): Parsed {
   const match = /^([+-]?\d+)\s*(?:taps?|poles?|bits?|multipl(?:y|ies))?$/i.exec(tidy(input))
-  return match ? found(Number(match[1])) : refused(`“${input.trim()}” isn’t a count; type a whole number.`)
+  if (match) return found(Number(match[1]))
+  const between = parsePart(input)
+  return refused(
+    `“${input.trim()}” isn’t a count; type a whole number${between === null ? '' : `, such as ${Math.round(between)}`}.`,
+  )
+}
+
+/** The number of "7.5" or "7,5 taps", which is none that is counted; null for other texts. */
+export function parsePart(input: string): number | null {
+  const [, digits] = new RegExp(String.raw`^(${NUMBER})\s*(?:taps?|poles?|bits?)?$`, 'i').exec(tidy(input)) ?? []
+  return digits !== undefined && Number.isFinite(toNumber(digits)) ? toNumber(digits) : null
 }
 
 /** A number without a unit, such as a gain or a weight. */

@@ -73,6 +73,7 @@ describe('times, parts and counts', () => {
     expect(parsePercent('half').ok).toBe(false)
     expect(parseCount('16 bits')).toEqual({ ok: true, value: 16 })
     expect(parseCount('1 multiply')).toEqual({ ok: true, value: 1 })
+    expect(parseCount('7.5')).toMatchObject({ ok: false, message: expect.stringContaining('such as 8') as string })
     expect(parseCount('20 multiplies')).toEqual({ ok: true, value: 20 })
   })
 })
@@ -99,6 +100,13 @@ describe('values in a unit', () => {
     ['200 nV/rtHz', 'V/√Hz', 2e-7],
     ['2 uV/sqrt(Hz)', 'V/√Hz', 2e-6],
     ['5 m', 'm', 5],
+    ['100m', 'V', 0.1],
+    ['0.4u', 'V/√Hz', 4e-7],
+    ['500n', 'V/√Hz', 5e-7],
+    ['500 nV', 'V/√Hz', 5e-7],
+    ['1 V', 'V/√Hz', 1],
+    ['200m', 'g', 0.2],
+    ['2k', 'Pa', 2000],
     ['5 mm', 'm', 0.005],
     ['1 m/s^2', 'm/s²', 1],
   ])('%s in %s', (text, unit, value) => expect(parseInUnit(text, unit)).toEqual({ ok: true, value }))
@@ -108,5 +116,12 @@ describe('values in a unit', () => {
     ['g', 'g'],
     ['', 'g'],
     ['5 km/s', 'mm/s'],
+    ['5 m', 'mm'],
+    ['3 k', 'µm/m'],
+    ['500 ng', 'V/√Hz'],
   ])('refuses %s in %s', (text, unit) => expect(parseInUnit(text, unit)).toMatchObject({ ok: false }))
+
+  it('gives an example that somebody would type', () => {
+    expect(parseInUnit('x', 'V/√Hz')).toMatchObject({ message: expect.stringContaining('500\u2009nV/√Hz') as string })
+  })
 })

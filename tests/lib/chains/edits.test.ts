@@ -13,7 +13,7 @@ import {
   withoutStage,
   type StagesEdit,
 } from '@/lib/chains/edits'
-import { boundRefusal, levelText, numberAt, shownLevel, withPartAt } from '@/lib/chains/fields'
+import { boundRefusal, levelText, numberAt, parseChainField, shownLevel, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
 import { outputRateOf, ratesOf, unitAfter } from '@/lib/chains/outline'
 import { startingChain, usualEdges } from '@/lib/chains/stage-starts'
@@ -123,6 +123,26 @@ describe('a number that is none for its place', () => {
     expect(boundRefusal(startingChain, 'stages.3.factor', 3.4)).toMatchObject({ nearest: 3 })
     expect(boundRefusal(startingChain, 'stages.0.sensitivity', -1)?.message).toContain('above 0')
     expect(boundRefusal(startingChain, 'kept.fromHz', 0)).toBeNull()
+  })
+})
+
+describe('a typed number', () => {
+  it('that lies between two counts is read, so that the nearest one is offered', async () => {
+    for (const [path, text, nearest] of [
+      ['stages.3.factor', '7.5', 8],
+      ['stages.1.source.analog.order', '4,4', 4],
+      ['stages.3.filter.taps', '33.6 taps', 34],
+    ] as const) {
+      const parsed = await parseChainField(startingChain, path, text, 1)
+      expect(parsed.ok && boundRefusal(startingChain, path, parsed.value)).toMatchObject({ nearest })
+    }
+  })
+  it('takes a prefix for the unit of its field', async () => {
+    expect(await parseChainField(startingChain, 'stages.0.sensitivity', '100m', 1)).toEqual({ ok: true, value: 0.1 })
+    expect(await parseChainField(startingChain, 'stages.2.resolution.voltsPerRootHz', '500 nV', 1)).toEqual({
+      ok: true,
+      value: 5e-7,
+    })
   })
 })
 
