@@ -19,12 +19,15 @@ import {
 } from '@/components/chain/panels/proof-words'
 import {
   answersFor,
+  bestWords,
+  missWords,
   notesOf,
   planCells,
   planColumns,
   rateCells,
   rateColumns,
   ratesPlan,
+  standingWords,
   standsAs,
 } from '@/components/chain/panels/trade-offs'
 import { ShareBar } from '@/components/chain/panels/share-bar'
@@ -276,6 +279,7 @@ describe('the advisor', () => {
       expect(computeChain(option.spec).converterRateHz).toBe(option.converterRateHz)
     }
     expect(told.every((progress) => progress >= 0 && progress <= 1)).toBe(true)
+    expect(bestWords(options)).toContain(options.some(({ missed }) => missed.length === 0) ? 'meets' : 'here')
     const plan = ratesPlan(options, false)!
     expect(plan.curves.map(({ name, x }) => [name, x.length])).toEqual([
       ['every order', options.length],
@@ -283,6 +287,44 @@ describe('the advisor', () => {
     ])
     expect(paintSvg(linesScene(plan, linesFrame(600, plan)), daylight, plan.title)).not.toMatch(/NaN|Infinity/)
     expect(ratesPlan(options.slice(0, 1), false)).toBeNull()
+  })
+
+  it('counts only what meets the whole sheet, and says of the others what they miss', () => {
+    const requirement = { kind: 'phase', fromHz: 1, toHz: 90, withinDegrees: 5 } as const
+    const phase = { requirement, value: 46, limit: 5, unit: '°', margin: -41, met: false, worstHz: 90 } as const
+    const floor = { kind: 'alias-floor', toHz: 90, atLeastDb: 80 } as const
+    const flat = { kind: 'flatness', fromHz: 1, toHz: 90, withinDb: 0.1 } as const
+    const spec = { ...deckSpec, sheet: [flat, floor, requirement] }
+    const meeting = { missed: [], assumed: [], spec }
+    const missing = { missed: [phase], assumed: [], spec }
+    const current = {
+      ...meeting,
+      meets: false,
+      missed: [{ ...phase, requirement: floor, unit: 'dB', margin: -2.5 }],
+    } as const
+    expect(missWords(meeting)).toBeNull()
+    expect(missWords(missing)).toBe('misses phase linearity by 41°')
+    expect(plain(missWords(current) ?? '')).toBe('misses alias floor by 2.5 dB')
+    expect(standingWords([missing, missing], 'order')).toBe(
+      'none of 2 orders meets the whole sheet; all keep flatness and alias floor',
+    )
+    expect(standingWords([missing, current], 'plan')).toBe(
+      'none of 2 plans meets the whole sheet; 1 keeps flatness and alias floor',
+    )
+    expect(standingWords([meeting, missing, missing], 'plan')).toBe(
+      '1 of 3 plans meets the sheet; all keep flatness and alias floor',
+    )
+    expect(standingWords([meeting, meeting], 'plan')).toBe('all 2 plans meet the sheet')
+    const open = { ...meeting, spec: deckSpec, assumed: ['±0.5 dB'] }
+    expect(standingWords([open, open], 'plan')).toBe(
+      'all 2 plans meet the sheet as far as it can be judged; assumed beside it: ±0.5 dB over the kept band',
+    )
+    const bare = { ...meeting, spec: { ...deckSpec, sheet: [] }, assumed: ['±0.5 dB', 'images 80 dB down'] }
+    expect(standingWords([bare, { ...bare, meets: false }], 'plan')).toBe(
+      'the sheet asks for nothing; 1 of 2 plans keeps what was assumed: ±0.5 dB and images 80 dB down over the kept band',
+    )
+    expect(missWords({ ...bare, meets: false })).toBe('misses what was assumed: ±0.5 dB and images 80 dB down')
+    expect(standingWords([], 'plan')).toBe('no plan was found')
   })
 
   it('offers plans by name, and answers for the chain asked about and for what is taken from it', () => {
@@ -296,6 +338,8 @@ describe('the advisor', () => {
       delaySeconds: 0.04,
       isCurrent: true,
       meets: false,
+      missed: [],
+      assumed: [],
       notes: ['one', 'two'],
       spec: deckSpec,
     }

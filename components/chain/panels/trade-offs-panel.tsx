@@ -11,7 +11,9 @@ import { LinesPlot } from './chart/lines-plot'
 import type { ChainPanelProps } from './props'
 import {
   answersFor,
+  bestWords,
   filterWords,
+  missWords,
   notesOf,
   planCells,
   planColumns,
@@ -20,13 +22,15 @@ import {
   rateColumns,
   rateName,
   ratesPlan,
+  standingWords,
   standsAs,
+  type Standing,
 } from './trade-offs'
 import { useWork } from './work/use-work'
 import { findPlans, findRates } from './work/work-client'
 import { WorkLine } from './work/work-line'
 
-/** Where analog order, converter rate and arithmetic can be traded for each other, all of it meeting the sheet. */
+/** Where analog order, converter rate and arithmetic can be traded for each other, and what of the sheet each way meets. */
 export function TradeOffsPanel(props: ChainPanelProps) {
   return useOnPage() ? <TradeOffs {...props} /> : null
 }
@@ -68,14 +72,15 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           startWords="Find the lowest rates"
           againWords="Find them again"
           stopWords="Stop the search for rates"
-          doneWords={(found: readonly RateOption[]) => `${found.length} orders meet the sheet`}
+          doneWords={(found: readonly RateOption[]) => standingWords(found, 'order')}
           onStart={() => rates.run(spec)}
           onStop={rates.stop}
         />
         {ratesFaded ? <Older /> : null}
         {rates.value?.length === 0 ? (
           <Notice kind="note">
-            No order of this anti-alias filter meets the sheet at any rate tried. Ask for less, or keep a narrower band.
+            No order of this anti-alias filter keeps flatness and images at any rate tried. Ask for less, or keep a
+            narrower band.
           </Notice>
         ) : null}
         {picture ? <LinesPlot plan={picture} writeValue={(hertz) => formatHz(hertz)} /> : null}
@@ -86,14 +91,19 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
             rows={rates.value.map((option) => ({
               key: rateName(option),
               strong: option.isBest,
-              cells: [...rateCells(option), choice(rateName(option), option.spec)],
+              cells: [
+                ...rateCells(option),
+                <>
+                  {choice(rateName(option), option.spec)}
+                  <Miss option={option} />
+                </>,
+              ],
             }))}
           />
         ) : null}
         {rates.value && rates.value.length > 0 ? (
           <p className="text-[13px] text-pencil">
-            Marked as best: nothing else has as low an order at a lower rate, or as low a rate with a lower order.{' '}
-            {notesOf(rates.value).join(' ')}
+            {bestWords(rates.value)} {notesOf(rates.value).join(' ')}
           </p>
         ) : null}
       </section>
@@ -105,22 +115,20 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
           startWords="Find decimation plans"
           againWords="Find plans again"
           stopWords="Stop the search for plans"
-          doneWords={(found: readonly PlanOption[]) =>
-            `${found.filter(({ meets }) => meets).length} plans meet the sheet`
-          }
+          doneWords={(found: readonly PlanOption[]) => standingWords(found, 'plan')}
           onStart={() => plans.run(spec)}
           onStop={plans.stop}
         />
         {isOld(plans) ? <Older /> : null}
         {plans.value?.length === 0 ? (
           <Notice kind="note">
-            No plan meets the sheet with these rates. A higher converter rate, or a lower edge of the kept band, leaves
-            the filters more room.
+            No plan keeps flatness and images with these rates. A higher converter rate, or a lower edge of the kept
+            band, leaves the filters more room.
           </Notice>
         ) : null}
         {plans.value && plans.value.length > 0 ? (
           <FiguresRuled
-            label="Decimation plans, fewest multiplies first"
+            label="Decimation plans, those that meet the sheet first, then fewest multiplies"
             columns={[...planColumns, '']}
             wordColumns={[1]}
             rows={plans.value.map((option, index) => {
@@ -132,7 +140,7 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
                   ...planCells(option),
                   <>
                     {choice(name, option.spec)}
-                    {option.meets ? null : <span className="block text-vermilion">misses the sheet</span>}
+                    <Miss option={option} />
                   </>,
                 ],
               }
@@ -141,8 +149,8 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         ) : null}
         {plans.value && plans.value.length > 0 ? (
           <p className="text-[13px] text-pencil">
-            Multiplies are counted for each stored sample. Every filter is as short as the sheet allows.{' '}
-            {notesOf(plans.value).join(' ')}
+            Multiplies are counted for each stored sample. Every filter is as short as flatness and images allow; what
+            else the sheet asks is judged afterwards. {notesOf(plans.value).join(' ')}
           </p>
         ) : null}
       </section>
@@ -150,6 +158,14 @@ function TradeOffs({ spec, propose, readOnly }: ChainPanelProps) {
         {taken}
       </p>
     </div>
+  )
+}
+
+/** Which lines an option misses. */
+function Miss({ option }: { option: Standing }) {
+  const words = missWords(option)
+  return words === null ? null : (
+    <span className="block max-w-56 text-left whitespace-normal text-vermilion">{words}</span>
   )
 }
 

@@ -6,13 +6,14 @@ import { chainSketch } from '../sketch'
 import type { ChainSpec, DecimateStage } from '../spec'
 import { factorisations, MOST_PLAN_STAGES } from './factorisations'
 import { finish } from './finish'
-import { figuresFor, needsOf, stoppedBy } from './needs'
+import { figuresFor, needsOf, stoppedBy, type Needs } from './needs'
 import { aheadOf, checkedAhead, checkedRipple, checkMovable } from './plan-ground'
 import { estimatePlan, isDecimation, type PlanTask } from './plan-search'
 import { costOf, relaxed, searchFor, settlePlan, trimmed, type Judged, type Settled } from './settle'
 import type { PlanKind } from './stage-choice'
+import { metFirst, standingOf, type Standing } from './standing'
 
-export interface PlanOption {
+export interface PlanOption extends Standing {
   readonly factors: readonly number[]
   /** Kind of filter in each stage, as a stage states it: `half-band`, `kaiser`, `equiripple`, `cic`, `design`. */
   readonly filters: readonly string[]
@@ -24,7 +25,7 @@ export interface PlanOption {
   readonly rippleDb: number
   readonly delaySeconds: number
   readonly isCurrent: boolean
-  /** Whether flatness and images are as the sheet asks; false for a current plan that is listed for comparison. */
+  /** Whether flatness and images are as was searched for; false for a current plan that is listed for comparison. */
   readonly meets: boolean
   readonly notes: readonly string[]
   readonly spec: ChainSpec
@@ -46,7 +47,7 @@ const ALL: readonly PlanKind[] = ['cic', 'half-band', 'equiripple', 'kaiser']
 /** What each factorisation is tried with: everything, no CIC filter, windows alone. */
 const MIXES: readonly (readonly PlanKind[])[] = [ALL, ['half-band', 'equiripple', 'kaiser'], ['half-band', 'kaiser']]
 
-function optionOf({ plan, chain, figures }: Judged, isCurrent: boolean, notes: readonly string[]): PlanOption {
+function optionOf({ plan, chain, figures }: Judged, isCurrent: boolean, needs: Needs): PlanOption {
   const { delaySeconds, multipliesPerStoredSample, words } = chainSketch(chain)
   return {
     factors: plan.factors,
@@ -58,7 +59,8 @@ function optionOf({ plan, chain, figures }: Judged, isCurrent: boolean, notes: r
     delaySeconds,
     isCurrent,
     meets: figures.meets,
-    notes,
+    ...standingOf(chain, needs),
+    notes: needs.notes,
     spec: chain.spec,
   }
 }
@@ -129,13 +131,19 @@ export function* planSteps(spec: ChainSpec): Generator<number, readonly PlanOpti
     yield 0.65 + (0.35 * (index + 1)) / first.length
   }
   return options
-    .map((one) => optionOf(one, one === mine, needs.notes))
-    .sort((a, b) => a.multipliesPerStoredSample - b.multipliesPerStoredSample || a.words - b.words)
+    .map((one) => optionOf(one, one === mine, needs))
+    .sort(
+      (a, b) =>
+        metFirst(a, b) ||
+        Number(b.meets) - Number(a.meets) ||
+        a.multipliesPerStoredSample - b.multipliesPerStoredSample ||
+        a.words - b.words,
+    )
 }
 
 /**
- * Decimation plans for the factor that a chain has, whose filters are as short as its sheet allows; fewest multiplies for a stored sample
- * first.
+ * Decimation plans for the factor that a chain has, whose filters are as short as the sheet's flatness and images allow. Those that meet the
+ * whole sheet come first, and among them the fewest multiplies for a stored sample.
  *
  * Steps: 1. what the lines ask (flatness, images; usual values where none does), less what the other stages use up of it; 2. every ordered
  * factorisation into up to four factors, ranked by the published estimates of taps; 3. of the first, each stage's shortest filter of the kind

@@ -26,8 +26,9 @@ import { aheadOf, checkedRipple } from './plan-ground'
 import { estimatePlan, isDecimation, withPlan, type PlanTask } from './plan-search'
 import { searchFor, settlePlan } from './settle'
 import type { PlanKind } from './stage-choice'
+import { metFirst, standingOf, type Standing } from './standing'
 
-export interface RateOption {
+export interface RateOption extends Standing {
   readonly order: number
   readonly converterRateHz: number
   /** Converter rate over output rate. */
@@ -39,7 +40,7 @@ export interface RateOption {
   readonly rippleDb: number
   readonly delaySeconds: number
   readonly multipliesPerSecond: number
-  /** No other option has as low an order with a lower rate, or as low a rate with a lower order. */
+  /** No other has as low an order with a lower rate, or as low a rate with a lower order, of those that meet the sheet (of all, if none does). */
   readonly isBest: boolean
   readonly notes: readonly string[]
   readonly spec: ChainSpec
@@ -198,6 +199,7 @@ export function* rateSteps(spec: ChainSpec): Generator<number, readonly RateOpti
         rippleDb: made.figures.rippleDb,
         delaySeconds,
         multipliesPerSecond: multipliesPerStoredSample * chain.outputRateHz,
+        ...standingOf(made.chain, needs),
         notes: [...needs.notes, ...antiAlias.notes],
         spec: made.chain.spec,
       })
@@ -206,18 +208,21 @@ export function* rateSteps(spec: ChainSpec): Generator<number, readonly RateOpti
   }
   if (found.length === 0) throw refusal(ground, highest ?? designAnalog(USUAL))
   yield 1
-  return found.map((one) => ({ ...one, isBest: isBestOf(found, one) }))
+  const meeting = found.filter(({ missed }) => missed.length === 0)
+  const rivals = meeting.length > 0 ? meeting : found
+  return found.map((one) => ({ ...one, isBest: rivals.includes(one) && isBestOf(rivals, one) })).sort(metFirst)
 }
 
 /**
- * For each order of the anti-alias filter the lowest converter rate at which the chain meets its sheet; the output rate stays.
+ * For each order of the anti-alias filter the lowest converter rate at which the chain keeps the sheet's flatness and images; the output rate
+ * stays. Every option says which other lines it misses.
  *
  * Steps: 1. what the lines ask, or usual values; 2. for each order from 1 to 10 of the chain's own family, and each whole multiple of the
  * output rate, the lowest corner that leaves the flat lines a quarter of their room; 3. by halving, the lowest multiple at which the filter,
  * with its sensor and the converter's averaging, holds every image that folds at the converter; 4. the cheapest of a few plans for it, the
  * whole computed as a chain and judged; where there is no plan, the next multiple.
  *
- * @returns by order; each option holds the whole chain, ready to be taken over. Orders that don't come to a rate are left out
+ * @returns those that meet the whole sheet first, then by order; each option holds the whole chain, ready to be taken over. Orders that don't come to a rate are left out
  * @throws DesignError as computeChain; `shape-ahead`; `flatness-out-of-reach` or `alias-out-of-reach` with the field of the line that stops
  *   it, and the nearest level in dB that works
  * Sources: the trade of filter order against oversampling is common practice in data acquisition; Crochiere & Rabiner 1983, ch. 5, for the plan.

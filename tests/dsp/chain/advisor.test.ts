@@ -269,6 +269,41 @@ describe.each([
   })
 })
 
+describe('the lines that a search does not work to', () => {
+  const late: ChainRequirement = { kind: 'delay', atHz: 100, atMostSeconds: 1e-6 }
+  const deep: ChainRequirement = { kind: 'effective-bits', atLeast: 39 }
+  const match: ChainRequirement = { kind: 'channel-match', toHz: 500, withinDegrees: 1, withinDb: 0.1 }
+
+  it('are judged on each option’s own chain, and the missed ones named', () => {
+    const spec = { ...small, sheet: [...small.sheet, late, deep, match] }
+    for (const options of [advisePlans(spec), adviseRates(spec)]) {
+      for (const { missed, spec: own } of options) {
+        const judged = checkChainSheet(computeChain(own), null)
+        expect(missed).toEqual(judged.filter(({ met }) => met === false))
+        expect(missed.map(({ requirement }) => requirement.kind)).toEqual(['delay', 'effective-bits'])
+        expect(missed[0]!.margin).toBeLessThan(0)
+      }
+    }
+  })
+
+  it('put those that meet everything first, whatever they cost', () => {
+    const delays = adviseRates(small).map(({ spec }) => checkChainSheet(computeChain({ ...spec, sheet: [late] }), null))
+    const values = delays.map(([result]) => result!.value!).sort((a, b) => a - b)
+    const line = { ...late, atMostSeconds: (values[2]! + values[3]!) / 2 }
+    const options = adviseRates({ ...small, sheet: [...small.sheet, line] })
+    const counts = options.map(({ missed }) => missed.length)
+    expect(counts.slice(0, 3)).toEqual([0, 0, 0])
+    expect(counts.slice(3).every((count) => count === 1)).toBe(true)
+    expect(options.filter(({ isBest }) => isBest).every(({ missed }) => missed.length === 0)).toBe(true)
+    expect(options.some(({ isBest }) => isBest)).toBe(true)
+  })
+
+  it('say in short what was assumed beside them', () => {
+    expect(advisePlans({ ...small, sheet: [] })[0]!.assumed).toEqual(['±0.5 dB', 'images 80 dB down'])
+    expect(advisePlans(small)[0]!.assumed).toEqual([])
+  })
+})
+
 describe('rates', () => {
   it('are the lowest: by the asymptote of a Butterworth filter none lower holds the floor', () => {
     // |H|² = 1/(1 + (f/fc)^2n): with the corner as low as flatness allows, the first image at rate − 1000 Hz must be 85 dB down.
