@@ -1,6 +1,7 @@
 import type { ChainSpec, ComputedStage } from '@/dsp'
 import { hertzText } from '@/lib/chains/fields'
 import { unitAfter } from '@/lib/chains/outline'
+import { sensitivityText } from '@/lib/chains/statement'
 import { formatHz, formatNumber, formatQuantity, formatSeconds } from '@/lib/format/quantity'
 
 /** Figures of a stage as its cell on the strip shows them, three at most; of a stage that isn't computed only what is written. */
@@ -14,7 +15,7 @@ export function stageFacts(spec: ChainSpec, index: number, computed: ComputedSta
   switch (stage?.kind) {
     case 'sensor':
       return [
-        `${formatQuantity(stage.sensitivity, 'V')}/${stage.unit}`,
+        sensitivityText(stage.sensitivity, stage.unit),
         ...(stage.highPass ? [`from ${hertzText(stage.highPass.cornerHz, 3)}`] : []),
         ...(stage.resonance ? [`f0 ${formatHz(stage.resonance.f0Hz, 3)}`] : []),
       ]

@@ -1,6 +1,12 @@
 import { chainUnits, type ChainSpec, type ChainUnit, type DesignLink, type Family, type ResponseKind } from '@/dsp'
 import type { PickedOption } from '@/components/studio/statement/choice-word'
-import { withAnalogFamily, withAnalogLink, withAnalogResponse, withDigitalLink } from '@/lib/chains/edits'
+import {
+  withAnalogFamily,
+  withAnalogLink,
+  withAnalogResponse,
+  withDigitalLink,
+  withSensorUnit,
+} from '@/lib/chains/edits'
 import { partAt, withPartAt } from '@/lib/chains/fields'
 import { unitAfter } from '@/lib/chains/outline'
 import { integralUnits } from '@/lib/chains/stage-starts'
@@ -28,7 +34,14 @@ export function chainOptions(spec: ChainSpec, path: string, linkable: readonly L
   const current = typeof value === 'string' ? value : ''
   switch (part) {
     case 'unit':
-      return { current, options: units(Object.keys(chainUnits) as ChainUnit[], path) }
+      return {
+        current,
+        options: (Object.keys(chainUnits) as ChainUnit[]).map((unit) => ({
+          value: unit,
+          label: unit,
+          apply: (old) => withSensorUnit(old, index, unit),
+        })),
+      }
     case 'source.analog.family':
       return {
         current,

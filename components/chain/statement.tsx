@@ -70,7 +70,7 @@ export function ChainStatement({
             return <Fragment key={`text-${index}`}>{afterWord ? withoutMark(part.text) : part.text}</Fragment>
           }
           const stage = stageOf(part.key, spec.stages)
-          // A full stop or a comma never begins a line: it stays with its word.
+          // A full stop, a comma or a closing bracket never begins a line: it stays with its word.
           return (
             <span key={part.key} className={part.kind === 'name' ? undefined : 'whitespace-nowrap'}>
               <span className={stage && stage === chosen ? 'bg-spruce-wash' : undefined}>
@@ -199,6 +199,6 @@ export function nyquistOf(spec: Parameters<typeof ratesOf>[0], key: string): num
   return rate === null ? null : rate / 2
 }
 
-const MARK = /^[.,]/
+const MARK = /^[.,)]/
 const markOf = (following: string | undefined): string => MARK.exec(following ?? '')?.[0] ?? ''
 const withoutMark = (text: string): string => text.replace(MARK, '')

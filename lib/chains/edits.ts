@@ -1,9 +1,11 @@
 import {
+  chainUnits,
   MOST_CHAIN_STAGES,
   type AnalogSpec,
   type ChainSpec,
   type ChainStage,
   type ChainStageKind,
+  type ChainUnit,
   type DecimateStage,
   type DesignLink,
   type Family,
@@ -275,6 +277,24 @@ export function withIntegrationTimes(spec: ChainSpec, index: number, times: 1 | 
   const units = integralUnits(unitAfter(spec, index - 1), times)
   const unit = units.find((one) => one === 'mm/s' || one === 'mm') ?? units[0]
   return unit ? withStage(spec, index, { ...stage, filter: { ...stage.filter, times, unit } }) : spec
+}
+
+/**
+ * The sensor in another unit. Of the same quantity it stays the same sensor: its sensitivity is said in the new unit, and so are the
+ * interferers' levels, which are given at the sensor.
+ */
+export function withSensorUnit(spec: ChainSpec, index: number, unit: ChainUnit): ChainSpec {
+  const stage = spec.stages[index]
+  if (stage?.kind !== 'sensor' || stage.unit === unit) return spec
+  const [from, to] = [chainUnits[stage.unit], chainUnits[unit]]
+  if (from.quantity !== to.quantity) return withStage(spec, index, { ...stage, unit })
+  // To 13 digits, so that the way there and back ends where it began.
+  const sensitivity = Number(((stage.sensitivity * to.si) / from.si).toPrecision(13))
+  const interferers = spec.interferers.map((one) => ({
+    ...one,
+    level: Number(((one.level * from.si) / to.si).toPrecision(13)),
+  }))
+  return { ...withStage(spec, index, { ...stage, unit, sensitivity }), interferers }
 }
 
 /** A stage's link moved to another version, or to another design. */

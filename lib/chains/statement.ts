@@ -1,5 +1,6 @@
 import type { AnalogSpec, ChainSpec, ChainStage, DesignLink } from '@/dsp'
 import { familyWords, responseWords } from '@/lib/designs/words'
+import { formatQuantity } from '@/lib/format/quantity'
 import { chainFieldText, hertzText } from './fields'
 
 /*
@@ -62,9 +63,9 @@ function phrase(spec: ChainSpec, stage: ChainStage, index: number): ChainStateme
     case 'sensor':
       return [
         quantity('sensitivity', stage.sensitivity),
-        text('/'),
+        text(isQuotient(stage.unit) ? '/(' : '/'),
         choice(`${at}.unit`, stage.unit),
-        text(' '),
+        text(isQuotient(stage.unit) ? ') ' : ' '),
         { kind: 'name', key: `${at}.name`, text: stage.name },
       ]
     case 'analog':
@@ -94,6 +95,13 @@ function phrase(spec: ChainSpec, stage: ChainStage, index: number): ChainStateme
           ]
   }
 }
+
+/** Volts for each m/s² need brackets: V/(m/s²). */
+const isQuotient = (unit: string): boolean => unit.includes('/')
+
+/** What a sensor gives for each unit that it measures: 100 mV/(m/s²). */
+export const sensitivityText = (volts: number, unit: string): string =>
+  `${formatQuantity(volts, 'V')}/${isQuotient(unit) ? `(${unit})` : unit}`
 
 /** A pinned design as a word: which drawing, and which version of it. */
 export const linkText = ({ drawing, version }: DesignLink): string => `${drawing} version ${version}`

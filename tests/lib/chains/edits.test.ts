@@ -7,6 +7,7 @@ import {
   withDecimateType,
   withField,
   withIntegrationTimes,
+  withSensorUnit,
   withStageAdded,
   withStageDuplicated,
   withStageMoved,
@@ -123,6 +124,25 @@ describe('a number that is none for its place', () => {
     expect(boundRefusal(startingChain, 'stages.3.factor', 3.4)).toMatchObject({ nearest: 3 })
     expect(boundRefusal(startingChain, 'stages.0.sensitivity', -1)?.message).toContain('above 0')
     expect(boundRefusal(startingChain, 'kept.fromHz', 0)).toBeNull()
+  })
+})
+
+describe('the unit of the sensor', () => {
+  const shaken: ChainSpec = {
+    ...startingChain,
+    interferers: [{ kind: 'tone', name: 'pump', hz: 147, level: 0.05 }],
+  }
+  it('says the same sensor and the same interferers in another unit of the same quantity', () => {
+    const metric = withSensorUnit(shaken, 0, 'm/s²')
+    // 1 V/g over 9.80665 m/s² (ISO 80000-3).
+    expect(numberAt(metric, 'stages.0.sensitivity')).toBeCloseTo(0.101971621297793, 12)
+    expect(numberAt(metric, 'interferers.0.level')).toBeCloseTo(0.4903325, 12)
+    expect(withSensorUnit(metric, 0, 'g')).toEqual(shaken)
+  })
+  it('keeps the figures where the quantity is another', () => {
+    const pressure = withSensorUnit(shaken, 0, 'Pa')
+    expect(numberAt(pressure, 'stages.0.sensitivity')).toBe(1)
+    expect(pressure.interferers).toBe(shaken.interferers)
   })
 })
 

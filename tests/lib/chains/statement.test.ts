@@ -49,6 +49,12 @@ describe('the sentence of a chain', () => {
       'From a 1 V/g accelerometer through Butterworth order 4 at 160 Hz into 16 bits at 2 kHz, down by 4 and 2, kept from 0.5 to 90 Hz.',
     )
   })
+  it('puts a unit that is a quotient in brackets', () => {
+    const stages = startingChain.stages.map((stage) =>
+      stage.kind === 'sensor' ? { ...stage, unit: 'm/s²' as const } : stage,
+    )
+    expect(plain({ ...startingChain, stages })).toContain('From a 1 V/(m/s²) accelerometer')
+  })
   it('names the version that a stage is tied to', () => {
     expect(plain(linked)).toContain(' through HMF-LP-001 version 3 into 16 bits')
   })
