@@ -17,6 +17,9 @@ const PREFIXES = [
   { factor: 1e-12, symbol: 'p' },
 ] as const
 
+/** From here on even the largest prefix leaves too many digits. */
+const MOST_PREFIXED = 1e16
+
 /** Groups the integer digits by threes with a thin space, from five digits on. */
 function grouped(digits: string): string {
   const [whole = '', fraction] = digits.split('.')
@@ -56,8 +59,10 @@ export function formatQuantity(value: number, unit: string, significant = 4): st
   const magnitude = Math.abs(value)
   // Rounding first, so that 999.96 becomes 1 kHz and not 1000 Hz.
   const rounded = Number(magnitude.toPrecision(significant))
-  const prefix = PREFIXES.find((candidate) => rounded >= candidate.factor) ?? PREFIXES[PREFIXES.length - 1]
-  const { factor, symbol } = prefix ?? { factor: 1, symbol: '' }
+  const prefix = PREFIXES.find((candidate) => rounded >= candidate.factor)
+  // Outside the prefixes powers of ten say it: a prefix would need zeros that nobody counts.
+  if (prefix === undefined || rounded >= MOST_PREFIXED) return `${formatNumber(value, significant)}${THIN}${unit}`
+  const { factor, symbol } = prefix
   return `${signed(value, plain(rounded / factor, significant))}${THIN}${symbol}${unit}`
 }
 

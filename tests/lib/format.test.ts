@@ -26,6 +26,13 @@ describe('numbers on screen', () => {
     expect(formatNumber(123456, 6)).toBe(`123${thin}456`)
     expect(formatNumber(1.25e-7)).toBe('1.25×10⁻⁷')
   })
+  it('writes what lies outside the prefixes as powers of ten, never as zero', () => {
+    expect(formatQuantity(1e-30, 'V', 5)).toBe(`1×10⁻³⁰${thin}V`)
+    expect(formatQuantity(-2.5e-13, 'V')).toBe(`−2.5×10⁻¹³${thin}V`)
+    expect(formatQuantity(1e-12, 'V')).toBe(`1${thin}pV`)
+    expect(formatQuantity(9.99996e-13, 'V')).toBe(`1${thin}pV`)
+    expect(formatQuantity(1e30, 'g')).toBe(`1×10³⁰${thin}g`)
+  })
   it('writes an instant in one fixed zone', () => {
     expect(formatInstant('2026-12-01T09:42:10Z')).toBe('01 Dec 2026 09:42 UTC')
   })
