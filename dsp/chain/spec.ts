@@ -27,7 +27,7 @@ const plainText = (most: number) =>
     .string()
     .min(1)
     .max(most)
-    .regex(/\S/u, 'A name has at least one character that can be seen.')
+    .regex(/[\p{L}\p{N}\p{P}\p{S}]/u, 'A name has at least one character that can be seen.')
     .regex(
       /^[^\p{Cc}\p{Cs}\p{Bidi_Control}]*$/u,
       'A name has no control characters and no marks that turn the reading direction.',
