@@ -3,8 +3,10 @@ import type { Diagnostic } from '../forms/filter'
 import type { ChainPart, ComputedChain, ComputedStage } from './chain'
 import { checkBands, checkOrder, ratesOf } from './check'
 import { costOf } from './cost'
+import { integrationCautions } from './integration-caution'
 import { addGroupDelay } from './part-response'
 import { partsOf } from './parts'
+import { checkConverterRate, checkRanges } from './ranges'
 import type { ChainSpec, ChainUnit } from './spec'
 import { checkToleranceWork } from './tolerance-bound'
 import { chainUnits, integralOf, type ChainQuantity } from './units'
@@ -61,6 +63,8 @@ export function computeChain(spec: ChainSpec): ComputedChain {
   const rates = ratesOf(spec)
   const converterRateHz = rates[converterIndex]!
   const outputRateHz = rates.at(-1)!
+  checkConverterRate(converterRateHz, outputRateHz, converterIndex)
+  checkRanges(spec)
   const [sensor] = spec.stages
   let unit: ChainUnit = sensor?.kind === 'sensor' ? sensor.unit : 'V'
   const middle = (spec.kept.fromHz + spec.kept.toHz) / 2
@@ -88,6 +92,10 @@ export function computeChain(spec: ChainSpec): ComputedChain {
   })
   checkBands(spec, outputRateHz)
   checkToleranceWork(spec, stages)
-  const diagnostics = [...cautionsOf(spec), ...stages.flatMap((stage) => stage.diagnostics)]
+  const diagnostics = [
+    ...cautionsOf(spec),
+    ...integrationCautions(spec, rates),
+    ...stages.flatMap((stage) => stage.diagnostics),
+  ]
   return { spec, stages, converterIndex, converterRateHz, outputRateHz, unit, diagnostics }
 }

@@ -7,6 +7,8 @@ import type { ConverterStage, SensorStage } from './spec'
 import { converterStrips, partsAhead, stripsOver } from './strips'
 
 const TOLERANCE = 1e-6
+/** Past this nothing is left of a signal, or of the noise, that a double still tells from 0. */
+const MOST_RATIO_DB = 400
 
 /** Noise of a converter at its input, V²/Hz, even from 0 Hz to half its rate. */
 function voltsSquaredPerHz({ resolution, fullScaleVolts, sampleRateHz }: ConverterStage): number {
@@ -19,6 +21,12 @@ function wordsOf({ resolution, fullScaleVolts }: ConverterStage): string {
   return resolution.by === 'bits'
     ? `Ideal quantiser of ${resolution.bits} bits over ± ${show(fullScaleVolts)} V, even up to half its rate`
     : `Measured density of ${show(resolution.voltsPerRootHz)} V/√Hz, even up to half the converter’s rate`
+}
+
+/** A ratio in dB that stays finite where a shaping filter leaves nothing of the signal, or of either. */
+function ratioDb(signal: number, noise: number): number {
+  if (!(signal > 0)) return -MOST_RATIO_DB
+  return Math.min(Math.max(20 * (Math.log10(signal) - Math.log10(noise)), -MOST_RATIO_DB), MOST_RATIO_DB)
 }
 
 /** Sum of |H|² of the digital parts over all that folds onto each output frequency below half the converter's rate. */
@@ -55,7 +63,7 @@ export function noiseBudget(chain: ComputedChain): NoiseBudget {
   for (const part of partsAhead(chain)) addMagnitudeDb(part, middle, ahead, scratch)
   const [behindDb = 0] = stripsOver(chain, middle).digitalDb(0)
   const inSamples = (converter.fullScaleVolts / sensitivity) * 10 ** (behindDb / 20)
-  const snrDb = 20 * Math.log10(inSamples / Math.SQRT2 / rms)
+  const snrDb = ratioDb(inSamples / Math.SQRT2, rms)
   return {
     parts: [{ stageId: converter.id, source: 'converter', rms, words: wordsOf(converter) }],
     rms,

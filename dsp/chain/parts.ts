@@ -5,6 +5,7 @@ import type { Diagnostic, DigitalFilter, Filter, FirFilter } from '../forms/filt
 import type { FirSpec } from '../spec'
 import type { ChainPart } from './chain'
 import { analogOf, compensationOf, digitalHighPassOf, digitalOf, firOf, originalOf, resonanceOf } from './filters'
+import { checkDigitalCorner } from './ranges'
 import type { AnalogStage, ChainStage, DecimateStage, DesignLink, SensorStage, ShapeStage } from './spec'
 
 /*
@@ -203,6 +204,7 @@ function shapeParts({ filter }: ShapeStage, rateHz: number, path: string): Stage
     const message = `Integrating ${times === 1 ? 'once' : 'twice'} takes a high-pass of order ${times} at least, else an offset grows without bound.`
     throw new DesignError('high-pass-order', `${field}.order`, message, times)
   }
+  checkDigitalCorner(highPass.cornerHz, rateHz, `${field}.cornerHz`)
   const toField = (from: string): string => (from === 'analog.order' ? `${field}.order` : `${field}.cornerHz`)
   const made = named(toField, () => digitalHighPassOf(highPass.cornerHz, highPass.order, rateHz))
   return {

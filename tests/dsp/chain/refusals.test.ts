@@ -1,8 +1,10 @@
 import { describe, expect, it } from 'vitest'
 import {
+  chainResponse,
   chainSpecSchema,
   computeChain,
   DesignError,
+  noiseBudget,
   type ChainSpec,
   type ChainStage,
   type DesignLink,
@@ -229,6 +231,96 @@ describe('the nearest value that works', () => {
       expect(left?.field).not.toBe(field)
     },
   )
+})
+
+const withSensor = (part: Partial<typeof sensor>) => chainOf([{ ...flatSensor, ...part }, converter(8000)])
+const withConverter = (part: Partial<ReturnType<typeof converter>>) =>
+  chainOf([flatSensor, { ...converter(8000), ...part }])
+
+const outOfRange: readonly (readonly [spec: ChainSpec, field: string, nearest: number])[] = [
+  [{ ...digital(), kept: { fromHz: 0, toHz: 1e-305 } }, 'kept.toHz', 1e-6],
+  [{ ...digital(), kept: { fromHz: 1e-300, toHz: 1e-6 } }, 'kept.fromHz', 0],
+  [{ ...digital(), kept: { fromHz: 9e-7, toHz: 1 } }, 'kept.fromHz', 1e-6],
+  [withSensor({ sensitivity: 1e-160 }), 'stages.0.sensitivity', 1e-9],
+  [withSensor({ sensitivity: 1e-308 }), 'stages.0.sensitivity', 1e-9],
+  [withSensor({ resonance: { f0Hz: 1e-308, q: 1 } }), 'stages.0.resonance.f0Hz', 1e-6],
+  [withSensor({ resonance: { f0Hz: 1, q: 1e-308 } }), 'stages.0.resonance.q', 1e-3],
+  [withSensor({ highPass: { cornerHz: 1e-308, order: 4 } }), 'stages.0.highPass.cornerHz', 1e-6],
+  [withConverter({ fullScaleVolts: 1e-308 }), 'stages.1.fullScaleVolts', 1e-6],
+  [withConverter({ resolution: { by: 'noise', voltsPerRootHz: 1e-160 } }), 'stages.1.resolution.voltsPerRootHz', 1e-12],
+  // Behind it stands a filter whose edges would be too high for that rate: the rate is what is wrong.
+  [chainOf([flatSensor, converter(1e-308), equiripple(100, 200)]), 'stages.1.sampleRateHz', 8e-6],
+  [digital(equiripple(1e-308, 200)), 'stages.2.filter.passHz', 1e-6],
+  [digital(equiripple(1e-308, 1e-307)), 'stages.2.filter.passHz', 1e-6],
+  [digital(cic(2, 'c', { taps: 15, passHz: 1e-200 })), 'stages.2.filter.compensation.passHz', 1e-6],
+  [digital(integrate(1, 'mm/s', 2, 1e-300)), 'stages.2.filter.highPass.cornerHz', 8.000008e-3],
+  [{ ...digital(), sheet: [{ kind: 'delay', atHz: 1e-308, atMostSeconds: 1 }] }, 'sheet.0.atHz', 1e-6],
+  [{ ...digital(), sheet: [{ kind: 'flatness', fromHz: 1e-308, toHz: 5, withinDb: 1 }] }, 'sheet.0.fromHz', 0],
+  [{ ...digital(), sheet: [{ kind: 'alias-floor', toHz: 1e-308, atLeastDb: 9 }] }, 'sheet.0.toHz', 1e-6],
+  [{ ...digital(), interferers: [{ kind: 'tone', name: 'Pump', hz: 1e-308, level: 1 }] }, 'interferers.0.hz', 1e-6],
+  [
+    { ...digital(), interferers: [{ kind: 'tone', name: 'Pump', hz: 50, level: 1e-300 }] },
+    'interferers.0.level',
+    1e-15,
+  ],
+  [
+    { ...digital(), interferers: [{ kind: 'band', name: 'Pump', fromHz: 1e-9, toHz: 5, level: 1 }] },
+    'interferers.0.fromHz',
+    1e-6,
+  ],
+]
+
+describe('a value that no instrument has', () => {
+  it.each(outOfRange)('is refused beside its field, with the nearest in range (%#)', (spec, field, nearest) => {
+    expect(chainSpecSchema.safeParse(spec).success).toBe(true)
+    const refusal = refusalOf(spec)
+    expect({ code: refusal.code, field: refusal.field, nearest: refusal.nearest }).toEqual({
+      code: 'out-of-range',
+      field,
+      nearest,
+    })
+    let left: DesignError | null = null
+    try {
+      computeChain(withValue(spec, field, nearest))
+    } catch (thrown) {
+      if (!(thrown instanceof DesignError)) throw thrown
+      left = thrown
+    }
+    expect(left?.field).not.toBe(field)
+  })
+
+  it('leaves every figure finite at the ends of the ranges', () => {
+    for (const sensitivity of [1e-9, 1e9]) {
+      for (const fullScaleVolts of [1e-6, 1e6]) {
+        for (const resolution of [
+          { by: 'noise', voltsPerRootHz: 1e-12 },
+          { by: 'noise', voltsPerRootHz: 1 },
+          { by: 'bits', bits: 32 },
+        ] as const) {
+          const kept = { fromHz: 0, toHz: 1e-6 }
+          const stages = [
+            { ...flatSensor, sensitivity },
+            { ...converter(8000), fullScaleVolts, resolution },
+          ]
+          const chain = computeChain(chainOf(stages, { kept }))
+          const { rms, density, fullScale, snrDb, effectiveBits } = noiseBudget(chain)
+          expect([rms, density, fullScale, snrDb, effectiveBits].every(Number.isFinite)).toBe(true)
+          const { magnitudeDb } = chainResponse(chain, Float64Array.of(0, 5e-7, 1e-6))
+          expect(magnitudeDb.every(Number.isFinite)).toBe(true)
+        }
+      }
+    }
+  })
+})
+
+describe('a name', () => {
+  it.each(['\u200b\u2060', '\ufeff', '\u00ad', ' \u200d '])('has a character that can be seen (%#)', (name) => {
+    expect(chainSpecSchema.safeParse(withSensor({ name })).success).toBe(false)
+  })
+
+  it.each(['Pump', '加速度', '№ 3', '→', '#'])('may be %s', (name) => {
+    expect(chainSpecSchema.safeParse(withSensor({ name })).success).toBe(true)
+  })
 })
 
 describe('links that fit', () => {
