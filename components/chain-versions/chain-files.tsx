@@ -7,14 +7,17 @@ import { caution } from '@/lib/exports/coefficient-set'
 export function ChainFiles({
   chain,
   version,
+  lacksStages,
   mayExport,
 }: {
   chain: ChainRecord
   version: ChainVersionSummary
+  /** It was saved before stages that integrate and shape were kept, and has some. */
+  lacksStages: boolean
   mayExport: boolean
 }) {
   const path = `/api/chains/${chain.id}/versions/${version.number}/export`
-  const decimates = version.spec.stages.some((stage) => stage.kind === 'decimate' && !stage.bypassed)
+  const runs = version.spec.stages.some(({ kind, bypassed }) => (kind === 'decimate' || kind === 'shape') && !bypassed)
   return (
     <div className="flex max-w-prose flex-col gap-3 text-[14px]">
       {mayExport ? (
@@ -22,9 +25,9 @@ export function ChainFiles({
           <a className={buttonClass()} href={`${path}?as=json`} download>
             Chain, JSON
           </a>
-          {decimates ? (
+          {runs ? (
             <a className={buttonClass()} href={`${path}?as=c`} download>
-              Decimation coefficients, C
+              Digital stages, C
             </a>
           ) : null}
         </div>
@@ -33,6 +36,12 @@ export function ChainFiles({
           As an observer you read this version; an owner, designer, reviewer or integrator of the team hands it over.
         </p>
       )}
+      {lacksStages ? (
+        <p className="font-semibold text-vermilion">
+          This version was saved before stages that integrate and shape were kept: its files hold the decimations alone,
+          and no test vector. Save the chain again for files that hold every digital stage.
+        </p>
+      ) : null}
       <p className="text-pencil">
         SHA-256 of spec, figures and numbers{' '}
         <span className="numeric wrap-anywhere text-[12px] text-ink">{version.checksum}</span>

@@ -21,6 +21,7 @@ export function ChainVersionSheet({
   results,
   links,
   numbers,
+  lacksStages,
   mayExport,
 }: {
   chain: ChainRecord
@@ -30,6 +31,8 @@ export function ChainVersionSheet({
   links: readonly StageLink[]
   /** Of all versions of the chain, newest first. */
   numbers: readonly number[]
+  /** It was saved before stages that integrate and shape were kept, and has some. */
+  lacksStages: boolean
   mayExport: boolean
 }) {
   const { spec, figures } = version
@@ -99,7 +102,7 @@ export function ChainVersionSheet({
       </Part>
 
       <Part id="files" title="Files">
-        <ChainFiles chain={chain} version={version} mayExport={mayExport} />
+        <ChainFiles chain={chain} version={version} lacksStages={lacksStages} mayExport={mayExport} />
       </Part>
 
       <div className="w-full max-w-lg self-end">

@@ -61,7 +61,7 @@ export const chainVersions = pgTable(
     note: text().notNull(),
     spec: jsonb().$type<ChainSpec>().notNull(),
     figures: jsonb().$type<ChainFigures>().notNull(),
-    /** What the decimation stages come to; what is handed over are these, never a recomputation. */
+    /** What the digital stages come to; what is handed over are these, never a recomputation. */
     numbers: jsonb().$type<StoredChainNumbers>().notNull(),
     /** SHA-256 of the canonical spec, figures and numbers, hex. */
     checksum: text().notNull(),

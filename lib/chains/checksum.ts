@@ -5,7 +5,7 @@ import { canonicalJson } from './canonical'
 import type { StoredChainNumbers } from './stored-numbers'
 import type { ChainFigures } from './types'
 
-/** SHA-256 of what a version says: its spec, the figures it was saved with and the numbers of its decimation stages; hex. */
+/** SHA-256 of what a version says: its spec, the figures it was saved with and the numbers of its digital stages; hex. */
 export const chainChecksum = (version: {
   readonly spec: ChainSpec
   readonly figures: ChainFigures

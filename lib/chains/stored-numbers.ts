@@ -1,9 +1,9 @@
-import type { ComputedChain, ComputedStage } from '@/dsp'
+import { chainUnits, type ChainUnit, type ComputedChain, type ComputedStage, type DesignLink } from '@/dsp'
 import { coefficientsOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 
 /*
- * The numbers of a chain as they are kept and handed over: what its decimation stages run. Shaping stages are designs, which are handed over
- * by themselves, or an integration.
+ * The numbers of a chain as they are kept and handed over: everything that runs between the converter's samples and the stored ones, in
+ * signal order. Format 1, which versions were kept in before, held the decimation stages alone.
  */
 
 /** One part of a decimation stage; its rate is the one that it runs at. */
@@ -18,6 +18,14 @@ export type StoredChainPart =
     }
   | { readonly kind: 'filter'; readonly coefficients: StoredCoefficients }
 
+/** The design version that a stage's filter is. */
+export interface StoredDesignName {
+  readonly designId: string
+  readonly version: number
+  readonly drawing: string
+  readonly title: string
+}
+
 export interface StoredDecimation {
   readonly stageId: string
   readonly factor: number
@@ -29,38 +37,102 @@ export interface StoredDecimation {
   readonly parts: readonly StoredChainPart[]
 }
 
-export interface StoredChainNumbers {
+export interface StoredIntegration {
+  readonly kind: 'integrate'
+  readonly stageId: string
+  readonly rateHz: number
+  readonly delaySeconds: number
+  readonly times: 1 | 2
+  /** y[n] = y[n−1] + (x[n] + x[n−1]) / (2 · rateHz), so many times over, behind the high-pass. */
+  readonly rule: 'trapezoidal'
+  readonly highPass: StoredCoefficients
+  readonly fromUnit: ChainUnit
+  readonly toUnit: ChainUnit
+  /** What the integral, in the unit ahead times seconds, is multiplied by: g·s → mm/s is 9806.65. */
+  readonly scale: number
+}
+
+export interface StoredShaping {
+  readonly kind: 'shape'
+  readonly stageId: string
+  readonly rateHz: number
+  readonly delaySeconds: number
+  readonly design: StoredDesignName
+  readonly coefficients: StoredCoefficients
+}
+
+export type StoredDigitalStage =
+  | (StoredDecimation & { readonly kind: 'decimate'; readonly design: StoredDesignName | null })
+  | StoredIntegration
+  | StoredShaping
+
+interface StoredDecimations {
   readonly format: 1
   /** In signal order; a bypassed stage isn't among them. */
   readonly decimations: readonly StoredDecimation[]
 }
 
-export function chainNumbersOf(chain: ComputedChain): StoredChainNumbers {
-  return { format: 1, decimations: chain.stages.flatMap((stage) => decimationOf(stage) ?? []) }
+interface StoredDigitalPart {
+  readonly format: 2
+  /** In signal order; a bypassed stage isn't among them. */
+  readonly stages: readonly StoredDigitalStage[]
 }
 
-function decimationOf({
-  stage,
-  factor,
-  inRateHz,
-  outRateHz,
-  delaySeconds,
-  parts,
-}: ComputedStage): StoredDecimation | null {
-  if (stage.kind !== 'decimate' || stage.bypassed || inRateHz === null || outRateHz === null) return null
+export type StoredChainNumbers = StoredDecimations | StoredDigitalPart
+
+/** The digital stages of a version, in signal order; of one that was kept in format 1, its decimations alone. */
+export const digitalStagesOf = (numbers: StoredChainNumbers): readonly StoredDigitalStage[] =>
+  numbers.format === 2
+    ? numbers.stages
+    : numbers.decimations.map((stage) => ({ kind: 'decimate', design: null, ...stage }))
+
+export function chainNumbersOf(chain: ComputedChain): StoredDigitalPart {
   return {
-    stageId: stage.id,
-    factor,
-    inRateHz,
-    outRateHz,
-    delaySeconds,
-    parts: parts.flatMap((part): StoredChainPart[] => {
-      if (part.kind === 'cic') {
-        const { order, combDelay, sampleRateHz } = part
-        return [{ kind: 'cic', order, combDelay, factor: part.factor, sampleRateHz }]
-      }
-      if (part.kind !== 'digital') return []
-      return [{ kind: 'filter', coefficients: coefficientsOf({ analog: null, digital: part.filter }) }]
-    }),
+    format: 2,
+    stages: chain.stages.flatMap((stage, index) => storedStage(stage, chain.stages[index - 1]) ?? []),
   }
 }
+
+function storedStage(computed: ComputedStage, before: ComputedStage | undefined): StoredDigitalStage | null {
+  const { stage, factor, inRateHz, outRateHz, delaySeconds, parts } = computed
+  if (stage.bypassed || inRateHz === null || outRateHz === null) return null
+  const stageId = stage.id
+  if (stage.kind === 'decimate') {
+    const design = stage.filter.type === 'design' ? nameOf(stage.filter.link) : null
+    return { kind: 'decimate', stageId, factor, inRateHz, outRateHz, delaySeconds, design, parts: storedParts(parts) }
+  }
+  if (stage.kind !== 'shape' || !before) return null
+  const [filter] = storedParts(parts)
+  if (filter?.kind !== 'filter') throw new Error('A shaping stage has a filter.')
+  const shared = { stageId, rateHz: inRateHz, delaySeconds }
+  if (stage.filter.type === 'design') {
+    return { kind: 'shape', ...shared, design: nameOf(stage.filter.link), coefficients: filter.coefficients }
+  }
+  return {
+    kind: 'integrate',
+    ...shared,
+    times: stage.filter.times,
+    rule: 'trapezoidal',
+    highPass: filter.coefficients,
+    fromUnit: before.unit,
+    toUnit: computed.unit,
+    scale: chainUnits[before.unit].si / chainUnits[computed.unit].si,
+  }
+}
+
+const nameOf = ({ designId, version, drawing, title }: DesignLink): StoredDesignName => ({
+  designId,
+  version,
+  drawing,
+  title,
+})
+
+const storedParts = (parts: ComputedStage['parts']): StoredChainPart[] =>
+  parts.flatMap((part): StoredChainPart[] => {
+    if (part.kind === 'cic') {
+      const { order, combDelay, factor, sampleRateHz } = part
+      return [{ kind: 'cic', order, combDelay, factor, sampleRateHz }]
+    }
+    if (part.kind !== 'digital') return []
+    return [{ kind: 'filter', coefficients: coefficientsOf({ analog: null, digital: part.filter }) }]
+  })

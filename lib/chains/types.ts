@@ -26,7 +26,7 @@ export interface ChainVersionSummary {
   readonly state: VersionState
   readonly parentNumber: number | null
   readonly engineVersion: string
-  /** SHA-256 of the canonical spec, figures and decimation numbers, hex. */
+  /** SHA-256 of the canonical spec, figures and numbers, hex. */
   readonly checksum: string
   readonly spec: ChainSpec
   readonly figures: ChainFigures

@@ -1,16 +1,22 @@
 import { isStoredTaps, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import { chainText } from '@/lib/chains/statement'
 import { stateWords } from '@/lib/designs/words'
-import type { StoredChainPart, StoredDecimation } from '@/lib/chains/stored-numbers'
+import {
+  digitalStagesOf,
+  type StoredChainPart,
+  type StoredDesignName,
+  type StoredDigitalStage,
+} from '@/lib/chains/stored-numbers'
 import { array, commentLines } from './c-parts'
 import type { ChainSource } from './chain-source'
+import { chainInput, chainTestVector, lacksStages, storedUnit, type ChainTestVector } from './chain-test-vector'
 import { caution } from './coefficient-set'
 import { cComment, cString } from './escape'
 import { cLiteral, decimalText } from './numbers'
 
 /*
- * One self-contained C99 header with what the decimation stages of a chain run: nothing but numbers, which firmware feeds to its own filters.
- * Whatever a stage is named for people stands in comments alone; identifiers count the stages.
+ * One self-contained C99 header with what the digital stages of a chain run: numbers, which firmware feeds to its own filters, and samples
+ * to hold it to. Whatever a stage is named for people stands in comments alone; identifiers count the stages.
  */
 
 const literal = (value: number): string => cLiteral(value, 'double', 'decimal')
@@ -19,11 +25,15 @@ const hertz = (value: number): string => `${decimalText(value, 'double')} Hz`
 export function chainCHeaderFile(source: ChainSource, name: string): string {
   const { version } = source
   const upper = name.toUpperCase()
-  const { decimations } = version.numbers
-  const converter = version.spec.stages.find((stage) => stage.kind === 'converter')
+  const stages = digitalStagesOf(version.numbers)
+  const { rateHz, voltsPerUnit } = chainInput(version.spec)
+  const body = [
+    ...stages.flatMap((stage, index) => stageLines(stage, index + 1, stages.length, name)),
+    ...testLines(source, name),
+  ]
   return [
     '/*',
-    ' * Polewright chain: coefficients of its decimation stages',
+    ' * Polewright chain: what its digital stages run',
     ' *',
     ...aboutLines(source).flatMap(([key, text]) => commentLines(`${key}: ${cComment(text)}`)),
     ' */',
@@ -32,15 +42,39 @@ export function chainCHeaderFile(source: ChainSource, name: string): string {
     '',
     `#define ${upper}_VERSION ${version.number}`,
     `#define ${upper}_SHA256 ${cString(version.checksum)}`,
-    `#define ${upper}_CONVERTER_RATE_HZ ${literal(converter?.sampleRateHz ?? 0)}`,
+    `#define ${upper}_CONVERTER_RATE_HZ ${literal(rateHz)}`,
     `#define ${upper}_OUTPUT_RATE_HZ ${literal(version.figures.outputRateHz)}`,
-    `#define ${upper}_DECIMATIONS ${decimations.length}`,
+    '/* Of the sensor: what the converter reads, in volts, is divided by it ahead of the first stage. */',
+    `#define ${upper}_VOLTS_PER_UNIT ${literal(voltsPerUnit)}`,
+    `#define ${upper}_STAGES ${stages.length}`,
     '',
-    ...decimations.flatMap((stage, index) => stageLines(stage, index + 1, decimations.length, name)),
+    ...body,
+    ...contentsLines(body, name),
     `#endif /* ${upper}_H */`,
     '',
   ].join('\n')
 }
+
+/** A function that refers to every array, so that a file which uses but some of them compiles without a warning. */
+function contentsLines(body: readonly string[], name: string): string[] {
+  const arrays = body.flatMap((line) => /^static const double (\w+)\[/.exec(line)?.[1] ?? [])
+  if (arrays.length === 0) return []
+  return [
+    '/* The arrays above, by their order; 0 behind the last. It also keeps compilers quiet about those that are not used. */',
+    `static inline const void *${name}_contents(unsigned at)`,
+    '{',
+    '  switch (at) {',
+    ...arrays.map((own, at) => `  case ${at}: return ${own};`),
+    '  default: return 0;',
+    '  }',
+    '}',
+    '',
+  ]
+}
+
+const keptBefore =
+  'saved before stages that integrate and shape were kept: THEY ARE MISSING HERE, and the stages below alone do not make the stored sample; ' +
+  'save the chain again for a complete file'
 
 function aboutLines({ chain, version }: ChainSource): readonly (readonly [string, string])[] {
   return [
@@ -52,10 +86,19 @@ function aboutLines({ chain, version }: ChainSource): readonly (readonly [string
     ['saved', `${version.savedAt} by ${version.savedBy}`],
     ['note', version.note],
     ['statement', chainText(version.spec)],
+    ...(lacksStages(version) ? ([['incomplete', keptBefore]] as const) : []),
     [
       'order of use',
-      'as numbered, from the converter to the stored sample; what stands between them is not in this file',
+      'volts that the converter read, divided by VOLTS_PER_UNIT, then the stages as numbered; what comes out of the last one is stored, ' +
+        `in ${storedUnit(version.spec)}`,
     ],
+    ['start', 'from rest: everything before the first sample is 0'],
+    [
+      'sections',
+      'y[n] = b0*x[n] + b1*x[n-1] + b2*x[n-2] - a1*y[n-1] - a2*y[n-2], feedback being subtracted; each feeds the next',
+    ],
+    ['taps', 'y[n] = h0*x[n] + h1*x[n-1] + ... + hN*x[n-N]'],
+    ['decimation', 'keeps samples 0, FACTOR, 2*FACTOR ... of what comes in'],
     ['number type', 'double precision (IEEE 754 binary64)'],
     ['delay', 'group delay in the middle of the kept band, seconds'],
     ['SHA-256', version.checksum],
@@ -65,27 +108,83 @@ function aboutLines({ chain, version }: ChainSource): readonly (readonly [string
   ]
 }
 
-function stageLines(stage: StoredDecimation, at: number, of: number, name: string): string[] {
-  const own = `${name}_d${at}`
+type Decimation = Extract<StoredDigitalStage, { kind: 'decimate' }>
+
+function stageLines(stage: StoredDigitalStage, at: number, of: number, name: string): string[] {
+  const own = `${name}_s${at}`
   const upper = own.toUpperCase()
+  const head = (text: string) => blockComment(`Stage ${at} of ${of} (${stage.stageId}): ${text}`)
+  const delay = `#define ${upper}_DELAY_SECONDS ${literal(stage.delaySeconds)}`
+  switch (stage.kind) {
+    case 'decimate':
+      return [
+        ...head(
+          `decimation from ${hertz(stage.inRateHz)} down by ${stage.factor} to ${hertz(stage.outRateHz)}${designWords(stage.design)}. ` +
+            orderWords(stage),
+        ),
+        `#define ${upper}_FACTOR ${stage.factor}`,
+        `#define ${upper}_IN_RATE_HZ ${literal(stage.inRateHz)}`,
+        `#define ${upper}_OUT_RATE_HZ ${literal(stage.outRateHz)}`,
+        delay,
+        ...stage.parts.flatMap((part, index) => partLines(part, nameOf(stage, index, own))),
+        '',
+      ]
+    case 'integrate':
+      return [
+        ...head(
+          `integration at ${hertz(stage.rateHz)}, ${stage.times === 1 ? 'once' : 'twice'}, from ${stage.fromUnit} to ${stage.toUnit}. ` +
+            'The high-pass sections first; then, INTEGRALS times over, y[n] = y[n-1] + (x[n] + x[n-1]) / (2 * RATE_HZ); then times SCALE.',
+        ),
+        `#define ${upper}_RATE_HZ ${literal(stage.rateHz)}`,
+        `#define ${upper}_INTEGRALS ${stage.times}`,
+        `#define ${upper}_SCALE ${literal(stage.scale)}`,
+        delay,
+        ...filterLines(stage.highPass, `${own}_high_pass`),
+        '',
+      ]
+    case 'shape':
+      return [
+        ...head(
+          `shaping at ${hertz(stage.rateHz)}${designWords(stage.design)}. Every sample is filtered and handed on.`,
+        ),
+        `#define ${upper}_RATE_HZ ${literal(stage.rateHz)}`,
+        delay,
+        ...filterLines(stage.coefficients, own),
+        '',
+      ]
+  }
+}
+
+const designWords = (design: StoredDesignName | null): string =>
+  design === null ? '' : `, by design ${design.drawing}, version ${design.version}, "${design.title}"`
+
+function testLines({ version }: ChainSource, name: string): string[] {
+  const test = chainTestVector(version)
+  return test === null ? [] : vectorLines(test, storedUnit(version.spec), name)
+}
+
+function vectorLines({ hold, inputVolts, stored, tolerance }: ChainTestVector, unit: string, name: string): string[] {
+  const upper = name.toUpperCase()
   return [
     ...blockComment(
-      `Decimation ${at} of ${of} (stage ${stage.stageId}): from ${hertz(stage.inRateHz)} down by ${stage.factor} to ${hertz(stage.outRateHz)}. ` +
-        orderWords(stage),
+      'A test of all stages together, from rest: each input, in volts at the converter, stands for TEST_HOLD samples in a row at ' +
+        `CONVERTER_RATE_HZ; stored are these samples, in ${unit}, the first at the first input. A run in double precision differs by no more ` +
+        'than TEST_TOLERANCE; converters and other number types add their own steps.',
     ),
-    `#define ${upper}_FACTOR ${stage.factor}`,
-    `#define ${upper}_IN_RATE_HZ ${literal(stage.inRateHz)}`,
-    `#define ${upper}_OUT_RATE_HZ ${literal(stage.outRateHz)}`,
-    `#define ${upper}_DELAY_SECONDS ${literal(stage.delaySeconds)}`,
-    ...stage.parts.flatMap((part, index) => partLines(part, nameOf(stage, index, own))),
+    `#define ${upper}_TEST_HOLD ${hold}`,
+    `#define ${upper}_TEST_INPUTS ${inputVolts.length}`,
+    `#define ${upper}_TEST_STORED ${stored.length}`,
+    `#define ${upper}_TEST_TOLERANCE ${literal(tolerance)}`,
+    ...array(`static const double ${name}_test_volts[${upper}_TEST_INPUTS]`, inputVolts.map(literal)),
+    ...array(`static const double ${name}_test_stored[${upper}_TEST_STORED]`, stored.map(literal)),
     '',
   ]
 }
 
-const hasCic = ({ parts }: StoredDecimation) => parts.some(({ kind }) => kind === 'cic')
+const hasCic = ({ parts }: Decimation) => parts.some(({ kind }) => kind === 'cic')
 
 /** What the firmware does with the parts, in order. */
-function orderWords(stage: StoredDecimation): string {
+function orderWords(stage: Decimation): string {
   if (!hasCic(stage))
     return 'Filter at the rate ahead, then keep every FACTOR-th sample; taps need computing for those alone.'
   const cic =
@@ -94,7 +193,7 @@ function orderWords(stage: StoredDecimation): string {
 }
 
 /** A filter behind a CIC filter lifts its droop. */
-const nameOf = (stage: StoredDecimation, index: number, own: string): string =>
+const nameOf = (stage: Decimation, index: number, own: string): string =>
   index > 0 && hasCic(stage) ? `${own}_compensation` : own
 
 function partLines(part: StoredChainPart, name: string): string[] {

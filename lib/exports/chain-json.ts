@@ -1,11 +1,12 @@
 import * as z from 'zod'
 import { chainSpecSchema, chainUnitSchema } from '@/dsp'
-import { chainFiguresSchema, storedChainNumbersSchema } from './chain-kept'
+import { chainFiguresSchema, chainTestVectorSchema, storedChainNumbersSchema } from './chain-kept'
 import { chainText } from '@/lib/chains/statement'
 import { stateWords } from '@/lib/designs/words'
 import { caution } from './coefficient-set'
 import { asciiJson } from './escape'
 import type { ChainSource } from './chain-source'
+import { chainInput, chainTestVector, storedUnit } from './chain-test-vector'
 
 /*
  * The documented file of a chain: this schema is what is written, what is served as JSON Schema, and what tests read the file back with.
@@ -14,7 +15,7 @@ import type { ChainSource } from './chain-source'
 export const chainFileSchema = z
   .strictObject({
     format: z.literal('polewright chain'),
-    formatVersion: z.literal(1),
+    formatVersion: z.literal(2),
     name: z.string().meta({ description: 'What identifiers made from this chain begin with.' }),
     chain: z.strictObject({ drawingNumber: z.string(), title: z.string(), project: z.string() }),
     version: z.strictObject({
@@ -34,7 +35,14 @@ export const chainFileSchema = z
     }),
     figures: chainFiguresSchema.meta({ description: 'What the version was saved with.' }),
     numbers: storedChainNumbersSchema.meta({
-      description: 'What the decimation stages run, in double precision and with subtracted feedback.',
+      description:
+        'What runs between the converter and the stored sample, in double precision and with subtracted feedback: a section is ' +
+        'y[n] = b0·x[n] + b1·x[n−1] + b2·x[n−2] − a1·y[n−1] − a2·y[n−2], and sections follow each other.',
+    }),
+    test: chainTestVectorSchema.nullable().meta({
+      description:
+        'A run of the whole digital part on these numbers, to hold firmware to. null where the version was saved before stages that ' +
+        'integrate and shape were kept, and has some.',
     }),
     checksum: z.strictObject({
       algorithm: z.literal('SHA-256'),
@@ -53,11 +61,11 @@ export const chainJsonSchema = () => z.toJSONSchema(chainFileSchema)
 
 export function chainJsonFile({ chain, version }: ChainSource, name: string): string {
   const { spec, figures, numbers } = version
-  const [sensor] = spec.stages
-  if (sensor?.kind !== 'sensor') throw new Error('A chain that was saved begins with its sensor.')
+  const { unit, rateHz, voltsPerUnit } = chainInput(spec)
+  const test = chainTestVector(version)
   const file = chainFileSchema.parse({
     format: 'polewright chain',
-    formatVersion: 1,
+    formatVersion: 2,
     name,
     chain: { drawingNumber: chain.drawingNumber, title: chain.title, project: chain.projectName },
     version: {
@@ -69,10 +77,11 @@ export function chainJsonFile({ chain, version }: ChainSource, name: string): st
       engine: version.engineVersion,
     },
     statement: chainText(spec),
-    unit: sensor.unit,
+    unit,
     spec,
     figures,
     numbers,
+    test: test && { inputRateHz: rateHz, voltsPerUnit, unit: storedUnit(spec), ...test },
     checksum: { algorithm: 'SHA-256', of: 'spec, figures and numbers', hex: version.checksum },
     caution,
   })

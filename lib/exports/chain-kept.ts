@@ -1,4 +1,5 @@
 import * as z from 'zod'
+import { chainUnitSchema } from '@/dsp'
 import { keptNumbersSchema } from './json'
 
 /* The shapes that a version of a chain is kept in, as its file states them. */
@@ -19,33 +20,101 @@ export const chainFiguresSchema = z.strictObject({
     .meta({ description: 'Between two channels, at the 95th percentile of the tolerance run of this version’s seed.' }),
 })
 
-export const storedChainNumbersSchema = z.strictObject({
-  format: z.literal(1),
-  decimations: z
+const decimation = {
+  stageId: z.string(),
+  factor: z.int(),
+  inRateHz: z.number(),
+  outRateHz: z.number(),
+  delaySeconds: z.number(),
+  parts: z
     .array(
-      z.strictObject({
-        stageId: z.string(),
-        factor: z.int(),
-        inRateHz: z.number(),
-        outRateHz: z.number(),
-        delaySeconds: z.number(),
-        parts: z
-          .array(
-            z.discriminatedUnion('kind', [
-              z
-                .strictObject({
-                  kind: z.literal('cic'),
-                  order: z.int(),
-                  combDelay: z.int(),
-                  factor: z.int(),
-                  sampleRateHz: z.number(),
-                })
-                .meta({ description: 'Integrators and combs; its output is divided by (factor · combDelay)^order.' }),
-              z.strictObject({ kind: z.literal('filter'), coefficients: keptNumbersSchema }),
-            ]),
-          )
-          .meta({ description: 'In signal order; each says at which rate it runs.' }),
-      }),
+      z.discriminatedUnion('kind', [
+        z
+          .strictObject({
+            kind: z.literal('cic'),
+            order: z.int(),
+            combDelay: z.int(),
+            factor: z.int(),
+            sampleRateHz: z.number(),
+          })
+          .meta({ description: 'Integrators and combs; its output is divided by (factor · combDelay)^order.' }),
+        z.strictObject({ kind: z.literal('filter'), coefficients: keptNumbersSchema }),
+      ]),
     )
-    .meta({ description: 'In signal order, bypassed stages left out.' }),
+    .meta({
+      description:
+        'In signal order; each says at which rate it runs. A CIC filter keeps every factor-th sample between its integrators and its ' +
+        'combs; without one the only filter runs at the rate ahead, and every factor-th of its samples is kept, the first among them.',
+    }),
+}
+
+const designName = z.strictObject({
+  designId: z.uuid(),
+  version: z.int(),
+  drawing: z.string(),
+  title: z.string(),
+})
+
+const linear = { stageId: z.string(), rateHz: z.number(), delaySeconds: z.number() }
+
+const digitalStage = z.discriminatedUnion('kind', [
+  z.strictObject({
+    kind: z.literal('decimate'),
+    ...decimation,
+    design: designName.nullable().meta({ description: 'The design version that the filter is, if it is one.' }),
+  }),
+  z.strictObject({
+    kind: z.literal('integrate'),
+    ...linear,
+    times: z.union([z.literal(1), z.literal(2)]),
+    rule: z.literal('trapezoidal').meta({
+      description:
+        'y[n] = y[n−1] + (x[n] + x[n−1]) / (2 · rateHz), so many times over, behind the high-pass; from rest all values before are 0.',
+    }),
+    highPass: keptNumbersSchema.meta({
+      description: 'Runs ahead of the integrals, as sections whose feedback is subtracted.',
+    }),
+    fromUnit: chainUnitSchema,
+    toUnit: chainUnitSchema,
+    scale: z.number().meta({
+      description: 'What the integral, in fromUnit times seconds, is multiplied by to be in toUnit.',
+    }),
+  }),
+  z.strictObject({
+    kind: z.literal('shape'),
+    ...linear,
+    design: designName,
+    coefficients: keptNumbersSchema,
+  }),
+])
+
+export const storedChainNumbersSchema = z.discriminatedUnion('format', [
+  z.strictObject({
+    format: z.literal(2),
+    stages: z.array(digitalStage).meta({
+      description:
+        'Everything between the converter’s samples, divided by the sensitivity, and the stored ones: in signal order, bypassed stages ' +
+        'left out.',
+    }),
+  }),
+  z
+    .strictObject({
+      format: z.literal(1),
+      decimations: z
+        .array(z.strictObject(decimation))
+        .meta({ description: 'In signal order, bypassed stages left out.' }),
+    })
+    .meta({ description: 'Of versions that were saved before stages that integrate and shape were kept.' }),
+])
+
+export const chainTestVectorSchema = z.strictObject({
+  inputRateHz: z.number().meta({ description: 'The converter’s rate.' }),
+  voltsPerUnit: z.number().meta({ description: 'The sensitivity; the digital part begins by dividing by it.' }),
+  hold: z.int().meta({ description: 'Each input value stands for so many samples in a row.' }),
+  inputVolts: z.array(z.number()).meta({ description: 'What the converter reads, from rest.' }),
+  unit: chainUnitSchema.meta({ description: 'Of the stored samples.' }),
+  stored: z.array(z.number()).meta({
+    description: 'What must be stored; the first belongs to the first input, and every factor-th after it is kept.',
+  }),
+  tolerance: z.number().meta({ description: 'Largest difference, in that unit, of a run in double precision.' }),
 })

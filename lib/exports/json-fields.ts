@@ -12,7 +12,7 @@ export interface FieldRow {
 
 /** The parts of JSON Schema that ours is made of. */
 interface Node {
-  readonly type?: string | undefined
+  readonly type?: string | readonly string[] | undefined
   readonly description?: string | undefined
   readonly const?: unknown
   readonly enum?: readonly unknown[] | undefined
@@ -26,7 +26,7 @@ interface Node {
 
 const node: z.ZodType<Node> = z.lazy(() =>
   z.object({
-    type: z.string().optional(),
+    type: z.union([z.string(), z.array(z.string())]).optional(),
     description: z.string().optional(),
     const: z.unknown().optional(),
     enum: z.array(z.unknown()).optional(),
@@ -73,5 +73,5 @@ function kindOf(child: Node): string {
     if (child.prefixItems) return `[${child.prefixItems.map(kindOf).join(', ')}]`
     return typeof child.items === 'object' ? `list of ${kindOf(child.items)}` : 'list'
   }
-  return child.type ?? 'any'
+  return typeof child.type === 'object' ? child.type.join(' or ') : (child.type ?? 'any')
 }

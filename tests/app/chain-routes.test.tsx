@@ -257,7 +257,7 @@ describe('the schema', () => {
     const response = getSchema()
     expect(response.headers.get('content-type')).toBe('application/schema+json; charset=utf-8')
     expect(await response.json()).toMatchObject({ title: 'Polewright chain' })
-    expect(renderToStaticMarkup(FormatsPage())).toContain('numbers.decimations[].parts')
+    expect(renderToStaticMarkup(FormatsPage())).toContain('numbers.stages[].parts')
   })
 })
 

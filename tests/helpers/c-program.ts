@@ -6,7 +6,12 @@ import { join } from 'node:path'
 const strict = ['-std=c99', '-Wall', '-Wextra', '-Werror', '-pedantic']
 
 /** Compiles one C file beside these headers, without a single warning, and runs it; every line that it prints. */
-export function compileAndRun(headers: ReadonlyMap<string, string>, main: string, optimise: '-O0' | '-O1'): string[] {
+export function compileAndRun(
+  headers: ReadonlyMap<string, string>,
+  main: string,
+  optimise: '-O0' | '-O1',
+  more: readonly string[] = [],
+): string[] {
   const folder = mkdtempSync(join(tmpdir(), 'polewright-c-'))
   try {
     for (const [name, text] of headers) writeFileSync(join(folder, name), text)
@@ -14,7 +19,7 @@ export function compileAndRun(headers: ReadonlyMap<string, string>, main: string
     mkdirSync(join(folder, 'out'))
     const program = join(folder, 'out', 'main')
     // -ffp-contract=off is what -std=c99 means on GCC; Clang has to be told.
-    execFileSync('cc', [...strict, '-ffp-contract=off', optimise, '-o', program, 'main.c'], {
+    execFileSync('cc', [...strict, '-ffp-contract=off', optimise, '-o', program, 'main.c', ...more], {
       cwd: folder,
       stdio: 'pipe',
     })

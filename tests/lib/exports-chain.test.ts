@@ -4,23 +4,35 @@ import { computeChain, DesignError, isFir, magnitudeDb, type ChainSpec } from '@
 import { canonicalJson } from '@/lib/chains/canonical'
 import { chainChecksum } from '@/lib/chains/checksum'
 import { linksOf, withLinks } from '@/lib/chains/links'
+import { digitalStagesOf } from '@/lib/chains/stored-numbers'
 import { startingChains } from '@/lib/chains/templates'
-import { isStoredTaps } from '@/lib/designs/stored-coefficients'
+import { isStoredTaps, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
 import { chainFile, chainFileOptionsFrom } from '@/lib/exports/chain-file'
 import { chainFileSchema, chainJsonSchema } from '@/lib/exports/chain-json'
 import { chainFields } from '@/lib/exports/json-fields'
 import { compileAndRun, doubleFromBits } from '../helpers/c-program'
-import { chainSourceOf, feedbackDesign, linkedChain, tapsDesign } from '../helpers/chain-sources'
+import {
+  chainSourceOf,
+  displacementChain,
+  feedbackDesign,
+  linkedChain,
+  shapedChain,
+  tapsDesign,
+  velocityChain,
+} from '../helpers/chain-sources'
 
 const names = { designId: '7a2f1c9e-3b64-4d0e-9c55-0e6a4a1d2b30', version: 3, drawing: 'HMF-LP-001', title: 'A design' }
 const nasty = '*/ #error "ended" \n/* ??/\n\\ 床 %d " \' ??> //'
 
 const sources = {
-  plain: chainSourceOf(startingChains.plain, { title: nasty, note: nasty }),
-  averaging: chainSourceOf(startingChains.averaging),
-  taps: chainSourceOf(linkedChain(tapsDesign, names)),
-  feedback: chainSourceOf(linkedChain(feedbackDesign, names)),
-  none: chainSourceOf(startingChains.empty),
+  plain: await chainSourceOf(startingChains.plain, { title: nasty, note: nasty }),
+  averaging: await chainSourceOf(startingChains.averaging),
+  taps: await chainSourceOf(linkedChain(tapsDesign, names)),
+  feedback: await chainSourceOf(linkedChain(feedbackDesign, names)),
+  none: await chainSourceOf(startingChains.empty),
+  velocity: await chainSourceOf(velocityChain),
+  displacement: await chainSourceOf(displacementChain),
+  shaped: await chainSourceOf(shapedChain(names)),
 }
 
 const show = `static void show(double value) {
@@ -43,37 +55,43 @@ describe('the C header of a chain', () => {
     const prints: string[] = []
     for (const [name, { version }] of entries) {
       const upper = `C_${name.toUpperCase()}`
-      const numbers = [version.figures.outputRateHz, version.numbers.decimations.length]
-      const lines = [`show(${upper}_OUTPUT_RATE_HZ);`, `show(${upper}_DECIMATIONS);`]
-      version.numbers.decimations.forEach((stage, index) => {
-        const own = `c_${name}_d${index + 1}`
+      const stages = digitalStagesOf(version.numbers)
+      const numbers = [version.figures.outputRateHz, stages.length]
+      const lines = [`show(${upper}_OUTPUT_RATE_HZ);`, `show(${upper}_STAGES);`]
+      const putFilter = (kept: StoredCoefficients, array: string) => {
+        if (isStoredTaps(kept)) {
+          numbers.push(kept.taps.length, ...kept.taps)
+          lines.push(`show(${array.toUpperCase()}_TAPS);`)
+          lines.push(`for (k = 0; k < ${array.toUpperCase()}_TAPS; k++) show(${array}_taps[k]);`)
+          return
+        }
+        numbers.push(...kept.sections.flatMap(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]))
+        lines.push(`for (k = 0; k < 5 * ${array.toUpperCase()}_SECTIONS; k++) show(${array}_sections[k / 5][k % 5]);`)
+      }
+      stages.forEach((stage, index) => {
+        const own = `c_${name}_s${index + 1}`
         const put = (suffix: string, value: number) => {
           numbers.push(value)
           lines.push(`show(${own.toUpperCase()}_${suffix});`)
         }
+        put('DELAY_SECONDS', stage.delaySeconds)
+        if (stage.kind !== 'decimate') put('RATE_HZ', stage.rateHz)
+        if (stage.kind === 'shape') putFilter(stage.coefficients, own)
+        if (stage.kind === 'integrate') {
+          put('INTEGRALS', stage.times)
+          put('SCALE', stage.scale)
+          putFilter(stage.highPass, `${own}_high_pass`)
+        }
+        if (stage.kind !== 'decimate') return
         put('FACTOR', stage.factor)
         put('IN_RATE_HZ', stage.inRateHz)
         put('OUT_RATE_HZ', stage.outRateHz)
-        put('DELAY_SECONDS', stage.delaySeconds)
         stage.parts.forEach((part, at) => {
           if (part.kind === 'cic') {
             put('CIC_ORDER', part.order)
             put('CIC_COMB_DELAY', part.combDelay)
             put('CIC_GAIN', (part.factor * part.combDelay) ** part.order)
-            return
-          }
-          const array = at > 0 ? `${own}_compensation` : own
-          if (isStoredTaps(part.coefficients)) {
-            const { taps } = part.coefficients
-            numbers.push(taps.length, ...taps)
-            lines.push(`show(${array.toUpperCase()}_TAPS);`)
-            lines.push(`for (k = 0; k < ${array.toUpperCase()}_TAPS; k++) show(${array}_taps[k]);`)
-          } else {
-            numbers.push(...part.coefficients.sections.flatMap(({ b0, b1, b2, a1, a2 }) => [b0, b1, b2, a1, a2]))
-            lines.push(
-              `for (k = 0; k < 5 * ${array.toUpperCase()}_SECTIONS; k++) show(${array}_sections[k / 5][k % 5]);`,
-            )
-          }
+          } else putFilter(part.coefficients, at > 0 ? `${own}_compensation` : own)
         })
       })
       expected.push(numbers)
@@ -98,18 +116,18 @@ ${prints.join('\n')}
     const { text, fileName } = chainFile(sources.averaging, { as: 'c' })
     expect(fileName).toBe('hmf_ch_005_v2.h')
     expect(text).toContain('from 102400 Hz down by 10 to 10240 Hz')
-    expect(text).toContain('Decimation 1 of 3')
-    expect(text).toContain('#define HMF_CH_005_V2_D1_CIC_GAIN 100000.0')
+    expect(text).toContain('Stage 1 of 3 (s3): decimation from 102400 Hz')
+    expect(text).toContain('#define HMF_CH_005_V2_S1_CIC_GAIN 100000.0')
     // Hogenauer 1981, equation 11: N·log2(RM) bits, rounded up; 5·log2(10) = 16.6.
-    expect(text).toContain('#define HMF_CH_005_V2_D1_CIC_BIT_GROWTH 17')
+    expect(text).toContain('#define HMF_CH_005_V2_S1_CIC_BIT_GROWTH 17')
     expect(text).toContain('caution: A design aid; confirm on the target hardware.')
     expect(chainFile(sources.plain, { as: 'c' }).text).not.toMatch(/[^\n\x20-\x7e]/)
   })
 
   it('hands over taps that have the response of the stage', () => {
     const chain = computeChain(startingChains.plain)
-    const [first] = sources.plain.version.numbers.decimations
-    const part = first?.parts[0]
+    const [first] = digitalStagesOf(sources.plain.version.numbers)
+    const part = first?.kind === 'decimate' ? first.parts[0] : null
     const filter = chain.stages[3]?.parts[0]
     if (part?.kind !== 'filter' || !isStoredTaps(part.coefficients) || filter?.kind !== 'digital')
       throw new Error('The first decimation has taps.')
@@ -145,7 +163,7 @@ describe('the JSON file of a chain', () => {
     expect(schema.required).toContain('spec')
     const paths = chainFields().map(({ path }) => path)
     expect(paths).toContain('spec.kept.toHz')
-    expect(paths).toContain('numbers.decimations[].parts[].coefficients.taps')
+    expect(paths).toContain('numbers.stages[].parts[].coefficients.taps')
     expect(paths.some((path) => path.includes('.link.spec.'))).toBe(false)
   })
 })

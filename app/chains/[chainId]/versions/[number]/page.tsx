@@ -9,6 +9,7 @@ import { knownResults } from '@/lib/chains/known-results'
 import { linksOf } from '@/lib/chains/links'
 import { chainRecord } from '@/lib/chains/open-chain'
 import { chainSummaryOf } from '@/lib/chains/save-chain-version'
+import { lacksStages } from '@/lib/exports/chain-test-vector'
 import { mayDo } from '@/lib/permissions'
 
 export const metadata: Metadata = { title: 'Version' }
@@ -46,6 +47,7 @@ export default async function ChainVersionPage({ params }: { params: Promise<unk
         results={knownResults(version)}
         links={linksOf(version.spec)}
         numbers={numbers}
+        lacksStages={lacksStages(found.version)}
         mayExport={mayDo(found.chain.role, 'chain-version.export')}
       />
     </>
