@@ -8,7 +8,9 @@ export function Cautions({ chain }: { chain: ComputedChain }) {
   return (
     <ul aria-label="Cautions" className="mt-1 border-l-2 border-ochre pl-3 text-[13px] text-ink">
       {found.map((caution, at) => {
-        const of = chain.stages.find(({ diagnostics }) => diagnostics.includes(caution))
+        const named = /^stages\.(\d+)/.exec(caution.field ?? '')?.[1]
+        const of =
+          chain.stages.find(({ diagnostics }) => diagnostics.includes(caution)) ?? chain.stages[Number(named ?? -1)]
         return (
           <li key={at}>
             {of ? `Stage ${of.index + 1}, ${stageName(of.stage)}: ` : ''}

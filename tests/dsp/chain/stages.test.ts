@@ -9,6 +9,7 @@ import {
   stageMagnitudeDb,
   interfererLandings,
   type ChainSpec,
+  type ChainStage,
   type ComputedChain,
 } from '@/dsp'
 import adc from '../../reference/adc_antialias_decimation.json' with { type: 'json' }
@@ -156,6 +157,32 @@ describe('integration', () => {
       near(level(2, 'µm', 'g', value.a_rms_g), value.d_rms_um)
     },
   )
+
+  it('is cautioned about at a low rate, with what it would be at the converter’s', () => {
+    const integrate = { ...toVelocity, id: 'v' }
+    const down = decimate('d', 5, { type: 'kaiser', taps: 101, passHz: 1000, stopHz: 2560, attenuationDb: 60 })
+    const cautions = (stages: readonly ChainStage[], toHz = 1000) =>
+      computeChain(
+        chainOf([flatSensor, converter(25_600), ...stages], { kept: { fromHz: 10, toHz } }),
+      ).diagnostics.filter(({ severity }) => severity === 'caution')
+    // tests/reference/vibration_signals_spectra.json: −1.1973 dB at 5120 Hz and −0.0437565 dB at 25.6 kHz.
+    expect(cautions([down, integrate])).toMatchObject([
+      {
+        code: 'integration-error',
+        severity: 'caution',
+        field: 'stages.3.filter.times',
+        message:
+          'Integrating by trapezoids at 5.12 kHz takes 1.2 dB at 1 kHz; move it ahead of the decimation: at 25.6 kHz it would be 0.04 dB.',
+      },
+    ])
+    expect(cautions([integrate, down])).toEqual([])
+    expect(cautions([down, { ...integrate, bypassed: true }])).toEqual([])
+    expect(cautions([down, integrate], 250)).toEqual([])
+    // With nothing to move it ahead of, a higher rate is the cure.
+    expect(cautions([integrate], 5000)[0]?.message).toContain('a higher converter rate')
+    // At half the rate the rule leaves nothing.
+    expect(cautions([down, integrate], 2560)[0]?.message).toContain('takes everything at 2.56 kHz')
+  })
 
   it('is 3.01 dB down at the corner of its high-pass and blocks 0 Hz', () => {
     const { magnitudeDb } = chainResponse(chainAt(10_000, 1, 'mm/s', 2), at(0, 2))
