@@ -132,8 +132,8 @@ function stripLabels(row: FoldRow, plan: FoldPlan, frame: FoldFrame): Mark[] {
   // Where there is no room beside the strips, the stage that folds stands beside the frequency it folds at.
   const maker = isNarrow ? foldMaker(plan.chain, strip.toHz) : null
   const named = (hertz: number) => `${formatHz(hertz, 6)}${maker !== null && hertz === strip.toHz ? ` · ${maker}` : ''}`
-  // On the base band's green a halo of sheet would be patches.
-  const look = strip.strip === 0 ? {} : { halo: 'sheet' as const }
+  // Whatever is loud enough to reach them passes behind the words.
+  const look = { halo: 'sheet' as const }
   const ends = [
     label(left + 8, baseline, named(leftHz), 'start', look),
     label(right - 8, baseline, named(rightHz), 'end', look),
@@ -142,7 +142,7 @@ function stripLabels(row: FoldRow, plan: FoldPlan, frame: FoldFrame): Mark[] {
     const { kept } = plan.chain.spec
     const keptTo = Math.min(kept.toHz, x.domain[1])
     const at = Math.min(Math.max(x.toPixel(keptTo / 2), left + 110), right - 130)
-    return [...ends, label(at, top + 15, `kept to ${formatHz(kept.toHz, 6)}`, 'middle', { ink: 'moss' })]
+    return [...ends, label(at, top + 15, `kept to ${formatHz(kept.toHz, 6)}`, 'middle', { ink: 'moss', halo: 'sheet' })]
   }
   const isWeak = strip.strip === plan.chart.weakStrip
   return [
