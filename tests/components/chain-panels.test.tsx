@@ -403,11 +403,40 @@ describe('the proof', () => {
     ])
     expect(proofColumns).toHaveLength(8)
     expect(plain(delayWords(result))).toBe('Delay: computed 60 ms, measured 60.01 ms, bound ±100 µs: agrees.')
-    expect(proofVerdict(result)).toMatch(/1024 stored: every line measured agrees/)
+    expect(proofVerdict(result)).toMatch(/1024 stored: 1 line agrees with what is computed, within its bound/)
     const wrong = { ...result, agrees: false, lines: [{ ...result.lines[0]!, agrees: false }] }
     expect(proofVerdict(wrong)).toContain('1 of 1 lines lies outside the bound. Don’t rely on')
     const late = { ...result, agrees: false, delay: { ...result.delay, agrees: false } }
     expect(proofVerdict(late)).toContain('the delay lies outside its bound. Don’t rely on')
+  })
+
+  it('counts what lies in the noise apart, and does not call it agreement', () => {
+    const [wanted] = result.lines
+    const deep = {
+      ...wanted!,
+      what: 'image from the 8th strip',
+      computedDb: -300,
+      measuredDb: -160,
+      boundDb: 155,
+      comparison: 'not above',
+    } as const
+    expect(proofCells(deep).map(plain).slice(3)).toEqual([
+      'below −300 dB',
+      '−160.000 dB',
+      '—',
+      'up to −145.000 dB',
+      'below what can be measured',
+    ])
+    expect(proofCells({ ...deep, agrees: false }).at(-1)).toBe('does not agree')
+    const lines = [...Array.from({ length: 23 }, () => wanted!), ...Array.from({ length: 8 }, () => deep)]
+    expect(proofVerdict({ ...result, lines })).toMatch(
+      /: 23 lines agree; 8 lie below the noise of the converter and prove nothing more than that they are not above it\. No image could be measured\.$/,
+    )
+    const seen = { ...wanted!, what: 'image from the 2nd strip' }
+    expect(proofVerdict({ ...result, lines: [wanted!, seen, deep] })).toMatch(
+      /: 2 lines agree; 1 lies below the noise of the converter and proves nothing more than that it is not above it\.$/,
+    )
+    expect(proofVerdict({ ...result, agrees: false })).toContain('nothing stood out of the noise')
   })
 
   it('draws what was measured and computed, exact zeros left out', () => {

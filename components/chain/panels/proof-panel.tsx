@@ -13,7 +13,7 @@ import { parseCount } from '@/lib/units/parse'
 import { FiguresRuled } from './chart/figures'
 import { LinesPlot } from './chart/lines-plot'
 import type { ChainPanelProps } from './props'
-import { delayWords, proofCells, proofColumns, proofVerdict, spectrumPlan, spectrumRows } from './proof-words'
+import { delayWords, isBelow, proofCells, proofColumns, proofVerdict, spectrumPlan, spectrumRows } from './proof-words'
 import { useWork } from './work/use-work'
 import { runProof } from './work/work-client'
 import { WorkLine } from './work/work-line'
@@ -91,7 +91,12 @@ function Proof({ spec }: ChainPanelProps) {
                 key: `${index} ${line.what}`,
                 cells: [
                   ...cells.slice(0, -1),
-                  <span key="verdict" className={classNames(line.agrees ? 'text-moss' : 'text-vermilion')}>
+                  <span
+                    key="verdict"
+                    className={classNames(
+                      !line.agrees ? 'text-vermilion' : isBelow(line) ? 'text-pencil' : 'text-moss',
+                    )}
+                  >
                     {verdict}
                   </span>,
                 ],

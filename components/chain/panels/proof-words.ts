@@ -6,28 +6,53 @@ import { spanOf, type LinesPlan } from './chart/lines-picture'
 
 export const proofColumns = ['what', 'input', 'lands on', 'computed', 'measured', 'apart', 'bound', 'verdict'] as const
 
-export const proofCells = (line: ProofLine): readonly string[] => [
-  line.what,
-  formatHz(line.inputHz, 6),
-  formatHz(line.landsHz, 6),
-  formatDb(line.computedDb, 3),
-  formatDb(line.measuredDb, 3),
-  formatDb(line.measuredDb - line.computedDb, 3),
-  line.comparison === 'within' ? `±${formatDb(line.boundDb, 3)}` : `${formatDb(line.boundDb, 3)} above`,
-  line.agrees ? 'agrees' : 'does not agree',
-]
+/** Where levels end: nothing in doubles is told apart below. */
+const LEAST_DB = -300
+
+const levelWords = (decibels: number): string =>
+  decibels > LEAST_DB ? formatDb(decibels, 3) : `below ${formatDb(LEAST_DB, 0)}`
+
+/** Of a line that lies in the noise nothing was measured but that it isn't above it. */
+export const isBelow = ({ agrees, comparison }: ProofLine): boolean => agrees && comparison === 'not above'
+
+export const proofCells = (line: ProofLine): readonly string[] => {
+  const isMeasured = line.comparison === 'within'
+  return [
+    line.what,
+    formatHz(line.inputHz, 6),
+    formatHz(line.landsHz, 6),
+    levelWords(line.computedDb),
+    levelWords(line.measuredDb),
+    isMeasured ? formatDb(line.measuredDb - line.computedDb, 3) : '—',
+    isMeasured ? `±${formatDb(line.boundDb, 3)}` : `up to ${levelWords(line.computedDb + line.boundDb)}`,
+    !line.agrees ? 'does not agree' : isMeasured ? 'agrees' : 'below what can be measured',
+  ]
+}
+
+const lineCount = (count: number, one: string, more: string): string =>
+  count === 1 ? `1 line ${one}` : `${count} lines ${more}`
 
 export function proofVerdict(result: ProofResult): string {
-  const apart = result.lines.filter(({ agrees }) => !agrees).length
+  const { lines } = result
+  const apart = lines.filter(({ agrees }) => !agrees).length
   const what = `${formatNumber(result.samplesIn, 7)} samples at ${formatHz(result.inputRateHz)} were run through the chain and ${formatNumber(result.samplesStored, 7)} stored`
-  if (result.agrees) return `${what}: every line measured agrees with what is computed, within its bound.`
+  const below = lines.filter(isBelow).length
+  if (result.agrees) {
+    const agree = lineCount(lines.length - below, 'agrees', 'agree')
+    if (below === 0)
+      return `${what}: ${agree} with what is computed, within ${lines.length === 1 ? 'its' : 'their'} bound.`
+    const isImageSeen = lines.some(({ what: name, comparison }) => name.startsWith('image') && comparison === 'within')
+    const hasImages = lines.some(({ what: name }) => name.startsWith('image'))
+    const images = hasImages && !isImageSeen ? ' No image could be measured.' : ''
+    const they = below === 1 ? 'proves nothing more than that it is' : 'prove nothing more than that they are'
+    return `${what}: ${agree}; ${below} ${below === 1 ? 'lies' : 'lie'} below the noise of the converter and ${they} not above it.${images}`
+  }
   const faults = [
-    ...(apart > 0
-      ? [`${apart} of ${result.lines.length} lines ${apart === 1 ? 'lies' : 'lie'} outside the bound`]
-      : []),
+    ...(apart > 0 ? [`${apart} of ${lines.length} lines ${apart === 1 ? 'lies' : 'lie'} outside the bound`] : []),
     ...(result.delay.agrees ? [] : ['the delay lies outside its bound']),
   ]
-  return `${what}: ${faults.length > 0 ? faults.join(', and ') : 'the spectrum does not agree'}. Don’t rely on the figures of this chain; tell the owner of the team.`
+  const nothing = 'nothing stood out of the noise where it should have'
+  return `${what}: ${faults.length > 0 ? faults.join(', and ') : nothing}. Don’t rely on the figures of this chain; tell the owner of the team.`
 }
 
 export const delayWords = ({ delay }: ProofResult): string =>

@@ -8,7 +8,7 @@ import type { CoherentTone } from './synthesis'
  */
 
 /** What a tone is there for. Only named ones become lines of the report; the others make the input broad. */
-export type ToneUse = 'wanted' | 'delay' | 'image' | 'interferer' | 'background'
+export type ToneUse = 'wanted' | 'delay' | 'weak fold' | 'image' | 'interferer' | 'background'
 
 export interface PlannedTone extends CoherentTone {
   readonly use: ToneUse
@@ -38,13 +38,22 @@ const MOST_STORED = 2048
 const LEAST_STORED = 64
 const ENOUGH_STORED = 256
 
-/** How long a run is, and at which rate: as many stored samples as a million of input allow, at a rate that reaches the highest interferer. */
-export function runSize(chain: ComputedChain): RunSize {
+/** A longer run: noise falls by 3 dB with each doubling of the samples stored. */
+const LONGER_STORED = 4
+const LONGER_LENGTH = 2
+
+/**
+ * How long a run is, and at which rate: as many stored samples as a million of input allow, at a rate that reaches the highest interferer.
+ *
+ * @param isLong averages over up to four times as many stored samples, for an image that lies near the noise
+ */
+export function runSize(chain: ComputedChain, isLong = false): RunSize {
   const { converterRateHz, outputRateHz, spec } = chain
   const factor = Math.round(converterRateHz / outputRateHz)
   const storedFor = (steps: number): number => {
-    let stored = MOST_STORED
-    while (stored > LEAST_STORED && stored * factor * steps > MOST_LENGTH) stored /= 2
+    let stored = isLong ? LONGER_STORED * MOST_STORED : MOST_STORED
+    const most = isLong ? LONGER_LENGTH * MOST_LENGTH : MOST_LENGTH
+    while (stored > LEAST_STORED && stored * factor * steps > most) stored /= 2
     return stored
   }
   const highest = spec.interferers.reduce((most, one) => Math.max(most, one.kind === 'tone' ? one.hz : one.toHz), 0)
@@ -61,6 +70,16 @@ export function runSize(chain: ComputedChain): RunSize {
 function landing(cycles: number, stored: number): number {
   const rest = cycles % stored
   return rest <= stored / 2 ? rest : stored - rest
+}
+
+/** The strip that a tone comes from: 0 is the base band. */
+export const stripOf = (cycles: number, stored: number): number => Math.floor((2 * cycles) / stored)
+
+/** Strips are counted as the fold chart counts them: the base band is the first. */
+function ordinal(number: number): string {
+  const lastTwo = number % 100
+  const ending = lastTwo > 10 && lastTwo < 14 ? 'th' : (['th', 'st', 'nd', 'rd'][number % 10] ?? 'th')
+  return `${number}${ending}`
 }
 
 const MOST_STRIPS = 8
@@ -98,12 +117,13 @@ export function planTones(
     const phaseRadians = 2 * Math.PI * uniform()
     tones.push({ cycles, amplitude, phaseRadians, use, what, inputHz: cycles * spacing, line, landsHz: line * spacing })
   }
-  /** Puts a tone on the nearest free line; false when there is none near. */
-  const place = (hertz: number, use: ToneUse, what: string, amplitude = 1): boolean => {
+  /** Puts a tone on the nearest free line, of a strip if one is named; false when there is none near. */
+  const place = (hertz: number, use: ToneUse, what: string, amplitude = 1, strip: number | null = null): boolean => {
     const near = Math.round(hertz / spacing)
     for (let step = 0; step <= 2 * REACH; step++) {
       const cycles = near + (step % 2 === 0 ? step / 2 : -(step + 1) / 2)
       if (cycles < 1 || cycles > most || taken.has(landing(cycles, stored))) continue
+      if (strip !== null && stripOf(cycles, stored) !== strip) continue
       put(cycles, use, what, amplitude)
       return true
     }
@@ -138,13 +158,22 @@ export function planTones(
     .filter(({ strip, worst }) => strip > 0 && worst !== null && worst.inputHz / spacing <= most)
     .sort((left, right) => right.worst!.levelDb - left.worst!.levelDb)
     .slice(0, MOST_STRIPS)
-  // Counted as they are read: the base band is the first strip.
-  for (const { strip, worst } of weak) place(worst!.inputHz, 'image', `image from strip ${strip + 1}`)
+  const named = weak.some(({ strip }) => strip === chart.weakStrip)
+    ? weak.toSorted((a, b) => Number(b.strip === chart.weakStrip) - Number(a.strip === chart.weakStrip))
+    : weak
+  for (const { strip, worst } of named) {
+    const use = strip === chart.weakStrip ? 'weak fold' : 'image'
+    const what = `image from the ${ordinal(strip + 1)} strip${strip === chart.weakStrip ? ', the weak fold' : ''}`
+    place(worst!.inputHz, use, what, 1, strip)
+  }
   for (let k = 0; k < MOST_WANTED; k++) {
     const hertz = kept.fromHz + ((k + 0.5) / MOST_WANTED) * (kept.toHz - kept.fromHz)
     const count = tones.length
     if (place(hertz, 'wanted', 'wanted') && tones[count]!.inputHz > kept.toHz) tones.pop()
   }
+  // A kept band of few lines has them all in the cluster: its middle speaks for it.
+  if (tones.every(({ use }) => use !== 'wanted') && tones[0]?.use === 'delay')
+    tones[0] = { ...tones[0], what: 'wanted' }
   const strips = Math.floor((2 * most) / stored)
   for (let line = 1; line < stored / 2; line++) {
     if (taken.has(line)) continue

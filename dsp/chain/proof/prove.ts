@@ -2,13 +2,14 @@ import type { ChainSpec } from '../spec'
 import type { ComputedChain } from '../chain'
 import { computeChain } from '../compute'
 import { foldChart } from '../folding'
+import { noiseBudget } from '../noise'
 import { chainResponse, stageMagnitudeDb } from '../response'
 import { stripsOver } from '../strips'
 import { chainUnits } from '../units'
 import { splineGain, splineImage } from './analog-run'
 import { averagingGain } from './convert'
 import { floorOf, linesOf, slopeOf, type PhasePoint } from './lines'
-import { planTones, runSize, type PlannedTone, type RunSize } from './plan'
+import { planTones, runSize, stripOf, type PlannedTone, type RunSize, type ToneUse } from './plan'
 import type { ProofLine, ProofResult } from './report'
 import {
   analogOfChain,
@@ -30,13 +31,20 @@ import { synthesise } from './synthesis'
 const DRIVE = 0.22
 /** Of the power, what the named tones take. */
 const NAMED_SHARE = 0.7
-/** An image is driven harder by what the analog stages hold back, up to here. */
-const MOST_LIFT = 1e4
+/** Amplitudes at the converter: the weak fold is what the proof is about, and the other images lie deeper than what is wanted. */
+const SHARE: Readonly<Partial<Record<ToneUse, number>>> = { wanted: 1, delay: 1, image: 2, 'weak fold': 6 }
+/** Of the weak fold in a run made longer for it. */
+const LONG_SHARE = 24
+/** An image is driven harder by what the analog stages hold back, up to here; what only fills the lines less so. */
+const MOST_LIFT = 1e7
+const MOST_BACKGROUND_LIFT = 1e4
 const HIGHEST = 0.98
 /** Noise stays below so many deviations but once in 10⁷ (a Rayleigh amplitude: e^{−16}). */
 const DEVIATIONS = 4
 /** Rounding of a million additions and of the transform, in parts of the largest amplitude. */
 const ROUNDING = 1e-12
+/** Rounding of what is lifted, in parts of the largest input: it is white, and spread over all lines. */
+const ROUNDING_OF_INPUT = 1e-15
 /** Where computed levels end: nothing in doubles is told apart below. */
 const LEAST_DB = -300
 
@@ -53,6 +61,7 @@ function aheadOf(chain: ComputedChain, hertz: Float64Array): Float64Array {
 function drive(
   chain: ComputedChain,
   tones: readonly PlannedTone[],
+  isLong: boolean,
 ): { amplitudes: Float64Array; isTakenDown: boolean } {
   const ahead = aheadOf(
     chain,
@@ -66,14 +75,16 @@ function drive(
   const isTakenDown = there > 0.8 * target
   const down = isTakenDown ? (0.8 * target) / there : 1
   const rest = target ** 2 - (there * down) ** 2
-  const isNamed = ({ use }: PlannedTone): boolean => use === 'wanted' || use === 'image' || use === 'delay'
-  const named = tones.filter(isNamed).length
+  const shares = tones.map(({ use }) => (isLong && use === 'weak fold' ? LONG_SHARE : (SHARE[use] ?? 0)))
+  const named = shares.reduce((sum, share) => sum + share * share, 0)
   const others = tones.filter(({ use }) => use === 'background').length
   const ofNamed = Math.sqrt((2 * (others > 0 ? NAMED_SHARE : 1) * rest) / Math.max(named, 1))
   const ofOthers = Math.sqrt((2 * (1 - NAMED_SHARE) * rest) / Math.max(others, 1))
   const amplitudes = Float64Array.from(tones, (tone, n) => {
     if (tone.use === 'interferer') return tone.amplitude * down
-    return (isNamed(tone) ? ofNamed : ofOthers) * Math.min(1 / ahead[n]!, MOST_LIFT)
+    const isBackground = tone.use === 'background'
+    const lift = Math.min(1 / ahead[n]!, isBackground ? MOST_BACKGROUND_LIFT : MOST_LIFT)
+    return (isBackground ? ofOthers : shares[n]! * ofNamed) * lift
   })
   return { amplitudes, isTakenDown }
 }
@@ -92,6 +103,32 @@ function integralsOf(chain: ComputedChain): { readonly times: number; readonly f
     0,
   )
   return { times, factor: chainUnits[chain.stages[0]!.unit].si / chainUnits[chain.unit].si }
+}
+
+/** A tone so far above what the noise may come to asks for no longer run, one below `HOPELESS` is not helped by it, one above `SURELY` must be seen. */
+const CLEARLY = 4
+const HOPELESS = 0.5
+const SURELY = 8
+
+/**
+ * The largest level that tones of a use come to in the stored samples, over what the converter's noise comes to on a line at most, by the noise
+ * budget's density in the middle of the kept band; Infinity where there is no such tone.
+ */
+function clearOf(
+  chain: ComputedChain,
+  { tones, amplitudes, size }: { tones: readonly PlannedTone[]; amplitudes: Float64Array; size: RunSize },
+  density: number,
+  use: ToneUse,
+): number {
+  const of = tones.flatMap((tone, n) => (tone.use === use ? [{ tone, amplitude: amplitudes[n]! }] : []))
+  if (of.length === 0) return Infinity
+  const onLine = DEVIATIONS * density * Math.sqrt((2 * chain.outputRateHz) / size.stored)
+  return Math.max(
+    ...of.map(({ tone: { landsHz, cycles }, amplitude }) => {
+      const [levelDb = 0] = stripsOver(chain, Float64Array.of(landsHz)).levelDb(stripOf(cycles, size.stored))
+      return (amplitude * 10 ** (levelDb / 20)) / onLine
+    }),
+  )
 }
 
 const decibels = (amplitude: number): number => Math.max(20 * Math.log10(amplitude), LEAST_DB)
@@ -134,17 +171,25 @@ export function* proveChain(
   run: ComputedChain,
   { seed }: ProofOptions,
 ): Generator<number, ProofResult> {
-  const size = runSize(computed)
-  const { stored, inputRateHz, length } = size
-  const spacing = computed.outputRateHz / stored
   const outputHz = Float64Array.from({ length: 65 }, (_, k) => (k / 128) * computed.outputRateHz)
   const chart = foldChart(computed, outputHz)
-  const { tones, tooHigh } = planTones(computed, chart, size, seed)
-  const { amplitudes, isTakenDown } = drive(computed, tones)
+  const noiseDensity = noiseBudget(computed).density
+  const planned = (isLong: boolean) => {
+    const size = runSize(computed, isLong)
+    const plan = planTones(computed, chart, size, seed)
+    return { size, ...plan, ...drive(computed, plan.tones, isLong) }
+  }
+  const short = planned(false)
+  const clear = clearOf(computed, short, noiseDensity, 'weak fold')
+  const plan = clear < CLEARLY && clear > HOPELESS ? planned(true) : short
+  const { size, tones, tooHigh, amplitudes, isTakenDown } = plan
+  const { stored, inputRateHz, length } = size
+  const spacing = computed.outputRateHz / stored
   yield 0.05
   const given = tones.map((tone, n) => ({ ...tone, amplitude: amplitudes[n]! * emphasis(run, tone.inputHz, size) }))
   const input = yield* spread(synthesise(length, given), 0.05, 0.2, length / stored)
   const ahead = yield* spread(runAhead(run, input, inputRateHz), 0.2, 0.85, 2 * length)
+  const lifted = input.reduce((most, value) => Math.max(most, Math.abs(value)), 0)
   const fullScale = converterOf(run).fullScaleVolts
   const peak = ahead.reduce((most, value) => Math.max(most, Math.abs(value)), 0)
   const down = peak > HIGHEST * fullScale ? (HIGHEST * fullScale) / peak : 1
@@ -162,13 +207,15 @@ export function* proveChain(
     // What level 1 at this line is in the stored samples.
     const unit = (amplitudes[n]! * down * factor) / (2 * Math.PI * tone.landsHz) ** times
     const computedDb = Math.max(
-      stripsOver(computed, Float64Array.of(tone.landsHz)).levelDb(stripOf(tone, stored))[0]!,
+      stripsOver(computed, Float64Array.of(tone.landsHz)).levelDb(stripOf(tone.cycles, stored))[0]!,
       LEAST_DB,
     )
     const measured = Math.hypot(lines.re[tone.line]!, lines.im[tone.line]!) / unit
     const method = tone.use === 'background' || filter === null ? 0 : splineImage(gain, tone.inputHz, inputRateHz)
-    const noise = DEVIATIONS * floor[tone.line]! + ROUNDING * largest
-    return { tone, unit, computedDb, measured, method, noise: noise / unit }
+    const noise = (DEVIATIONS * floor[tone.line]! + ROUNDING * largest) / unit
+    // Counted at the sensor, and so ahead of everything that holds the tone back.
+    const rounding = (ROUNDING_OF_INPUT * lifted) / amplitudes[n]!
+    return { tone, unit, computedDb, measured, method, noise: noise + rounding }
   })
   const named = found.filter(({ tone }) => tone.what !== '')
   const proofLines = named.map(({ tone, computedDb, measured, method, noise }) =>
@@ -214,6 +261,12 @@ export function* proveChain(
   }
   for (const name of tooHigh)
     notes.push(`“${name}” found no place in the run: too high for its rate, or every line near it is taken.`)
+  const isMeasured = (use: ToneUse): boolean =>
+    named.some(
+      ({ tone }, n) =>
+        proofLines[n]!.comparison === 'within' && (tone.use === use || (use === 'wanted' && tone.use === 'delay')),
+    )
+  const isMeasurable = down * clearOf(computed, plan, noiseDensity, 'weak fold') > SURELY
   yield 1
   return {
     inputRateHz,
@@ -227,12 +280,13 @@ export function* proveChain(
       computedDensityDb: expected.map((square) => density(Math.sqrt(square))),
     },
     notes,
-    agrees: delay.agrees && proofLines.every(({ agrees }) => agrees),
+    agrees:
+      delay.agrees &&
+      proofLines.every(({ agrees }) => agrees) &&
+      isMeasured('wanted') &&
+      (isMeasured('image') || isMeasured('weak fold') || !isMeasurable),
   }
 }
-
-/** The strip that a tone comes from. */
-const stripOf = ({ cycles }: PlannedTone, stored: number): number => Math.floor((2 * cycles) / stored)
 
 /** Progress of a part of the work, between two marks of the whole; a step without a count is one. */
 function* spread<Result>(
@@ -255,11 +309,12 @@ function* spread<Result>(
  * strips, at the interferers, and on every other line that the stored samples have – runs through the stages: the analog ones in continuous
  * time by their states, the averaging of the converter as a running mean, the converter by its steps, the digital ones by sections, taps and
  * whole-number integrators. Each tone is periodic in the record and falls on a line of its own, so that levels are read without leakage,
- * settled, and without a window.
+ * settled, and without a window. The weak fold is driven hardest, and where it would lie near the noise the run is made longer.
  *
  * Each level may differ from the computed one by what the method and the converter add: the images of the input's spline behind the analog
  * stages (relative), and four deviations of what the converter added, run through the same digital stages alone. Where that reaches half the
- * level, it is only held not to lie above. Interferers stand on the nearest free line, at most half a per cent of the output rate away; levels
+ * level, it is only held not to lie above: nothing more is proven of it. The whole agrees when every line does, something wanted was measured and, where the
+ * weak fold stands out of the noise, an image too. Interferers stand on the nearest free line, at most half a per cent of the output rate away; levels
  * are relative, so that how hard a tone is driven doesn't matter.
  *
  * @param options.seed phases, and where tones stand that no one asked for

@@ -1,6 +1,6 @@
 /** One tone: what it comes to in the stored samples, for a level of 1 at the sensor. */
 export interface ProofLine {
-  /** “wanted”, “image from strip 3”, “interferer “pump””. */
+  /** “wanted”, “image from the 3rd strip”, “interferer “pump””. Strips count as in the fold chart: the base band is the first. */
   readonly what: string
   readonly inputHz: number
   readonly landsHz: number
@@ -8,7 +8,7 @@ export interface ProofLine {
   readonly measuredDb: number
   /** Most that the two may differ by, from the noise of the converter and the method. */
   readonly boundDb: number
-  /** `not above`: the level lies in the noise of the converter, and is only held not to lie above the two together. */
+  /** `not above`: the level lies in the noise of the converter, and is only held not to lie above the two together: it was not measured. */
   readonly comparison: 'within' | 'not above'
   readonly agrees: boolean
 }
@@ -33,5 +33,6 @@ export interface ProofResult {
     readonly computedDensityDb: Float64Array
   }
   readonly notes: readonly string[]
+  /** Every line and the delay agree, something wanted was measured, and an image where the weak fold stands out of the noise. */
   readonly agrees: boolean
 }

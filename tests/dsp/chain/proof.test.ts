@@ -1,7 +1,15 @@
 import { describe, expect, it } from 'vitest'
 import { computeChain } from '@/dsp/chain/compute'
 import { proofSteps, proveChain } from '@/dsp/chain/proof/prove'
-import { foldPaths, isFir, type ChainSpec, type ComputedChain, type DesignLink, type ProofResult } from '@/dsp'
+import {
+  foldChart,
+  foldPaths,
+  isFir,
+  type ChainSpec,
+  type ComputedChain,
+  type DesignLink,
+  type ProofResult,
+} from '@/dsp'
 import { antiAlias, chainOf, converter, decimate, flatSensor, sensor, sixStages, toVelocity } from './chains'
 
 function finish<Result>(steps: Generator<number, Result>): { result: Result; progress: number[] } {
@@ -132,6 +140,52 @@ describe('the proof on a signal', () => {
     const seen = images.filter(({ comparison }) => comparison === 'within')
     expect(seen.length).toBeGreaterThanOrEqual(4)
     expect(Math.min(...seen.map(({ boundDb }) => boundDb))).toBeLessThan(0.05)
+  })
+
+  it.each(chains)('measures the weak fold, and names strips as the fold chart does, for %s', (_, spec) => {
+    const chain = computeChain(spec)
+    const { lines } = prove(spec)
+    const { weakStrip } = foldChart(chain, Float64Array.of(0))
+    const [weak, ...more] = lines.filter(({ what }) => what.endsWith(', the weak fold'))
+    expect(weak?.comparison).toBe('within')
+    expect(more).toEqual([])
+    for (const { what, inputHz } of lines.filter(({ what }) => what.startsWith('image'))) {
+      const strip = Math.floor(inputHz / (chain.outputRateHz / 2))
+      expect(what).toMatch(new RegExp(`^image from the ${strip + 1}(st|nd|rd|th) strip`, 'u'))
+      if (what.endsWith('the weak fold')) expect(strip).toBe(weakStrip)
+    }
+  })
+
+  // 16 bits over 1.6 kHz: a weak fold that the short run left in the noise.
+  const deep = (attenuationDb: number): ChainSpec =>
+    chainOf([
+      flatSensor,
+      antiAlias(8, 4000),
+      converter(25_600, 16),
+      decimate('a', 8, { type: 'kaiser', taps: 241, passHz: 1000, stopHz: 2150, attenuationDb }),
+    ])
+
+  it('runs longer, and drives harder, where the weak fold lies near the noise', () => {
+    const [short, long] = [deep(80), deep(109)].map((spec) => prove(spec))
+    expect(long!.samplesStored).toBe(4 * short!.samplesStored)
+    const weak = long!.lines.find(({ what }) => what.endsWith('the weak fold'))!
+    expect(weak.computedDb).toBeLessThan(-110)
+    expect(weak).toMatchObject({ comparison: 'within', agrees: true })
+    expect(long!.agrees).toBe(true)
+  })
+
+  it('says of what no run can tell that it is only not above', () => {
+    const steep = chainOf([
+      flatSensor,
+      antiAlias(10, 1200),
+      converter(51_200, 12),
+      decimate('a', 16, { type: 'kaiser', taps: 401, passHz: 1000, stopHz: 2150, attenuationDb: 150 }),
+    ])
+    const { lines, agrees } = prove(steep)
+    const images = lines.filter(({ what }) => what.startsWith('image'))
+    expect(images.length).toBeGreaterThanOrEqual(6)
+    expect(images.every(({ comparison }) => comparison === 'not above')).toBe(true)
+    expect(agrees).toBe(true)
   })
 
   it('computes what foldPaths says of each image', () => {
