@@ -53,8 +53,11 @@ export function NameWord({
   return (
     <>
       <span className={classNames('inline-grid max-w-full align-baseline', look, problem && 'text-vermilion')}>
-        {/* The mirror gives the input its width. */}
-        <span aria-hidden className="invisible col-start-1 row-start-1 overflow-hidden whitespace-pre">
+        {/* The mirror gives the input its width, and the heading its text where it is read as text: unseen, but not hidden. */}
+        <span
+          aria-hidden
+          className="pointer-events-none col-start-1 row-start-1 opacity-0 select-none overflow-hidden whitespace-pre"
+        >
           {shown || ' '}
         </span>
         <input

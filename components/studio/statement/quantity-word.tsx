@@ -42,6 +42,8 @@ export function QuantityWord(props: QuantityWordProps) {
   const [unread, setUnread] = useState<string | null>(null)
   const [refused, setRefused] = useState<number | null>(null)
   const input = useRef<HTMLInputElement>(null)
+  // What Escape returns to: the value that stood when the word got the focus, or that Enter made good since.
+  const standing = useRef<{ readonly value: number; readonly isStepped: boolean } | null>(null)
   const noteId = useId()
   const note = unread ?? refusal?.message ?? null
   // A refused text stands only as long as its refusal: once another edit has taken that away, the word says what the design holds.
@@ -70,12 +72,21 @@ export function QuantityWord(props: QuantityWordProps) {
     setUnread(null)
     const accepted = edit.propose(parsed.value)
     setRefused(accepted ? null : parsed.value)
-    if (accepted) setTyped(null)
+    if (accepted) {
+      standing.current = { value: parsed.value, isStepped: false }
+      setTyped(null)
+    }
     return accepted
   }
 
   function restore() {
     edit.cancel()
+    // A run of arrow keys is a finished edit once its key is up.
+    const { value: before, isStepped } = standing.current ?? {}
+    if (before !== undefined && isStepped) {
+      edit.propose(before)
+      standing.current = { value: before, isStepped: false }
+    }
     setTyped(null)
     setUnread(null)
     props.onDismiss()
@@ -97,6 +108,7 @@ export function QuantityWord(props: QuantityWordProps) {
       const accepted = edit.change(next)
       setRefused(accepted ? null : next)
       if (accepted) {
+        standing.current = { value: standing.current?.value ?? value, isStepped: true }
         setTyped(null)
         setUnread(null)
       }
@@ -114,8 +126,8 @@ export function QuantityWord(props: QuantityWordProps) {
   return (
     <span className="inline">
       <span className={classNames('inline-grid align-baseline', wordLook.frame, note && wordLook.refused)}>
-        {/* The mirror gives the input its width. */}
-        <span aria-hidden className="invisible col-start-1 row-start-1 whitespace-pre">
+        {/* The mirror gives the input its width, and the heading its text where it is read as text: unseen, but not hidden. */}
+        <span aria-hidden className="pointer-events-none col-start-1 row-start-1 opacity-0 select-none whitespace-pre">
           {shown || ' '}
         </span>
         <input
@@ -133,7 +145,10 @@ export function QuantityWord(props: QuantityWordProps) {
           spellCheck={false}
           value={shown}
           className="col-start-1 row-start-1 w-0 min-w-full bg-transparent text-inherit outline-none"
-          onFocus={(event) => event.currentTarget.select()}
+          onFocus={(event) => {
+            standing.current = { value, isStepped: false }
+            event.currentTarget.select()
+          }}
           onChange={(event) => setTyped(event.currentTarget.value)}
           onKeyDown={onKeyDown}
           onKeyUp={(event) => {
