@@ -80,6 +80,7 @@ export function ChainPage({
   useEffect(() => remember(accountId, chain.id, { versions: saved }), [accountId, chain.id, saved])
   const [saving, setSaving] = useState(false)
   const [kept, setKept] = useState<ChainSpec | null>(null)
+  const [draftSavedAt, setDraftSavedAt] = useState<string | null>(null)
 
   const spec = usePacedSpec(store, PAUSE)
   const [autosave] = useState(() =>
@@ -89,7 +90,12 @@ export function ChainPage({
       store,
       draft,
       parentNumber,
-      onSaved: (stored) => remember(accountId, chain.id, { draft: stored }),
+      onSaved: (stored) => {
+        remember(accountId, chain.id, { draft: stored })
+        setDraftSavedAt(stored.updatedAt)
+        // What this browser kept is of before: this draft has taken its place.
+        setKept(null)
+      },
     }),
   )
   const autosaveState = useStore(autosave.state)
@@ -207,6 +213,7 @@ export function ChainPage({
               <Side label="Your draft" spec={spec} />
             </dl>
           )}
+          draftSavedAt={draftSavedAt}
           onSaved={goOnFrom}
           onTakeTheirs={(version) => {
             store.getState().propose(version.spec)

@@ -65,6 +65,7 @@ export function Studio({
   useEffect(() => remember(viewer.accountId, design.id, { versions: saved }), [viewer.accountId, design.id, saved])
   const [saving, setSaving] = useState(false)
   const [kept, setKept] = useState<DesignSpec | null>(null)
+  const [draftSavedAt, setDraftSavedAt] = useState<string | null>(null)
 
   // Told at intervals of a drag: what stands here in words needn't follow the hand within the frame, the plots do.
   const { spec, made } = useSettled(store)
@@ -75,7 +76,12 @@ export function Studio({
       store,
       draft,
       parentNumber,
-      onSaved: (stored) => remember(viewer.accountId, design.id, { draft: stored }),
+      onSaved: (stored) => {
+        remember(viewer.accountId, design.id, { draft: stored })
+        setDraftSavedAt(stored.updatedAt)
+        // What this browser kept is of before: this draft has taken its place.
+        setKept(null)
+      },
     }),
   )
   const autosaveState = useStore(autosave.state)
@@ -170,6 +176,7 @@ export function Studio({
               right={{ label: 'Your draft', spec: store.getState().spec }}
             />
           )}
+          draftSavedAt={draftSavedAt}
           onSaved={goOnFrom}
           onTakeTheirs={(version) => {
             store.getState().propose(version.spec)

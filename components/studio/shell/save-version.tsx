@@ -16,6 +16,8 @@ type Outcome<Version> =
   | { readonly outcome: 'conflict'; readonly theirs: Version }
   | { readonly outcome: 'refused'; readonly problem: Problem }
 
+const SILENT = 'The server didn’t answer. Nothing is lost: the draft stands here; try again in a moment.'
+
 /**
  * Saving a version on purpose, with a note. When somebody else saved on the same parent in the meantime, both are shown and the user
  * chooses; the draft stays as it is until then.
@@ -26,6 +28,8 @@ export function SaveVersion<Version extends Saved>({
   parentNumber,
   save,
   compare,
+  draftSavedAt,
+  foot,
   onSaved,
   onTakeTheirs,
   onClose,
@@ -37,15 +41,25 @@ export function SaveVersion<Version extends Saved>({
   save(note: string, onTopOf?: number): Promise<Outcome<Version>>
   /** The other version and what stands here, side by side. */
   compare(theirs: Version): ReactNode
+  /** When the draft last reached the server from this page: what was said of a silent server is over then. */
+  draftSavedAt: string | null
+  /** What saving does beside. */
+  foot?: string
   onSaved(version: Version): void
   onTakeTheirs(version: Version): void
   onClose(): void
 }) {
   const [note, setNote] = useState('')
   const [problem, setProblem] = useState<string | null>(null)
+  const [silentSince, setSilentSince] = useState<string | null>(null)
+  if (problem === SILENT && silentSince !== draftSavedAt) setProblem(null)
   const [theirs, setTheirs] = useState<Version | null>(null)
   const [pending, startTransition] = useTransition()
   const noteField = useRef<HTMLInputElement>(null)
+  const savedAt = useRef(draftSavedAt)
+  useEffect(() => {
+    savedAt.current = draftSavedAt
+  }, [draftSavedAt])
   useEffect(() => noteField.current?.focus(), [])
 
   function submit(onTopOf?: number) {
@@ -62,7 +76,8 @@ export function SaveVersion<Version extends Saved>({
         else setProblem(outcome.problem.message)
       } catch {
         // A server action that fails to answer says nothing of why; the draft is still here, so say that.
-        setProblem('The server didn’t answer. Nothing is lost: the draft stands here; try again in a moment.')
+        setSilentSince(savedAt.current)
+        setProblem(SILENT)
       }
     })
   }
@@ -105,6 +120,7 @@ export function SaveVersion<Version extends Saved>({
             <Button onClick={onClose}>Not now</Button>
           </div>
         </form>
+        {foot ? <p className="mt-1 text-[13px] text-pencil">{foot}</p> : null}
         {problem ? (
           <p id="version-note-problem" role="alert" className="mt-2 text-[14px] text-vermilion">
             {problem}
