@@ -36,6 +36,16 @@ export function chainDesk(store: ChainStore) {
 
   return {
     put,
+    /** Tells of every change of the chain, also by undo and redo; the answer ends it. */
+    onEdit: (tell: () => void): (() => void) =>
+      store.subscribe((now, before) => {
+        if (now.spec !== before.spec) tell()
+      }),
+    /** Whether an edit of the stages would make a chain. */
+    wouldTake(change: (spec: ChainSpec) => StagesEdit): boolean {
+      const edit = change(spec())
+      return edit.ok && chainRefusal(edit.spec) === null
+    },
     /** Edits the chain as it stands now. */
     edit: (change: (spec: ChainSpec) => ChainSpec): string | null => put(change(spec())),
 

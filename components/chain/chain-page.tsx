@@ -21,6 +21,7 @@ import { withStageAdded } from '@/lib/chains/edits'
 import { indexOfStage } from '@/lib/chains/outline'
 import { chainText } from '@/lib/chains/statement'
 import type { ChainPageProps, ChainVersionSummary } from '@/lib/chains/types'
+import { notAdded } from '@/lib/chains/words'
 import { sameValue } from '@/lib/designs/same-value'
 import { AddStage } from './add-stage'
 import { chainViewFromSearch, useChainAddress } from './address'
@@ -36,6 +37,7 @@ import { ChainStatement } from './statement'
 import { createChainStore, toleranceFor } from './store'
 import { Strip } from './strip'
 import { useChain } from './use-chain'
+import { useSaid } from './use-said'
 
 /** The chart, the sheet and the drawer come after what is said in words: the first page stays light. */
 const FoldChart = dynamic(() => import('./fold-chart/fold-chart').then((module) => module.FoldChart), {
@@ -142,12 +144,13 @@ export function ChainPage({
   const desk = useMemo(() => chainDesk(store), [store])
   const { trace } = store.getState()
   const chosenIndex = indexOfStage(spec, stageId)
-  const [adding, setAdding] = useState<string | null>(null)
+  const [adding, setAdding] = useSaid<string>(desk)
 
   function addStage(kind: ChainStageKind) {
     const behind = chosenIndex < 0 ? spec.stages.length - 1 : chosenIndex
     const links = linkable.map(({ link }) => link)
-    setAdding(desk.editStages((now) => withStageAdded(now, kind, behind, links)))
+    const reason = desk.editStages((now) => withStageAdded(now, kind, behind, links))
+    setAdding(reason === null ? null : notAdded(kind, reason))
   }
 
   /** The focus goes back to the stage that lay on the desk. */

@@ -1,6 +1,6 @@
 'use client'
 
-import { useId, useState, type ReactNode } from 'react'
+import { useId, type ReactNode } from 'react'
 import type { ChainSpec } from '@/dsp'
 import { InlineQuantity } from '@/components/studio/shell/inline-quantity'
 import { RefusalNote } from '@/components/studio/statement/refusal-note'
@@ -8,6 +8,7 @@ import { chainFieldOf, chainFieldText, numberAt, parseChainField } from '@/lib/c
 import type { ChainDesk } from './chain-desk'
 import type { ChainOption } from './statement-options'
 import { chainWordLabel, nyquistOf } from './statement'
+import { useSaid } from './use-said'
 
 /* The fields of the desk: each with its label before it, each refused right beside itself. */
 
@@ -74,7 +75,7 @@ export function SwitchField({
   onSwitch(isOn: boolean): (spec: ChainSpec) => ChainSpec
   children?: ReactNode
 }) {
-  const [problem, setProblem] = useState<string | null>(null)
+  const [problem, setProblem] = useSaid<string>(desk)
   const id = useId()
   return (
     <span className="inline-flex min-h-7 flex-wrap items-baseline gap-x-3 text-[13px]">
@@ -103,7 +104,7 @@ export function ChoiceField({
   desk,
   readOnly,
 }: Omit<FieldProps, 'spec'> & { label: string; current: string; options: readonly ChainOption[] }) {
-  const [problem, setProblem] = useState<string | null>(null)
+  const [problem, setProblem] = useSaid<string>(desk)
   const id = useId()
   return (
     <span className="inline-flex max-w-full min-h-7 flex-wrap items-baseline gap-x-1.5 text-[13px]">

@@ -1,7 +1,6 @@
 'use client'
 
 import { ArrowLeft, ArrowRight, X } from 'lucide-react'
-import { useState } from 'react'
 import type { ChainSpec, ChainStage } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import {
@@ -16,11 +15,12 @@ import { linksOf } from '@/lib/chains/links'
 import { indexOfStage } from '@/lib/chains/outline'
 import { linkText } from '@/lib/chains/statement'
 import type { LinkableDesign } from '@/lib/chains/types'
-import { stageKindWords } from '@/lib/chains/words'
+import { stageKindWords, wasnt } from '@/lib/chains/words'
 import { classNames } from '@/lib/format/class-names'
 import type { ChainDesk } from './chain-desk'
 import type { ChainStore } from './store'
 import { useChain } from './use-chain'
+import { useSaid } from './use-said'
 import { AnalogFields, ConverterFields, DecimateFields, SensorFields, ShapeFields } from './stage-fields'
 
 /** The desk at the pace of the hand: a box that is ticked is ticked at once. */
@@ -50,10 +50,13 @@ export function StageDesk({
   readOnly: boolean
   onClose(): void
 }) {
-  const [problem, setProblem] = useState<string | null>(null)
+  const [problem, setProblem] = useSaid<string>(desk)
   const stage = spec.stages[index]
   if (!stage) return null
-  const edit = (change: (spec: ChainSpec) => StagesEdit) => setProblem(desk.editStages(change))
+  const edit = (done: string, change: (spec: ChainSpec) => StagesEdit) => {
+    const reason = desk.editStages(change)
+    setProblem(reason === null ? null : wasnt(`The stage wasn’t ${done}`, reason))
+  }
   const isFixed = stage.kind === 'sensor' || stage.kind === 'converter'
   return (
     <section
@@ -73,14 +76,14 @@ export function StageDesk({
             <Tool
               label="Move earlier"
               isInert={isFixed}
-              onPress={() => edit((now) => withStageMoved(now, index, index - 1))}
+              onPress={() => edit('moved', (now) => withStageMoved(now, index, index - 1))}
             >
               <ArrowLeft aria-hidden size={14} />
             </Tool>
             <Tool
               label="Move later"
               isInert={isFixed}
-              onPress={() => edit((now) => withStageMoved(now, index, index + 1))}
+              onPress={() => edit('moved', (now) => withStageMoved(now, index, index + 1))}
             >
               <ArrowRight aria-hidden size={14} />
             </Tool>
@@ -92,7 +95,7 @@ export function StageDesk({
                   checked={stage.bypassed}
                   onChange={(event) => {
                     const { checked } = event.currentTarget
-                    edit((now) => withBypass(now, index, checked))
+                    edit(checked ? 'bypassed' : 'put back', (now) => withBypass(now, index, checked))
                   }}
                 />
                 Bypassed
@@ -100,10 +103,10 @@ export function StageDesk({
             )}
             {isFixed ? null : (
               <>
-                <Button small onClick={() => edit((now) => withStageDuplicated(now, index))}>
+                <Button small onClick={() => edit('duplicated', (now) => withStageDuplicated(now, index))}>
                   Duplicate
                 </Button>
-                <Button small onClick={() => edit((now) => withoutStage(now, index))}>
+                <Button small onClick={() => edit('removed', (now) => withoutStage(now, index))}>
                   Remove
                 </Button>
               </>
@@ -154,7 +157,7 @@ function Fields({ stage, ...rest }: FieldsProps) {
 
 /** Which version is pinned, and whether there is a newer one to move to. */
 function LinkNote({ spec, stage, index, desk, linkable, readOnly }: FieldsProps) {
-  const [problem, setProblem] = useState<string | null>(null)
+  const [problem, setProblem] = useSaid<string>(desk)
   const pinned = linksOf(spec).find(({ stageId }) => stageId === stage.id)?.link
   if (!pinned) return null
   const newest = linkable.find(({ link }) => link.designId === pinned.designId)?.link

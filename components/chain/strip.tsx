@@ -10,6 +10,7 @@ import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
 import type { ChainDesk } from './chain-desk'
 import { StageSketch, stageLevels, storedLevels } from './sketch'
 import { stageFacts } from './stage-facts'
+import { useSaid } from './use-said'
 
 /** The pointer has to go so far before a press becomes a drag. */
 const DRAG_PIXELS = 6
@@ -19,6 +20,8 @@ interface Drag {
   readonly startX: number
   /** Null until the pointer has gone far enough. */
   readonly to: number | null
+  /** Whether the stage may stand there. */
+  readonly isAllowed: boolean
 }
 
 /** The stages in signal order, from the sensor to what is stored: chosen by a press, moved by pulling or with Alt and an arrow key. */
@@ -39,7 +42,7 @@ export function Strip({
   onChoose(stageId: string | null): void
 }) {
   const [drag, setDrag] = useState<Drag | null>(null)
-  const [said, setSaid] = useState<{ readonly words: string; readonly isRefusal: boolean } | null>(null)
+  const [said, setSaid] = useSaid<{ readonly words: string; readonly isRefusal: boolean }>(desk)
   const row = useRef<HTMLOListElement>(null)
   const hasDragged = useRef(false)
   // A cell that was moved takes the focus along: the browser lets go of it when it changes its place.
@@ -49,6 +52,19 @@ export function Strip({
     row.current?.querySelector<HTMLElement>(`[data-stage="${awaited.current}"]`)?.focus()
     awaited.current = null
   }, [spec.stages])
+  // The button that brought another stage onto the desk, Remove or Duplicate, has gone with the old one: that stage's cell takes its focus.
+  const bereft = useRef<string | null>(null)
+  useEffect(() => {
+    if (document.activeElement === document.body) bereft.current = chosen
+  }, [chosen])
+  useEffect(() => {
+    if (bereft.current === null) return
+    const cell = row.current?.querySelector<HTMLElement>(`[data-stage="${bereft.current}"]`)
+    // A stage that was just made comes into the strip a moment later.
+    if (!cell) return
+    bereft.current = null
+    if (document.activeElement === document.body) cell.focus()
+  }, [chosen, spec.stages])
 
   function move(from: number, to: number) {
     const stage = spec.stages[from]
@@ -74,7 +90,10 @@ export function Strip({
     if (!drag) return
     if (drag.to === null && Math.abs(event.clientX - drag.startX) < DRAG_PIXELS) return
     if (drag.to === null) event.currentTarget.setPointerCapture(event.pointerId)
-    setDrag({ ...drag, to: placeAt(event.clientX, drag.stageId) })
+    const to = placeAt(event.clientX, drag.stageId)
+    if (to === drag.to) return
+    const from = spec.stages.findIndex(({ id }) => id === drag.stageId)
+    setDrag({ ...drag, to, isAllowed: desk.wouldTake((now) => withStageMoved(now, from, to)) })
   }
 
   function letGo(isMeant: boolean) {
@@ -118,7 +137,8 @@ export function Strip({
               <span
                 aria-hidden
                 className={classNames(
-                  'absolute inset-y-0 w-[3px] bg-spruce',
+                  'absolute inset-y-0 w-[3px]',
+                  drag.isAllowed ? 'bg-spruce' : 'bg-vermilion',
                   spec.stages.findIndex(({ id }) => id === drag.stageId) < index ? 'right-0' : 'left-0',
                 )}
               />
@@ -140,7 +160,7 @@ export function Strip({
               onPointerDown={(event) => {
                 hasDragged.current = false
                 if (!readOnly && event.pointerType !== 'touch' && event.button === 0)
-                  setDrag({ stageId: stage.id, startX: event.clientX, to: null })
+                  setDrag({ stageId: stage.id, startX: event.clientX, to: null, isAllowed: true })
               }}
               onPointerMove={onPointerMove}
               onPointerUp={() => letGo(true)}

@@ -21,6 +21,20 @@ export const stageKindWords: Readonly<Record<ChainStageKind, string>> = {
   shape: 'Digital shaping',
 }
 
+const added: Readonly<Record<ChainStageKind, string>> = {
+  sensor: 'A sensor',
+  analog: 'An analog filter',
+  converter: 'A converter',
+  decimate: 'A decimation',
+  shape: 'A digital shaping',
+}
+
+/** What was refused, and why: "A decimation wasn’t added: the band ends at …". */
+export const wasnt = (what: string, reason: string): string =>
+  `${what}: ${reason.replace(/^(?:The|A|An|There|At|Only|Integrating|Integrated)\b/, (word) => word.toLowerCase())}`
+
+export const notAdded = (kind: ChainStageKind, reason: string): string => wasnt(`${added[kind]} wasn’t added`, reason)
+
 export const decimateWords: Readonly<Record<DecimateFilterType, string>> = {
   'half-band': 'Half-band',
   kaiser: 'Kaiser window',

@@ -5,9 +5,10 @@ import { chainCommands } from '@/components/chain/commands'
 import { computedChain } from '@/components/chain/computed-chain'
 import { createChainStore, toleranceFor } from '@/components/chain/store'
 import type { ToleranceResult } from '@/dsp'
-import { withField, withoutStage, withStageMoved } from '@/lib/chains/edits'
+import { withField, withoutStage, withStageDuplicated, withStageMoved } from '@/lib/chains/edits'
 import { numberAt } from '@/lib/chains/fields'
 import { startingChain } from '@/lib/chains/stage-starts'
+import { notAdded, wasnt } from '@/lib/chains/words'
 
 const opened = () => {
   const store = createChainStore(startingChain)
@@ -103,6 +104,27 @@ describe('the desk of a chain', () => {
     expect(state().stageId).toBe('s5')
     expect(state().past).toHaveLength(1)
   })
+  it('tells of edits, undo and redo, so that what was said of the one before goes; not of what was refused', () => {
+    const { state, desk } = opened()
+    let told = 0
+    const end = desk.onEdit(() => (told += 1))
+    desk.editStages((now) => withStageMoved(now, 4, 1))
+    expect(told).toBe(0)
+    desk.editStages((now) => withStageMoved(now, 4, 3))
+    state().undo()
+    state().redo()
+    expect(told).toBe(3)
+    end()
+    state().undo()
+    expect(told).toBe(3)
+  })
+  it('knows where a stage may be put before it is let go there', () => {
+    const { desk } = opened()
+    expect(desk.wouldTake((now) => withStageMoved(now, 4, 3))).toBe(true)
+    expect(desk.wouldTake((now) => withStageMoved(now, 4, 1))).toBe(false)
+    // A band kept to 90 Hz needs more than another halving leaves.
+    expect(desk.wouldTake((now) => withStageDuplicated(now, 4))).toBe(false)
+  })
   it('adds, moves and removes lines of the sheet, one step each', () => {
     const { state, desk } = opened()
     for (const kind of ['usable-band', 'phase', 'delay', 'channel-match', 'effective-bits', 'flatness'] as const)
@@ -120,6 +142,15 @@ describe('the desk of a chain', () => {
     expect(desk.setNumber('interferers.0.level', 0.5)).toBeNull()
     desk.removeInterferer(0)
     expect(state().spec.interferers).toEqual([])
+  })
+})
+
+describe('a refusal', () => {
+  it('says what it was that was refused', () => {
+    expect(notAdded('decimate', 'The band ends at 62.5 Hz.')).toBe(
+      'A decimation wasn’t added: the band ends at 62.5 Hz.',
+    )
+    expect(wasnt('The stage wasn’t moved', 'Kaiser 3 is none.')).toBe('The stage wasn’t moved: Kaiser 3 is none.')
   })
 })
 
