@@ -198,7 +198,7 @@ export { foldChart, foldPaths, worstAlias } from './chain/folding'
 export { usableBand } from './chain/usable-band'
 export { noiseBudget } from './chain/noise'
 export { interfererLandings } from './chain/interferers'
-export { checkChainSheet } from './chain/sheet'
+export { chainSheetLines, checkChainSheet } from './chain/sheet'
 export { chainSketch, type ChainSketch } from './chain/sketch'
 export { analogSections, type AnalogSection, type SectionResponse } from './chain/analog-sections'
 export {

@@ -2,6 +2,8 @@ import type { ReactNode } from 'react'
 import type { ChainRequirementResult, ChainSpec, ChainStage } from '@/dsp'
 import { Button } from '@/components/ui/button'
 import { SelectField } from '@/components/ui/field'
+import { otherChanges } from '@/lib/chains/changes'
+import { changesBetween, changeText } from '@/lib/chains/facts'
 import { figureRows } from '@/lib/chains/figure-words'
 import { chainStatementParts, type ChainStatementPart } from '@/lib/chains/statement'
 import { chainLineText, chainMarginWords, stageLabel, stageName } from '@/lib/chains/words'
@@ -11,24 +13,24 @@ import { ChainOverlay } from './chain-overlay'
 import { ChainTable } from './chain-table'
 import type { ChosenVersions } from './chosen-versions'
 
-/** The lines of a version's sheet, judged; null where today's engine can't compute it. */
-export type Judge = (version: ChosenVersions['left']) => readonly ChainRequirementResult[] | null
+/** The lines of each version's sheet, judged, left first; null where today's engine can't compute it. */
+type SideResults = readonly (readonly ChainRequirementResult[] | null)[]
 
 /** Two versions of a chain side by side: their sentences with the words that differ, figures, sheets, stages, and responses over each other. */
 export function ChainCompare({
   numbers,
   chosen,
-  judge,
+  results,
 }: {
   /** Of all versions, newest first. */
   numbers: readonly number[]
   chosen: ChosenVersions | null
-  judge: Judge
+  results: SideResults
 }) {
   return (
     <main className="mx-auto flex max-w-5xl flex-col gap-8 px-4 pt-5 pb-10 sm:px-6">
       {chosen ? (
-        <Sides numbers={numbers} chosen={chosen} judge={judge} />
+        <Sides numbers={numbers} chosen={chosen} results={results} />
       ) : (
         <>
           <h1 className="text-[22px]">Compare versions</h1>
@@ -39,7 +41,15 @@ export function ChainCompare({
   )
 }
 
-function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen: ChosenVersions; judge: Judge }) {
+function Sides({
+  numbers,
+  chosen,
+  results,
+}: {
+  numbers: readonly number[]
+  chosen: ChosenVersions
+  results: SideResults
+}) {
   const { left, right } = chosen
   const labels = [`version ${left.number}`, `version ${right.number}`] as const
   const columns = [`Version ${left.number}`, `Version ${right.number}`]
@@ -66,12 +76,15 @@ function Sides({ numbers, chosen, judge }: { numbers: readonly number[]; chosen:
         <ChainOverlay left={left.spec} right={right.spec} labels={labels} />
       </Part>
       <Part title="Requirement sheets">
-        <Sheets sides={[left, right]} columns={columns} judge={judge} />
+        <Sheets sides={[left, right]} columns={columns} results={results} />
       </Part>
       <Part title="Stages">
         <ChainTable label="Stages of both" columns={['Stage', ...columns, 'Change']}>
           {stageRows(left.spec, right.spec)}
         </ChainTable>
+      </Part>
+      <Part title="Kept band, sheet, interferers and tolerance">
+        <Others left={left.spec} right={right.spec} columns={columns} />
       </Part>
     </>
   )
@@ -140,17 +153,16 @@ function Words({ part, look }: { part: ChainStatementPart; look: string | null }
 function Sheets({
   sides,
   columns,
-  judge,
+  results,
 }: {
   sides: readonly ChosenVersions['left'][]
   columns: readonly string[]
-  judge: Judge
+  results: SideResults
 }) {
-  const judged = sides.map((version) => {
-    const results = judge(version)
+  const judged = sides.map((version, side) => {
     return new Map(
       version.spec.sheet.map((_, index) => {
-        const result = results?.[index]
+        const result = results[side]?.[index]
         return [chainLineText(version.spec, index), result ? chainMarginWords(result) : 'can’t be computed any more']
       }),
     )
@@ -171,17 +183,44 @@ function Sheets({
 function stageRows(left: ChainSpec, right: ChainSpec): readonly (readonly ReactNode[])[] {
   const gone = left.stages.filter(({ id }) => !right.stages.some((stage) => stage.id === id))
   return [...right.stages, ...gone].map((stage) => {
-    const [before, after] = [left, right].map(({ stages }) => stages.find(({ id }) => id === stage.id))
+    const [was, is] = [left, right].map(({ stages }) => stages.findIndex(({ id }) => id === stage.id))
+    const [before, after] = [left.stages[was ?? -1], right.stages[is ?? -1]]
     const [one, other] = [before, after].map((side) => (side ? nameOf(side) : '—'))
-    const moved = left.stages.findIndex(({ id }) => id === stage.id) !== right.stages.indexOf(stage)
-    const change =
-      before === undefined
-        ? 'added'
-        : after === undefined
-          ? 'gone'
-          : [!sameValue(before, after) && 'changed', moved && 'moved'].filter(Boolean).join(', ')
-    return [stageLabel(stage), one, marked(other ?? '', one !== other), change || 'same']
+    return [stageLabel(stage), one, marked(other ?? '', one !== other), stageChange(left, right, was ?? -1, is ?? -1)]
   })
+}
+
+/** Every field that differs, by its name and with both values. */
+function stageChange(left: ChainSpec, right: ChainSpec, was: number, is: number): ReactNode {
+  if (was < 0) return 'added'
+  if (is < 0) return 'gone'
+  const changes = changesBetween(left, `stages.${was}`, right, `stages.${is}`).map(changeText)
+  const isOtherwise = changes.length === 0 && !sameValue(left.stages[was], right.stages[is])
+  const all = [...(was === is ? [] : ['moved']), ...changes, ...(isOtherwise ? ['changed'] : [])]
+  if (all.length === 0) return 'same'
+  return (
+    <ul>
+      {all.map((text) => (
+        <li key={text}>{text}</li>
+      ))}
+    </ul>
+  )
+}
+
+/** Kept band, lines, interferers and the tolerance run, as far as they differ. */
+function Others({ left, right, columns }: { left: ChainSpec; right: ChainSpec; columns: readonly string[] }) {
+  const rows = otherChanges(left, right)
+  if (rows.length === 0)
+    return (
+      <p className="text-[14px] text-pencil">
+        The kept band, the sheet’s lines, the interferers and the tolerance run are the same.
+      </p>
+    )
+  return (
+    <ChainTable label="What else differs" columns={['What', ...columns]}>
+      {rows.map(({ what, left: one, right: other }) => [what, one, marked(other, true)])}
+    </ChainTable>
+  )
 }
 
 const nameOf = (stage: ChainStage): string => `${stageName(stage)}${stage.bypassed ? ', bypassed' : ''}`

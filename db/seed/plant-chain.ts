@@ -47,7 +47,7 @@ export async function plantChain(tx: Transaction, { team, projectId, chain, acce
   await recordTrail({ actor: access[first.by].accountId, team, action: 'chain.create', object, details }, tx)
   for (const [index, { spec: specFor, note, by, daysAgo }] of chain.versions.entries()) {
     const spec = specFor(linkTo)
-    const computed = computeChainVersion(spec)
+    const computed = await computeChainVersion(spec)
     const number = index + 1
     await insertChainVersion(tx, access[by], {
       chainId: made.id,

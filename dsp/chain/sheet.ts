@@ -151,6 +151,14 @@ function judge(chain: ComputedChain, line: ChainRequirement, match: ToleranceRes
   }
 }
 
+/** As checkChainSheet, line by line: each is judged when it is asked for, so that others may have a turn between them. */
+export function* chainSheetLines(
+  chain: ComputedChain,
+  match: ToleranceResult | null,
+): Generator<ChainRequirementResult> {
+  for (const line of chain.spec.sheet) yield judge(chain, line, match)
+}
+
 /**
  * The lines of a chain's sheet, each judged by its worst point, which is refined between the points looked at.
  *
@@ -160,4 +168,4 @@ function judge(chain: ComputedChain, line: ChainRequirement, match: ToleranceRes
 export const checkChainSheet = (
   chain: ComputedChain,
   match: ToleranceResult | null,
-): readonly ChainRequirementResult[] => chain.spec.sheet.map((line) => judge(chain, line, match))
+): readonly ChainRequirementResult[] => [...chainSheetLines(chain, match)]

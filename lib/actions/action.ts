@@ -55,7 +55,7 @@ interface TeamActionParts<Input, Found, Value, Prepared> {
   /** The object, as far as `access` reaches; null when it doesn't. */
   readonly find: (access: Access, input: Input, tx: Transaction) => Promise<Found | null>
   /** What takes long and needs no database: done before the transaction opens, so that it holds no lock, and a throw opens none. */
-  readonly prepare?: (input: Input) => Prepared
+  readonly prepare?: (input: Input) => Prepared | Promise<Prepared>
   readonly run: (context: {
     readonly input: Input
     readonly prepared: Prepared
@@ -86,7 +86,7 @@ export function teamAction<Input, Found, Value, Prepared = undefined>(
       }
       // Whoever may not do this has nothing computed for them.
       if (prepare) await inTransaction(authorised)
-      const prepared = prepare?.(input) as Prepared
+      const prepared = (await prepare?.(input)) as Prepared
       const value = await inTransaction(async (tx) => {
         const found = await authorised(tx)
         const done = await run({ input, prepared, found, access, session, tx })

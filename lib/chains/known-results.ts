@@ -1,19 +1,25 @@
 import 'server-only'
 import { DesignError, ENGINE_VERSION, type ChainRequirementResult } from '@/dsp'
 import { judgedChain } from './compute-version'
+import { savedLines } from './held-figures'
 import type { ChainVersionSummary } from './types'
 
+type Results = readonly ChainRequirementResult[] | null
+
 const MOST_KEPT = 100
-const kept = new Map<string, readonly ChainRequirementResult[] | null>()
+const kept = new Map<string, Promise<Results>>()
 
 /**
- * The lines of a saved version's sheet, judged, once in each process: a version never changes, and a tolerance run takes its time. Null where
- * the engine of today refuses what an earlier one computed.
+ * The lines of a saved version's sheet as they were judged when it was saved. For a version that was saved without them they are judged now,
+ * once in each process: null where the engine of today refuses what an earlier one computed.
  */
-export function knownResults({
+export async function knownResults({
   checksum,
   spec,
-}: Pick<ChainVersionSummary, 'checksum' | 'spec'>): readonly ChainRequirementResult[] | null {
+  figures,
+}: Pick<ChainVersionSummary, 'checksum' | 'spec' | 'figures'>): Promise<Results> {
+  const saved = savedLines(spec, figures)
+  if (saved) return saved
   const key = `${checksum} ${ENGINE_VERSION}`
   const known = kept.get(key)
   if (known !== undefined) return known
@@ -21,12 +27,14 @@ export function knownResults({
   const [oldest] = kept.keys()
   if (kept.size >= MOST_KEPT && oldest !== undefined) kept.delete(oldest)
   kept.set(key, fresh)
+  // What failed for another reason than the chain's own may go well the next time.
+  fresh.catch(() => kept.delete(key))
   return fresh
 }
 
-function resultsOf(spec: ChainVersionSummary['spec']): readonly ChainRequirementResult[] | null {
+async function resultsOf(spec: ChainVersionSummary['spec']): Promise<Results> {
   try {
-    return judgedChain(spec).results
+    return (await judgedChain(spec)).results
   } catch (error) {
     if (error instanceof DesignError) return null
     throw error

@@ -1,7 +1,10 @@
-import type { ChainSpec, DesignLink } from '@/dsp'
+import type { ChainRequirementResult, ChainSpec, DesignLink } from '@/dsp'
 import type { DesignRecord, Problem, VersionState, Viewer } from '@/lib/designs/types'
 
 /* What travels between the server and the chain page. */
+
+/** A line of the sheet as it was judged when the version was saved, in the order of the spec's lines, which say what was asked. */
+export type StoredLine = Omit<ChainRequirementResult, 'requirement'>
 
 /** The figures a version was saved with, computed by the server. */
 export interface ChainFigures {
@@ -16,6 +19,8 @@ export interface ChainFigures {
   readonly unjudged: number
   /** The tolerance run of the version's own seed: 95th percentile between two channels. */
   readonly match: readonly { readonly hz: number; readonly gainDb: number; readonly phaseDegrees: number }[]
+  /** Missing in versions that were saved before they were kept. */
+  readonly lines?: readonly StoredLine[]
 }
 
 export interface ChainVersionSummary {

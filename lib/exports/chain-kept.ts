@@ -18,6 +18,23 @@ export const chainFiguresSchema = z.strictObject({
   match: z
     .array(z.strictObject({ hz: z.number(), gainDb: z.number(), phaseDegrees: z.number() }))
     .meta({ description: 'Between two channels, at the 95th percentile of the tolerance run of this version’s seed.' }),
+  lines: z
+    .array(
+      z.strictObject({
+        value: z.number().nullable(),
+        limit: z.number(),
+        unit: z.enum(['Hz', 'dB', '°', 's', 'bits']),
+        margin: z.number().nullable().meta({ description: 'Room left, 0 or more where the line is met.' }),
+        met: z.boolean().nullable(),
+        worstHz: z.number().nullable().meta({ description: 'Where the line is nearest to its limit.' }),
+        reason: z.string().optional(),
+      }),
+    )
+    .optional()
+    .meta({
+      description:
+        'The lines of the sheet in their order, as they were judged; null where one could not be. Levels are held within ± 400 dB. Missing in versions that were saved before they were kept.',
+    }),
 })
 
 const decimation = {

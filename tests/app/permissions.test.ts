@@ -148,7 +148,13 @@ beforeAll(async () => {
       const chain = await lockChain(tx, access, one.chainId)
       if (!chain) throw new Error('no chain')
       const chainInput = { chainId: one.chainId, spec: startingChain, note: 'first', parentNumber: null }
-      await saveChainVersion({ tx, access, chain, input: chainInput, computed: computeChainVersion(startingChain) })
+      await saveChainVersion({
+        tx,
+        access,
+        chain,
+        input: chainInput,
+        computed: await computeChainVersion(startingChain),
+      })
     })
   }
 })

@@ -34,7 +34,7 @@ const save = (role: Role, spec: ChainSpec, parentNumber: number | null, onTopOf?
     const chain = await lockChain(tx, access, team.chainId)
     if (!chain) throw new Error('no chain')
     const input = { chainId: team.chainId, spec, note: 'why', parentNumber, ...(onTopOf !== undefined && { onTopOf }) }
-    return (await saveChainVersion({ tx, access, chain, input, computed: computeChainVersion(spec) })).value
+    return (await saveChainVersion({ tx, access, chain, input, computed: await computeChainVersion(spec) })).value
   })
 
 const saveDesign = (of: TestTeam, spec: DesignSpec, parentNumber: number | null) =>
@@ -76,7 +76,7 @@ describe('saving a version of a chain', () => {
       expect(outcome).not.toHaveProperty('version.numbers')
       const row = await findChainVersion(team.access('observer'), team.chainId, at + 1)
       if (!row) throw new Error('lost')
-      const fresh = computeChainVersion(spec)
+      const fresh = await computeChainVersion(spec)
       expect(canonicalJson(row.spec)).toBe(canonicalJson(spec))
       expect(canonicalJson(row.figures)).toBe(canonicalJson(fresh.figures))
       expect(canonicalJson(row.numbers)).toBe(canonicalJson(fresh.numbers))
@@ -229,7 +229,7 @@ describe('links', () => {
     const access = team.access('owner')
     const insert = inTransaction(async (tx) => {
       await lockChain(tx, access, team.chainId)
-      const computed = computeChainVersion(spec)
+      const computed = await computeChainVersion(spec)
       const links = [{ stageId: 'tied', designId: team.designId, designVersion: 9 }]
       await insertChainVersion(tx, access, {
         chainId: team.chainId,

@@ -72,7 +72,7 @@ describe('the demo', () => {
       for (const { number, note, checksum, spec, figures } of versions) {
         const row = await findChainVersion(access, chain.id, number)
         if (!row) throw new Error('lost')
-        expect({ figures, numbers: row.numbers }).toEqual(computeChainVersion(spec))
+        expect({ figures, numbers: row.numbers }).toEqual(await computeChainVersion(spec))
         expect(chainChecksum(row)).toBe(checksum)
         expect(note.length).toBeGreaterThan(20)
         for (const { stageId, link } of linksOf(spec)) {
@@ -94,7 +94,7 @@ describe('the demo', () => {
   it('has a chain that meets its sheet, one that misses nothing but its alias floor, and all seven kinds of line', async () => {
     const observer = await findAccountByEmail('observer@polewright.example')
     const chains = byDrawing(await listChains({ accountId: observer?.id ?? '', roles: allRoles }))
-    const [deck, pump, velocity] = chains.map(({ spec }) => judgedChain(spec).results)
+    const [deck, pump, velocity] = await Promise.all(chains.map(async ({ spec }) => (await judgedChain(spec)).results))
     for (const met of [deck, velocity]) expect(met?.filter((line) => line.met !== true)).toEqual([])
     expect(pump?.filter((line) => line.met !== true).map((line) => line.requirement.kind)).toEqual(['alias-floor'])
     // What the fold chart shows: the strip right above half the output rate, folded by the second decimation.

@@ -12,8 +12,8 @@ interface Texts {
 }
 
 /** A saved version of that chain as the server would export it. */
-export function chainSourceOf(spec: ChainSpec, text: Texts = {}): ChainSource {
-  const computed = computeChainVersion(spec)
+export async function chainSourceOf(spec: ChainSpec, text: Texts = {}): Promise<ChainSource> {
+  const computed = await computeChainVersion(spec)
   return {
     chain: {
       drawingNumber: 'HMF-CH-005',

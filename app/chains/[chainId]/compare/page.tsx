@@ -21,6 +21,8 @@ export default async function ChainComparePage({ params, searchParams }: PagePro
   const { access, found } = await requireChain(params, (id) => `/chains/${id}/compare`)
   const chain = chainRecord(found)
   const versions = await listChainVersions(access, chain.id)
+  const chosen = chosenVersions(await searchParams, versions)
+  const results = chosen ? await Promise.all([chosen.left, chosen.right].map(knownResults)) : []
   return (
     <>
       <Header
@@ -34,11 +36,7 @@ export default async function ChainComparePage({ params, searchParams }: PagePro
           Open chain
         </Link>
       </Header>
-      <ChainCompare
-        numbers={versions.map(({ number }) => number)}
-        chosen={chosenVersions(await searchParams, versions)}
-        judge={knownResults}
-      />
+      <ChainCompare numbers={versions.map(({ number }) => number)} chosen={chosen} results={results} />
     </>
   )
 }

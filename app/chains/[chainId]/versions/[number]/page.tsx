@@ -44,7 +44,7 @@ export default async function ChainVersionPage({ params }: { params: Promise<unk
       <ChainVersionSheet
         chain={chain}
         version={version}
-        results={knownResults(version)}
+        results={await knownResults(version)}
         links={linksOf(version.spec)}
         numbers={numbers}
         lacksStages={lacksStages(found.version)}
