@@ -2,7 +2,7 @@
 export const MOST_CHAIN_STAGES = 16
 /** Factor of one decimation stage; the product over a chain may be as large as MOST_TOTAL_DECIMATION. */
 export const MOST_DECIMATION = 256
-export const MOST_TOTAL_DECIMATION = 4096
+export const MOST_TOTAL_DECIMATION = 1024
 export const MOST_STAGE_TAPS = 512
 export const MOST_INTERFERERS = 40
 export const MOST_CHAIN_REQUIREMENTS = 24

@@ -156,7 +156,7 @@ const rows: readonly Row[] = [
     chainOf([flatSensor, converter(1e6), cic(256, 'a'), cic(32, 'b')], { kept: { fromHz: 0, toHz: 10 } }),
     'total-factor',
     'stages.3.factor',
-    16,
+    4,
   ],
   ['a kept band above half the output rate', digital(cic(8)), 'band-above-half-rate', 'kept.toHz', 500],
   [
