@@ -41,15 +41,18 @@ export function compensationTaps(request: CompensationRequest): Float64Array {
   const edge = 1 / droopAt(passHz)
   const areas = new Float64Array(2 * terms + 1)
   const right = new Float64Array(terms)
+  // All angles are multiples of half the grid's step, so that one turn of cosines serves.
+  const turn = 4 * points
+  const cosines = Float64Array.from({ length: turn }, (_, n) => Math.cos((2 * Math.PI * n) / turn))
   for (let n = 0; n <= points; n++) {
     const hertz = (n / points) * (sampleRateHz / 2)
     const isPass = hertz <= passHz
     const droop = droopAt(hertz)
     const weight = isPass ? droop * droop : BEYOND_WEIGHT / (edge * edge)
     const wanted = isPass ? 1 / droop : edge
-    const w = (Math.PI * n) / points
-    for (let m = 0; m < areas.length; m++) areas[m] = areas[m]! + weight * Math.cos(m * w)
-    for (let k = 0; k < terms; k++) right[k] = right[k]! + weight * wanted * Math.cos((k + shift) * w)
+    const about = weight * wanted
+    for (let m = 0; m < areas.length; m++) areas[m] = areas[m]! + weight * cosines[(2 * m * n) % turn]!
+    for (let k = 0; k < terms; k++) right[k] = right[k]! + about * cosines[((2 * k + 2 * shift) * n) % turn]!
   }
   const normal = new Float64Array(terms * terms)
   for (let j = 0; j < terms; j++) {
