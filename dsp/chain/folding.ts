@@ -3,6 +3,7 @@ import { DesignError } from '../errors'
 import { partMostAboveDb } from './analog-bound'
 import type { ComputedChain, FoldChart, FoldPath, FoldStrip, WorstAlias } from './chain'
 import { lookedUpTo, stripsUpTo } from './reach'
+import { keptForPath } from './same-path'
 import { foldsAt, inputOf, partsAhead, stripsOver } from './strips'
 import { weakestStrips, type StripWorst } from './weakest'
 
@@ -75,6 +76,12 @@ function chosen(chain: ComputedChain, count: number, worst: readonly StripWorst[
  */
 export function foldChart(chain: ComputedChain, outputHz: Float64Array): FoldChart {
   outputHz.forEach((hertz, index) => checkOutput(chain, hertz, `outputHz.${index}`))
+  const { fromHz, toHz } = chain.spec.kept
+  const { strips, ...rest } = keptForPath(chain, ['chart', fromHz, toHz, [...outputHz]], () => chartOf(chain, outputHz))
+  return { ...rest, outputHz, strips }
+}
+
+function chartOf(chain: ComputedChain, outputHz: Float64Array): FoldChart {
   const lookedUpToHz = lookedUpTo(chain)
   const count = stripsUpTo(chain, lookedUpToHz)
   const { fromHz, toHz } = chain.spec.kept

@@ -2,7 +2,8 @@ import type { ComputedChain, InterfererLanding } from './chain'
 import { addMagnitudeDb } from './part-response'
 import { integral } from './quadrature'
 import type { Interferer } from './spec'
-import { outputOf } from './strips'
+import { keptForPath } from './same-path'
+import { inputOf, outputOf } from './strips'
 import { chainUnits } from './units'
 
 type Tone = Extract<Interferer, { kind: 'tone' }>
@@ -70,6 +71,7 @@ function landingOfTone(chain: ComputedChain, { name, hz, level }: Tone): Interfe
     levelDb: levelDb[0]!,
     level: level * gain[0]!,
     inKeptBand: isKept(chain, landsHz),
+    keptShare: isKept(chain, landsHz) ? 1 : 0,
   }
 }
 
@@ -78,54 +80,83 @@ const MOST_POINTS = 4096
 /** Of the power, which is a thousandth of a decibel. */
 const BAND_TOLERANCE = 1e-4
 
-/** Whether any of an input band lands in the kept band. */
-function touchesKept(chain: ComputedChain, { fromHz, toHz }: Band): boolean {
-  const { strip, landsHz } = outputOf(fromHz, chain.outputRateHz)
-  const end = outputOf(toHz, chain.outputRateHz)
-  if (end.strip > strip + 1) return true
-  if (isKept(chain, landsHz) || isKept(chain, end.landsHz)) return true
-  const half = chain.outputRateHz / 2
-  const { kept } = chain.spec
-  const turn = (strip + 1) % 2 === 0 ? 0 : half
-  const spans =
-    end.strip === strip
-      ? [[landsHz, end.landsHz]]
-      : [
-          [landsHz, turn],
-          [turn, end.landsHz],
-        ]
-  return spans.some(([a = 0, b = 0]) => Math.min(a, b) <= kept.toHz && Math.max(a, b) >= kept.fromHz)
+/** A stretch of input frequencies, and how many like it it stands for. */
+interface Span {
+  readonly fromHz: number
+  readonly toHz: number
+  readonly count: number
 }
 
-function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
-  const { name, fromHz, toHz, level } = band
+/** Strips that are looked at one by one, and so many again chosen evenly from those above. */
+const MOST_SPANS = 128
+
+/** What of an input band lands inside the kept band: a stretch in each strip that it reaches. */
+function keptSpans(chain: ComputedChain, { fromHz, toHz }: Band): readonly Span[] {
+  const { outputRateHz, spec } = chain
+  const first = outputOf(fromHz, outputRateHz).strip
+  const last = outputOf(toHz, outputRateHz).strip
+  const more = Math.ceil(Math.max(last + 1 - first - MOST_SPANS, 0) / MOST_SPANS)
+  // Odd, so that mirrored strips have their turn.
+  const stride = more + 1 - (more % 2)
+  const spans: Span[] = []
+  for (let strip = first; strip <= last;) {
+    const count = strip < first + MOST_SPANS ? 1 : Math.min(stride, last + 1 - strip)
+    const ends = [inputOf(strip, spec.kept.fromHz, outputRateHz), inputOf(strip, spec.kept.toHz, outputRateHz)]
+    const span = { fromHz: Math.max(Math.min(...ends), fromHz), toHz: Math.min(Math.max(...ends), toHz), count }
+    if (span.fromHz < span.toHz) spans.push(span)
+    strip += count
+  }
+  return spans
+}
+
+/** Of a band of level 1 and no name. */
+function landingOfUnit(chain: ComputedChain, band: Band): InterfererLanding {
+  const { fromHz, toHz } = band
+  const inside = keptSpans(chain, band)
+  const isInside = inside.length > 0
+  const spans = isInside ? inside : [{ fromHz, toHz, count: 1 }]
   const strips = (2 * (toHz - fromHz)) / chain.outputRateHz
   const points = Math.min(MOST_POINTS, Math.max(64, Math.ceil(POINTS_A_STRIP * strips)))
-  const grid = Float64Array.from({ length: points + 1 }, (_, n) => fromHz + ((toHz - fromHz) * n) / points)
-  const { gain } = levelsAt(chain, grid)
-  const at = gain.reduce((best, value, n) => (value > gain[best]! ? n : best), 0)
-  const inputHz = grid[at]!
-  const power = integral(
-    (hertz) => levelsAt(chain, hertz).gain.map((value) => value * value),
-    fromHz,
-    toHz,
-    points / 4,
-    BAND_TOLERANCE,
+  const panels = Math.max(4, Math.ceil(points / 4 / spans.length))
+  const grid = Float64Array.from(
+    spans.flatMap((span) =>
+      Array.from({ length: 4 * panels + 1 }, (_, n) =>
+        n === 4 * panels ? span.toHz : span.fromHz + ((span.toHz - span.fromHz) * n) / (4 * panels),
+      ),
+    ),
   )
+  // The kept band is held against a floor in decibels; elsewhere what is biggest in the samples says most.
+  const { levelDb, gain } = levelsAt(chain, grid)
+  const sizes = isInside ? levelDb : gain
+  const inputHz = grid[sizes.reduce((best, value, n) => (value > sizes[best]! ? n : best), 0)]!
+  const power = spans.reduce((sum, span) => {
+    const squares = (hertz: Float64Array) => levelsAt(chain, hertz).gain.map((value) => value * value)
+    return sum + span.count * integral(squares, span.fromHz, span.toHz, panels, BAND_TOLERANCE)
+  }, 0)
+  const insideHz = inside.reduce((sum, span) => sum + span.count * (span.toHz - span.fromHz), 0)
   return {
-    name,
+    name: '',
     inputHz,
     ...outputOf(inputHz, chain.outputRateHz),
     levelDb: levelsAt(chain, Float64Array.of(inputHz)).levelDb[0]!,
-    level: level * Math.sqrt(power / (toHz - fromHz)),
-    inKeptBand: touchesKept(chain, band),
+    level: Math.sqrt(power / (toHz - fromHz)),
+    inKeptBand: isInside,
+    keptShare: Math.min(insideHz / (toHz - fromHz), 1),
   }
+}
+
+function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
+  const { fromHz, toHz } = band
+  const { kept } = chain.spec
+  const asked = ['band', fromHz, toHz, kept.fromHz, kept.toHz]
+  const unit = keptForPath(chain, asked, () => landingOfUnit(chain, band))
+  return { ...unit, name: band.name, level: band.level * unit.level }
 }
 
 /**
  * Where each interferer of the spec lands, and how big it is in the samples. Of a tone the level is its amplitude; of a band, evenly spread at
- * the sensor, the root mean square of all of it that reaches the samples, `inputHz` being where it comes through strongest and `inKeptBand` whether any
- * of it lands in the kept band. Behind an integrating stage levels are in the integrated unit, as the samples say it.
+ * the sensor, the root mean square of what lands inside the kept band, `inputHz` being where that is least far down. Of a band of which nothing
+ * lands there the level is that of all of it that reaches the samples, and `inputHz` where most does. Behind an integrating stage levels are in the integrated unit, as the samples say it.
  *
  * @returns one landing for each interferer, in the spec's order
  */

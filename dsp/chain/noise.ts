@@ -1,10 +1,12 @@
 import { show } from '../check'
 import type { ComputedChain, NoiseBudget } from './chain'
 import { ripplesOver } from './band-grid'
+import { noiseGain } from './noise-gain'
 import { addMagnitudeDb } from './part-response'
 import { integral } from './quadrature'
 import type { ConverterStage, SensorStage } from './spec'
-import { converterStrips, partsAhead, stripsOver } from './strips'
+import { keptForPath } from './same-path'
+import { partsAhead, stripsOver } from './strips'
 
 const TOLERANCE = 1e-6
 /** Past this nothing is left of a signal, or of the noise, that a double still tells from 0. */
@@ -29,17 +31,6 @@ function ratioDb(signal: number, noise: number): number {
   return Math.min(Math.max(20 * (Math.log10(signal) - Math.log10(noise)), -MOST_RATIO_DB), MOST_RATIO_DB)
 }
 
-/** Sum of |H|² of the digital parts over all that folds onto each output frequency below half the converter's rate. */
-function noiseGain(chain: ComputedChain, outputHz: Float64Array): Float64Array {
-  const { digitalDb } = stripsOver(chain, outputHz)
-  const total = new Float64Array(outputHz.length)
-  for (let strip = 0; strip < converterStrips(chain); strip++) {
-    const levels = digitalDb(strip)
-    for (let n = 0; n < total.length; n++) total[n] = total[n]! + 10 ** (levels[n]! / 10)
-  }
-  return total
-}
-
 /**
  * Noise of the stored samples over the kept band. The converter's noise (Δ²/12 of an ideal quantiser with steps of Δ = 2·full scale/2^bits, or
  * the measured density) is white up to half its rate; it goes through the digital parts, what each decimation folds down included, and is
@@ -57,7 +48,11 @@ export function noiseBudget(chain: ComputedChain): NoiseBudget {
   const perHz = voltsSquaredPerHz(converter) / (sensitivity * sensitivity)
   const middle = Float64Array.of((fromHz + toHz) / 2)
   const panels = Math.ceil(ripplesOver(chain, fromHz, toHz)) + 4
-  const rms = Math.sqrt(perHz * integral((at) => noiseGain(chain, at), fromHz, toHz, panels, TOLERANCE))
+  const [power, gain] = keptForPath(chain, ['noise', fromHz, toHz], () => {
+    const gainAt = noiseGain(chain)
+    return [integral(gainAt, fromHz, toHz, panels, TOLERANCE), gainAt(middle)[0]!] as const
+  })
+  const rms = Math.sqrt(perHz * power)
   const ahead = new Float64Array(1)
   const scratch = new Float64Array(1)
   for (const part of partsAhead(chain)) addMagnitudeDb(part, middle, ahead, scratch)
@@ -67,7 +62,7 @@ export function noiseBudget(chain: ComputedChain): NoiseBudget {
   return {
     parts: [{ stageId: converter.id, source: 'converter', rms, words: wordsOf(converter) }],
     rms,
-    density: Math.sqrt(perHz * noiseGain(chain, middle)[0]!),
+    density: Math.sqrt(perHz * gain),
     fullScale: (converter.fullScaleVolts / sensitivity) * 10 ** (-ahead[0]! / 20),
     snrDb,
     effectiveBits: (snrDb - 10 * Math.log10(1.5)) / (20 * Math.log10(2)),

@@ -7,6 +7,7 @@ import { worstAlias } from './folding'
 import { noiseBudget } from './noise'
 import type { ChainRequirement } from './requirement'
 import { chainResponse } from './response'
+import { keptForPath } from './same-path'
 import type { ToleranceResult } from './tolerance'
 import { departureOf, usableBand } from './usable-band'
 
@@ -126,7 +127,11 @@ function judgeMatch(
   return judged(line, gain.value, gain.hz, undefined, inDecibels)
 }
 
-function judge(chain: ComputedChain, line: ChainRequirement, match: ToleranceResult | null): ChainRequirementResult {
+function judgeAfresh(
+  chain: ComputedChain,
+  line: ChainRequirement,
+  match: ToleranceResult | null,
+): ChainRequirementResult {
   switch (line.kind) {
     case 'usable-band':
       return judgeUsableBand(chain, line)
@@ -157,6 +162,14 @@ export function* chainSheetLines(
   match: ToleranceResult | null,
 ): Generator<ChainRequirementResult> {
   for (const line of chain.spec.sheet) yield judge(chain, line, match)
+}
+
+function judge(chain: ComputedChain, line: ChainRequirement, match: ToleranceResult | null): ChainRequirementResult {
+  // The tolerance run and the converter's noise are no matter of the filters alone.
+  if (line.kind === 'channel-match' || line.kind === 'effective-bits') return judgeAfresh(chain, line, match)
+  const { fromHz, toHz } = chain.spec.kept
+  const result = keptForPath(chain, ['line', fromHz, toHz, line], () => judgeAfresh(chain, line, match))
+  return { ...result, requirement: line }
 }
 
 /**

@@ -2,6 +2,7 @@ import { largest } from '../requirements/extremes'
 import { ripplesOver } from './band-grid'
 import type { ComputedChain } from './chain'
 import { partMostAboveDb } from './analog-bound'
+import { keptForPath } from './same-path'
 import { converterStrips, outputOf, partsAhead, stripsOver, type Strips } from './strips'
 
 /** Where a strip comes through strongest. */
@@ -103,19 +104,12 @@ function look(chain: ComputedChain, fromHz: number, toHz: number, count: number)
   return { strips: [...nearest, ...rest], mostDigitalDb, worstIn: (strip) => worstOf(again, strip, grid) }
 }
 
-const looked = new WeakMap<ComputedChain, Map<string, Weakest>>()
-
 /**
- * Strips by how strongly they come through to a band, the foremost refined between the points looked at. Kept with the chain, since its chart,
+ * Strips by how strongly they come through to a band, the foremost refined between the points looked at. Kept, since its chart,
  * its sheet and its figures all ask for it.
  *
  * @param count strips looked at, the base band included
  */
 export function weakestStrips(chain: ComputedChain, fromHz: number, toHz: number, count: number): Weakest {
-  const byBand = looked.get(chain) ?? new Map<string, Weakest>()
-  looked.set(chain, byBand)
-  const key = `${fromHz} ${toHz} ${count}`
-  const known = byBand.get(key) ?? look(chain, fromHz, toHz, count)
-  byBand.set(key, known)
-  return known
+  return keptForPath(chain, ['weakest', fromHz, toHz, count], () => look(chain, fromHz, toHz, count))
 }
