@@ -9,7 +9,7 @@ import { hertzText, shownLevel, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'
 import { unitAfter } from '@/lib/chains/outline'
 import { classNames } from '@/lib/format/class-names'
-import { formatFixed } from '@/lib/format/quantity'
+import { formatFixed, formatNumber } from '@/lib/format/quantity'
 import type { ChainDesk } from './chain-desk'
 import { ChainNumber } from './desk-fields'
 import { NameWord, plainWord } from './name-word'
@@ -108,7 +108,17 @@ export function Interferers({
                     <ChainNumber {...fields} path={`${at}.toHz`} name={`Interferer ${index + 1}, to`} />
                   </span>
                 )}
-                <ChainNumber {...fields} path={`${at}.level`} name={`Interferer ${index + 1}, level`} />
+                <span title={levelMeans[one.kind].title}>
+                  <ChainNumber
+                    {...fields}
+                    path={`${at}.level`}
+                    name={`Interferer ${index + 1}, level (${levelMeans[one.kind].spoken})`}
+                  />
+                  <span aria-hidden className="text-[12px] text-pencil">
+                    {' '}
+                    {levelMeans[one.kind].word}
+                  </span>
+                </span>
                 <span className="flex items-baseline justify-end gap-x-1.5">
                   <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
                   {readOnly ? null : (
@@ -155,6 +165,26 @@ export function Interferers({
   )
 }
 
+/** What the number of a level is. */
+const levelMeans = {
+  tone: { word: 'peak', spoken: 'amplitude', title: 'Amplitude (peak) at the sensor' },
+  band: {
+    word: 'rms',
+    spoken: 'rms over the whole band, evenly spread',
+    title: 'Root mean square at the sensor over the whole band, evenly spread',
+  },
+} as const
+
+/** What of an interferer the level is, and how far down it is; of a band that lands partly elsewhere the part inside alone. */
+export function landingWords({ levelDb, keptShare }: InterfererLanding, isFelt: boolean): string {
+  const part =
+    keptShare > 0 && keptShare < 1 ? `the ${percentText(keptShare)} of it that lands inside the kept band: ` : ''
+  const down = levelDb === -Infinity ? 'nothing comes through' : `${formatFixed(-levelDb, 1)}\u2009dB down`
+  return `${part}${down}${isFelt ? (part ? ' at its worst, above the alias floor' : ', inside the kept band and above the alias floor') : ''}`
+}
+
+const percentText = (part: number): string => `${formatNumber(100 * part, 2)}\u2009%`
+
 function Landing({
   landing,
   spec,
@@ -183,7 +213,7 @@ function Landing({
           'numeric min-w-14 text-right text-[13px] whitespace-nowrap',
           isFelt && 'font-semibold text-vermilion',
         )}
-        title={`${formatFixed(-landing.levelDb, 1)}\u2009dB down${isFelt ? ', inside the kept band and above the alias floor' : ''}`}
+        title={landingWords(landing, isFelt)}
       >
         {level}
         {isFelt ? <span className="sr-only">, inside the kept band and above the alias floor</span> : null}
@@ -192,7 +222,7 @@ function Landing({
   )
 }
 
-/** Inside the kept band, and less far down than the sheet asks of images; without such a line nothing is too much. */
+/** Inside the kept band, and there at its worst less far down than the sheet asks of images; without such a line nothing is too much. */
 export function isAboveFloor({ inKeptBand, levelDb }: InterfererLanding, { sheet }: ChainSpec): boolean {
   const floors = sheet.flatMap((line) =>
     line.kind === 'alias-floor' ? [line.atLeastDb] : line.kind === 'usable-band' ? [line.aliasDb] : [],

@@ -142,14 +142,17 @@ export interface NoiseBudget {
 
 export interface InterfererLanding {
   readonly name: string
-  /** Frequency at the sensor; of a band, where it comes through strongest. */
+  /** Frequency at the sensor; of a band, where it comes through strongest, inside the kept band if any of it lands there. */
   readonly inputHz: number
   readonly landsHz: number
   readonly strip: number
   readonly levelDb: number
-  /** In the samples, in the chain's unit: amplitude of a tone, root mean square of a band. */
+  /** In the samples, in the chain's unit: amplitude of a tone; root mean square of what of a band lands inside the kept one, else of all of it. */
   readonly level: number
+  /** Whether any of it lands there: frequency, strip and levels are then those of that part alone. */
   readonly inKeptBand: boolean
+  /** Part of it, by width, that lands inside the kept band: 0 to 1. */
+  readonly keptShare: number
 }
 
 export type ChainRequirementUnit = 'Hz' | 'dB' | '°' | 's' | 'bits'

@@ -2,7 +2,7 @@ import { renderToStaticMarkup } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import { chainDesk } from '@/components/chain/chain-desk'
 import { computedChain } from '@/components/chain/computed-chain'
-import { Interferers, isAboveFloor } from '@/components/chain/interferers'
+import { Interferers, isAboveFloor, landingWords } from '@/components/chain/interferers'
 import { chainJudgements } from '@/components/chain/judge'
 import { ChainSheet } from '@/components/chain/sheet'
 import { stageFacts } from '@/components/chain/stage-facts'
@@ -167,6 +167,31 @@ describe('interferers', () => {
     const landing = interfererLandings(made(spec))[1]
     expect(landing?.landsHz).toBeCloseTo(87, 9)
     expect(landing && isAboveFloor(landing, { ...spec, sheet: [] })).toBe(false)
+  })
+  it('say of a band how much of it lands inside, and judge it by that part', () => {
+    const wide: ChainSpec = {
+      ...spec,
+      interferers: [{ kind: 'band', name: 'wide', fromHz: 50, toHz: 350, level: 0.1 }],
+    }
+    const [landing] = interfererLandings(made(wide))
+    expect(landing!.keptShare).toBeGreaterThan(0)
+    expect(landing!.keptShare).toBeLessThan(1)
+    expect(landing!.landsHz).toBeLessThanOrEqual(wide.kept.toHz)
+    expect(isAboveFloor(landing!, wide)).toBe(true)
+    expect(landingWords(landing!, true)).toMatch(
+      /^the \d+\s% of it that lands inside the kept band: .* at its worst, above the alias floor$/,
+    )
+    expect(landingWords({ ...landing!, keptShare: 0, levelDb: -90 }, false)).toBe('90.0\u2009dB down')
+    const html = renderToStaticMarkup(
+      <Interferers
+        spec={wide}
+        chain={made(wide)}
+        desk={chainDesk(createChainStore(wide))}
+        readOnly={false}
+        onTrace={nothing}
+      />,
+    )
+    expect(html).toContain('Root mean square at the sensor over the whole band, evenly spread')
   })
   it('are a list of editable names, frequencies and levels', () => {
     const html = renderToStaticMarkup(

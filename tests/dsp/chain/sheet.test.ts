@@ -178,8 +178,45 @@ describe('interferers', () => {
   })
 
   it('of a band across the kept one say so', () => {
-    expect(landings({ kind: 'band', name: 'Wide', fromHz: 8000, toHz: 12_000, level: 1 })[0]!.inKeptBand).toBe(true)
+    const [wide] = landings({ kind: 'band', name: 'Wide', fromHz: 8000, toHz: 12_000, level: 1 })
+    expect(wide).toMatchObject({ inKeptBand: true, landsHz: 800, inputHz: 9200, keptShare: 0.4 })
     expect(landings({ kind: 'band', name: 'Off', fromHz: 1000, toHz: 4000, level: 1 })[0]!.inKeptBand).toBe(false)
+  })
+})
+
+describe('a band that lands mostly outside the kept one', () => {
+  // 5 kHz to 9.4 kHz at 10 kHz: only 9.2 kHz to 9.4 kHz lands in the kept band, on 800 Hz down to 600 Hz.
+  const chain = computeChain(
+    chainOf([flatSensor, antiAlias(4, 1000), converter(10_000)], {
+      kept: { fromHz: 0, toHz: 800 },
+      interferers: [{ kind: 'band', name: 'Gears', fromHz: 5000, toHz: 9400, level: 2 }],
+    }),
+  )
+
+  it('counts by the part inside alone, in level, place and decibels', () => {
+    const [landing] = interfererLandings(chain)
+    expect(landing).toMatchObject({ inKeptBand: true, inputHz: 9200, landsHz: 800, strip: 1 })
+    expect(landing!.keptShare).toBeCloseTo(200 / 4400, 12)
+    expect(landing!.levelDb).toBeCloseTo(-lossDb(9200), 9)
+    const squares = Array.from({ length: 2000 }, (_, n) => 10 ** (-lossDb(9200.05 + n / 10) / 10) * 0.1)
+    expect(landing!.level).toBeCloseTo(2 * Math.sqrt(squares.reduce((sum, value) => sum + value) / 4400), 9)
+  })
+
+  it('counts every strip of a very wide one, evenly chosen where there are many', () => {
+    const wide = (toHz: number, stages = [flatSensor, converter(10_000)]) =>
+      interfererLandings(
+        computeChain(
+          chainOf(stages, {
+            kept: { fromHz: 0, toHz: 800 },
+            interferers: [{ kind: 'band', name: 'Hash', fromHz: 5000, toHz, level: 1 }],
+          }),
+        ),
+      )[0]!
+    for (const toHz of [505_000, 5_000_000, 500_000_000]) {
+      const { keptShare, level } = wide(toHz)
+      expect(keptShare).toBeCloseTo(800 / 5000, 2)
+      expect(level).toBeCloseTo(Math.sqrt(800 / 5000), 2)
+    }
   })
 })
 
