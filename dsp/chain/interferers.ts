@@ -2,6 +2,7 @@ import type { ComputedChain, InterfererLanding } from './chain'
 import { addMagnitudeDb } from './part-response'
 import { integral } from './quadrature'
 import type { Interferer } from './spec'
+import { keptForPath } from './same-path'
 import { inputOf, outputOf } from './strips'
 import { chainUnits } from './units'
 
@@ -108,8 +109,9 @@ function keptSpans(chain: ComputedChain, { fromHz, toHz }: Band): readonly Span[
   return spans
 }
 
-function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
-  const { name, fromHz, toHz, level } = band
+/** Of a band of level 1 and no name. */
+function landingOfUnit(chain: ComputedChain, band: Band): InterfererLanding {
+  const { fromHz, toHz } = band
   const inside = keptSpans(chain, band)
   const isInside = inside.length > 0
   const spans = isInside ? inside : [{ fromHz, toHz, count: 1 }]
@@ -133,14 +135,22 @@ function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
   }, 0)
   const insideHz = inside.reduce((sum, span) => sum + span.count * (span.toHz - span.fromHz), 0)
   return {
-    name,
+    name: '',
     inputHz,
     ...outputOf(inputHz, chain.outputRateHz),
     levelDb: levelsAt(chain, Float64Array.of(inputHz)).levelDb[0]!,
-    level: level * Math.sqrt(power / (toHz - fromHz)),
+    level: Math.sqrt(power / (toHz - fromHz)),
     inKeptBand: isInside,
     keptShare: Math.min(insideHz / (toHz - fromHz), 1),
   }
+}
+
+function landingOfBand(chain: ComputedChain, band: Band): InterfererLanding {
+  const { fromHz, toHz } = band
+  const { kept } = chain.spec
+  const asked = ['band', fromHz, toHz, kept.fromHz, kept.toHz]
+  const unit = keptForPath(chain, asked, () => landingOfUnit(chain, band))
+  return { ...unit, name: band.name, level: band.level * unit.level }
 }
 
 /**
