@@ -156,20 +156,20 @@ function judgeAfresh(
   }
 }
 
-/** As checkChainSheet, line by line: each is judged when it is asked for, so that others may have a turn between them. */
-export function* chainSheetLines(
-  chain: ComputedChain,
-  match: ToleranceResult | null,
-): Generator<ChainRequirementResult> {
-  for (const line of chain.spec.sheet) yield judge(chain, line, match)
-}
-
 function judge(chain: ComputedChain, line: ChainRequirement, match: ToleranceResult | null): ChainRequirementResult {
   // The tolerance run and the converter's noise are no matter of the filters alone.
   if (line.kind === 'channel-match' || line.kind === 'effective-bits') return judgeAfresh(chain, line, match)
   const { fromHz, toHz } = chain.spec.kept
   const result = keptForPath(chain, ['line', fromHz, toHz, line], () => judgeAfresh(chain, line, match))
   return { ...result, requirement: line }
+}
+
+/** As checkChainSheet, line by line: each is judged when it is asked for, so that others may have a turn between them. */
+export function* chainSheetLines(
+  chain: ComputedChain,
+  match: ToleranceResult | null,
+): Generator<ChainRequirementResult> {
+  for (const line of chain.spec.sheet) yield judge(chain, line, match)
 }
 
 /**
