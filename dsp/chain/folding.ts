@@ -48,6 +48,15 @@ export function foldPaths(chain: ComputedChain, outputHz: number, upToHz?: numbe
   return paths
 }
 
+/** Levels that nobody tells apart: the lowest of such strips is the one to name. */
+const EQUAL_DB = 0.05
+
+/** The weakest strip; where several come through alike, the lowest of them. */
+const lowestOfEquals = (strips: readonly StripWorst[]): StripWorst | undefined =>
+  strips
+    .filter(({ levelDb }) => levelDb >= (strips[0]?.levelDb ?? 0) - EQUAL_DB)
+    .reduce<StripWorst | undefined>((low, one) => (low === undefined || one.strip < low.strip ? one : low), undefined)
+
 /** Strips that a chart keeps of more than it can show: the lowest, the worst, and those beside the first two multiples of every rate. */
 function chosen(chain: ComputedChain, count: number, worst: readonly StripWorst[]): number[] {
   const kept = new Set<number>()
@@ -89,7 +98,7 @@ function chartOf(chain: ComputedChain, outputHz: Float64Array): FoldChart {
   const all = Array.from({ length: count }, (_, strip) => strip)
   const strips = count <= MOST_FULL_STRIPS ? all : chosen(chain, count, worst.strips)
   const byStrip = new Map(worst.strips.map((one) => [one.strip, one]))
-  const weakStrip = worst.strips[0]?.strip ?? 1
+  const weakStrip = lowestOfEquals(worst.strips)?.strip ?? 1
   const { levelDb } = stripsOver(chain, outputHz)
   const half = chain.outputRateHz / 2
   return {
@@ -133,9 +142,12 @@ export function worstAlias(chain: ComputedChain, toHz: number = chain.spec.kept.
   checkOutput(chain, toHz, 'toHz')
   const fromHz = Math.min(chain.spec.kept.fromHz, toHz)
   const count = stripsUpTo(chain, lookedUpTo(chain))
-  const [first] = weakestStrips(chain, fromHz, toHz, count).strips
+  const { strips } = weakestStrips(chain, fromHz, toHz, count)
+  const first = lowestOfEquals(strips)
   if (first === undefined) throw new DesignError('output-out-of-range', 'toHz', 'No image was looked at.')
-  const { levelDb, outputHz, strip } = first
+  const { outputHz, strip } = first
+  // Of equals the lowest is named, but the level is that of none less.
+  const levelDb = strips[0]?.levelDb ?? first.levelDb
   const inputHz = inputOf(strip, outputHz, chain.outputRateHz)
   return { levelDb, outputHz, inputHz, strip, foldsAtStageId: foldsAt(chain, strip) }
 }

@@ -1,5 +1,6 @@
 import { linearScale, type Scale } from '@/components/plot/scale'
 import type { ChainSpec, FoldChart, FoldStrip } from '@/dsp'
+import { weakOf } from './words'
 
 /*
  * How the folded axis lies on the page: strips of half the output rate under each other, joined left and right in turn. A mirrored strip
@@ -13,7 +14,7 @@ export const MORE_STRIPS = 16
 /** The first strips and, wherever it lies, the weak one. */
 export function drawnStrips(chart: FoldChart, most: number): readonly FoldStrip[] {
   const first = chart.strips.slice(0, most)
-  const weak = chart.strips[chart.weakStrip]
+  const weak = weakOf(chart)
   return weak && !first.includes(weak) ? [...first, weak] : first
 }
 
@@ -56,7 +57,7 @@ const upToTwenty = (decibels: number): number => Math.ceil(decibels / 20 - 1e-9)
 /** Least level shown: 30 dB under what is asked and under the weak fold, between −60 and −200 dB. */
 export function floorDbOf(chart: FoldChart, floors: readonly AliasFloor[]): number {
   const asked = Math.max(60, ...floors.map(({ atLeastDb }) => atLeastDb))
-  const weak = chart.strips[chart.weakStrip]?.worst?.levelDb ?? Number.NEGATIVE_INFINITY
+  const weak = weakOf(chart)?.worst?.levelDb ?? Number.NEGATIVE_INFINITY
   const down = Number.isFinite(weak) ? Math.max(asked, -weak) : asked
   return -Math.min(200, upToTwenty(down + 30))
 }

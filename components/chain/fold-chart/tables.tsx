@@ -5,7 +5,7 @@ import { DataTable, ScrollRegion } from '@/components/studio/panels/chart/data-t
 import type { ComputedChain, FoldChart, FoldPath } from '@/dsp'
 import { formatHz } from '@/lib/format/quantity'
 import { traceRows } from './trace'
-import { downWords, foldMaker, ordinal, stageNameOf } from './words'
+import { downWords, foldMaker, ordinal, stageNameOf, weakOf } from './words'
 
 const MOST_ROWS = 400
 
@@ -32,7 +32,7 @@ export function StripsTable({ chain, chart }: { chain: ComputedChain; chart: Fol
 }
 
 export function stripRows(chain: ComputedChain, { strips, weakStrip }: FoldChart): readonly (readonly string[])[] {
-  const weak = strips[weakStrip]
+  const weak = weakOf({ strips, weakStrip })
   const listed = strips.slice(0, MOST_ROWS)
   return (weak && !listed.includes(weak) ? [...listed, weak] : listed).map((strip) => [
     `${ordinal(strip.strip + 1)}${strip === weak && strip.strip > 0 ? ', weak' : ''}`,

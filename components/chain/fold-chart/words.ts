@@ -34,9 +34,13 @@ export function stripWords(strip: FoldStrip, isWeak: boolean, isShort = false): 
   return `${name}: ${downWords(strip.worst.levelDb)}${where}${isWeak ? ', the weak fold' : ''}`
 }
 
+/** The weak strip, wherever it stands: of very many strips a chart holds only some. */
+export const weakOf = ({ strips, weakStrip }: Pick<FoldChart, 'strips' | 'weakStrip'>): FoldStrip | undefined =>
+  strips.find(({ strip }) => strip === weakStrip)
+
 /** Where and how the weak fold does its worst: the sentence under the chart. */
 export function weakFoldSentence(chain: ComputedChain, chart: FoldChart): string {
-  const weak = chart.strips[chart.weakStrip]
+  const weak = weakOf(chart)
   if (!weak || weak.strip === 0 || weak.worst === null) return 'Nothing folds into the kept band.'
   const { levelDb, inputHz, outputHz } = weak.worst
   const maker = stageNameOf(chain, weak.foldsAtStageId)

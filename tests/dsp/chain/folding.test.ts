@@ -179,6 +179,22 @@ describe('the chart', () => {
     expect(worst.levelDb - most).toBeLessThan(0.01)
   })
 
+  it('names the lowest of strips that come through alike', () => {
+    const open = computeChain(chainOf([flatSensor, converter(4000)]))
+    expect(foldChart(open, grid(open)).weakStrip).toBe(1)
+    expect(worstAlias(open)).toMatchObject({ strip: 1, levelDb: 0 })
+    // A resonance of the sensor far above lifts the higher strips, by less than anybody tells apart.
+    const lifted = computeChain(
+      chainOf([{ ...flatSensor, resonance: { f0Hz: 400_000, q: 1 } }, converter(4000)], {
+        kept: { fromHz: 10, toHz: 1000 },
+      }),
+    )
+    const { strip, levelDb, outputHz } = worstAlias(lifted, 1000)
+    const own = foldPaths(lifted, outputHz).find((path) => path.strip === strip)!
+    expect(levelDb).toBeGreaterThanOrEqual(own.levelDb)
+    expect(levelDb - own.levelDb).toBeLessThanOrEqual(0.05)
+  })
+
   it('bounds honestly what it has not looked at', () => {
     const chain = computeChain(chainOf([sensor, antiAlias(3, 12_000), converter(51_200, 16, 2)]))
     const { lookedUpToHz, beyondAtMostDb } = foldChart(chain, grid(chain))
