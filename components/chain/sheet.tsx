@@ -21,6 +21,13 @@ import type { ChainJudgements } from './judge'
 
 const kinds = Object.entries(chainRequirementKindWords) as [ChainRequirementKind, string][]
 
+/** What the decibels of images are counted against. */
+const against = 'Images are counted down from the same level at the sensor'
+const lineMeans: Readonly<Partial<Record<ChainRequirementKind, string>>> = {
+  'alias-floor': against,
+  'usable-band': against,
+}
+
 interface SheetProps {
   readonly spec: ChainSpec
   readonly judgements: ChainJudgements
@@ -129,7 +136,7 @@ function Line({
   return (
     <li data-line={index} className="border-b border-graph py-0.5 text-[14px] leading-6">
       <div className="flex flex-wrap items-baseline justify-end gap-x-3">
-        <p className="mr-auto min-w-0 grow basis-44">
+        <p className="mr-auto min-w-0 grow basis-44" title={lineMeans[spec.sheet[index]?.kind ?? 'delay']}>
           {chainLineParts(spec, index).map((part, at) =>
             part.kind === 'text' ? (
               part.text

@@ -69,6 +69,18 @@ function judgeUsableBand(
   return judged(line, band.toHz, band.toHz, reason)
 }
 
+/** An image is counted against the same level at the sensor, which says little where the wanted signal is held back as well. */
+const LOW_WANTED_DB = 3
+
+function wantedTooLow(chain: ComputedChain, outputHz: number): string | undefined {
+  const { fromHz, toHz } = chain.spec.kept
+  if (outputHz < fromHz || outputHz > toHz) return undefined
+  const downDb = -chainResponse(chain, Float64Array.of(outputHz)).magnitudeDb[0]!
+  if (!(downDb > LOW_WANTED_DB)) return undefined
+  const down = Number.isFinite(downDb) ? `${show(Number(downDb.toFixed(1)))} dB down` : 'gone'
+  return `The wanted signal itself is ${down} at ${show(Number(outputHz.toPrecision(4)))} Hz: the floor says little.`
+}
+
 /** The largest departure of the phase from the straight line through 0 that is the best constant delay: an inverted polarity is 180° off. */
 function judgePhase(chain: ComputedChain, line: Extract<ChainRequirement, { kind: 'phase' }>): ChainRequirementResult {
   const grid = chainGrid(chain, line.fromHz, line.toHz)
@@ -141,7 +153,7 @@ function judgeAfresh(
     }
     case 'alias-floor': {
       const { levelDb, outputHz } = worstAlias(chain, line.toHz)
-      return judged(line, 0 - levelDb, outputHz)
+      return judged(line, 0 - levelDb, outputHz, wantedTooLow(chain, outputHz))
     }
     case 'phase':
       return judgePhase(chain, line)

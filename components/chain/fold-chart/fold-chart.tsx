@@ -75,7 +75,7 @@ function Chart({ chain, spec, traceHz, onTrace }: FoldChartProps) {
 
   function download() {
     const heading = `Fold chart to ${formatHz(chain.outputRateHz)} stored, kept to ${formatHz(spec.kept.toHz)}`
-    const foot = `${weakFoldSentence(chain, chart)} ${scale}.`
+    const foot = `${weakFoldSentence(chain, chart)} Down from the same level at the sensor, ${scale}.`
     offerFile('fold-chart.svg', svgFile(foldExport(plan, frame, { heading, foot }), look.palette, heading))
   }
 
@@ -84,7 +84,8 @@ function Chart({ chain, spec, traceHz, onTrace }: FoldChartProps) {
       <div className="flex flex-wrap items-baseline justify-between gap-x-4">
         <h2 className="font-text text-[13px] font-semibold text-pencil">Fold chart</h2>
         <p className="text-[12px] text-pencil">
-          every strip folds onto the one above it; the curve is what reaches the stored sample, {scale}
+          every strip folds onto the one above it; the curve is what reaches the stored sample, down from the same level
+          at the sensor, {scale}
         </p>
       </div>
       <div ref={ref} className="min-w-0">

@@ -99,6 +99,21 @@ describe('the lines of a sheet', () => {
     expect(bits!.value).toBeCloseTo(16 + Math.log2(5000 / 800) / 2, 1)
   })
 
+  it('say of a floor that the wanted signal is held back as well', () => {
+    const floor = { kind: 'alias-floor', toHz: 4000, atLeastDb: 20 } as const
+    const kept = { fromHz: 0, toHz: 4000 }
+    const [low] = checkChainSheet(
+      computeChain(chainOf([flatSensor, antiAlias(4, 1000), converter(10_000)], { kept, sheet: [floor] })),
+      null,
+    )
+    // The worst is at 4 kHz, which is 48.2 dB down itself.
+    expect(low).toMatchObject({ met: true, worstHz: 4000 })
+    expect(low!.reason).toBe(
+      `The wanted signal itself is ${Number(lossDb(4000).toFixed(1))} dB down at 4000 Hz: the floor says little.`,
+    )
+    expect(checkChainSheet(simple([{ ...floor, toHz: 800 }]), null)[0]).not.toHaveProperty('reason')
+  })
+
   it('take the best constant delay off a phase', () => {
     const line = { kind: 'phase', fromHz: 0, toHz: 800, withinDegrees: 90 } as const
     const [result] = checkChainSheet(simple([line]), null)
