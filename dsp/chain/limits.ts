@@ -4,6 +4,8 @@ export const MOST_CHAIN_STAGES = 16
 export const MOST_DECIMATION = 256
 export const MOST_TOTAL_DECIMATION = 1024
 export const MOST_STAGE_TAPS = 512
+/** An exchange of more takes longer than an edit may, and rarely converges. */
+export const MOST_EQUIRIPPLE_TAPS = 256
 export const MOST_INTERFERERS = 40
 export const MOST_CHAIN_REQUIREMENTS = 24
 /** Channels of one tolerance run. */

@@ -5,6 +5,7 @@ import type { Diagnostic, DigitalFilter, Filter, FirFilter } from '../forms/filt
 import type { FirSpec } from '../spec'
 import type { ChainPart } from './chain'
 import { analogOf, compensationOf, digitalHighPassOf, digitalOf, firOf, originalOf, resonanceOf } from './filters'
+import { MOST_EQUIRIPPLE_TAPS } from './limits'
 import { checkDigitalCorner } from './ranges'
 import type { AnalogStage, ChainStage, DecimateStage, DesignLink, SensorStage, ShapeStage } from './spec'
 
@@ -187,6 +188,10 @@ function decimateParts({ factor, filter }: DecimateStage, rateHz: number, path: 
   if (filter.type === 'half-band' && factor !== 2) {
     const message = `A half-band filter decimates by 2; the factor given is ${factor}. An equiripple filter takes any.`
     throw new DesignError('factor-of-half-band', `${path}.factor`, message, 2)
+  }
+  if (filter.type === 'equiripple' && filter.taps > MOST_EQUIRIPPLE_TAPS) {
+    const message = `An equiripple filter of a chain has ${MOST_EQUIRIPPLE_TAPS} taps at most; ${filter.taps} were given. A Kaiser window takes more.`
+    throw new DesignError('too-many-taps', `${path}.filter.taps`, message, MOST_EQUIRIPPLE_TAPS)
   }
   const fir = firSpecOf(filter, rateHz, path)
   const made = named(

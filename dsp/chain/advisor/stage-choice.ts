@@ -7,7 +7,7 @@ import { magnitudeDb } from '../../response/frequency'
 import type { FirBand, FirSpec } from '../../spec'
 import { cicAmplitude } from '../closed-forms'
 import { compensationOf } from '../filters'
-import { MOST_STAGE_TAPS } from '../limits'
+import { MOST_EQUIRIPPLE_TAPS, MOST_STAGE_TAPS } from '../limits'
 import type { DecimateStage } from '../spec'
 
 /** What one decimation stage must do. */
@@ -48,7 +48,8 @@ function tapsFor(fir: Omit<FirSpec, 'taps'>, task: StageTask): number | null {
   try {
     const requirement = { passWithinDb: task.rippleDb, stopAttenuationDb: task.attenuationDb }
     const taps = leastTaps(fir, task.inRateHz, requirement)
-    return taps <= MOST_STAGE_TAPS ? taps : null
+    const most = fir.kind === 'equiripple' ? MOST_EQUIRIPPLE_TAPS : MOST_STAGE_TAPS
+    return taps <= most ? taps : null
   } catch (error) {
     if (error instanceof DesignError) return null
     throw error

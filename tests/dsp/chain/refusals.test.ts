@@ -99,6 +99,13 @@ const rows: readonly Row[] = [
     'stages.2.filter.stopHz',
     2500,
   ],
+  [
+    'more taps than an exchange may have',
+    digital(equiripple(500, 560, 300)),
+    'too-many-taps',
+    'stages.2.filter.taps',
+    256,
+  ],
   ['edges that cross', digital(equiripple(2000, 1500)), 'edges-out-of-order', 'stages.2.filter.stopHz', 2200],
   [
     'compensation beyond half the rate',
