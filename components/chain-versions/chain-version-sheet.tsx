@@ -2,6 +2,7 @@ import Link from 'next/link'
 import type { ReactNode } from 'react'
 import type { ChainRequirementResult } from '@/dsp'
 import { TitleBlock } from '@/components/ui/title-block'
+import { factsAt } from '@/lib/chains/facts'
 import { figureRows } from '@/lib/chains/figure-words'
 import type { StageLink } from '@/lib/chains/links'
 import { chainText } from '@/lib/chains/statement'
@@ -50,6 +51,10 @@ export function ChainVersionSheet({
         <ChainTable label="Figures" columns={['Figure', 'Value']} numeric={[1]}>
           {figureRows(figures).map(({ name, text }) => [name, text])}
         </ChainTable>
+        <p className="mt-2 text-[13px] text-pencil">
+          Effective bits count the converter’s noise alone; the sensor’s own noise isn’t in them. Multiplies include
+          integration and shaping.
+        </p>
       </Part>
 
       <Part id="sheet" title="Requirement sheet">
@@ -57,8 +62,13 @@ export function ChainVersionSheet({
       </Part>
 
       <Part id="stages" title="Stages">
-        <ChainTable label="Stages in signal order" columns={['Stage', 'What it is', 'In use']}>
-          {spec.stages.map((stage) => [stageLabel(stage), stageName(stage), stage.bypassed ? 'bypassed' : 'yes'])}
+        <ChainTable label="Stages in signal order" columns={['Stage', 'What it is', 'In use', 'As stated']}>
+          {spec.stages.map((stage, index) => [
+            stageLabel(stage),
+            stageName(stage),
+            stage.bypassed ? 'bypassed' : 'yes',
+            <StageFacts key="facts" spec={spec} index={index} />,
+          ])}
         </ChainTable>
       </Part>
 
@@ -123,6 +133,22 @@ export function ChainVersionSheet({
         />
       </div>
     </main>
+  )
+}
+
+/** Every field of a stage. */
+function StageFacts({ spec, index }: { spec: ChainVersionSummary['spec']; index: number }) {
+  return (
+    <dl className="flex flex-wrap gap-x-4 gap-y-0.5">
+      {factsAt(spec, `stages.${index}`)
+        .filter(({ path }) => path !== 'bypassed')
+        .map(({ path, label, text }) => (
+          <div key={path} className="flex gap-1.5">
+            <dt className="text-pencil">{label}</dt>
+            <dd>{text}</dd>
+          </div>
+        ))}
+    </dl>
   )
 }
 

@@ -273,6 +273,9 @@ describe('the pages', () => {
     expect(markup).toContain('export?as=c')
     const version = await findChainVersion(team.access('owner'), team.chainId, 2)
     expect(markup).toContain(version?.checksum)
+    expect(markup).toContain('the sensor’s own noise isn’t in them')
+    expect(markup).toMatch(/<dt[^>]*>Full scale<\/dt><dd>/)
+    expect(markup).not.toContain('saved before stages')
     beginRequest({ token: team.members.observer.token })
     const observed = await shown(ChainVersionPage({ params }))
     expect(observed).not.toContain('export?as')
@@ -293,6 +296,8 @@ describe('the pages', () => {
     expect(markup).toMatch(/<mark[^>]*>2\u2009kHz<\/mark>/)
     expect(markup).toMatch(/<mark[^>]*>1.2\u2009kHz<\/mark>/)
     expect(markup).toContain('Alias floor below')
+    expect(markup).toMatch(/<li>Converter rate [^<]+ → [^<]+<\/li>/)
+    expect(markup).toContain('Kept band, sheet, interferers and tolerance')
     // Unasked, or asked for what isn't there, it is the newest and the one that it came from.
     expect(await compare({})).toBe(markup)
     expect(await compare({ left: '99', right: 'x' })).toBe(markup)
