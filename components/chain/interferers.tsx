@@ -2,7 +2,14 @@
 
 import { X } from 'lucide-react'
 import { useEffect, useMemo, useRef, useState } from 'react'
-import { interfererLandings, MOST_INTERFERERS, type ChainSpec, type ComputedChain, type InterfererLanding } from '@/dsp'
+import {
+  interfererLandings,
+  MOST_INTERFERERS,
+  noiseBudget,
+  type ChainSpec,
+  type ComputedChain,
+  type InterfererLanding,
+} from '@/dsp'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
 import { Button } from '@/components/ui/button'
 import { hertzText, shownLevel, withPartAt } from '@/lib/chains/fields'
@@ -33,6 +40,10 @@ export function Interferers({
   // A chain is computed of one spec: while it follows a gesture, its landings may be of the one before.
   const landings = useMemo(
     () => (onPage && chain && chain.spec.interferers.length > 0 ? interfererLandings(chain) : []),
+    [onPage, chain],
+  )
+  const noiseRms = useMemo(
+    () => (onPage && chain && chain.spec.interferers.length > 0 ? noiseBudget(chain).rms : 0),
     [onPage, chain],
   )
   const [problem, setProblem] = useState<string | null>(null)
@@ -120,7 +131,7 @@ export function Interferers({
                   </span>
                 </span>
                 <span className="flex items-baseline justify-end gap-x-1.5">
-                  <Landing landing={landings[index] ?? null} spec={spec} onTrace={onTrace} />
+                  <Landing landing={landings[index] ?? null} spec={spec} noiseRms={noiseRms} onTrace={onTrace} />
                   {readOnly ? null : (
                     <Button
                       kind="quiet"
@@ -185,19 +196,29 @@ export function landingWords({ levelDb, keptShare }: InterfererLanding, isFelt: 
 
 const percentText = (part: number): string => `${formatNumber(100 * part, 2)}\u2009%`
 
+/** Part of the noise's rms below which the digits of a level say nothing. */
+const LEAST_PART_OF_NOISE = 1e-6
+
+/** A level in the samples, as far as it says anything beside the noise. */
+export const landedLevel = (level: number, noiseRms: number, unit: string): string =>
+  level < LEAST_PART_OF_NOISE * noiseRms ? 'below the noise' : shownLevel(level, unit)
+
 function Landing({
   landing,
   spec,
+  noiseRms,
   onTrace,
 }: {
   landing: InterfererLanding | null
   spec: ChainSpec
+  noiseRms: number
   onTrace(hz: number): void
 }) {
   if (!landing) return <span className="numeric text-[13px] text-pencil">…</span>
   const isFelt = isAboveFloor(landing, spec)
   const lands = hertzText(landing.landsHz, 3)
-  const level = shownLevel(landing.level, unitAfter(spec))
+  const exact = shownLevel(landing.level, unitAfter(spec))
+  const level = landedLevel(landing.level, noiseRms, unitAfter(spec))
   return (
     <>
       <button
@@ -213,7 +234,7 @@ function Landing({
           'numeric min-w-14 text-right text-[13px] whitespace-nowrap',
           isFelt && 'font-semibold text-vermilion',
         )}
-        title={landingWords(landing, isFelt)}
+        title={`${level === exact ? '' : `${exact}, `}${landingWords(landing, isFelt)}`}
       >
         {level}
         {isFelt ? <span className="sr-only">, inside the kept band and above the alias floor</span> : null}

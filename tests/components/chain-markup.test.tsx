@@ -2,7 +2,7 @@ import { renderToStaticMarkup } from 'react-dom/server'
 import { describe, expect, it } from 'vitest'
 import { chainDesk } from '@/components/chain/chain-desk'
 import { computedChain } from '@/components/chain/computed-chain'
-import { Interferers, isAboveFloor, landingWords } from '@/components/chain/interferers'
+import { Interferers, isAboveFloor, landedLevel, landingWords } from '@/components/chain/interferers'
 import { chainJudgements } from '@/components/chain/judge'
 import { ChainSheet } from '@/components/chain/sheet'
 import { stageFacts } from '@/components/chain/stage-facts'
@@ -192,6 +192,12 @@ describe('interferers', () => {
       />,
     )
     expect(html).toContain('Root mean square at the sensor over the whole band, evenly spread')
+  })
+  it('show no digits of what is lost far below the noise', () => {
+    expect(landedLevel(8.29e-27, 1e-6, 'mm/s')).toBe('below the noise')
+    expect(landedLevel(0, 1e-6, 'g')).toBe('below the noise')
+    expect(landedLevel(2e-12, 1e-6, 'g')).not.toBe('below the noise')
+    expect(landedLevel(0.05, 1e-6, 'g')).toBe('50\u2009mg')
   })
   it('are a list of editable names, frequencies and levels', () => {
     const html = renderToStaticMarkup(
