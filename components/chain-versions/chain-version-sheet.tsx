@@ -98,7 +98,7 @@ export function ChainVersionSheet({
           by no more than this.
         </p>
         <ChainTable
-          label="Match between channels"
+          label="Match at each frequency"
           columns={['Frequency', 'Gain', 'Phase']}
           numeric={[0, 1, 2]}
           className="max-h-72 max-w-md"
@@ -167,7 +167,7 @@ function SheetResults({
       </p>
     )
   return (
-    <ChainTable label="Requirement sheet" columns={['Line', 'Value', 'Margin']} numeric={[1]}>
+    <ChainTable label="Lines of the requirement sheet" columns={['Line', 'Value', 'Margin']} numeric={[1]}>
       {results.map((result, index) => [
         chainLineText(spec, index),
         chainQuantity(result.value, result.unit),

@@ -9,12 +9,21 @@ import { formatHz, formatInstant } from '@/lib/format/quantity'
 import { CoefficientsTable } from './coefficients-table'
 import { HandOverRegion } from './hand-over-region'
 
+/** A version of a chain with a stage that is tied to this version. */
+interface ChainUse {
+  readonly chainId: string
+  readonly drawingNumber: string
+  readonly chainVersion: number
+  readonly stageId: string
+}
+
 /** A saved version to read and to hand over; nothing on it can be changed. */
 export function VersionSheet({
   design,
   version,
   kept,
   numbers,
+  uses,
   mayExport,
 }: {
   design: DesignRecord
@@ -22,6 +31,7 @@ export function VersionSheet({
   kept: StoredCoefficients
   /** Of all versions of the design, newest first. */
   numbers: readonly number[]
+  uses: readonly ChainUse[]
   mayExport: boolean
 }) {
   const path = `/designs/${design.id}/versions`
@@ -50,6 +60,7 @@ export function VersionSheet({
             </ul>
           </nav>
         ) : null}
+        <UsedBy uses={uses} />
       </div>
 
       <section aria-labelledby="coefficients-heading" className="min-w-0">
@@ -100,6 +111,25 @@ export function VersionSheet({
         />
       </div>
     </main>
+  )
+}
+
+function UsedBy({ uses }: { uses: readonly ChainUse[] }) {
+  // Two stages of one chain may be tied to the same version.
+  const chains = [...new Map(uses.map((use) => [`${use.chainId}/versions/${use.chainVersion}`, use]))]
+  if (chains.length === 0) return null
+  return (
+    <p className="mt-2 text-[14px] text-pencil">
+      Used by{' '}
+      {chains.map(([path, { drawingNumber, chainVersion }], at) => (
+        <span key={path}>
+          {at === 0 ? '' : '; '}
+          <Link href={`/chains/${path}`} className="text-spruce underline underline-offset-2">
+            chain <span className="numeric">{drawingNumber}</span>, version {chainVersion}
+          </Link>
+        </span>
+      ))}
+    </p>
   )
 }
 

@@ -13,6 +13,7 @@ import { chainChecksum } from './checksum'
 import type { ComputedChainVersion } from './compute-version'
 import { linksOf } from './links'
 import type { saveChainVersionSchema } from './schemas'
+import { withNamesOf } from './stored-numbers'
 import type { ChainVersionSummary, SaveChainVersionOutcome } from './types'
 
 /** What the browser hears of a version; its numbers stay here. */
@@ -53,14 +54,15 @@ export async function saveChainVersion({
 
   const spec = await checkedLinks(tx, access, chain.teamId, input.spec)
   const number = (latestNumber ?? 0) + 1
-  const checksum = chainChecksum({ spec, ...computed })
+  const kept = { ...computed, numbers: withNamesOf(computed.numbers, spec) }
+  const checksum = chainChecksum({ spec, ...kept })
   await insertChainVersion(tx, access, {
     chainId: chain.id,
     number,
     parentNumber: latestNumber,
     note: input.note,
     spec,
-    ...computed,
+    ...kept,
     checksum,
     engineVersion: ENGINE_VERSION,
     links: linksOf(spec).map(({ stageId, link }) => ({

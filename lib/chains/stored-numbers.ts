@@ -1,5 +1,13 @@
-import { chainUnits, type ChainUnit, type ComputedChain, type ComputedStage, type DesignLink } from '@/dsp'
+import {
+  chainUnits,
+  type ChainSpec,
+  type ChainUnit,
+  type ComputedChain,
+  type ComputedStage,
+  type DesignLink,
+} from '@/dsp'
 import { coefficientsOf, type StoredCoefficients } from '@/lib/designs/stored-coefficients'
+import { linksOf } from './links'
 
 /*
  * The numbers of a chain as they are kept and handed over: everything that runs between the converter's samples and the stored ones, in
@@ -117,6 +125,19 @@ function storedStage(computed: ComputedStage, before: ComputedStage | undefined)
     fromUnit: before.unit,
     toUnit: computed.unit,
     scale: chainUnits[before.unit].si / chainUnits[computed.unit].si,
+  }
+}
+
+/** The same numbers with the names of the designs as a checked spec has them: a browser may send others. */
+export function withNamesOf(numbers: StoredChainNumbers, spec: ChainSpec): StoredChainNumbers {
+  if (numbers.format !== 2) return numbers
+  const links = new Map(linksOf(spec).map(({ stageId, link }) => [stageId, link]))
+  return {
+    ...numbers,
+    stages: numbers.stages.map((stage): StoredDigitalStage => {
+      const link = links.get(stage.stageId)
+      return link && stage.kind !== 'integrate' ? { ...stage, design: nameOf(link) } : stage
+    }),
   }
 }
 

@@ -6,6 +6,7 @@ import { GET } from '@/app/api/chains/[chainId]/versions/[number]/export/route'
 import { GET as getSchema } from '@/app/api/formats/chain/route'
 import ChainComparePage from '@/app/chains/[chainId]/compare/page'
 import ChainVersionPage from '@/app/chains/[chainId]/versions/[number]/page'
+import DesignVersionPage from '@/app/designs/[designId]/versions/[number]/page'
 import FormatsPage from '@/app/formats/page'
 import ProjectPage from '@/app/projects/[projectId]/page'
 import { closeConnections, pool } from '@/db/client'
@@ -14,6 +15,7 @@ import { findChain } from '@/db/queries/chains'
 import { lockDesign } from '@/db/queries/designs'
 import { inTransaction } from '@/db/queries/transaction'
 import { designFromSpec, type ChainSpec } from '@/dsp'
+import { linksOf } from '@/lib/chains/links'
 import { startingChain } from '@/lib/chains/stage-starts'
 import { startingChains } from '@/lib/chains/templates'
 import { coefficientsOf } from '@/lib/designs/coefficients'
@@ -111,6 +113,20 @@ describe('saving a version of a chain', () => {
     })
   })
 
+  it('keeps the design’s own title and drawing number, whatever a link says of them', async () => {
+    beginRequest({ token: team.members.designer.token })
+    const made = await createChain({ projectId: team.projectId, title: 'Named falsely', template: 'plain' })
+    if (!made.ok) throw new Error(made.problem.message)
+    const { chainId } = made.value
+    const names = { designId: team.designId, version: 1, drawing: 'XXX-LP-999', title: 'Something else' }
+    const saved = await save(linkedChain(tapsDesign, names), null, chainId)
+    if (saved.outcome !== 'saved') throw new Error('not saved')
+    const row = await findChainVersion(team.access('owner'), chainId, 1)
+    for (const spec of [saved.version.spec, row?.spec])
+      expect(spec && linksOf(spec).map(({ link }) => [link.drawing, link.title])).toEqual([['TST-LP-001', 'A design']])
+    expect(JSON.stringify(row)).not.toMatch(/XXX-LP-999|Something else/)
+  })
+
   it('leaves a trail', async () => {
     const { rows } = await pool().query(
       `select details->>'number' as number from audit where object = $1 and action = 'chain-version.save' order by id`,
@@ -126,7 +142,7 @@ describe('making chains', () => {
     const made = await createChain({ projectId: team.projectId, title: 'Fast', template: 'averaging' })
     if (!made.ok) throw new Error(made.problem.message)
     expect(await findChain(team.access('owner'), made.value.chainId)).toMatchObject({
-      drawingNumber: 'TST-CH-003',
+      drawingNumber: 'TST-CH-004',
       startingSpec: startingChains.averaging,
     })
     const copy = await duplicateChain({ chainId: team.chainId })
@@ -276,10 +292,24 @@ describe('the pages', () => {
     expect(markup).toContain('the sensor’s own noise isn’t in them')
     expect(markup).toMatch(/<dt[^>]*>Full scale<\/dt><dd>/)
     expect(markup).not.toContain('saved before stages')
+    // Landmarks of one name can't be told apart: a section is named by its heading, a table by its own label.
+    const named = [...markup.matchAll(/<h2[^>]*>([^<]*)<|role="region"[^>]*aria-label="([^"]*)"/g)].map(
+      ([, heading, label]) => heading ?? label,
+    )
+    expect(named.length).toBeGreaterThan(6)
+    expect(new Set(named).size).toBe(named.length)
     beginRequest({ token: team.members.observer.token })
     const observed = await shown(ChainVersionPage({ params }))
     expect(observed).not.toContain('export?as')
     expect(observed).toContain(version?.checksum)
+  })
+
+  it('say on a design’s version which chains use it', async () => {
+    beginRequest({ token: team.members.observer.token })
+    const params = Promise.resolve({ designId: team.designId, number: '1' })
+    const markup = await shown(DesignVersionPage({ params }))
+    expect(markup.replaceAll(/<[^>]*>/g, '')).toContain('Used by chain TST-CH-002, version 2')
+    expect(markup).toContain(`/chains/${team.chainId}/versions/2`)
   })
 
   it('compare two versions: the words that differ, figures, sheets and stages', async () => {

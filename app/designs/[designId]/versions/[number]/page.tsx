@@ -4,6 +4,7 @@ import { notFound } from 'next/navigation'
 import { Header } from '@/components/frame/header'
 import { VersionSheet } from '@/components/handover/version-sheet'
 import { buttonClass } from '@/components/ui/button'
+import { listChainsUsing } from '@/db/queries/chain-versions'
 import { findDesign } from '@/db/queries/designs'
 import { findVersion, listVersions } from '@/db/queries/versions'
 import { requireFound } from '@/lib/auth/page-access'
@@ -30,6 +31,7 @@ export default async function VersionPage({ params }: { params: Promise<unknown>
   const design = designRecord(found.design)
   const { coefficients, ...version } = found.version
   const numbers = (await listVersions(access, designId)).map((one) => one.number)
+  const uses = (await listChainsUsing(access, designId)).filter((use) => use.designVersion === version.number)
   return (
     <>
       <Header
@@ -56,6 +58,7 @@ export default async function VersionPage({ params }: { params: Promise<unknown>
         version={version}
         kept={coefficients}
         numbers={numbers}
+        uses={uses}
         mayExport={mayDo(found.design.role, 'version.export')}
       />
     </>
