@@ -22,14 +22,14 @@ import {
 
 const names = { designId: '7a2f1c9e-3b64-4d0e-9c55-0e6a4a1d2b30', version: 3, drawing: 'HMF-LP-001', title: 'A design' }
 
-/** Its total factor, 2560, has every input held over many samples. */
+/** Its total factor, 500, has every input held over many samples. */
 const longChain: ChainSpec = {
   ...startingChains.averaging,
   stages: startingChains.averaging.stages.map((stage) =>
     stage.kind !== 'decimate'
       ? stage
       : stage.filter.type === 'cic'
-        ? { ...stage, factor: 256, filter: { type: 'cic', order: 2, combDelay: 1, compensation: null } }
+        ? { ...stage, factor: 50, filter: { type: 'cic', order: 2, combDelay: 1, compensation: null } }
         : stage.id === 's4'
           ? { ...stage, factor: 10, filter: { type: 'equiripple', taps: 101, passHz: 10, stopHz: 30, stopWeight: 10 } }
           : { ...stage, bypassed: true },
