@@ -31,7 +31,7 @@ import { ChainDrawer } from './chain-drawer'
 import { ChainTitleBlock } from './chain-title-block'
 import { chainCommands } from './commands'
 import { computedChain } from './computed-chain'
-import { useChainJudgements } from './judge'
+import { savedTolerance, useChainJudgements, withOlderRun } from './judge'
 import { LiveDesk } from './stage-desk'
 import { ChainStatement } from './statement'
 import { createChainStore, toleranceFor } from './store'
@@ -139,8 +139,13 @@ export function ChainPage({
   const stageId = useChain(store, (state) => state.stageId)
   const traceHz = useChain(store, (state) => state.traceHz)
   const tolerance = useChain(store, (state) => state.tolerance)
-  const match = useMemo(() => toleranceFor(spec, tolerance), [spec, tolerance])
-  const judgements = useChainJudgements(spec, match)
+  const run = useMemo(() => toleranceFor(spec, tolerance), [spec, tolerance])
+  // A version was judged by a run of its own when it was saved: that one speaks until another is made.
+  const savedRun = useMemo(() => (latest ? savedTolerance(latest.spec, latest.figures) : null), [latest])
+  const match = useMemo(() => run ?? toleranceFor(spec, savedRun), [run, spec, savedRun])
+  const judged = useChainJudgements(spec, match)
+  const hasOlderRun = match === null && (tolerance !== null || savedRun !== null)
+  const judgements = useMemo(() => (hasOlderRun ? withOlderRun(judged) : judged), [judged, hasOlderRun])
   const desk = useMemo(() => chainDesk(store), [store])
   const { trace } = store.getState()
   const chosenIndex = indexOfStage(spec, stageId)
@@ -217,6 +222,7 @@ export function ChainPage({
             </dl>
           )}
           draftSavedAt={draftSavedAt}
+          foot="Saving runs the channels, and judges every line of the sheet."
           onSaved={goOnFrom}
           onTakeTheirs={(version) => {
             store.getState().propose(version.spec)
@@ -267,6 +273,7 @@ export function ChainPage({
             chain={made}
             chosen={stageId}
             desk={desk}
+            linkable={linkable}
             readOnly={!mayEdit}
             onChoose={store.getState().choose}
           />

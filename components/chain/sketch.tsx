@@ -35,9 +35,23 @@ export function StageSketch({ levels, tone }: { levels: Float64Array; tone: 'ana
   }
   const path = Array.from(levels, (db, index) => `${index === 0 ? 'M' : 'L'}${x(index)} ${y(db)}`).join('')
   return (
-    <svg aria-hidden width={WIDTH} height={HEIGHT} viewBox={`0 0 ${WIDTH} ${HEIGHT}`} className="block shrink-0">
+    <svg
+      aria-hidden
+      width={WIDTH}
+      height={HEIGHT}
+      viewBox={`0 0 ${WIDTH} ${HEIGHT}`}
+      preserveAspectRatio="none"
+      className="block min-w-0 shrink"
+    >
       <path d={`M0 ${HEIGHT - 0.5}H${WIDTH}`} className="stroke-graph-strong" fill="none" />
-      <path d={path} className={ink} fill="none" strokeWidth={1.3} strokeLinejoin="round" />
+      <path
+        d={path}
+        className={ink}
+        fill="none"
+        strokeWidth={1.3}
+        strokeLinejoin="round"
+        vectorEffect="non-scaling-stroke"
+      />
     </svg>
   )
 }

@@ -9,6 +9,7 @@ import { usePacedSpec, type Pace } from '@/components/studio/shell/use-paced-spe
 import type { Refusal } from '@/components/studio/view'
 import { withField } from '@/lib/chains/edits'
 import { boundRefusal, chainFieldOf, chainFieldText, parseChainField, withPartAt } from '@/lib/chains/fields'
+import { outdatedLinks } from '@/lib/chains/links'
 import { nameRefusal } from '@/lib/chains/names'
 import { outputRateOf, ratesOf } from '@/lib/chains/outline'
 import { chainStatementParts, chainWordOfField, type ChainStatementPart } from '@/lib/chains/statement'
@@ -131,6 +132,7 @@ function Word({
   const label = chainWordLabel(key)
   if (part.kind === 'choice') {
     const { current, options } = chainOptions(spec, key, linkable)
+    const newest = outdatedLinks(spec, linkable).find(({ field }) => field === `${key}.link`)?.newest
     return (
       <ChoiceWord
         label={label}
@@ -139,6 +141,7 @@ function Word({
         options={options}
         refusal={refusal}
         readOnly={readOnly}
+        hint={newest && `version ${newest.version} is newer`}
         onPick={(option) => propose(option.apply(store.getState().spec), key)}
       />
     )

@@ -3,7 +3,11 @@
 import { useEffect, useMemo, useRef, useState, type KeyboardEvent, type PointerEvent } from 'react'
 import { chainSketch, noiseBudget, type ChainSpec, type ChainStage, type ComputedChain } from '@/dsp'
 import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { Button } from '@/components/ui/button'
 import { withStageMoved } from '@/lib/chains/edits'
+import { linkOf, outdatedLinks } from '@/lib/chains/links'
+import { linkText } from '@/lib/chains/statement'
+import type { LinkableDesign } from '@/lib/chains/types'
 import { stageLabel, stageName } from '@/lib/chains/words'
 import { classNames } from '@/lib/format/class-names'
 import { formatHz, formatNumber, formatSeconds } from '@/lib/format/quantity'
@@ -30,6 +34,7 @@ export function Strip({
   chain,
   chosen,
   desk,
+  linkable = [],
   readOnly,
   onChoose,
 }: {
@@ -38,11 +43,14 @@ export function Strip({
   chain: ComputedChain | null
   chosen: string | null
   desk: ChainDesk
+  /** The designs of the project: a stage tied to an older version of one is marked. */
+  linkable?: readonly LinkableDesign[]
   readOnly: boolean
   onChoose(stageId: string | null): void
 }) {
   const [drag, setDrag] = useState<Drag | null>(null)
   const [said, setSaid] = useSaid<{ readonly words: string; readonly isRefusal: boolean }>(desk)
+  const outdated = useMemo(() => outdatedLinks(spec, linkable), [spec, linkable])
   const row = useRef<HTMLOListElement>(null)
   const hasDragged = useRef(false)
   // A cell that was moved takes the focus along: the browser lets go of it when it changes its place.
@@ -166,7 +174,13 @@ export function Strip({
               onPointerUp={() => letGo(true)}
               onPointerCancel={() => letGo(false)}
             >
-              <StageCell spec={spec} stage={stage} index={index} chain={chain} />
+              <StageCell
+                spec={spec}
+                stage={stage}
+                index={index}
+                chain={chain}
+                isOutdated={outdated.some(({ stageId }) => stageId === stage.id)}
+              />
             </button>
           </li>
         ))}
@@ -178,6 +192,20 @@ export function Strip({
       >
         {said?.words}
       </p>
+      {outdated.length > 0 ? (
+        <ul className="mt-1 text-[13px]">
+          {outdated.map(({ stageId, stageIndex, link, newest }) => (
+            <li key={stageId} className="flex flex-wrap items-center gap-x-2 border-l-2 border-ochre pl-2">
+              Stage {stageIndex + 1} is tied to {linkText(link)}; version {newest.version} is newer.
+              {stageId === chosen ? null : (
+                <Button small onClick={() => onChoose(stageId)}>
+                  Open stage {stageIndex + 1}
+                </Button>
+              )}
+            </li>
+          ))}
+        </ul>
+      ) : null}
     </section>
   )
 }
@@ -187,11 +215,13 @@ function StageCell({
   stage,
   index,
   chain,
+  isOutdated,
 }: {
   spec: ChainSpec
   stage: ChainStage
   index: number
   chain: ComputedChain | null
+  isOutdated: boolean
 }) {
   const levels = useMemo(() => (chain?.stages[index] ? stageLevels(chain, index) : null), [chain, index])
   const computed = chain?.stages[index] ?? null
@@ -199,21 +229,39 @@ function StageCell({
   const isDigital = stage.kind === 'decimate' || stage.kind === 'shape'
   return (
     <>
-      <Words label={stageLabel(stage)} name={stageName(stage)} isBypassed={stage.bypassed} />
+      <Words
+        label={stageLabel(stage)}
+        name={stageName(stage)}
+        isBypassed={stage.bypassed}
+        mark={isOutdated ? 'newer version' : null}
+      />
       <span className="flex min-h-[3.375rem] w-full items-end justify-between gap-2">
-        <Facts facts={facts} />
+        <Facts facts={facts} title={linkTitle(stage)} />
         {levels ? <StageSketch levels={levels} tone={isDigital ? 'digital' : 'analog'} /> : null}
       </span>
     </>
   )
 }
 
-function Words({ label, name, isBypassed = false }: { label: string; name: string; isBypassed?: boolean }) {
+const linkTitle = (stage: ChainStage): string | null => linkOf(stage)?.link.title ?? null
+
+function Words({
+  label,
+  name,
+  isBypassed = false,
+  mark = null,
+}: {
+  label: string
+  name: string
+  isBypassed?: boolean
+  mark?: string | null
+}) {
   return (
     <>
       <span className="text-[11px] leading-4 tracking-wide text-pencil">
         {label}
         {isBypassed ? <span className="text-ochre"> · bypassed</span> : null}
+        {mark === null ? null : <span className="text-ochre"> · {mark}</span>}
       </span>
       <span
         className={classNames(
@@ -228,10 +276,11 @@ function Words({ label, name, isBypassed = false }: { label: string; name: strin
   )
 }
 
-const Facts = ({ facts }: { facts: readonly string[] }) => (
-  <span className="numeric flex min-w-0 flex-col self-start text-[11.5px] leading-[1.125rem] whitespace-nowrap text-ink">
+/** Figures are never cut: the sketch beside them gives way. The title of a design may be as long as it likes, and is. */
+const Facts = ({ facts, title = null }: { facts: readonly string[]; title?: string | null }) => (
+  <span className="numeric flex max-w-full shrink-0 flex-col self-start text-[11.5px] leading-[1.125rem] whitespace-nowrap text-ink">
     {facts.map((fact) => (
-      <span key={fact} className="truncate">
+      <span key={fact} className={fact === title ? 'max-w-20 truncate' : undefined} title={title ?? undefined}>
         {fact}
       </span>
     ))}

@@ -1,4 +1,5 @@
 import type { ChainSpec, ChainStage, DesignLink } from '@/dsp'
+import type { LinkableDesign } from './types'
 
 export interface StageLink {
   readonly stageId: string
@@ -9,7 +10,7 @@ export interface StageLink {
 }
 
 /** The link of a stage, and the part of the stage that holds it. */
-function linkOf(stage: ChainStage): { readonly part: 'source' | 'filter'; readonly link: DesignLink } | null {
+export function linkOf(stage: ChainStage): { readonly part: 'source' | 'filter'; readonly link: DesignLink } | null {
   if (stage.kind === 'analog')
     return stage.source.from === 'design' ? { part: 'source', link: stage.source.link } : null
   if (stage.kind === 'decimate' || stage.kind === 'shape')
@@ -24,6 +25,17 @@ export function linksOf(spec: ChainSpec): readonly StageLink[] {
     return found
       ? [{ stageId: stage.id, stageIndex, field: `stages.${stageIndex}.${found.part}.link`, link: found.link }]
       : []
+  })
+}
+
+/** The links whose design has gone on since, each with its newest version. */
+export function outdatedLinks(
+  spec: ChainSpec,
+  linkable: readonly LinkableDesign[],
+): readonly (StageLink & { readonly newest: DesignLink })[] {
+  return linksOf(spec).flatMap((one) => {
+    const newest = linkable.find(({ link }) => link.designId === one.link.designId)?.link
+    return newest && newest.version > one.link.version ? [{ ...one, newest }] : []
   })
 }
 

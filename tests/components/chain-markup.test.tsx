@@ -3,13 +3,13 @@ import { describe, expect, it } from 'vitest'
 import { chainDesk } from '@/components/chain/chain-desk'
 import { computedChain } from '@/components/chain/computed-chain'
 import { Interferers, isAboveFloor, landedLevel, landingWords } from '@/components/chain/interferers'
-import { chainJudgements } from '@/components/chain/judge'
+import { chainJudgements, savedTolerance, withOlderRun } from '@/components/chain/judge'
 import { ChainSheet } from '@/components/chain/sheet'
 import { stageFacts } from '@/components/chain/stage-facts'
 import { StageDesk } from '@/components/chain/stage-desk'
 import { ChainStatement } from '@/components/chain/statement'
 import { chainOptions } from '@/components/chain/statement-options'
-import { createChainStore } from '@/components/chain/store'
+import { createChainStore, toleranceFor } from '@/components/chain/store'
 import { Strip } from '@/components/chain/strip'
 import { DesignError, interfererLandings, type ChainSpec, type ComputedChain } from '@/dsp'
 import { withAnalogLink, withBypass } from '@/lib/chains/edits'
@@ -61,6 +61,27 @@ describe('the strip', () => {
     expect(strip(startingChain).match(/<svg/g)?.length).toBeGreaterThanOrEqual(5)
     expect(strip(startingChain, null, null)).not.toContain('<svg')
   })
+  it('marks a stage that is tied to an older version, and opens it', () => {
+    const spec = withAnalogLink(startingChain, 1, version(1).link)
+    const at = (newest: number) =>
+      wordsOf(
+        renderToStaticMarkup(
+          <Strip
+            spec={spec}
+            chain={null}
+            chosen={null}
+            desk={chainDesk(createChainStore(spec))}
+            linkable={[version(newest)]}
+            readOnly={false}
+            onChoose={nothing}
+          />,
+        ),
+      )
+    expect(at(2)).toContain('newer version')
+    expect(at(2)).toContain('HMF-LP-001 version 1; version 2 is newer')
+    expect(at(2)).toContain('Open stage 2')
+    expect(at(1)).not.toContain('newer')
+  })
   it('tells the figures of every stage', () => {
     const facts = startingChain.stages.map((_, index) =>
       stageFacts(startingChain, index, made(startingChain).stages[index] ?? null),
@@ -68,6 +89,25 @@ describe('the strip', () => {
     expect(facts[0]).toContain('1\u2009V/g')
     expect(facts[0]).toContain('from 0.1\u2009Hz')
     expect(facts[2]).toEqual(['2\u2009kHz', '±5\u2009V'])
+  })
+})
+
+describe('a run that a version was saved with', () => {
+  const line = { kind: 'channel-match', toHz: 50, withinDegrees: 0.5, withinDb: 0.05 } as const
+  const spec: ChainSpec = { ...startingChain, sheet: [line] }
+  const match = [0, 100].map((hz) => ({ hz, gainDb: 0.001, phaseDegrees: hz / 500 }))
+  it('judges the channel match as it was judged then', () => {
+    const saved = savedTolerance(spec, { match })
+    const result = chainJudgements(spec, toleranceFor(spec, saved)).get(line)
+    // A fifth of a degree at 100 Hz is a tenth at 50 Hz, between straight lines.
+    expect(result).toMatchObject({ met: true, unit: '°' })
+    expect(result?.value).toBeCloseTo(0.1, 12)
+    expect(savedTolerance(spec, { match: [] })).toBeNull()
+  })
+  it('is said to be of an older state once the chain has gone on', () => {
+    const open = chainJudgements({ ...spec }, null)
+    expect(open.get(line)?.reason).toContain('No tolerance run')
+    expect(withOlderRun(open).get(line)?.reason).toContain('older state')
   })
 })
 

@@ -19,6 +19,7 @@ export function ChoiceWord<Option extends PickedOption>({
   options,
   refusal,
   readOnly,
+  hint,
   onPick,
 }: {
   label: string
@@ -27,15 +28,23 @@ export function ChoiceWord<Option extends PickedOption>({
   options: readonly Option[]
   refusal: { readonly message: string } | null
   readOnly: boolean
+  /** What else is known of the word, for who points at it. */
+  hint?: string | undefined
   onPick(option: Option): void
 }) {
   const noteId = useId()
-  if (readOnly) return <strong className="font-semibold">{text}</strong>
+  if (readOnly)
+    return (
+      <strong className="font-semibold" title={hint}>
+        {text}
+      </strong>
+    )
   return (
     <span className="inline">
       <DropdownMenu.Root modal={false}>
         <DropdownMenu.Trigger
-          aria-label={`${label}: ${text}`}
+          aria-label={`${label}: ${text}${hint ? `, ${hint}` : ''}`}
+          title={hint}
           aria-describedby={refusal ? noteId : undefined}
           className={classNames('text-left', wordLook.frame, 'outline-none', refusal && wordLook.refused)}
         >
