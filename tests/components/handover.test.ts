@@ -170,6 +170,7 @@ describe('the sheet of a version', () => {
         version: versionOf(lowPass()),
         kept: numbersOf(lowPass()),
         numbers: [3, 2, 1],
+        uses: [],
         mayExport,
       }),
     )
@@ -189,6 +190,7 @@ describe('the sheet of a version', () => {
         version: versionOf(fir),
         kept: numbersOf(fir),
         numbers: [3],
+        uses: [],
         mayExport: true,
       }),
     )
