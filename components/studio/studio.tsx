@@ -16,27 +16,30 @@ import { studioCommands, matches } from './commands'
 import { useOnPage } from './panels/chart/use-on-page'
 import { useAddress, viewFromSearch } from './shell/address'
 import { createAutosave } from './shell/autosave'
-import { DepartureTable } from './shell/departure-table'
 import { freshest, remember } from './shell/desk'
 import { DraftStatus } from './shell/draft-status'
 import { Drawer } from './shell/drawer'
 import { FiguresLine } from './shell/figures-line'
 import { forgetKeptDraft, keptDraft } from './shell/kept-draft'
-import { SaveVersion } from './shell/save-version'
 import { DesignTitleBlock } from './shell/design-title-block'
 import { LivePlanes } from './shell/live-planes'
 import { LivePlots } from './shell/live-plots'
+import { SaveVersion } from './shell/save-version'
 import { useSettled } from './shell/use-derived'
 import { Statement } from './statement/statement'
 import { createStudioStore, sameSpec } from './store'
 import { useStudio } from './use-studio'
 
-/** The sheet and its judging come after what is drawn: the first page stays light. */
+/** What stands in words and tables comes after what is drawn: the first page stays light. */
 const SheetPanel = dynamic(() => import('./sheet/sheet-panel').then((module) => module.SheetPanel), {
   ssr: false,
   loading: () => <p className="text-[13px] text-pencil">Opening the requirement sheet…</p>,
 })
 const CompareSpecs = dynamic(() => import('./compare/compare-specs').then((module) => module.CompareSpecs))
+const DepartureTable = dynamic(() => import('./shell/departure-table').then((module) => module.DepartureTable), {
+  ssr: false,
+  loading: () => <p className="text-[13px] text-pencil">Opening the departure table…</p>,
+})
 const SheetFigure = dynamic(() => import('./sheet/sheet-figure').then((module) => module.SheetFigure), { ssr: false })
 
 /** The heart of the product: one design as a sentence, its curves, its planes and its drawer. */
