@@ -1,7 +1,7 @@
 import Link from 'next/link'
 import { buttonClass } from '@/components/ui/button'
 import type { ChainRecord, ChainVersionSummary } from '@/lib/chains/types'
-import { caution } from '@/lib/exports/coefficient-set'
+import { caution } from '@/lib/caution'
 
 /** The files of a version, or who may have them; the checksum in either case. */
 export function ChainFiles({

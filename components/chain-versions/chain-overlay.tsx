@@ -7,7 +7,7 @@ import { overlayScene, type DifferenceUnit } from '@/components/studio/compare/o
 import { SideSwatch } from '@/components/studio/compare/side-swatch'
 import { DataTable } from '@/components/studio/panels/chart/data-table'
 import { PlotSheet } from '@/components/studio/panels/chart/plot-sheet'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { useWidth } from '@/components/studio/stack/use-width'
 import type { ChainSpec } from '@/dsp'
 import { formatDegrees, formatFixed, formatHz, formatSeconds } from '@/lib/format/quantity'

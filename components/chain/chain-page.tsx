@@ -2,25 +2,21 @@
 
 import dynamic from 'next/dynamic'
 import { useSearchParams } from 'next/navigation'
-import { useEffect, useMemo, useState } from 'react'
-import { useStore } from 'zustand'
+import { useMemo } from 'react'
 import { DesignError, type ChainSpec, type ChainStageKind } from '@/dsp'
-import { Header } from '@/components/frame/header'
-import { matches } from '@/components/studio/commands'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
-import { createAutosave } from '@/components/studio/shell/autosave'
-import { freshest, remember } from '@/components/studio/shell/desk'
-import { DraftStatus } from '@/components/studio/shell/draft-status'
-import { forgetKeptDraft, keptDraft } from '@/components/studio/shell/kept-draft'
-import { SaveVersion } from '@/components/studio/shell/save-version'
-import { usePacedSpec, type Pace } from '@/components/studio/shell/use-paced-spec'
-import { Button, buttonClass } from '@/components/ui/button'
+import { useOnPage } from '@/components/ui/use-on-page'
+import { caution } from '@/lib/caution'
+import { useCommandKeys } from '@/components/drafting/commands'
+import { KeptNotice } from '@/components/drafting/kept-notice'
+import { SaveVersion } from '@/components/drafting/save-version'
+import { SheetHeader } from '@/components/drafting/sheet-header'
+import { useDrafting } from '@/components/drafting/use-drafting'
+import { usePacedSpec, type Pace } from '@/components/drafting/use-paced-spec'
 import { Fence } from '@/components/ui/fence'
-import { Notice } from '@/components/ui/notice'
 import { withStageAdded } from '@/lib/chains/edits'
 import { indexOfStage } from '@/lib/chains/outline'
 import { chainText } from '@/lib/chains/statement'
-import type { ChainPageProps, ChainVersionSummary } from '@/lib/chains/types'
+import type { ChainPageProps } from '@/lib/chains/types'
 import { notAdded } from '@/lib/chains/words'
 import { sameValue } from '@/lib/designs/same-value'
 import { AddStage } from './add-stage'
@@ -54,87 +50,34 @@ const Interferers = dynamic(() => import('./interferers').then((module) => modul
 const PAUSE: Pace = { afterMs: 60 }
 
 /** A measurement chain: one sentence, its stages in signal order, its fold chart, what it must meet, and its drawer. */
-export function ChainPage({
-  chain,
-  viewer,
-  versions: broughtVersions,
-  draft: broughtDraft,
-  startingSpec,
-  linkable,
-  actions,
-}: ChainPageProps) {
+export function ChainPage({ chain, viewer, versions, draft, startingSpec, linkable, actions }: ChainPageProps) {
   const search = useSearchParams()
   const { accountId, mayEdit } = viewer
-  const [{ draft, versions: savedAtOpening }] = useState(() =>
-    freshest(accountId, chain.id, { draft: broughtDraft, versions: broughtVersions }),
-  )
-  const [saved, setSaved] = useState(savedAtOpening)
-  const latest = saved[0]
-  const [store] = useState(() =>
-    createChainStore(
-      draft?.spec ?? savedAtOpening[0]?.spec ?? startingSpec,
-      chainViewFromSearch(new URLSearchParams(search.toString())),
-    ),
-  )
-  // What was opened may make no chain; it is computed on the page alone, never while the server renders.
-  useEffect(() => store.getState().dismissRefusal(), [store])
-  const [parentNumber, setParentNumber] = useState(draft?.parentNumber ?? latest?.number ?? null)
-  useEffect(() => remember(accountId, chain.id, { versions: saved }), [accountId, chain.id, saved])
-  const [saving, setSaving] = useState(false)
-  const [kept, setKept] = useState<ChainSpec | null>(null)
-  const [draftSavedAt, setDraftSavedAt] = useState<string | null>(null)
+  const drafting = useDrafting({
+    kind: 'chains',
+    id: chain.id,
+    accountId,
+    mayEdit,
+    draft,
+    versions,
+    startingSpec,
+    makeStore: (opening) => createChainStore(opening, chainViewFromSearch(new URLSearchParams(search.toString()))),
+    loadCheck: () => import('@/lib/chains/spec-from').then((module) => module.chainSpecFrom),
+  })
+  const { store, saved, latest, isSaving, setIsSaving } = drafting
 
   const spec = usePacedSpec(store, PAUSE)
-  const [autosave] = useState(() =>
-    createAutosave({
-      kind: 'chains',
-      id: chain.id,
-      store,
-      draft,
-      parentNumber,
-      onSaved: (stored) => {
-        remember(accountId, chain.id, { draft: stored })
-        setDraftSavedAt(stored.updatedAt)
-        // What this browser kept is of before: this draft has taken its place.
-        setKept(null)
-      },
-    }),
-  )
-  const autosaveState = useStore(autosave.state)
-  useEffect(() => (mayEdit ? autosave.start() : undefined), [autosave, mayEdit])
   useChainAddress(store)
   // Computed figures may differ in their last digit between the server's engine and this browser's: they are shown here alone.
   const onPage = useOnPage()
   const computed = useMemo(() => (onPage ? computedChain(spec) : null), [onPage, spec])
   const made = computed instanceof DesignError ? null : computed
 
-  const commands = useMemo(() => chainCommands(store, { mayEdit, openSave: () => setSaving(true) }), [store, mayEdit])
-  useEffect(() => {
-    function onKeyDown(event: KeyboardEvent) {
-      const command = commands.find(({ keys }) => keys !== undefined && matches(keys, event))
-      if (!command) return
-      event.preventDefault()
-      if (command.when()) command.run()
-    }
-    addEventListener('keydown', onKeyDown)
-    return () => removeEventListener('keydown', onKeyDown)
-  }, [commands])
-
-  useEffect(() => {
-    // A draft that never reached the server waits in this browser; it is offered, not forced.
-    void keptDraft(chain.id, () => import('@/lib/chains/spec-from').then((module) => module.chainSpecFrom)).then(
-      (found) => {
-        if (found && !sameValue(found, store.getState().spec)) setKept(found)
-      },
-    )
-  }, [chain.id, store])
-
-  function goOnFrom(version: ChainVersionSummary) {
-    setSaved((list) => (list.some(({ number }) => number === version.number) ? list : [version, ...list]))
-    setParentNumber(version.number)
-    autosave.startFrom(version.number)
-    setSaving(false)
-  }
+  const commands = useMemo(
+    () => chainCommands(store, { mayEdit, openSave: () => setIsSaving(true) }),
+    [store, mayEdit, setIsSaving],
+  )
+  useCommandKeys(commands)
 
   const stageId = useChain(store, (state) => state.stageId)
   const traceHz = useChain(store, (state) => state.traceHz)
@@ -164,98 +107,38 @@ export function ChainPage({
     store.getState().choose(null)
   }
 
-  const canUndo = useChain(store, (state) => state.past.length > 0)
-  const canRedo = useChain(store, (state) => state.future.length > 0)
-  const nextNumber = (latest?.number ?? 0) + 1
-  const unchanged = latest !== undefined && sameValue(latest.spec, spec)
-
   return (
     <>
-      <Header crumbs={[{ label: chain.projectName, href: `/projects/${chain.projectId}` }, { label: chain.title }]}>
-        {mayEdit ? (
-          <>
-            <DraftStatus state={autosaveState} onResolve={autosave.resolveStale} />
-            <Button disabled={!canUndo} onClick={() => store.getState().undo()} title="Undo (Ctrl+Z)">
-              Undo
-            </Button>
-            <Button disabled={!canRedo} onClick={() => store.getState().redo()} title="Redo (Ctrl+Shift+Z)">
-              Redo
-            </Button>
-          </>
-        ) : null}
-        {latest ? (
-          <a className={buttonClass()} href={`/chains/${chain.id}/versions/${latest.number}`}>
-            Hand over version {latest.number}…
-          </a>
-        ) : null}
-        {mayEdit ? (
-          <Button
-            kind="primary"
-            aria-expanded={saving}
-            disabled={unchanged}
-            title={unchanged ? `The draft equals version ${latest.number}` : 'Save a version (Ctrl+S)'}
-            onClick={() => setSaving((open) => !open)}
-          >
-            {unchanged ? `Version ${latest.number} saved` : `Save version ${nextNumber}`}
-          </Button>
-        ) : null}
-      </Header>
+      <SheetHeader
+        crumbs={[{ label: chain.projectName, href: `/projects/${chain.projectId}` }, { label: chain.title }]}
+        address={`/chains/${chain.id}`}
+        store={store}
+        draftStatus={drafting.draftStatus}
+        latest={latest}
+        nextNumber={drafting.nextNumber}
+        unchanged={latest !== undefined && sameValue(latest.spec, spec)}
+        mayEdit={mayEdit}
+        isSaving={isSaving}
+        onSaving={setIsSaving}
+      />
 
-      {saving ? (
+      {isSaving ? (
         <SaveVersion
           what="chain"
-          nextNumber={nextNumber}
-          parentNumber={parentNumber}
-          save={(note, onTopOf) =>
-            actions.saveVersion({
-              chainId: chain.id,
-              spec: store.getState().spec,
-              note,
-              parentNumber,
-              ...(onTopOf === undefined ? {} : { onTopOf }),
-            })
-          }
+          save={(note, onTopOf) => actions.saveVersion({ chainId: chain.id, ...drafting.stated(note, onTopOf) })}
           compare={(theirs) => (
             <dl className="grid gap-3 text-[14px] sm:grid-cols-2">
               <Side label={`Version ${theirs.number}`} spec={theirs.spec} />
               <Side label="Your draft" spec={spec} />
             </dl>
           )}
-          draftSavedAt={draftSavedAt}
           foot="Saving runs the channels, and judges every line of the sheet."
-          onSaved={goOnFrom}
-          onTakeTheirs={(version) => {
-            store.getState().propose(version.spec)
-            goOnFrom(version)
-          }}
-          onClose={() => setSaving(false)}
+          {...drafting.savePart}
         />
       ) : null}
 
       <main className="mx-auto max-w-[1680px] px-4 pt-4 sm:px-6">
-        {kept && mayEdit ? (
-          <Notice kind="note">
-            This browser kept a draft that never reached the server.{' '}
-            <Button
-              small
-              onClick={() => {
-                store.getState().propose(kept)
-                setKept(null)
-              }}
-            >
-              Bring it back
-            </Button>{' '}
-            <Button
-              small
-              onClick={() => {
-                forgetKeptDraft(chain.id)
-                setKept(null)
-              }}
-            >
-              Let it go
-            </Button>
-          </Notice>
-        ) : null}
+        <KeptNotice kept={drafting.kept} onBringBack={drafting.bringBack} onLetGo={drafting.letGo} />
         <ChainStatement store={store} linkable={linkable} readOnly={!mayEdit} />
         {made ? <Cautions chain={made} /> : null}
 
@@ -317,10 +200,7 @@ export function ChainPage({
         {onPage ? (
           <ChainDrawer store={store} chainId={chain.id} spec={spec} chain={made} saved={saved} readOnly={!mayEdit} />
         ) : null}
-        <footer className="border-t border-graph py-4 text-[13px] text-pencil">
-          A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the
-          applicable local codes and a licensed practitioner decide.
-        </footer>
+        <footer className="border-t border-graph py-4 text-[13px] text-pencil">{caution}</footer>
       </main>
     </>
   )

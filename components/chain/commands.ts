@@ -1,4 +1,4 @@
-import type { StudioCommand } from '@/components/studio/commands'
+import { draftingCommands, type SheetCommand } from '@/components/drafting/commands'
 import type { ChainStore } from './store'
 import type { ChainDrawerTab } from './view'
 
@@ -17,24 +17,10 @@ export const chainDrawerNames: Record<ChainDrawerTab, string> = {
 export function chainCommands(
   store: ChainStore,
   options: { readonly mayEdit: boolean; readonly openSave: () => void },
-): readonly StudioCommand[] {
+): readonly SheetCommand[] {
   const state = store.getState
   return [
-    {
-      id: 'undo',
-      name: 'Undo',
-      keys: 'Mod+Z',
-      when: () => options.mayEdit && state().past.length > 0,
-      run: () => state().undo(),
-    },
-    {
-      id: 'redo',
-      name: 'Redo',
-      keys: 'Mod+Shift+Z',
-      when: () => options.mayEdit && state().future.length > 0,
-      run: () => state().redo(),
-    },
-    { id: 'save-version', name: 'Save version', keys: 'Mod+S', when: () => options.mayEdit, run: options.openSave },
+    ...draftingCommands(store, options),
     {
       id: 'lift-trace',
       name: 'Lift the trace from the fold chart',

@@ -10,7 +10,7 @@ import {
   type ComputedChain,
   type InterfererLanding,
 } from '@/dsp'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { Button } from '@/components/ui/button'
 import { hertzText, shownLevel, withPartAt } from '@/lib/chains/fields'
 import { nameRefusal } from '@/lib/chains/names'

@@ -1,9 +1,9 @@
 'use client'
 
 import { EllipsisVertical } from 'lucide-react'
-import { DropdownMenu } from 'radix-ui'
 import { useEffect, useRef, useState } from 'react'
 import { MOST_CHAIN_REQUIREMENTS, type ChainRequirementKind, type ChainRequirementResult, type ChainSpec } from '@/dsp'
+import { ActionMenu } from '@/components/ui/action-menu'
 import { Button, buttonClass } from '@/components/ui/button'
 import { chainFieldOf, hertzText } from '@/lib/chains/fields'
 import { sheetTone, sheetWords } from '@/lib/chains/sheet-words'
@@ -226,47 +226,18 @@ function Summary({ spec, judgements }: { spec: ChainSpec; judgements: ChainJudge
   )
 }
 
-function AddLine({ isFull, onAdd }: { isFull: boolean; onAdd(kind: ChainRequirementKind): void }) {
-  const added = useRef(false)
-  return (
-    <DropdownMenu.Root modal={false}>
-      <DropdownMenu.Trigger
-        className={buttonClass('plain', true)}
-        disabled={isFull}
-        title={isFull ? `A sheet holds ${MOST_CHAIN_REQUIREMENTS} lines` : undefined}
-        data-tool="add"
-      >
-        Add a line
-      </DropdownMenu.Trigger>
-      <DropdownMenu.Portal>
-        <DropdownMenu.Content
-          align="start"
-          sideOffset={4}
-          collisionPadding={8}
-          className="z-20 min-w-44 rounded border border-ink bg-sheet py-1 text-[15px] text-ink"
-          onCloseAutoFocus={(event) => {
-            // The focus goes to the new line, not back to the button.
-            if (added.current) event.preventDefault()
-            added.current = false
-          }}
-        >
-          {kinds.map(([kind, label]) => (
-            <DropdownMenu.Item
-              key={kind}
-              className="flex min-h-8 cursor-pointer items-center px-3 outline-none data-highlighted:bg-spruce-wash"
-              onSelect={() => {
-                added.current = true
-                onAdd(kind)
-              }}
-            >
-              {label}
-            </DropdownMenu.Item>
-          ))}
-        </DropdownMenu.Content>
-      </DropdownMenu.Portal>
-    </DropdownMenu.Root>
-  )
-}
+const AddLine = ({ isFull, onAdd }: { isFull: boolean; onAdd(kind: ChainRequirementKind): void }) => (
+  <ActionMenu
+    className={buttonClass('plain', true)}
+    disabled={isFull}
+    title={isFull ? `A sheet holds ${MOST_CHAIN_REQUIREMENTS} lines` : undefined}
+    tool="add"
+    focusMovesOn
+    actions={kinds.map(([kind, label]) => ({ id: kind, label, run: () => onAdd(kind) }))}
+  >
+    Add a line
+  </ActionMenu>
+)
 
 /** What can be done to a line as a whole. */
 function LineMenu({
@@ -282,46 +253,21 @@ function LineMenu({
   onMove(by: 1 | -1): void
   onRemove(): void
 }) {
-  const acted = useRef(false)
-  const item = (label: string, isOut: boolean, act: () => void) => (
-    <DropdownMenu.Item
-      className="flex min-h-8 cursor-pointer items-center px-3 outline-none data-disabled:cursor-default data-disabled:text-pencil data-highlighted:bg-spruce-wash"
-      disabled={isOut}
-      onSelect={() => {
-        acted.current = true
-        act()
-      }}
-    >
-      {label}
-    </DropdownMenu.Item>
-  )
   return (
-    <DropdownMenu.Root modal={false}>
-      <DropdownMenu.Trigger
-        className={classNames(buttonClass('quiet', true), 'min-w-6 self-center px-1')}
-        aria-label={`Change ${name}`}
-        title="Move or remove this line"
-        data-tool="line"
-      >
-        <EllipsisVertical aria-hidden size={14} />
-      </DropdownMenu.Trigger>
-      <DropdownMenu.Portal>
-        <DropdownMenu.Content
-          align="end"
-          sideOffset={4}
-          collisionPadding={8}
-          className="z-20 min-w-36 rounded border border-ink bg-sheet py-1 text-[15px] text-ink"
-          onCloseAutoFocus={(event) => {
-            // The focus follows the line, which stands elsewhere now, or is gone.
-            if (acted.current) event.preventDefault()
-            acted.current = false
-          }}
-        >
-          {item('Move up', isFirst, () => onMove(-1))}
-          {item('Move down', isLast, () => onMove(1))}
-          {item('Remove', false, onRemove)}
-        </DropdownMenu.Content>
-      </DropdownMenu.Portal>
-    </DropdownMenu.Root>
+    <ActionMenu
+      align="end"
+      className={classNames(buttonClass('quiet', true), 'min-w-6 self-center px-1')}
+      label={`Change ${name}`}
+      title="Move or remove this line"
+      tool="line"
+      focusMovesOn
+      actions={[
+        { id: 'up', label: 'Move up', isOut: isFirst, run: () => onMove(-1) },
+        { id: 'down', label: 'Move down', isOut: isLast, run: () => onMove(1) },
+        { id: 'remove', label: 'Remove', run: onRemove },
+      ]}
+    >
+      <EllipsisVertical aria-hidden size={14} />
+    </ActionMenu>
   )
 }

@@ -2,7 +2,7 @@
 
 import { useEffect, useMemo, useRef, useState, type KeyboardEvent, type PointerEvent } from 'react'
 import { chainSketch, noiseBudget, type ChainSpec, type ChainStage, type ComputedChain } from '@/dsp'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { Button } from '@/components/ui/button'
 import { withStageMoved } from '@/lib/chains/edits'
 import { linkOf, outdatedLinks } from '@/lib/chains/links'

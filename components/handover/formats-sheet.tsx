@@ -1,5 +1,6 @@
 import type { ReactNode } from 'react'
-import { caution, ratioLimitDb } from '@/lib/exports/coefficient-set'
+import { caution } from '@/lib/caution'
+import { ratioLimitDb } from '@/lib/exports/coefficient-set'
 import { typesetEquation } from '@/lib/exports/equation'
 import { coefficientSetFields } from '@/lib/exports/json-fields'
 import { judgedRangeDb } from '@/lib/exports/rounding'

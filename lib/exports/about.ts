@@ -1,5 +1,6 @@
 import { stateWords } from '@/lib/designs/words'
-import { caution, deviationWords, type CoefficientSet } from './coefficient-set'
+import { caution } from '../caution'
+import { deviationWords, type CoefficientSet } from './coefficient-set'
 import { noFeedbackWords, signWords } from './equation'
 import { decimalText } from './numbers'
 import { judgedRangeDb } from './rounding'

@@ -10,7 +10,7 @@ import {
 import { array, commentLines } from './c-parts'
 import type { ChainSource } from './chain-source'
 import { chainInput, chainTestVector, lacksStages, storedUnit, type ChainTestVector } from './chain-test-vector'
-import { caution } from './coefficient-set'
+import { caution } from '../caution'
 import { cComment, cString } from './escape'
 import { cLiteral, decimalText } from './numbers'
 

@@ -67,10 +67,6 @@ export interface CoefficientSet {
   readonly testVector: { readonly input: readonly number[]; readonly output: readonly number[] }
 }
 
-export const caution =
-  'A design aid; confirm on the target hardware. Where people or structures depend on the measurement, the applicable local codes ' +
-  'and a licensed practitioner decide.'
-
 /** Above this a ratio b/a is refused. */
 export const ratioLimitDb = 0.01
 

@@ -5,7 +5,7 @@ import { jsonFile } from './json'
 import type { ExportFormat, ExportOptions } from './options'
 import { numpyFile, octaveFile } from './scripts'
 
-export { coefficientSet, ratioRefusal, caution, type CoefficientSet, type ExportSource } from './coefficient-set'
+export { coefficientSet, ratioRefusal, type CoefficientSet, type ExportSource } from './coefficient-set'
 export { structuresOf, usualStructure } from './structures'
 export { exportOptionsFrom, exportQuery, type ExportOptions } from './options'
 

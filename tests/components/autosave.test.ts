@@ -1,10 +1,10 @@
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
-import { createAutosave } from '@/components/studio/shell/autosave'
+import { createAutosave } from '@/components/drafting/autosave'
 import { createStudioStore } from '@/components/studio/store'
 import { defaultSpec, withEdge } from '@/lib/designs/edits'
 import { MOST_MEASURED_ROWS, type DesignSpec } from '@/dsp'
 
-vi.mock('@/components/studio/shell/kept-draft', () => ({ keepDraft: vi.fn(), forgetKeptDraft: vi.fn() }))
+vi.mock('@/components/drafting/kept-draft', () => ({ keepDraft: vi.fn(), forgetKeptDraft: vi.fn() }))
 
 const at = (hertz: number) => withEdge(defaultSpec, 0, hertz)
 const asked = vi.fn<typeof fetch>()

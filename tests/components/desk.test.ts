@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { freshest, remember } from '@/components/studio/shell/desk'
+import { freshest, remember } from '@/components/drafting/desk'
 import { defaultSpec } from '@/lib/designs/edits'
 
 const draft = (revision: number) => ({

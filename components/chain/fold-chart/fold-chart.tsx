@@ -2,7 +2,7 @@
 
 import { useMemo, useRef, useState, useSyncExternalStore } from 'react'
 import { lookWithoutPage, onPageLook, pageLook } from '@/components/plot/page-look'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { Act } from '@/components/studio/stack/choice'
 import { offerFile, svgFile } from '@/components/studio/stack/download'
 import { StaticLayer } from '@/components/studio/stack/static-layer'

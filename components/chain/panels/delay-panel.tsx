@@ -2,7 +2,7 @@
 
 import { useMemo } from 'react'
 import { DataTable } from '@/components/studio/panels/chart/data-table'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import type { ComputedChain } from '@/dsp'
 import { formatHz, formatSeconds } from '@/lib/format/quantity'
 import { chainStageLabel } from './stage-label'

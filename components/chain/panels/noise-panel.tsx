@@ -1,7 +1,7 @@
 'use client'
 
 import { useMemo } from 'react'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { noiseBudget, type ComputedChain, type NoiseBudget } from '@/dsp'
 import { levelText } from '@/lib/chains/fields'
 import { unitAfter } from '@/lib/chains/outline'

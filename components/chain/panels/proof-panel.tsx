@@ -2,7 +2,7 @@
 
 import { useMemo, useState } from 'react'
 import { DataTable } from '@/components/studio/panels/chart/data-table'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { InlineQuantity } from '@/components/studio/shell/inline-quantity'
 import { Notice } from '@/components/ui/notice'
 import type { ChainSpec } from '@/dsp'

@@ -3,7 +3,7 @@
 import { useMemo, useState } from 'react'
 import { ChoiceGroup } from '@/components/handover/choice-group'
 import { DataTable } from '@/components/studio/panels/chart/data-table'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { csvFile, offerFile } from '@/components/studio/stack/download'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'

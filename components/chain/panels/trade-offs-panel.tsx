@@ -1,7 +1,7 @@
 'use client'
 
 import { useMemo, useState } from 'react'
-import { useOnPage } from '@/components/studio/panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import { Button } from '@/components/ui/button'
 import { Notice } from '@/components/ui/notice'
 import type { ChainSpec, PlanOption, RateOption } from '@/dsp'

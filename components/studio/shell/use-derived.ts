@@ -16,8 +16,8 @@ import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { isFirDesign, type DesignSpec } from '@/dsp'
 import type { TraceId } from '../view'
-import { useOnPage } from '../panels/chart/use-on-page'
-import { usePacedSpec, type Pace } from './use-paced-spec'
+import { useOnPage } from '@/components/ui/use-on-page'
+import { usePacedSpec, type Pace } from '@/components/drafting/use-paced-spec'
 
 /*
  * Three paces. The curves follow the hand within the frame, with fewer points until the hand rests; the planes follow at intervals; what

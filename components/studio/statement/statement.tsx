@@ -2,7 +2,7 @@
 
 import { Fragment } from 'react'
 import { statementParts, type StatementPart, type WordKey } from '@/lib/designs/statement'
-import { usePacedSpec, type Pace } from '../shell/use-paced-spec'
+import { usePacedSpec, type Pace } from '@/components/drafting/use-paced-spec'
 import type { StudioStore } from '../store'
 import { useStudio } from '../use-studio'
 import { optionsFor, parseQuantity, stepped, withQuantity, wordOfField, writtenIn } from './apply'

@@ -1,7 +1,7 @@
 'use client'
 
 import { Button } from '@/components/ui/button'
-import { useOnPage } from '../panels/chart/use-on-page'
+import { useOnPage } from '@/components/ui/use-on-page'
 import type { AutosaveState, StoredDraft } from './autosave'
 
 /** One quiet line: whether the draft is safe. */
