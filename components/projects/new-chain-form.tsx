@@ -39,7 +39,7 @@ export function NewChainForm({ projectId, createChain }: { projectId: string; cr
       <div className="grow">
         <TextField
           label="Title of the new chain"
-          placeholder="Deck logger, accelerometer to stored sample"
+          placeholder="Deck logger"
           autoComplete="off"
           error={errorOf('title')}
           {...register('title')}

@@ -51,6 +51,15 @@ describe.each([
       expect(down).toBeLessThan(75)
       expect(weakBefore).toContain('it folds at Down by 2')
 
+      // What can't be is refused beside its word, within the page, and Escape takes it back.
+      const keptTo = page.getByRole('spinbutton', { name: 'Kept to' })
+      await keptTo.fill('999 kHz')
+      await keptTo.press('Enter')
+      await page.getByRole('button', { name: /^Use 1\.28/ }).waitFor()
+      await expectFits(page)
+      await keptTo.press('Escape')
+      expect(await keptTo.inputValue()).toMatch(/^1\s?kHz$/)
+
       // Keys trace one output frequency to every input that lands on it, and repaint nothing.
       await trace(page).focus()
       const painted = await paints(page)
